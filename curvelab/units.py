@@ -1,0 +1,94 @@
+"""Units of currents, times and energies: to base units, and back to what engineers write."""
+
+import math
+from collections.abc import Mapping
+from types import MappingProxyType
+
+from curvelab.errors import InputError
+
+CURRENT_UNITS: Mapping[str, tuple[str, float]] = MappingProxyType(
+    {
+        "mA": ("A", 1e-3),
+        "A": ("A", 1.0),
+        "kA": ("A", 1e3),
+        "xIn": ("xIn", 1.0),
+        "xIr": ("xIr", 1.0),
+        "xIsd": ("xIsd", 1.0),
+        "xIi": ("xIi", 1.0),
+        "xIg": ("xIg", 1.0),
+        "xIdn": ("xIdn", 1.0),
+    }
+)
+"""Unit of a current axis -> (base, factor): value in the base = printed value x factor."""
+
+BASES = tuple(dict.fromkeys(base for base, _ in CURRENT_UNITS.values()))
+"""What a current may be counted in."""
+
+VALUE_UNITS: Mapping[str, Mapping[str, float]] = MappingProxyType(
+    {
+        "time": MappingProxyType({"ms": 1e-3, "s": 1.0, "min": 60.0, "h": 3600.0}),
+        "let_through": MappingProxyType({"A2s": 1.0, "kA2s": 1e6}),
+        "peak": MappingProxyType({"A": 1.0, "kA": 1e3}),
+    }
+)
+"""Quantity of the second axis -> its units and their factor to s, A2s or A."""
+
+QUANTITIES = tuple(VALUE_UNITS)
+
+
+def unit_factor(quantity: str, unit: str) -> float:
+    """Factor from a printed unit to the base unit of its quantity.
+
+    Parameters
+    ----------
+    quantity : str
+        ``current``, ``time``, ``let_through`` or ``peak``.
+    unit : str
+        A unit of that quantity.
+
+    Raises
+    ------
+    InputError
+        The unit is not one of that quantity.
+    """
+    if quantity == "current":
+        factors: Mapping[str, float] = {name: factor for name, (_, factor) in CURRENT_UNITS.items()}
+    else:
+        factors = VALUE_UNITS[quantity]
+    if unit not in factors:
+        raise InputError(
+            f"Unit '{unit}' is not a unit of {quantity.replace('_', '-')}",
+            f"Known units: {', '.join(factors)}",
+        )
+    return factors[unit]
+
+
+def _three_figures(value: float) -> str:
+    """Three significant figures without an exponent."""
+    if value == 0 or not math.isfinite(value):
+        return f"{value:g}"
+    digits = max(0, 2 - math.floor(math.log10(abs(value)) + 1e-12))
+    text = f"{value:.{digits}f}"
+    return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def written_current(value: float, base: str) -> str:
+    """A current as engineers write it, three figures: ``'1.37 kA'``, ``'5 xIn'``."""
+    if base != "A":
+        return f"{_three_figures(value)} {base}"
+    if abs(value) >= 1000:
+        return f"{_three_figures(value / 1000)} kA"
+    if 0 < abs(value) < 1:
+        return f"{_three_figures(value * 1000)} mA"
+    return f"{_three_figures(value)} A"
+
+
+def written_time(time_s: float) -> str:
+    """A time as engineers write it, three figures: ``'12.3 ms'``, ``'0.4 s'``, ``'2.5 min'``, ``'1 h'``."""
+    if 0 < time_s < 0.1:
+        return f"{_three_figures(time_s * 1e3)} ms"
+    if time_s < 120:
+        return f"{_three_figures(time_s)} s"
+    if time_s < 3600:
+        return f"{_three_figures(time_s / 60)} min"
+    return f"{_three_figures(time_s / 3600)} h"
