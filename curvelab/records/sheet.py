@@ -44,8 +44,7 @@ class Pixels:
 
     def columns_rows(self, places: Floats) -> Floats:
         """Pixel coordinates (column, row) of places, shape (n, 2)."""
-        columns_rows: Floats = np.linalg.solve(self.to_place[:, :2], (places - self.to_place[:, 2]).T).T
-        return columns_rows
+        return np.linalg.solve(self.to_place[:, :2], (places - self.to_place[:, 2]).T).T.astype(np.float64)
 
     @property
     def size_in_places(self) -> float:

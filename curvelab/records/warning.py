@@ -15,7 +15,7 @@ class Acceptance:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class ReadingWarning:
-    """A doubt with a stable ``code``, one sentence of ``text`` that says what to give in the worksheet, and its place."""
+    """A doubt: a stable ``code``, one sentence that says what to give in the worksheet, and its place."""
 
     code: str
     text: str
