@@ -1,0 +1,1 @@
+"""Draws time-current sheets from values, and says where every point of every line then lies."""
