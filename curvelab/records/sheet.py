@@ -106,8 +106,8 @@ class Word:
 class Sheet:
     """One page of one file.
 
-    ``strokes`` and ``words`` are empty where the file has pixels alone. ``pixels`` is the image itself, a scan embedded
-    in a PDF at its own resolution, or a rendering of a vector page for display and overlays only.
+    ``strokes`` and ``words`` are empty where the file has pixels alone. ``pixels`` is the image itself, or a scan
+    embedded in a PDF at its own resolution; None for a vector page, which is rendered for display only and on demand.
     """
 
     file: str
@@ -117,7 +117,7 @@ class Sheet:
     width: float
     height: float
     unit: Literal["px", "pt"]
-    pixels: Pixels
+    pixels: Pixels | None
     strokes: tuple[Stroke, ...] = ()
     words: tuple[Word, ...] = ()
 

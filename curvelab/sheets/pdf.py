@@ -1,0 +1,77 @@
+"""One page of a PDF: its exact strokes and words, or the scan that it carries."""
+
+import pypdfium2 as pdfium
+from pypdfium2 import raw
+
+from curvelab.records.arrays import Floats
+from curvelab.records.sheet import Pixels, Sheet, Stroke
+from curvelab.sheets import limits
+from curvelab.sheets.pdfimage import covered_area, scan_pixels
+from curvelab.sheets.pdfium import opened_page, page_map
+from curvelab.sheets.pdfobjects import Painted, Walk
+from curvelab.sheets.pdfpaths import strokes_of
+from curvelab.sheets.pdftext import words_on
+from curvelab.sheets.source import Source
+
+SCAN_SHARE = 0.1
+"""An image below this share of the page is a logo or a photo, not a scanned plot."""
+
+PLOT_LINES = 12
+"""A plot has at least this many drawn lines; fewer beside an image are its frame and title block."""
+
+
+def pdf_page(source: Source) -> Sheet:
+    """One page of a PDF.
+
+    Raises
+    ------
+    SheetError
+        The file is damaged, needs a password or is over the limits, or has no such page.
+    """
+    with opened_page(source) as (page, pages):
+        to_place, width, height = page_map(page)
+        images, strokes = _painted(page, to_place, source)
+        pixels = _scan(page, images, strokes, width * height, source)
+        return Sheet(
+            file=source.name,
+            sha256=source.sha256,
+            page=source.page,
+            pages=pages,
+            width=width,
+            height=height,
+            unit="pt",
+            pixels=pixels,
+            strokes=() if pixels is not None else tuple(strokes),
+            words=words_on(page, to_place, source),
+        )
+
+
+def _painted(page: pdfium.PdfPage, to_place: Floats, source: Source) -> tuple[list[Painted], list[Stroke]]:
+    images: list[Painted] = []
+    strokes: list[Stroke] = []
+    points = 0
+    for number, painted in enumerate(Walk(source).objects(page, to_place)):
+        if painted.kind == raw.FPDF_PAGEOBJ_IMAGE:
+            images.append(painted)
+            continue
+        found = strokes_of(painted.handle, painted.to_place, painted.clips, number)
+        strokes.extend(found)
+        points += sum(len(stroke.points) for stroke in found)
+        if len(strokes) > limits.STROKES:
+            raise source.over("strokes", limits.STROKES)
+        if points > limits.STROKE_POINTS:
+            raise source.over("points", limits.STROKE_POINTS)
+    return images, strokes
+
+
+def _scan(
+    page: pdfium.PdfPage, images: list[Painted], strokes: list[Stroke], page_area: float, source: Source
+) -> Pixels | None:
+    """Pixels of the largest image where it, and no drawing, carries the plot."""
+    lines = sum(not stroke.filled for stroke in strokes)
+    if not images or lines >= PLOT_LINES:
+        return None
+    largest = max(images, key=covered_area)
+    if covered_area(largest) < SCAN_SHARE * page_area:
+        return None
+    return scan_pixels(largest, page, source)
