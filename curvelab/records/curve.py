@@ -1,7 +1,7 @@
 """A curve: one edge of one element of a device, as parts of points that are joined by straight lines in log-log."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from types import MappingProxyType
 from typing import Literal
 
@@ -96,7 +96,7 @@ class Curve:
     base: str
     parts: tuple[Part, ...]
     conditions: Conditions = Conditions()
-    at: Mapping[str, float] = NO_SETTINGS
+    at: Mapping[str, float] = field(default_factory=lambda: NO_SETTINGS)
     leaves_top: bool = False
     basis: Basis = "sheet"
     source: str = ""

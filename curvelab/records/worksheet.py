@@ -1,7 +1,7 @@
 """A worksheet: everything a person says about one reading. Its text form is TOML, see the room ``worksheets``."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Literal
 
 from curvelab.records.axes import Direction, Mark, Scale
@@ -61,7 +61,7 @@ class CurveEntry:
     through: tuple[Place, ...] = ()
     colour: str | None = None
     avoid: tuple[Box, ...] = ()
-    at: Mapping[str, float] = NO_SETTINGS
+    at: Mapping[str, float] = field(default_factory=lambda: NO_SETTINGS)
     conditions: Conditions = Conditions()
     tolerance: Tolerance | None = None
     points: tuple[tuple[float, float], ...] = ()
