@@ -4,8 +4,8 @@ import io
 
 import numpy as np
 import pypdfium2
-import pypdfium2.raw as raw
 from numpy.typing import NDArray
+from pypdfium2 import raw
 from reportlab.lib.colors import HexColor
 from reportlab.pdfbase import pdfmetrics
 from reportlab.pdfbase.ttfonts import TTFont

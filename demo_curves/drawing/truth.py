@@ -1,6 +1,5 @@
 """The truth of a drawn sheet: where every value, line and grid line lies, and what of it can be seen."""
 
-from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -21,6 +20,7 @@ class CurveTruth:
     value: NDArray[np.float64]  # (n,)
     places: Points  # (n, 2)
     visible: NDArray[np.bool_]  # (n - 1,)
+    unit_per_pt: float = 1.0  # sheet units in one printed point, for dashes and widths
 
     def visible_runs(self) -> list[Points]:
         """The stretches that can be seen, as polylines of places."""
@@ -71,17 +71,19 @@ class SheetTruth:
     def to_pixels(self) -> "SheetTruth":
         """The same page as pixels at its resolution."""
         scale = self.dpi / 72.0
-        shift = np.array([-0.5, -0.5])
-        matrix_change = np.array([scale, scale])
+        shift = -0.5  # a pixel's centre, not its corner, has whole coordinates
 
         def moved(plot: PlotTruth) -> PlotTruth:
-            matrix = plot.matrix * matrix_change[:, None]
+            matrix = plot.matrix * scale
             matrix[:, 2] += shift
-            frame = tuple(edge * scale - 0.5 for edge in plot.frame)
-            return replace(plot, matrix=matrix, frame=frame, curves=_moved(plot, lambda at: at * scale + shift))
+            left, top, right, bottom = (edge * scale + shift for edge in plot.frame)
+            curves = tuple(
+                replace(curve, places=curve.places * scale + shift, unit_per_pt=scale) for curve in plot.curves
+            )
+            return replace(plot, matrix=matrix, frame=(left, top, right, bottom), curves=curves)
 
         plots = tuple(moved(plot) for plot in self.plots)
-        return replace(self, unit="px", width=self.width * scale, height=self.height * scale, plots=plots)
+        return replace(self, unit="px", width=round(self.width * scale), height=round(self.height * scale), plots=plots)
 
     def mapped(self, place_map: PlaceMap, width: int, height: int, dpi: float) -> "SheetTruth":
         """The truth after the sheet was moved by a map (once): lines get vertices every pixel to stay exact."""
@@ -90,10 +92,6 @@ class SheetTruth:
             for plot in self.plots
         )
         return replace(self, width=width, height=height, dpi=dpi, plots=plots)
-
-
-def _moved(plot: PlotTruth, change: Callable[[Points], Points]) -> tuple[CurveTruth, ...]:
-    return tuple(replace(curve, places=change(curve.places)) for curve in plot.curves)
 
 
 def _bent(curve: CurveTruth, plot: PlotTruth, place_map: PlaceMap) -> CurveTruth:
