@@ -1,0 +1,1 @@
+"""The command line: each command is one call of a room below, shown."""

@@ -1,0 +1,99 @@
+"""The way of a reading: a worksheet or a bare sheet in, axes, curves, devices and findings out."""
+
+import os
+from pathlib import Path
+
+from curvelab import __version__
+from curvelab.axes.calibrate import calibrate
+from curvelab.devices.device import Device
+from curvelab.errors import InputError, SheetError
+from curvelab.reading.accept import accept
+from curvelab.reading.assemble import assemble
+from curvelab.reading.follow import follow_curves
+from curvelab.reading.model import fitted_curves, typed_curves
+from curvelab.reading.watch import Watch, unwatched
+from curvelab.records.axes import Axes
+from curvelab.records.curve import SheetKey
+from curvelab.records.reading import ReadCurve, Reading
+from curvelab.records.sheet import Sheet
+from curvelab.records.warning import ReadingWarning
+from curvelab.records.worksheet import AxisEntry, SheetEntry, Worksheet
+from curvelab.sheets.open import open_sheet
+from curvelab.standards.check import check
+from curvelab.worksheets.read import read_worksheet
+
+
+def digitise(
+    source: str | os.PathLike[str], *, page: int | None = None, plot: int | None = None, watch: Watch = unwatched
+) -> Reading:
+    """Read a sheet by itself, or as a worksheet says.
+
+    Parameters
+    ----------
+    source : path
+        A sheet (PNG, JPEG, TIFF, BMP, WebP, PDF, SVG) or a worksheet (``.toml``).
+    page, plot : int, optional
+        Which page of the file and which plot of the page, from 1; a worksheet says so itself.
+    watch : callable, optional
+        Told the stage and the fraction done.
+
+    Raises
+    ------
+    InputError
+        The file, the worksheet, a mark or a guide cannot be used; the message says which and what to do.
+    """
+    path = Path(source)
+    if path.suffix.lower() != ".toml":
+        entry = SheetEntry(file=path.name, page=page or 1, plot=plot or 1)
+        return read(Worksheet(sheet=entry), path.parent, watch)
+    if page is not None or plot is not None:
+        raise InputError(
+            f"'{path.name}' is a worksheet and says page and plot itself", "", "Set page and plot in its [sheet]"
+        )
+    return read(read_worksheet(path), path.parent, watch)
+
+
+def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Reading:
+    """Read what a worksheet says; its file names are relative to ``folder``."""
+    sheet: Sheet | None = None
+    axes: Axes | None = None
+    warnings: tuple[ReadingWarning, ...] = ()
+    quantity = worksheet.value.quantity if worksheet.value else "time"
+    curves: tuple[ReadCurve, ...] = typed_curves([entry for entry in worksheet.curves if entry.points], quantity)
+    if worksheet.sheet is not None:
+        watch("Opening the sheet", 0.0)
+        sheet = _open(worksheet.sheet, folder)
+        watch("Calibrating the axes", 0.0)
+        axes, doubts = calibrate(
+            sheet, worksheet.current or AxisEntry(quantity="current"), worksheet.value or AxisEntry(quantity="time")
+        )
+        guided = tuple(entry for entry in worksheet.curves if entry.through)
+        followed, more_doubts = follow_curves(sheet, axes, guided, watch)
+        key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=worksheet.sheet.plot, file=worksheet.sheet.file)
+        watch("Fitting the bands", 0.0)
+        curves = fitted_curves(followed, axes, key) + curves
+        warnings = doubts + more_doubts
+    devices, device_doubts = assemble(worksheet, curves)
+    watch("Checking", 0.0)
+    return Reading(
+        worksheet=worksheet,
+        sheet=sheet,
+        axes=axes,
+        curves=curves,
+        devices=devices,
+        findings=tuple(finding for record in devices for finding in check(Device(record))),
+        warnings=accept(warnings + device_doubts, worksheet.accepted),
+        program_version=__version__,
+    )
+
+
+def _open(entry: SheetEntry, folder: Path) -> Sheet:
+    """The sheet of a worksheet, refused when it is not the file the worksheet was made for."""
+    sheet = open_sheet(folder / entry.file, entry.page)
+    if entry.sha256 is not None and entry.sha256 != sheet.sha256:
+        raise SheetError(
+            f"'{entry.file}' has SHA-256 {sheet.sha256[:12]}..., the worksheet was made for {entry.sha256[:12]}...",
+            "The same file as when the worksheet was written",
+            "Find that file, or take sha256 out of [sheet] and check the marks again",
+        )
+    return sheet

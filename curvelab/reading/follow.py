@@ -1,0 +1,46 @@
+"""The station that traces every curve the worksheet guides."""
+
+from dataclasses import dataclass
+
+from curvelab.errors import TraceError
+from curvelab.reading.watch import Watch
+from curvelab.records.axes import Axes
+from curvelab.records.sheet import Sheet
+from curvelab.records.trace import Trace
+from curvelab.records.warning import ReadingWarning
+from curvelab.records.worksheet import CurveEntry
+from curvelab.trace.guided import Guide, trace_guided
+from curvelab.trace.prepare import prepare
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Followed:
+    """One entry of the worksheet with the trace it led to."""
+
+    entry: CurveEntry
+    trace: Trace
+
+
+def follow_curves(
+    sheet: Sheet, axes: Axes, entries: tuple[CurveEntry, ...], watch: Watch
+) -> tuple[tuple[Followed, ...], tuple[ReadingWarning, ...]]:
+    """Trace each guided entry on its own.
+
+    Raises
+    ------
+    TraceError
+        No line where an entry's guide says; the message names the entry.
+    """
+    prepared = prepare(sheet, axes)
+    followed = []
+    warnings: list[ReadingWarning] = []
+    for number, entry in enumerate(entries, start=1):
+        watch("Tracing curves", (number - 1) / len(entries))
+        guide = Guide(through=entry.through, colour=entry.colour, avoid=entry.avoid)
+        try:
+            trace, doubts = trace_guided(prepared, guide)
+        except TraceError as error:
+            raise TraceError(f"[[curves]] {number}: {error.problem}", error.expected, error.fix) from error
+        followed.append(Followed(entry=entry, trace=trace))
+        warnings.extend(doubts)
+    return tuple(followed), tuple(warnings)

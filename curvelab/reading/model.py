@@ -1,0 +1,145 @@
+"""The station that fits traces and makes curves of them; typed points become curves as they are."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from curvelab.errors import FitError, WorksheetError
+from curvelab.fit.curve import fit_curve
+from curvelab.fit.order import keep_order
+from curvelab.reading.follow import Followed
+from curvelab.reading.points import fit_points, point_uncertainty
+from curvelab.records.axes import Axes
+from curvelab.records.curve import Curve, SheetKey, typed_part
+from curvelab.records.fit import CurveFit
+from curvelab.records.points import FitPoints
+from curvelab.records.reading import ReadCurve
+from curvelab.records.trace import Trace
+from curvelab.records.worksheet import CurveEntry
+
+AT_FRAME = 4.0
+"""A line that ends this close to the plot's top, in px or pt, leaves the plot there."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class _Fitted:
+    followed: Followed
+    points: FitPoints
+    fit: CurveFit
+
+
+def _in_order(trace: Trace, axes: Axes, *, rising: bool) -> Trace:
+    """The trace from its low-current end to its high-current end."""
+    ends = axes.map.scaled(trace.places[[0, -1]])
+    along = ends[:, 0] + (ends[:, 1] if rising else -ends[:, 1])
+    if along[0] <= along[1]:
+        return trace
+    return replace(
+        trace,
+        places=trace.places[::-1],
+        sd=trace.sd[::-1],
+        gaps=tuple(replace(gap, start=gap.end, end=gap.start) for gap in reversed(trace.gaps)),
+        ends_at_frame=(trace.ends_at_frame[1], trace.ends_at_frame[0]),
+    )
+
+
+def _leaves_top(trace: Trace, axes: Axes) -> bool:
+    """True where the low-current end of a time curve lies at the greatest time of the plot."""
+    if axes.value.quantity != "time" or not trace.ends_at_frame[0]:
+        return False
+    x0, y0, x1, y1 = axes.frame
+    corners = axes.map.scaled([(x0, y0), (x1, y0), (x0, y1), (x1, y1)])
+    end = axes.map.scaled(trace.places[:1])[0]
+    top = axes.map.places([(end[0], corners[:, 1].max())])[0]
+    return bool(np.hypot(*(top - trace.places[0])) <= AT_FRAME)
+
+
+def _band_of(entry: CurveEntry) -> tuple[object, ...]:
+    """What the two edges of one band share."""
+    return (entry.element, entry.devices, entry.conditions, tuple(sorted(entry.at.items())))
+
+
+def _ordered(fitted: list[_Fitted]) -> list[_Fitted]:
+    """The same fits with fast never above slow within each band."""
+    result = list(fitted)
+    for i, fast in enumerate(result):
+        for j, slow in enumerate(result):
+            of_one_band = _band_of(fast.followed.entry) == _band_of(slow.followed.entry)
+            if of_one_band and (fast.followed.entry.edge, slow.followed.entry.edge) == ("fast", "slow"):
+                fast_fit, slow_fit = keep_order(result[i].fit, result[j].fit)
+                result[i], result[j] = replace(result[i], fit=fast_fit), replace(result[j], fit=slow_fit)
+    return result
+
+
+def _curve(entry: CurveEntry, *, base: str, quantity: str, fit_or_points: CurveFit | None) -> Curve:
+    if entry.edge is None:
+        raise WorksheetError("A curve has no edge", "edge = 'fast', 'slow' or 'mean'", "Say which limit the line is")
+    parts = fit_or_points.parts if fit_or_points else (typed_part(*zip(*entry.points, strict=True)),)
+    return Curve(
+        element=entry.element or "whole",
+        edge=entry.edge,
+        meaning=entry.meaning,
+        quantity=quantity,  # type: ignore[arg-type]
+        base=base,
+        parts=parts,
+        conditions=entry.conditions,
+        at=entry.at,
+        source=entry.source,
+    )
+
+
+def fitted_curves(followed: Sequence[Followed], axes: Axes, sheet: SheetKey) -> tuple[ReadCurve, ...]:
+    """Fit each trace and tabulate it.
+
+    Raises
+    ------
+    FitError
+        The places of a trace cannot be one monotone curve.
+    """
+    rising = axes.value.quantity != "time"
+    fitted = []
+    for number, each in enumerate(followed, start=1):
+        ordered = replace(each, trace=_in_order(each.trace, axes, rising=rising))
+        points = fit_points(ordered.trace, axes)
+        try:
+            fit = fit_curve(points, rising=rising)
+        except FitError as error:
+            raise FitError(f"[[curves]] {number}: {error.problem}", error.expected, error.fix) from error
+        fitted.append(_Fitted(followed=ordered, points=points, fit=fit))
+    return tuple(_read_curve(each, axes, sheet) for each in _ordered(fitted))
+
+
+def _read_curve(fitted: _Fitted, axes: Axes, sheet: SheetKey) -> ReadCurve:
+    entry, trace = fitted.followed.entry, fitted.followed.trace
+    curve = _curve(entry, base=axes.current.base, quantity=axes.value.quantity, fit_or_points=fitted.fit)
+    sd_current, sd_value = point_uncertainty(fitted.points)
+    return ReadCurve(
+        trace=trace,
+        current=10.0**fitted.points.log_current,
+        value=10.0**fitted.points.log_value,
+        sd_current=sd_current,
+        sd_value=sd_value,
+        curve=replace(curve, leaves_top=_leaves_top(trace, axes), sheet=sheet),
+        devices=entry.devices,
+    )
+
+
+def typed_curves(entries: Sequence[CurveEntry], quantity: str) -> tuple[ReadCurve, ...]:
+    """Curves of points typed from a table; their uncertainty is not known."""
+    result = []
+    for entry in entries:
+        curve = _curve(entry, base=entry.base or "A", quantity=quantity, fit_or_points=None)
+        part = curve.parts[0]
+        result.append(
+            ReadCurve(
+                trace=None,
+                current=part.current,
+                value=part.value,
+                sd_current=part.sd_current,
+                sd_value=part.sd_value,
+                curve=curve,
+                devices=entry.devices,
+            )
+        )
+    return tuple(result)

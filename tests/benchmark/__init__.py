@@ -1,0 +1,1 @@
+"""Accuracy, coverage and speed on drawn sheets with known truth: ``python -m tests.benchmark``."""
