@@ -1,0 +1,130 @@
+"""Straight lines in log-log as a table of power laws: several chains looked up at once, with one search."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from curvelab.records.arrays import Floats
+
+NUDGE = 1e-12
+"""Relative distance within which an asked number counts as a tabulated one: turning a current between bases rounds it."""
+
+_SLICING_PAYS_FROM = 64
+"""Asked numbers a row from which sorted ones are cheaper worked slice by slice than gathered."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class PowerTable:
+    """Rows between breaks; in row i the answer of chain k is ``value * (asked / anchor) ** slope``.
+
+    Parameters
+    ----------
+    breaks : array, shape (m,)
+        Rising; row i lies between breaks i - 1 and i.
+    log_anchor, value, slope : array, shape (k, m + 1)
+        NaN value where the row is not covered. At an anchor the answer is exactly the tabulated value.
+    """
+
+    breaks: Floats
+    log_anchor: Floats
+    value: Floats
+    slope: Floats
+
+    def __call__(self, asked: Floats) -> Floats:
+        """Answers of the k chains, shape (k, n), at the n positive numbers asked."""
+        with np.errstate(divide="ignore", invalid="ignore"):
+            log_asked = np.log(asked)
+        rows = self.breaks.size + 1
+        if asked.size >= _SLICING_PAYS_FROM * rows and bool((asked[1:] >= asked[:-1]).all()):
+            return self._by_slices(asked, log_asked)
+        row = self.breaks.searchsorted(asked)
+        answers = np.empty((self.value.shape[0], asked.size))
+        for anchor, value, slope, answer in zip(self.log_anchor, self.value, self.slope, answers, strict=True):
+            np.subtract(log_asked, anchor.take(row), out=answer)
+            answer *= slope.take(row)
+            np.exp(answer, out=answer)
+            answer *= value.take(row)
+        return answers
+
+    def _by_slices(self, asked: Floats, log_asked: Floats) -> Floats:
+        """The same for sorted numbers: each row is one slice with constants."""
+        ends = [0, *asked.searchsorted(self.breaks, side="right").tolist(), asked.size]
+        answers = np.empty((self.value.shape[0], asked.size))
+        for row in range(len(ends) - 1):
+            here = slice(ends[row], ends[row + 1])
+            if here.start == here.stop:
+                continue
+            for chain in range(answers.shape[0]):
+                answer = answers[chain, here]
+                if np.isnan(self.value[chain, row]):
+                    answer.fill(np.nan)
+                    continue
+                np.subtract(log_asked[here], self.log_anchor[chain, row], out=answer)
+                answer *= self.slope[chain, row]
+                np.exp(answer, out=answer)
+                answer *= self.value[chain, row]
+        return answers
+
+
+def chain_table(given: Floats, answer: Floats, *, first: bool, clamped: bool = False) -> PowerTable:
+    """The table of one chain of points joined by straight lines in log-log.
+
+    Parameters
+    ----------
+    given, answer : array, shape (n,)
+        Positive; ``given`` never falls.
+    first : bool
+        At a repeated given number answer the first of its points, else the last.
+    clamped : bool
+        Outside its ends the chain answers its end values, else NaN.
+    """
+    if given.size == 1:
+        given, answer = np.repeat(given, 2), np.repeat(answer, 2)
+    breaks = given * (1 + NUDGE if first else 1 - NUDGE)
+    breaks[0], breaks[-1] = given[0] * (1 - NUDGE), given[-1] * (1 + NUDGE)
+    log_given = np.log(given)
+    run, rise = np.diff(log_given), np.diff(np.log(answer))
+    vertical = run == 0
+    slope = np.divide(rise, run, out=np.zeros_like(run), where=~vertical)
+    # Anchored where the row is closed, so that a tabulated number gives its tabulated answer to the last digit.
+    anchored_right = np.where(vertical, not first, first)
+    anchor = np.arange(run.size) + anchored_right
+    outside = np.array([answer[0], answer[-1]]) if clamped else np.full(2, np.nan)
+    return PowerTable(
+        breaks=breaks,
+        log_anchor=np.concatenate(([log_given[0]], log_given[anchor], [log_given[-1]]))[None],
+        value=np.concatenate((outside[:1], answer[anchor], outside[1:]))[None],
+        slope=np.concatenate(([0.0], slope, [0.0]))[None],
+    )
+
+
+def side_by_side(tables: Sequence[PowerTable]) -> PowerTable:
+    """One table that answers all chains of several on their common breaks."""
+    breaks = np.unique(np.concatenate([table.breaks for table in tables]))
+    rows = [np.append(table.breaks.searchsorted(breaks), table.breaks.size) for table in tables]
+
+    def gathered(name: str) -> Floats:
+        chains = [getattr(table, name)[:, row] for table, row in zip(tables, rows, strict=True)]
+        return np.concatenate(chains)
+
+    return PowerTable(
+        breaks=breaks, log_anchor=gathered("log_anchor"), value=gathered("value"), slope=gathered("slope")
+    )
+
+
+def end_to_end(tables: Sequence[PowerTable], *, first: bool) -> PowerTable:
+    """One table of parts that follow one another, not covered between them; ``first`` as in `chain_table`."""
+
+    def joined(name: str) -> Floats:
+        pieces = [getattr(table, name)[:, :-1] for table in tables[:-1]]
+        return np.concatenate([*pieces, getattr(tables[-1], name)], axis=1)
+
+    breaks = np.concatenate([table.breaks for table in tables])
+    return PowerTable(
+        # Where two parts share a number, the one that answers there keeps the break.
+        breaks=np.maximum.accumulate(breaks) if first else np.minimum.accumulate(breaks[::-1])[::-1],
+        log_anchor=joined("log_anchor"),
+        value=joined("value"),
+        slope=joined("slope"),
+    )
