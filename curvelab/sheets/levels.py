@@ -64,12 +64,10 @@ def on_white(image: Image.Image) -> Image.Image:
 def has_colour(colour: Bytes) -> bool:
     """Whether enough pixels are coloured for colour to mean anything."""
     coloured = 0
-    rows: Bytes
     for first in range(0, len(colour), ROWS_AT_ONCE):
         rows = colour[first : first + ROWS_AT_ONCE]
         red, green, blue = rows[..., 0], rows[..., 1], rows[..., 2]
         highest = np.maximum(np.maximum(red, green), blue)
         lowest = np.minimum(np.minimum(red, green), blue)
         coloured += int(np.count_nonzero(highest - lowest >= COLOURED_DIFFERENCE))
-    rows_all, columns, _ = colour.shape
-    return coloured > COLOURED_SHARE * rows_all * columns
+    return bool(coloured > COLOURED_SHARE * colour[..., 0].size)

@@ -21,7 +21,7 @@ STROKE_POINTS = 3_000_000
 CHARACTERS = 200_000
 """Characters of text on one page."""
 
-NESTING = 20
+NESTING = 64
 """Depth of forms within forms, groups within groups, and uses of uses."""
 
 ELEMENTS = 400_000

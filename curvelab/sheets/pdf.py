@@ -6,15 +6,19 @@ from pypdfium2 import raw
 from curvelab.records.arrays import Floats
 from curvelab.records.sheet import Pixels, Sheet, Stroke
 from curvelab.sheets import limits
-from curvelab.sheets.pdfimage import covered_area, scan_pixels
+from curvelab.sheets.pdfimage import covered_area, pixel_count, scan_pixels
 from curvelab.sheets.pdfium import opened_page, page_map
 from curvelab.sheets.pdfobjects import Painted, Walk
 from curvelab.sheets.pdfpaths import strokes_of
 from curvelab.sheets.pdftext import words_on
 from curvelab.sheets.source import Source
+from curvelab.sheets.strokes import Setting
 
 SCAN_SHARE = 0.1
 """An image below this share of the page is a logo or a photo, not a scanned plot."""
+
+SAME_AREA = 0.9
+"""Images of at least this share of the largest one's area are layers of one scan."""
 
 PLOT_LINES = 12
 """A plot has at least this many drawn lines; fewer beside an image are its frame and title block."""
@@ -54,7 +58,7 @@ def _painted(page: pdfium.PdfPage, to_place: Floats, source: Source) -> tuple[li
         if painted.kind == raw.FPDF_PAGEOBJ_IMAGE:
             images.append(painted)
             continue
-        found = strokes_of(painted.handle, painted.to_place, painted.clips, number)
+        found = strokes_of(painted.handle, Setting(to_place=painted.to_place, clips=painted.clips, path=number))
         strokes.extend(found)
         points += sum(len(stroke.points) for stroke in found)
         if len(strokes) > limits.STROKES:
@@ -71,7 +75,9 @@ def _scan(
     lines = sum(not stroke.filled for stroke in strokes)
     if not images or lines >= PLOT_LINES:
         return None
-    largest = max(images, key=covered_area)
-    if covered_area(largest) < SCAN_SHARE * page_area:
+    largest = max(covered_area(image) for image in images)
+    if largest < SCAN_SHARE * page_area:
         return None
-    return scan_pixels(largest, page, source)
+    # a scan kept as layers has a coarse one for the paper and a fine one for the ink
+    layers = [image for image in images if covered_area(image) > SAME_AREA * largest]
+    return scan_pixels(max(layers, key=lambda image: pixel_count(image, page)), page, source)

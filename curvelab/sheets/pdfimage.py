@@ -4,11 +4,13 @@ from typing import Any
 
 import numpy as np
 import pypdfium2 as pdfium
+from PIL import Image
+from pypdfium2 import raw
 
 from curvelab.records.arrays import Bytes, Floats
 from curvelab.records.sheet import Pixels
 from curvelab.sheets.affine import compose, from_six
-from curvelab.sheets.levels import grey_and_colour
+from curvelab.sheets.levels import WHITE, grey_and_colour
 from curvelab.sheets.pdfobjects import Painted
 from curvelab.sheets.source import Source
 
@@ -16,6 +18,12 @@ from curvelab.sheets.source import Source
 def covered_area(image: Painted) -> float:
     """Area of the page under an image, in square points."""
     return float(abs(np.linalg.det(image.to_place[:, :2])))
+
+
+def pixel_count(image: Painted, page: pdfium.PdfPage) -> int:
+    """Pixels that the image itself has."""
+    columns, rows = _size(image, page)
+    return columns * rows
 
 
 def scan_pixels(image: Painted, page: pdfium.PdfPage, source: Source) -> Pixels:
@@ -26,20 +34,32 @@ def scan_pixels(image: Painted, page: pdfium.PdfPage, source: Source) -> Pixels:
     SheetError
         The image is over the limit, or cannot be decoded.
     """
-    handle = pdfium.PdfImage(image.handle, page=page, pdf=page.pdf)
-    columns, rows = handle.get_px_size()
+    columns, rows = _size(image, page)
     source.require_pixels(columns, rows)
-    try:
-        bitmap = handle.get_bitmap(render=False)
-    except pdfium.PdfiumError as error:
-        raise source.damaged("a scan") from error
-    try:
-        grey, colour = grey_and_colour(bitmap.to_pil())
-    finally:
-        bitmap.close()
+    # drawn one pixel to one pixel, the samples come out unchanged, with masks and paint applied
+    raw.FPDFImageObj_SetMatrix(image.handle, columns, 0, 0, rows, 0, 0)
+    handle = raw.FPDFImageObj_GetRenderedBitmap(page.pdf, page, image.handle)
+    if not handle:
+        raise source.damaged("a scan")
+    grey, colour = _levels(pdfium.PdfBitmap.from_raw(handle))
+    if grey.shape != (rows, columns):
+        raise source.damaged("a scan")
     # an image fills the unit square of its own space, the first row at the top
     unit = from_six((1 / columns, 0, 0, -1 / rows, 0.5 / columns, 1 - 0.5 / rows))
     return upright(grey, colour, compose(image.to_place, unit))
+
+
+def _size(image: Painted, page: pdfium.PdfPage) -> tuple[int, int]:
+    columns, rows = pdfium.PdfImage(image.handle, page=page, pdf=page.pdf).get_px_size()
+    return columns, rows
+
+
+def _levels(bitmap: pdfium.PdfBitmap) -> tuple[Bytes, Bytes | None]:
+    size, data = (bitmap.width, bitmap.height), bitmap.buffer
+    image = Image.frombuffer("RGBA", size, data, "raw", "BGRA", bitmap.stride, 1)
+    if image.getchannel("A").getextrema() == (WHITE, WHITE):
+        image = image.convert("RGB")
+    return grey_and_colour(image)
 
 
 def upright(grey: Bytes, colour: Bytes | None, to_place: Floats) -> Pixels:

@@ -12,8 +12,9 @@ from curvelab.records.arrays import Floats
 from curvelab.sheets import limits
 from curvelab.sheets.affine import apply, compose, from_six
 from curvelab.sheets.clip import Clip, clip_of
-from curvelab.sheets.pdfpaths import FLATNESS, clip_segments, subpaths
+from curvelab.sheets.pdfpaths import clip_segments, subpaths
 from curvelab.sheets.source import Source
+from curvelab.sheets.strokes import FLATNESS
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)

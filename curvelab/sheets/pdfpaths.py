@@ -1,4 +1,4 @@
-"""A PDF path object becomes strokes: its exact corners, its curves flattened, cut by what clips it."""
+"""A PDF path object becomes strokes: its exact corners, its curves flattened."""
 
 import ctypes
 from collections.abc import Iterator
@@ -9,14 +9,8 @@ from pypdfium2 import raw
 
 from curvelab.records.arrays import Floats
 from curvelab.records.sheet import Stroke
-from curvelab.sheets.affine import apply, scale_of
 from curvelab.sheets.bezier import flattened
-from curvelab.sheets.clip import Clip, pieces_inside
-
-FLATNESS = 1e-3
-"""Greatest distance in points between a curve and its polyline: below 2e-5 decade at 60 points a decade."""
-
-Colour = tuple[int, int, int]
+from curvelab.sheets.strokes import Colour, Paint, Polyline, Setting, strokes_from
 
 
 def path_segments(handle: Any) -> Iterator[Any]:
@@ -31,7 +25,7 @@ def clip_segments(handle: Any, path: int) -> Iterator[Any]:
         yield raw.FPDFClipPath_GetPathSegment(handle, path, index)
 
 
-def subpaths(segments: Iterator[Any], tolerance: float) -> list[tuple[Floats, bool]]:
+def subpaths(segments: Iterator[Any], tolerance: float) -> list[Polyline]:
     """Polylines in the segments' own space, each with whether it returns to its start.
 
     Parameters
@@ -40,7 +34,7 @@ def subpaths(segments: Iterator[Any], tolerance: float) -> list[tuple[Floats, bo
     tolerance : float
         Greatest distance between a curve and its polyline, in that space.
     """
-    found: list[tuple[Floats, bool]] = []
+    found: list[Polyline] = []
     points: list[Floats] = []
     controls: list[Floats] = []
     closed = False
@@ -72,41 +66,19 @@ def subpaths(segments: Iterator[Any], tolerance: float) -> list[tuple[Floats, bo
     return found
 
 
-def strokes_of(handle: Any, to_place: Floats, clips: tuple[Clip, ...], path: int) -> list[Stroke]:
-    """Visible strokes of one path object; a path both filled and drawn gives an outline and a line.
-
-    Parameters
-    ----------
-    handle : PDFium's path object
-    to_place : array, shape (2, 3)
-        From the object's space to places.
-    clips : tuple of Clip
-    path : int
-        Number of the path on the page.
-    """
+def strokes_of(handle: Any, setting: Setting) -> list[Stroke]:
+    """Visible strokes of one path object; a path both filled and drawn gives an outline and a line."""
     fill_rule, drawn = ctypes.c_int(), ctypes.c_int()
     raw.FPDFPath_GetDrawMode(handle, ctypes.byref(fill_rule), ctypes.byref(drawn))
-    fill = _colour(raw.FPDFPageObj_GetFillColor, handle) if fill_rule.value else None
-    line = _colour(raw.FPDFPageObj_GetStrokeColor, handle) if drawn.value else None
-    if fill is None and line is None:
+    paint = Paint(
+        fill=_colour(raw.FPDFPageObj_GetFillColor, handle) if fill_rule.value else None,
+        line=_colour(raw.FPDFPageObj_GetStrokeColor, handle) if drawn.value else None,
+        width=_width(handle),
+        dash=_dash(handle),
+    )
+    if paint.fill is None and paint.line is None:
         return []
-    scale = scale_of(to_place)
-    tolerance = FLATNESS / scale if scale > 0 else FLATNESS
-    pieces = [
-        (piece, closed and len(piece) == len(whole))
-        for whole, closed in subpaths(path_segments(handle), tolerance)
-        for piece in pieces_inside(apply(to_place, whole), clips)
-    ]
-    strokes: list[Stroke] = []
-    for colour, filled in ((fill, True), (line, False)):
-        if colour is None:
-            continue
-        width, dash = (0.0, ()) if filled else (_width(handle) * scale, _dash(handle, scale))
-        strokes.extend(
-            Stroke(points=piece, colour=colour, width=width, filled=filled, closed=closed, dash=dash, path=path)
-            for piece, closed in pieces
-        )
-    return strokes
+    return strokes_from(subpaths(path_segments(handle), setting.tolerance), paint, setting)
 
 
 def _colour(getter: Any, handle: Any) -> Colour | None:
@@ -124,10 +96,10 @@ def _width(handle: Any) -> float:
     return width.value
 
 
-def _dash(handle: Any, scale: float) -> tuple[float, ...]:
+def _dash(handle: Any) -> tuple[float, ...]:
     count = raw.FPDFPageObj_GetDashCount(handle)
     if count <= 0:
         return ()
     lengths = (ctypes.c_float * count)()
     raw.FPDFPageObj_GetDashArray(handle, lengths, count)
-    return tuple(length * scale for length in lengths)
+    return tuple(lengths)
