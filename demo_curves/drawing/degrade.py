@@ -32,7 +32,7 @@ def scanned(drawn: DrawnPage, page: Page, scan: Scan) -> tuple[Pixels, SheetTrut
     """Grey pixels (height, width) of the scanned page, and the truth in their places."""
     place_map = scan_skew((page.width_px, page.height_px), scan.angle_deg, scan.stretch)
     flat = scanner_image(drawn, page, place_map, scan)
-    truth = drawn.truth.to_pixels().mapped(place_map, page.width_px, page.height_px, page.dpi)
+    truth = drawn.truth.to_pixels(page.dpi).mapped(place_map, page.width_px, page.height_px, page.dpi)
     return _exposed(flat, scan), truth
 
 

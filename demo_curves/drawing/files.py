@@ -9,7 +9,7 @@ from demo_curves.drawing.render import Pixels
 
 
 def image_file(pixels: Pixels, kind: str, dpi: float, quality: int = 85) -> bytes:
-    """An image file: `png`, `palette` (PNG of 64 colours), `jpg`, `tif` (grey, packed) or `g4` (1-bit TIFF)."""
+    """An image file: `png`, `palette` (PNG of 256 colours), `jpg`, `tif` (grey, packed) or `g4` (1-bit TIFF)."""
     image = Image.fromarray(pixels)
     target = io.BytesIO()
     density = (dpi, dpi)
@@ -17,7 +17,7 @@ def image_file(pixels: Pixels, kind: str, dpi: float, quality: int = 85) -> byte
         case "png":
             image.save(target, "PNG", dpi=density, optimize=True)
         case "palette":
-            few = image.quantize(64, method=Image.Quantize.MEDIANCUT, dither=Image.Dither.NONE)
+            few = image.quantize(256, method=Image.Quantize.MEDIANCUT, dither=Image.Dither.NONE)
             few.save(target, "PNG", dpi=density, optimize=True)
         case "jpg":
             image.save(target, "JPEG", dpi=density, quality=quality)

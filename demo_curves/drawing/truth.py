@@ -68,9 +68,10 @@ class SheetTruth:
     dpi: float
     plots: tuple[PlotTruth, ...]
 
-    def to_pixels(self) -> "SheetTruth":
-        """The same page as pixels at its resolution."""
-        scale = self.dpi / 72.0
+    def to_pixels(self, dpi: float | None = None) -> "SheetTruth":
+        """The same page as pixels, at its own or another resolution."""
+        dpi = dpi or self.dpi
+        scale = dpi / 72.0
         shift = -0.5  # a pixel's centre, not its corner, has whole coordinates
 
         def moved(plot: PlotTruth) -> PlotTruth:
@@ -83,7 +84,9 @@ class SheetTruth:
             return replace(plot, matrix=matrix, frame=(left, top, right, bottom), curves=curves)
 
         plots = tuple(moved(plot) for plot in self.plots)
-        return replace(self, unit="px", width=round(self.width * scale), height=round(self.height * scale), plots=plots)
+        return replace(
+            self, unit="px", dpi=dpi, width=round(self.width * scale), height=round(self.height * scale), plots=plots
+        )
 
     def mapped(self, place_map: PlaceMap, width: int, height: int, dpi: float) -> "SheetTruth":
         """The truth after the sheet was moved by a map (once): lines get vertices every pixel to stay exact."""
