@@ -1,0 +1,76 @@
+"""Content hashes: the same curve, statement or revision has the same hash, whenever and by whom it is stored.
+
+What is None, False or empty is left out, so that a field added to a record later does not change the hash of what
+lacks it.
+"""
+
+import hashlib
+import json
+from collections.abc import Iterable, Mapping
+from dataclasses import fields, is_dataclass
+from typing import Any
+
+import numpy as np
+
+from curvelab.records.arrays import Floats
+from curvelab.records.curve import Curve
+from curvelab.records.device import Nameplate
+from curvelab.records.reading import Reading
+
+NO_STATEMENT = hashlib.sha256(b"").digest()
+
+
+def curve_sha256(curve: Curve) -> bytes:
+    """Hash of all a curve says; of its sheet the file's bytes, page and plot count, not the file's name."""
+    head = {field.name: getattr(curve, field.name) for field in fields(curve) if field.name not in ("parts", "sheet")}
+    sheet = curve.sheet and [curve.sheet.sha256, curve.sheet.page, curve.sheet.plot]
+    digest = hashlib.sha256(_text({**head, "sheet": sheet}))
+    for part in curve.parts:
+        digest.update(len(part.current).to_bytes(8, "little"))
+        for values in (part.current, part.value, part.sd_current, part.sd_value, part.sd_common):
+            digest.update(_bytes(values))
+    return digest.digest()
+
+
+def statement_sha256(reading: Reading) -> bytes:
+    """Hash of what people said beside the numbers: the document, and the warnings with who accepted them."""
+    return hashlib.sha256(_text([reading.worksheet.document, reading.warnings])).digest()
+
+
+def revision_sha256(nameplate: Nameplate, evidence: Iterable[tuple[bytes, bytes]]) -> bytes:
+    """Hash of a device's content: its nameplate and its (curve, statement) hashes in any order."""
+    digest = hashlib.sha256(_text(nameplate))
+    for curve, statement in sorted(evidence):
+        digest.update(curve + statement)
+    return digest.digest()
+
+
+def _text(value: object) -> bytes:
+    return json.dumps(_plain(value), sort_keys=True, separators=(",", ":")).encode("ascii")
+
+
+def _plain(value: object) -> Any:
+    """Nested plain values: numbers as floats, records as mappings without what is None, False or empty."""
+    if value is None or isinstance(value, str | bool):
+        return value
+    if isinstance(value, int | float):
+        return float(value) + 0.0
+    if isinstance(value, tuple | list):
+        return [_plain(item) for item in value]
+    if isinstance(value, Mapping):
+        said = {name: _plain(item) for name, item in value.items()}
+    elif is_dataclass(value):
+        said = {field.name: _plain(getattr(value, field.name)) for field in fields(value)}
+    else:
+        raise TypeError(f"{type(value).__name__} has no canonical form")
+    return {name: item for name, item in said.items() if not _is_nothing(item)}
+
+
+def _is_nothing(plain: object) -> bool:
+    """None, False or empty; zero is something."""
+    return plain is None or plain is False or (isinstance(plain, str | list | dict) and not plain)
+
+
+def _bytes(values: Floats) -> bytes:
+    """Little-endian doubles, every NaN alike and -0 as 0."""
+    return np.where(np.isnan(values), np.nan, values + 0.0).astype("<f8").tobytes()

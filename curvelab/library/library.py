@@ -1,0 +1,172 @@
+"""The library's face: open it, store readings and devices, ask for devices."""
+
+import os
+import sqlite3
+from collections.abc import Iterable
+from pathlib import Path
+from types import TracebackType
+from typing import Any, Self
+
+from curvelab.devices.device import Device
+from curvelab.errors import NotFoundError
+from curvelab.library.connect import named_errors, open_to_read
+from curvelab.library.load import read_device
+from curvelab.library.place import data_folder, library_path
+from curvelab.library.sound import refuse_unsound
+from curvelab.library.stored import Signature, Stored
+from curvelab.records.device import DeviceRecord
+from curvelab.records.reading import Reading
+
+UNSIGNED = Signature()
+
+
+def open_library(path: str | os.PathLike[str] | None = None, *, create: bool = True) -> "Library":
+    """Open a library: the path given, else CURVELAB_LIBRARY, else the user's data folder.
+
+    Parameters
+    ----------
+    path : path, optional
+        The library file. A file that does not exist is made by the first ``store``, not before.
+    create : bool
+        False refuses a file that does not exist.
+
+    Raises
+    ------
+    LibraryError
+        The file is not a library this program can use.
+    """
+    library = Library(library_path(path))
+    if library.path.exists() or not create:
+        library.open()
+    return library
+
+
+class Library:
+    """One library file. Use it as a context manager, or close it."""
+
+    def __init__(self, path: Path) -> None:
+        self.path = path
+        self._reader: sqlite3.Connection | None = None
+        self._writer: Any = None
+
+    def open(self) -> sqlite3.Connection:
+        """The connection that reads; opened once.
+
+        Raises
+        ------
+        LibraryError
+            There is no such file, or it is not a library.
+        """
+        if self._reader is None:
+            self._reader = open_to_read(self.path)
+        return self._reader
+
+    def close(self) -> None:
+        """Close the file; it opens again when next used."""
+        for connection in (self._reader, self._writer and self._writer.conn):
+            if connection is not None:
+                connection.close()
+        self._reader = self._writer = None
+
+    def __enter__(self) -> Self:
+        return self
+
+    def __exit__(
+        self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None
+    ) -> None:
+        self.close()
+
+    def record(self, key: str, revision: int | None = None) -> DeviceRecord:
+        """A stored device as a record: the current revision, or the one of that number.
+
+        Raises
+        ------
+        NotFoundError
+            No such key or revision.
+        """
+        with named_errors(self.path):
+            return read_device(self.open(), key, revision)
+
+    def device(self, key: str, revision: int | None = None) -> Device:
+        """A stored device that can be asked; arguments and errors as for `record`."""
+        return Device(self.record(key, revision))
+
+    def keys(self) -> list[str]:
+        """The keys of all devices, sorted."""
+        with named_errors(self.path):
+            return [key for (key,) in self.open().execute("SELECT device_key FROM device ORDER BY device_key")]
+
+    def index(self) -> list[dict[str, Any]]:
+        """The current revision of every device: rows of the view ``device_index``, sorted by key."""
+        return self._index("is_current = 1 ORDER BY device_key")
+
+    def history(self, key: str) -> list[dict[str, Any]]:
+        """Every revision of a device, oldest first: rows of the view ``device_index``.
+
+        Raises
+        ------
+        NotFoundError
+            No such key.
+        """
+        rows = self._index("device_key = ? ORDER BY revision", key)
+        if not rows:
+            raise NotFoundError(f"The library has no device '{key}'", "", "List what it has")
+        return rows
+
+    def store(
+        self,
+        what: Reading | DeviceRecord | Iterable[Reading | DeviceRecord],
+        *,
+        author: str = "",
+        reason: str = "",
+        sheet_files: Iterable[Path] = (),
+    ) -> list[Stored]:
+        """Store readings and devices, all or none; what the library already holds makes no revision.
+
+        Curves of the same element, edge, quantity, conditions and settings are replaced, the device's others carry
+        forward, and so do nameplate fields that are not given.
+
+        Parameters
+        ----------
+        what : Reading, DeviceRecord or several
+        author, reason : str
+            Who stores, and why; kept with each new revision.
+        sheet_files : iterable of Path
+            Files of the sheets that were read; their bytes are kept as evidence.
+
+        Returns
+        -------
+        list of Stored
+            One a device, in the order given: key, revision, and whether it is new.
+
+        Raises
+        ------
+        InputError
+            A device is unsound, or its key is already used by another kind of device. Nothing is stored.
+        LibraryError
+            The file cannot be written.
+        """
+        items = [what] if isinstance(what, Reading | DeviceRecord) else [*what]
+        for item in items:
+            for record in item.devices if isinstance(item, Reading) else (item,):
+                refuse_unsound(record)
+        # Only storing needs the writing side with its slower imports; asking a device starts without them.
+        from curvelab.library import save  # noqa: PLC0415
+
+        with named_errors(self.path):
+            return save.store(self._open_writer(), items, Signature(author=author, reason=reason), sheet_files)
+
+    def _open_writer(self) -> Any:
+        from curvelab.library import migrate  # noqa: PLC0415 - as above
+
+        if self._writer is None:
+            if self.path.parent == data_folder():
+                self.path.parent.mkdir(parents=True, exist_ok=True)
+            self._writer = migrate.open_migrated(self.path)
+        return self._writer
+
+    def _index(self, condition: str, *values: str) -> list[dict[str, Any]]:
+        with named_errors(self.path):
+            cursor = self.open().execute(f"SELECT * FROM device_index WHERE {condition}", values)
+            names = [column[0] for column in cursor.description]
+            return [dict(zip(names, row, strict=True)) for row in cursor]

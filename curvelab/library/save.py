@@ -1,0 +1,160 @@
+"""Stores devices as new revisions, all of one call or none; what is already there makes no revision."""
+
+import sqlite3
+from collections.abc import Iterable, Iterator, Sequence
+from dataclasses import replace
+from datetime import UTC, datetime
+from pathlib import Path
+
+from sqlite_utils import Database
+
+import curvelab
+from curvelab.library.connect import transaction
+from curvelab.library.device_rows import add_curve, add_nameplate_lists, plate_values
+from curvelab.library.evidence import add_reading
+from curvelab.library.held import HeldDevice, HeldRevision, read_held_device
+from curvelab.library.identity import NO_STATEMENT, curve_sha256, revision_sha256, statement_sha256
+from curvelab.library.load import HeldCurve
+from curvelab.library.merge import carried_curves, merged_nameplate, refuse_other_kind
+from curvelab.library.rows import WaitingRows
+from curvelab.library.sheet_files import SheetFile
+from curvelab.library.stored import Signature, Stored
+from curvelab.records.curve import Curve, SheetKey
+from curvelab.records.device import DeviceRecord
+from curvelab.records.reading import Reading
+
+Storable = Reading | DeviceRecord
+
+
+def store(
+    database: Database, items: Sequence[Storable], signature: Signature, sheet_files: Iterable[Path] = ()
+) -> list[Stored]:
+    """Store readings and devices in one transaction.
+
+    Raises
+    ------
+    InputError
+        A key is already used by another kind of device, or a sheet's file cannot be kept.
+    """
+    files = [SheetFile.read(file) for file in sheet_files]
+    with transaction(database.conn):
+        batch = _Batch(database.conn, signature)
+        stored = [one for item in items for one in batch.take(item)]
+        batch.rows.write()
+        for file in files:
+            file.keep(database.conn)
+    return stored
+
+
+class _Batch:
+    """One call's work: remembers what it has looked up and added, so that nothing is asked or stored twice."""
+
+    def __init__(self, connection: sqlite3.Connection, signature: Signature) -> None:
+        self.rows = WaitingRows(connection)
+        self._connection = connection
+        self._signed = (
+            datetime.now(UTC).isoformat(timespec="milliseconds"),
+            signature.author,
+            signature.reason,
+            curvelab.__version__,
+        )
+        self._devices: dict[str, HeldDevice] = {}
+        self._curves: dict[bytes, int] = {}
+        self._sheets: dict[tuple[str, int, int], int] = {}
+
+    def take(self, item: Storable) -> Iterator[Stored]:
+        """Store each device of a reading, or a device that no reading gave."""
+        evidence = _Evidence(self, item if isinstance(item, Reading) else None)
+        for record in item.devices if isinstance(item, Reading) else (item,):
+            yield self._take_device(record, evidence)
+
+    def sheet_id(self, sheet: SheetKey | None) -> int | None:
+        """The id of the sheet with these bytes, page and plot; its file's name is the one it was first stored by."""
+        if sheet is None:
+            return None
+        known = (sheet.sha256, sheet.page, sheet.plot)
+        if known not in self._sheets:
+            found = self._connection.execute(
+                "SELECT sheet_id FROM sheet WHERE sha256 = ? AND page = ? AND plot = ?", known
+            ).fetchone()
+            self._sheets[known] = found[0] if found else self.rows.new_id("sheet")
+            if not found:
+                self.rows.add("sheet", [(self._sheets[known], *known, sheet.file)])
+        return self._sheets[known]
+
+    def _take_device(self, given: DeviceRecord, evidence: "_Evidence") -> Stored:
+        key = given.nameplate.key
+        held = self._devices.get(key) or read_held_device(self._connection, key)
+        if held:
+            refuse_other_kind(given.nameplate, held.kind)
+        newest = held.newest if held else None
+        nameplate = merged_nameplate(newest.nameplate, given.nameplate) if newest else given.nameplate
+        carried = carried_curves(newest.curves, given.curves) if newest else ()
+        hashes = [curve_sha256(curve) for curve in given.curves]
+        said = [(item.sha256, item.statement) for item in carried] + [(sha256, evidence.statement) for sha256 in hashes]
+        content = revision_sha256(nameplate, said or [(b"", evidence.statement)])
+        if newest and newest.sha256 == content:
+            return Stored(key=key, revision=newest.number, changed=False)
+        new = tuple(
+            HeldCurve(
+                curve_id=self._curve_id(sha256, curve),
+                sha256=sha256,
+                reading_id=evidence.reading_id(),
+                statement=evidence.statement,
+                curve=replace(curve, parts=()),
+            )
+            for sha256, curve in zip(hashes, given.curves, strict=True)
+        )
+        number = held.last_number + 1 if held else 1
+        revision = HeldRevision(number=number, sha256=content, nameplate=nameplate, curves=(*carried, *new))
+        self._devices[key] = self._add_revision(held, revision, evidence.reading_id())
+        self.rows.write_if_many()
+        return Stored(key=key, revision=number, changed=True)
+
+    def _add_revision(self, held: HeldDevice | None, revision: HeldRevision, reading_id: int | None) -> HeldDevice:
+        plate = revision.nameplate
+        device_id = held.device_id if held else self.rows.new_id("device")
+        if not held:
+            self.rows.add("device", [(device_id, plate.key, plate.kind)])
+        revision_id = self.rows.new_id("revision")
+        known_by = (revision_id, device_id, revision.number, revision.sha256)
+        self.rows.add("revision", [(*known_by, *self._signed, reading_id, *plate_values(plate))])
+        add_nameplate_lists(self.rows, revision_id, plate)
+        curves = enumerate(revision.curves, start=1)
+        self.rows.add("revision_curve", ((revision_id, seq, item.curve_id, item.reading_id) for seq, item in curves))
+        return HeldDevice(device_id=device_id, kind=plate.kind, last_number=revision.number, newest=revision)
+
+    def _curve_id(self, sha256: bytes, curve: Curve) -> int:
+        """The id of the curve with this content; stored now if it is new."""
+        if sha256 not in self._curves:
+            found = self._connection.execute(
+                "SELECT curve_id FROM curve WHERE content_sha256 = ?", (sha256,)
+            ).fetchone()
+            self._curves[sha256] = (
+                found[0] if found else add_curve(self.rows, curve, sha256, self.sheet_id(curve.sheet))
+            )
+        return self._curves[sha256]
+
+
+class _Evidence:
+    """What led to devices: a reading, stored when the first of its devices turns out to be new; or nothing."""
+
+    def __init__(self, batch: _Batch, reading: Reading | None) -> None:
+        self.statement = statement_sha256(reading) if reading else NO_STATEMENT
+        self._batch = batch
+        self._reading = reading
+        self._id: int | None = None
+
+    def reading_id(self) -> int | None:
+        """The id of the stored reading, None where there is none."""
+        if self._id is None and self._reading is not None:
+            sheet_id = self._batch.sheet_id(_sheet_key(self._reading))
+            self._id = add_reading(self._batch.rows, self._reading, self.statement, sheet_id)
+        return self._id
+
+
+def _sheet_key(reading: Reading) -> SheetKey | None:
+    sheet, entry = reading.sheet, reading.worksheet.sheet
+    if sheet is None:
+        return None
+    return SheetKey(sha256=sheet.sha256, page=sheet.page, plot=entry.plot if entry else 1, file=sheet.file)

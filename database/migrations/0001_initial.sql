@@ -1,0 +1,365 @@
+-- Devices, their immutable revisions, shared curves, and what led to them.
+-- Portable SQL: no JSON where columns do, no mathematics, no triggers that compute. An unknown number is NULL, never 0.
+
+PRAGMA application_id = 1129665110;
+
+-- A device is a key and a kind; everything else may change from one revision to the next.
+CREATE TABLE device (
+    device_id INTEGER PRIMARY KEY,
+    device_key TEXT NOT NULL UNIQUE
+        CHECK (length(device_key) BETWEEN 1 AND 64 AND device_key NOT GLOB '*[^A-Za-z0-9_-]*'),
+    kind TEXT NOT NULL CHECK (kind IN ('fuse', 'mcb', 'mccb', 'acb', 'rcd', 'rcbo', 'relay', 'switch'))
+) STRICT;
+
+-- The bytes of a sheet's file, kept once.
+CREATE TABLE source (
+    sha256 TEXT PRIMARY KEY CHECK (length(sha256) = 64),
+    bytes BLOB NOT NULL
+) STRICT;
+
+-- One plot of one page of one file; the file is known by its hash whether or not its bytes are kept.
+CREATE TABLE sheet (
+    sheet_id INTEGER PRIMARY KEY,
+    sha256 TEXT NOT NULL,
+    page INTEGER NOT NULL CHECK (page >= 1),
+    plot INTEGER NOT NULL CHECK (plot >= 1),
+    file TEXT NOT NULL,
+    UNIQUE (sha256, page, plot)
+) STRICT;
+
+-- What led to curves: the worksheet as written, its document, the calibration, and the program that read it.
+CREATE TABLE reading (
+    reading_id INTEGER PRIMARY KEY,
+    statement_sha256 BLOB NOT NULL CHECK (length(statement_sha256) = 32),
+    sheet_id INTEGER REFERENCES sheet,
+    program_version TEXT NOT NULL,
+    title TEXT NOT NULL,
+    issue TEXT NOT NULL,
+    date TEXT NOT NULL,
+    maker TEXT NOT NULL,
+    note TEXT NOT NULL,
+    worksheet TEXT NOT NULL,
+    axes TEXT
+) STRICT;
+
+CREATE TABLE reading_warning (
+    reading_id INTEGER NOT NULL REFERENCES reading,
+    seq INTEGER NOT NULL,
+    code TEXT NOT NULL,
+    text TEXT NOT NULL,
+    x REAL,
+    y REAL,
+    is_accepted INTEGER NOT NULL CHECK (is_accepted IN (0, 1)),
+    accepted_reason TEXT,
+    accepted_name TEXT,
+    PRIMARY KEY (reading_id, seq)
+) STRICT, WITHOUT ROWID;
+
+-- "limit" and value are in unit; value and its 95 % interval are NULL where the curve does not reach.
+CREATE TABLE finding (
+    reading_id INTEGER NOT NULL REFERENCES reading,
+    seq INTEGER NOT NULL,
+    device_key TEXT NOT NULL,
+    standard TEXT NOT NULL,
+    clause TEXT NOT NULL,
+    requirement TEXT NOT NULL,
+    limit_value REAL NOT NULL,
+    unit TEXT NOT NULL,
+    value REAL,
+    lower REAL,
+    upper REAL,
+    outcome TEXT NOT NULL CHECK (outcome IN ('meets', 'fails', 'undecided', 'at limit', 'not covered')),
+    is_advisory INTEGER NOT NULL CHECK (is_advisory IN (0, 1)),
+    source TEXT NOT NULL,
+    rule TEXT NOT NULL,
+    current REAL,
+    base TEXT,
+    note TEXT NOT NULL,
+    PRIMARY KEY (reading_id, seq)
+) STRICT, WITHOUT ROWID;
+
+-- One immutable state of a device: its nameplate. Only the state of review may change.
+CREATE TABLE revision (
+    revision_id INTEGER PRIMARY KEY,
+    device_id INTEGER NOT NULL REFERENCES device,
+    number INTEGER NOT NULL CHECK (number >= 1),
+    state TEXT NOT NULL DEFAULT 'draft' CHECK (state IN ('draft', 'checked', 'released', 'withdrawn')),
+    content_sha256 BLOB NOT NULL CHECK (length(content_sha256) = 32),
+    created_at TEXT NOT NULL,
+    author TEXT NOT NULL,
+    reason TEXT NOT NULL,
+    program_version TEXT NOT NULL,
+    reading_id INTEGER REFERENCES reading,
+    characteristic TEXT,
+    standard TEXT,
+    standard_edition TEXT,
+    rated_current_a REAL CHECK (rated_current_a > 0),
+    rated_residual_current_a REAL CHECK (rated_residual_current_a > 0),
+    residual_waveform TEXT,
+    residual_delay TEXT,
+    rated_voltage_v REAL CHECK (rated_voltage_v > 0),
+    poles INTEGER CHECK (poles >= 1),
+    frequency_hz REAL CHECK (frequency_hz >= 0),
+    ambient_reference_c REAL,
+    utilisation_category TEXT,
+    maker TEXT,
+    series TEXT,
+    catalogue TEXT,
+    UNIQUE (device_id, number)
+) STRICT;
+
+CREATE TABLE breaking (
+    revision_id INTEGER NOT NULL REFERENCES revision,
+    seq INTEGER NOT NULL,
+    quantity TEXT NOT NULL,
+    value_a REAL NOT NULL CHECK (value_a > 0),
+    voltage_v REAL CHECK (voltage_v > 0),
+    supply TEXT CHECK (supply IN ('ac', 'dc')),
+    duration_s REAL CHECK (duration_s > 0),
+    PRIMARY KEY (revision_id, seq)
+) STRICT, WITHOUT ROWID;
+
+-- An adjustable setting: a range, or steps in setting_step.
+CREATE TABLE setting (
+    revision_id INTEGER NOT NULL REFERENCES revision,
+    name TEXT NOT NULL,
+    seq INTEGER NOT NULL,
+    base TEXT,
+    from_value REAL,
+    to_value REAL,
+    at_current TEXT,
+    can_be_off INTEGER NOT NULL CHECK (can_be_off IN (0, 1)),
+    PRIMARY KEY (revision_id, name)
+) STRICT, WITHOUT ROWID;
+
+CREATE TABLE setting_step (
+    revision_id INTEGER NOT NULL,
+    name TEXT NOT NULL,
+    seq INTEGER NOT NULL,
+    step_value REAL NOT NULL,
+    PRIMARY KEY (revision_id, name, seq),
+    FOREIGN KEY (revision_id, name) REFERENCES setting
+) STRICT, WITHOUT ROWID;
+
+CREATE TABLE derating (
+    revision_id INTEGER NOT NULL REFERENCES revision,
+    seq INTEGER NOT NULL,
+    element TEXT NOT NULL,
+    ambient_c REAL NOT NULL,
+    factor REAL NOT NULL CHECK (factor > 0),
+    PRIMARY KEY (revision_id, seq)
+) STRICT, WITHOUT ROWID;
+
+-- A curve is known by the hash of its content, so that revisions and devices share it. settings: {"ir": 0.8} it is drawn for.
+CREATE TABLE curve (
+    curve_id INTEGER PRIMARY KEY,
+    content_sha256 BLOB NOT NULL UNIQUE CHECK (length(content_sha256) = 32),
+    element TEXT NOT NULL CHECK (
+        element IN ('overload', 'delayed', 'instantaneous', 'earth', 'neutral', 'override', 'residual', 'whole')
+    ),
+    edge TEXT NOT NULL CHECK (edge IN ('fast', 'slow', 'mean')),
+    meaning TEXT CHECK (meaning IN ('pre_arcing', 'operating', 'unlatching', 'relay_output', 'clearing')),
+    quantity TEXT NOT NULL CHECK (quantity IN ('time', 'let_through', 'peak')),
+    base TEXT NOT NULL CHECK (base IN ('A', 'xIn', 'xIr', 'xIsd', 'xIi', 'xIg', 'xIdn')),
+    basis TEXT NOT NULL CHECK (basis IN ('sheet', 'standard', 'declared')),
+    leaves_top INTEGER NOT NULL CHECK (leaves_top IN (0, 1)),
+    source TEXT NOT NULL,
+    sheet_id INTEGER REFERENCES sheet,
+    start TEXT CHECK (start IN ('cold', 'hot')),
+    time_kind TEXT CHECK (time_kind IN ('real', 'virtual')),
+    supply TEXT CHECK (supply IN ('ac', 'dc')),
+    voltage_v REAL,
+    frequency_hz REAL,
+    ambient_c REAL,
+    poles_loaded INTEGER,
+    settings TEXT NOT NULL DEFAULT '{}',
+    time_setting TEXT,
+    time_setting_at REAL CHECK (time_setting_at > 0)
+) STRICT;
+
+-- The points of a curve in order: straight lines in log-log within a part. value: s, A2s or A by the curve's quantity.
+CREATE TABLE point (
+    curve_id INTEGER NOT NULL REFERENCES curve,
+    part INTEGER NOT NULL CHECK (part >= 1),
+    seq INTEGER NOT NULL CHECK (seq >= 1),
+    current REAL NOT NULL CHECK (current > 0),
+    value REAL NOT NULL CHECK (value > 0),
+    sd_current REAL CHECK (sd_current >= 0),
+    sd_value REAL CHECK (sd_value >= 0),
+    sd_common REAL CHECK (sd_common >= 0),
+    PRIMARY KEY (curve_id, part, seq)
+) STRICT, WITHOUT ROWID;
+
+-- Which curves a revision has, and the reading that gave each.
+CREATE TABLE revision_curve (
+    revision_id INTEGER NOT NULL REFERENCES revision,
+    seq INTEGER NOT NULL,
+    curve_id INTEGER NOT NULL REFERENCES curve,
+    reading_id INTEGER REFERENCES reading,
+    PRIMARY KEY (revision_id, seq)
+) STRICT, WITHOUT ROWID;
+
+-- Nothing stored is ever changed: a correction is a new revision.
+CREATE TRIGGER device_is_kept BEFORE UPDATE ON device
+BEGIN SELECT RAISE(ABORT, 'a stored device is never changed'); END;
+CREATE TRIGGER device_is_not_deleted BEFORE DELETE ON device
+BEGIN SELECT RAISE(ABORT, 'a stored device is never deleted'); END;
+CREATE TRIGGER revision_is_kept BEFORE UPDATE OF
+    revision_id, device_id, number, content_sha256, created_at, author, reason, program_version, reading_id,
+    characteristic, standard, standard_edition, rated_current_a, rated_residual_current_a, residual_waveform,
+    residual_delay, rated_voltage_v, poles, frequency_hz, ambient_reference_c, utilisation_category, maker, series,
+    catalogue
+ON revision
+BEGIN SELECT RAISE(ABORT, 'a stored revision is never changed'); END;
+CREATE TRIGGER revision_is_not_deleted BEFORE DELETE ON revision
+BEGIN SELECT RAISE(ABORT, 'a stored revision is never deleted'); END;
+CREATE TRIGGER revision_curve_is_kept BEFORE UPDATE ON revision_curve
+BEGIN SELECT RAISE(ABORT, 'a stored revision is never changed'); END;
+CREATE TRIGGER revision_curve_is_not_deleted BEFORE DELETE ON revision_curve
+BEGIN SELECT RAISE(ABORT, 'a stored revision is never changed'); END;
+CREATE TRIGGER curve_is_kept BEFORE UPDATE ON curve
+BEGIN SELECT RAISE(ABORT, 'a stored curve is never changed'); END;
+CREATE TRIGGER curve_is_not_deleted BEFORE DELETE ON curve
+BEGIN SELECT RAISE(ABORT, 'a stored curve is never deleted'); END;
+CREATE TRIGGER point_is_kept BEFORE UPDATE ON point
+BEGIN SELECT RAISE(ABORT, 'a stored curve is never changed'); END;
+CREATE TRIGGER point_is_not_deleted BEFORE DELETE ON point
+BEGIN SELECT RAISE(ABORT, 'a stored curve is never changed'); END;
+
+-- What other calculators read: stable for good, described in README.md and columns.csv. Columns may be added at the end.
+CREATE VIEW device_index AS
+SELECT
+    device.device_key,
+    revision.number AS revision,
+    revision.revision_id IS (
+        SELECT candidate.revision_id
+        FROM revision AS candidate
+        WHERE candidate.device_id = revision.device_id AND candidate.state <> 'withdrawn'
+        ORDER BY candidate.state = 'released' DESC, candidate.number DESC
+        LIMIT 1
+    ) AS is_current,
+    revision.state,
+    device.kind,
+    revision.characteristic,
+    revision.standard,
+    revision.maker,
+    revision.series,
+    revision.rated_current_a,
+    revision.rated_residual_current_a,
+    revision.residual_waveform,
+    revision.residual_delay,
+    revision.rated_voltage_v,
+    revision.poles,
+    revision.standard_edition,
+    revision.frequency_hz,
+    revision.ambient_reference_c,
+    revision.utilisation_category,
+    revision.catalogue,
+    revision.created_at,
+    revision.author,
+    revision.reason,
+    revision.program_version
+FROM device
+JOIN revision ON revision.device_id = device.device_id;
+
+CREATE VIEW trip_points AS
+SELECT
+    device.device_key,
+    revision.number AS revision,
+    point.curve_id,
+    curve.element,
+    curve.edge,
+    curve.meaning,
+    point.part,
+    point.seq,
+    curve.base,
+    point.current,
+    point.value AS time_s,
+    curve.time_setting,
+    curve.time_setting_at,
+    point.sd_current,
+    point.sd_value AS sd_time,
+    point.sd_common,
+    curve.sheet_id
+FROM device
+JOIN revision ON revision.device_id = device.device_id
+JOIN revision_curve ON revision_curve.revision_id = revision.revision_id
+JOIN curve ON curve.curve_id = revision_curve.curve_id
+JOIN point ON point.curve_id = curve.curve_id
+WHERE curve.quantity = 'time';
+
+CREATE VIEW let_through_points AS
+SELECT
+    device.device_key,
+    revision.number AS revision,
+    point.curve_id,
+    curve.quantity,
+    curve.edge,
+    curve.voltage_v,
+    point.part,
+    point.seq,
+    curve.base,
+    point.current,
+    point.value,
+    point.sd_current,
+    point.sd_value,
+    point.sd_common,
+    curve.sheet_id,
+    curve.element,
+    curve.meaning
+FROM device
+JOIN revision ON revision.device_id = device.device_id
+JOIN revision_curve ON revision_curve.revision_id = revision.revision_id
+JOIN curve ON curve.curve_id = revision_curve.curve_id
+JOIN point ON point.curve_id = curve.curve_id
+WHERE curve.quantity <> 'time';
+
+CREATE VIEW curve_conditions AS
+SELECT
+    device.device_key,
+    revision.number AS revision,
+    curve.curve_id,
+    curve.start,
+    curve.time_kind,
+    curve.supply,
+    curve.voltage_v,
+    curve.frequency_hz,
+    curve.ambient_c,
+    curve.poles_loaded,
+    curve.settings,
+    curve.leaves_top,
+    curve.basis,
+    curve.source
+FROM device
+JOIN revision ON revision.device_id = device.device_id
+JOIN revision_curve ON revision_curve.revision_id = revision.revision_id
+JOIN curve ON curve.curve_id = revision_curve.curve_id;
+
+CREATE VIEW device_settings AS
+SELECT
+    device.device_key,
+    revision.number AS revision,
+    setting.name,
+    setting.base,
+    setting.from_value,
+    setting.to_value,
+    setting_step.step_value,
+    setting.can_be_off,
+    setting.at_current
+FROM device
+JOIN revision ON revision.device_id = device.device_id
+JOIN setting ON setting.revision_id = revision.revision_id
+LEFT JOIN setting_step ON setting_step.revision_id = setting.revision_id AND setting_step.name = setting.name;
+
+CREATE VIEW device_breaking AS
+SELECT
+    device.device_key,
+    revision.number AS revision,
+    breaking.quantity,
+    breaking.value_a,
+    breaking.voltage_v,
+    breaking.supply,
+    breaking.duration_s
+FROM device
+JOIN revision ON revision.device_id = device.device_id
+JOIN breaking ON breaking.revision_id = revision.revision_id;
