@@ -1,0 +1,157 @@
+"""Chains: the thinned ink as a graph of pixel runs between junctions and free ends."""
+
+from dataclasses import dataclass
+
+import cv2
+import numpy as np
+from numpy.typing import NDArray
+from scipy.spatial import cKDTree
+
+from curvelab.records.arrays import Floats
+from curvelab.trace.thinning import RING, Mask, ring_codes
+
+FREE = -1
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Chain:
+    """One run of thinned pixels.
+
+    Parameters
+    ----------
+    points : array, shape (n, 2)
+        Column and row of each pixel, in order.
+    junctions : tuple of int
+        Junction at the first and at the last point; ``FREE`` for none.
+    ink : array, shape (channels,)
+        Median ink along the run.
+    width : float
+        Median width of the stroke in px.
+    """
+
+    points: Floats
+    junctions: tuple[int, int]
+    ink: Floats
+    width: float
+
+    @property
+    def length(self) -> float:
+        """Length along the run in px."""
+        if len(self.points) < 2:
+            return 1.0
+        return float(np.hypot(*np.diff(self.points, axis=0).T).sum())
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class ChainGraph:
+    """All chains of a plot.
+
+    ``ends[j]`` lists, for junction j, the pairs (chain, side) that meet there, side 0 for a chain's first point and 1
+    for its last. ``free`` finds free ends near a place; its points belong to ``free_ends`` in order.
+    """
+
+    chains: tuple[Chain, ...]
+    ends: tuple[tuple[tuple[int, int], ...], ...]
+    tips: cKDTree | None
+    tip_ends: tuple[tuple[int, int], ...]
+
+
+def build_graph(skeleton: Mask, density: NDArray[np.float32], widths: NDArray[np.float32]) -> ChainGraph:
+    """Chains of a thinned mask, short spurs left out.
+
+    Parameters
+    ----------
+    skeleton : array, shape (height, width), bool
+    density : array, shape (height, width, channels)
+        Ink of the curves alone.
+    widths : array, shape (height, width)
+        Local width of the strokes in px.
+    """
+    runs, junction_count = _runs(skeleton)
+    kept = []
+    for pixels, junctions in runs:
+        rows, columns = pixels
+        width = float(np.median(widths[rows, columns]))
+        spur = len(rows) <= max(3.0, 0.9 * width) and (junctions[0] == FREE) != (junctions[1] == FREE)
+        speck = junctions == (FREE, FREE) and len(rows) < 2 and width < 2.0
+        if spur or speck:
+            continue
+        chain = Chain(
+            points=np.stack([columns, rows], axis=1).astype(np.float64),
+            junctions=junctions,
+            ink=np.median(density[rows, columns], axis=0).astype(np.float64),
+            width=width,
+        )
+        kept.append(chain)
+    ends: list[list[tuple[int, int]]] = [[] for _ in range(junction_count)]
+    tips: list[tuple[int, int]] = []
+    for number, chain in enumerate(kept):
+        for side in (0, 1):
+            tips.append((number, side))
+            if chain.junctions[side] != FREE:
+                ends[chain.junctions[side]].append((number, side))
+    places = np.array([kept[number].points[-side] for number, side in tips])
+    return ChainGraph(
+        chains=tuple(kept),
+        ends=tuple(tuple(meeting) for meeting in ends),
+        tips=cKDTree(places) if tips else None,
+        tip_ends=tuple(tips),
+    )
+
+
+Run = tuple[tuple[NDArray[np.intp], NDArray[np.intp]], tuple[int, int]]
+
+
+def _runs(skeleton: Mask) -> tuple[list[Run], int]:
+    framed = np.pad(skeleton, 1).astype(np.uint8)
+    width = framed.shape[1]
+    flat = framed.ravel()
+    at = np.flatnonzero(flat)
+    codes = ring_codes(flat, at, width)
+    degree = np.bitwise_count(codes)
+    junction_map = np.zeros_like(framed)
+    junction_map.ravel()[at[degree >= 3]] = 1
+    count, labels = cv2.connectedComponents(junction_map, connectivity=8)
+    junction_of = labels.ravel() - 1
+    steps = [row * width + column for row, column in RING]
+    neighbours = {
+        int(pixel): [int(pixel) + steps[k] for k in range(8) if code >> k & 1]
+        for pixel, code in zip(at.tolist(), codes.tolist(), strict=True)
+    }
+    junction_pixels = set(at[degree >= 3].tolist())
+    runs: list[Run] = []
+    seen: set[int] = set()
+    starts = [p for p in at[degree <= 1].tolist()]
+    starts += [q for p in sorted(junction_pixels) for q in neighbours[p]]
+    starts += at[degree == 2].tolist()
+    for start in starts:
+        if start in seen or start in junction_pixels:
+            continue
+        run = _follow(start, neighbours, junction_pixels, seen)
+        ends = _run_junctions(run, neighbours, junction_pixels, junction_of)
+        pixels = np.array(run, dtype=np.intp)
+        runs.append(((pixels // width - 1, pixels % width - 1), ends))
+    return runs, count - 1
+
+
+def _follow(start: int, neighbours: dict[int, list[int]], junctions: set[int], seen: set[int]) -> list[int]:
+    run = [start]
+    seen.add(start)
+    while True:
+        onward = [q for q in neighbours[run[-1]] if q not in seen and q not in junctions]
+        if not onward:
+            return run
+        run.append(onward[0])
+        seen.add(onward[0])
+
+
+def _run_junctions(
+    run: list[int], neighbours: dict[int, list[int]], junctions: set[int], junction_of: NDArray[np.int32]
+) -> tuple[int, int]:
+    first, last = (
+        list(dict.fromkeys(int(junction_of[q]) for q in neighbours[pixel] if q in junctions))
+        for pixel in (run[0], run[-1])
+    )
+    if len(run) == 1:
+        last = first[1:]
+    return (first[0] if first else FREE), (last[0] if last else FREE)

@@ -1,0 +1,156 @@
+"""One line of a prepared raster plot, from its guide places."""
+
+import numpy as np
+
+from curvelab.errors import TraceError
+from curvelab.records.arrays import Floats
+from curvelab.records.trace import Trace
+from curvelab.records.warning import ReadingWarning
+from curvelab.trace.centre import Centres, measure_centres
+from curvelab.trace.chains import ChainGraph, build_graph
+from curvelab.trace.course import course_of
+from curvelab.trace.guide import Guide
+from curvelab.trace.outcome import Measured, gap_records, keep_seen
+from curvelab.trace.prepared import Prepared, Raster
+from curvelab.trace.select import REACH, chains_near, ink_of_colour, nearest_line, written
+from curvelab.trace.strokes import curve_ink
+from curvelab.trace.walk import Walk, walk_both_ways
+from curvelab.trace.window import PlotWindow, plot_window
+
+MOST_STARTS = 4
+AT_FRAME = 4.0
+"""px: a line that ends this near the frame leaves the plot."""
+
+
+def trace_raster(prepared: Prepared, raster: Raster, guide: Guide) -> tuple[Trace, tuple[ReadingWarning, ...]]:
+    """Trace one line on pixels; see ``trace_guided``."""
+    places = np.array(guide.through, dtype=np.float64)
+    pixels = prepared.pixels.columns_rows(places) - np.array(raster.ink.origin)
+    wanted = ink_of_colour(guide.colour, raster.ink.density.shape[2])
+    graph = _graph(prepared, raster, guide)
+    walk = _walk(prepared, graph, pixels, guide, wanted)
+    centres = _centres(raster, graph, walk)
+    window = plot_window(prepared.axes)
+    origin = np.array(raster.ink.origin)
+    everywhere = prepared.pixels.places(centres.course.places(centres.across) + origin)
+    measured = keep_seen(centres, window.holds(everywhere, 0.5 * prepared.pixels.size_in_places))
+    if measured is None:
+        raise TraceError(
+            f"No line can be measured at {written(guide.through[0])}",
+            "A line a few pixels wide with visible ink is expected",
+            "Set the guide place on the line",
+        )
+    trace = _trace(prepared, window, centres, measured, pixels)
+    return trace, _warnings(prepared, walk, origin)
+
+
+def _graph(prepared: Prepared, raster: Raster, guide: Guide) -> ChainGraph:
+    """The page's chains, or chains without what the guide says to avoid."""
+    if not guide.avoid:
+        return raster.graph
+    skeleton = raster.skeleton.copy()
+    for x0, y0, x1, y1 in guide.avoid:
+        corners = prepared.pixels.columns_rows(np.array([[x0, y0], [x1, y1], [x0, y1], [x1, y0]])) - raster.ink.origin
+        low = np.clip(np.floor(corners.min(axis=0)).astype(int), 0, None)
+        high = np.clip(np.ceil(corners.max(axis=0)).astype(int) + 1, 0, None)
+        skeleton[low[1] : high[1], low[0] : high[0]] = False
+    return build_graph(skeleton, curve_ink(raster.ink, raster.grid), raster.widths)
+
+
+def _walk(prepared: Prepared, graph: ChainGraph, pixels: Floats, guide: Guide, wanted: Floats | None) -> Walk:
+    """The line through every guide place."""
+    near = [chains_near(graph, pixel, wanted) for pixel in pixels]
+    for place, pixel, found in zip(guide.through, pixels, near, strict=True):
+        if not found:
+            raise _nothing_there(prepared, graph, place, pixel, wanted, guide.colour)
+    targets = frozenset(found[0][1] for found in near)
+    missed: tuple[float, int] | None = None
+    for _, start in near[0][:MOST_STARTS]:
+        walk = walk_both_ways(graph, start, targets)
+        distances = np.array([np.hypot(*(walk.line - pixel).T).min() for pixel in pixels])
+        far = int(distances.argmax())
+        if distances[far] <= REACH:
+            return walk
+        if missed is None:
+            missed = (float(distances[far]), far)
+    assert missed is not None
+    distance, far = missed
+    raise TraceError(
+        f"Guide places {written(guide.through[0])} and {written(guide.through[far])} lie on different lines",
+        f"The line through the first passes {distance * prepared.pixels.size_in_places:.1f} from the other",
+        "Move one of them, or add a place between them",
+    )
+
+
+def _nothing_there(
+    prepared: Prepared,
+    graph: ChainGraph,
+    place: tuple[float, float],
+    pixel: Floats,
+    wanted: Floats | None,
+    colour: str | None,
+) -> TraceError:
+    if wanted is not None and chains_near(graph, pixel, None):
+        return TraceError(
+            f"No line of colour {colour} at {written(place)}",
+            "The line there has another colour",
+            "Correct the colour, or leave it out",
+        )
+    distance = nearest_line(graph, pixel)
+    size = prepared.pixels.size_in_places
+    return TraceError(
+        f"No line at guide place {written(place)}",
+        "No line on this plot" if distance is None else f"The nearest line is {distance * size:.1f} away",
+        "Set the guide place on the line",
+    )
+
+
+def _centres(raster: Raster, graph: ChainGraph, walk: Walk) -> Centres:
+    longest = max((graph.chains[number] for number in walk.chains), key=lambda chain: chain.length)
+    width = max(longest.width, 1.0)
+    return measure_centres(raster, course_of(walk.line, width, 0.5 * width + 6.0), longest.ink, width)
+
+
+def _trace(prepared: Prepared, window: PlotWindow, centres: Centres, measured: Measured, guides: Floats) -> Trace:
+    pixels = prepared.pixels
+    origin = np.array(prepared.raster.ink.origin) if prepared.raster else np.zeros(2)
+    places = pixels.places(measured.places + origin)
+    gaps = gap_records(measured.gaps, places)
+    sd, size = measured.sd, pixels.size_in_places
+    if _runs_backwards(measured.places, guides):
+        places, sd = places[::-1], sd[::-1]
+        gaps = tuple(type(gap)(start=gap.end, end=gap.start) for gap in reversed(gaps))
+    depth = window.depth(places[[0, -1]]) / size
+    reach = AT_FRAME + 0.5 * centres.width
+    levels = np.clip(np.round(255.0 * (1.0 - np.broadcast_to(centres.ink, (3,)))), 0, 255)
+    return Trace(
+        places=places,
+        sd=sd * size,
+        correlation_length=measured.correlation_length * size,
+        gaps=gaps,
+        ends_at_frame=(bool(depth[0] < reach), bool(depth[1] < reach)),
+        colour=(int(levels[0]), int(levels[1]), int(levels[2])),
+        width=centres.width * size,
+        boundary=False,
+        origin="guided",
+        confidence=float(np.mean(centres.amplitude > 0.5)),
+    )
+
+
+def _runs_backwards(places: Floats, guides: Floats) -> bool:
+    """Whether the guides, or with one guide left to right, run against the places' order."""
+    if len(guides) == 1:
+        return bool(places[-1, 0] < places[0, 0])
+    order = [int(np.hypot(*(places - guide).T).argmin()) for guide in guides]
+    return order[-1] < order[0]
+
+
+def _warnings(prepared: Prepared, walk: Walk, origin: Floats) -> tuple[ReadingWarning, ...]:
+    return tuple(
+        ReadingWarning(
+            code="trace-doubt",
+            text="The line could go on two ways here; add a guide place beyond this place",
+            at=(float(place[0]), float(place[1])),
+        )
+        for place in (prepared.pixels.places((np.array([doubt]) + origin))[0] for doubt in walk.doubts)
+    )

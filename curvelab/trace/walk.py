@@ -1,0 +1,188 @@
+"""Walk along one line from a chain on it, both ways, over junctions and gaps."""
+
+from dataclasses import dataclass, field
+
+import numpy as np
+
+from curvelab.records.arrays import Floats
+from curvelab.trace.chains import FREE, ChainGraph
+from curvelab.trace.heading import Heading, heading
+from curvelab.trace.routes import (
+    End,
+    Line,
+    Route,
+    hop_reach,
+    meeting,
+    oriented,
+    other,
+    routes_over_gap,
+    routes_through_junction,
+)
+
+ACCEPT = 7.0
+"""Largest cost of a route that continues the line smoothly."""
+MARGIN = 1.0
+"""A second route this near in cost makes the choice a doubt."""
+APART = 3.0
+"""px: routes closer than this are one."""
+SHORTEST_GAP = 6.0
+"""px: a shorter break is print or a crossing, not a gap."""
+
+
+@dataclass(slots=True)
+class Walk:
+    """A line as far as it was walked.
+
+    ``places`` are thinned pixels in order; ``jumps`` holds (k, unseen px) where k - 1 and k are joined over ink that is
+    not there; ``doubts`` are places where another way was almost as good.
+    """
+
+    places: list[Floats] = field(default_factory=list)
+    jumps: list[tuple[int, float]] = field(default_factory=list)
+    doubts: list[tuple[float, float]] = field(default_factory=list)
+    chains: set[int] = field(default_factory=set)
+
+    @property
+    def line(self) -> Floats:
+        """All places, shape (n, 2)."""
+        return np.concatenate(self.places)
+
+
+def walk_both_ways(graph: ChainGraph, start: int, wanted: frozenset[int]) -> Walk:
+    """Follow the line that a chain belongs to from end to end.
+
+    Parameters
+    ----------
+    graph : ChainGraph
+    start : int
+        Number of the chain.
+    wanted : frozenset of int
+        Chains the line is said to pass: routes over them are preferred.
+    """
+    chain = graph.chains[start]
+    line = Line(ink=chain.ink, width=max(chain.width, 1.0))
+    used = {start}
+    forward = _walk(graph, (start, 1), line, used, wanted)
+    backward = _walk(graph, (start, 0), line, used, wanted)
+    return _joined(backward, chain.points, forward, used)
+
+
+def _joined(backward: Walk, middle: Floats, forward: Walk, used: set[int]) -> Walk:
+    back = backward.line[::-1] if backward.places else np.zeros((0, 2))
+    front = forward.line if forward.places else np.zeros((0, 2))
+    jumps = [(len(back) - k, length) for k, length in backward.jumps]
+    jumps += [(len(back) + len(middle) + k, length) for k, length in forward.jumps]
+    return Walk(
+        places=[back, middle, front],
+        jumps=sorted(jumps),
+        doubts=backward.doubts + forward.doubts,
+        chains=set(used),
+    )
+
+
+def _walk(graph: ChainGraph, end: End, line: Line, used: set[int], wanted: frozenset[int]) -> Walk:
+    """Walk outwards from a chain's end; ``used`` gains the chains passed."""
+    walk = Walk()
+    trusted = [oriented(graph, other(end))]
+    count = 0
+    while True:
+        onward = heading(_history(trusted, line))
+        route = _next_route(graph, end, onward, line, used, wanted, walk.doubts)
+        if route is None:
+            return walk
+        if route.hop > SHORTEST_GAP:
+            walk.jumps.append((count, route.hop))
+        for entry in route.entries:
+            points = oriented(graph, entry)
+            used.add(entry[0])
+            walk.places.append(points)
+            count += len(points)
+            if _is_trusted(graph, entry, line):
+                trusted.append(points)
+        end = other(route.entries[-1])
+
+
+def _history(trusted: list[Floats], line: Line) -> Floats:
+    """Walked places to extrapolate from, without the last that a junction's ink may have pulled aside."""
+    history = np.concatenate(trusted[-6:])
+    pulled = int(np.ceil(0.7 * line.width))
+    return history[:-pulled] if len(history) > 4 * pulled + 8 else history
+
+
+def _is_trusted(graph: ChainGraph, entry: End, line: Line) -> bool:
+    """A short run between two junctions may be the merged stretch of two lines: it gives no direction."""
+    chain = graph.chains[entry[0]]
+    return FREE in chain.junctions or chain.length > 8.0 * line.width
+
+
+def _next_route(
+    graph: ChainGraph,
+    end: End,
+    onward: Heading | None,
+    line: Line,
+    used: set[int],
+    wanted: frozenset[int],
+    doubts: list[tuple[float, float]],
+) -> Route | None:
+    if onward is None:
+        return None
+    routes = routes_through_junction(graph, end, onward, line, used)
+    chosen = _best(routes, wanted)
+    if chosen is None:
+        chosen = _only_way(graph, end, routes, line, used)
+    if chosen is None:
+        routes = routes_over_gap(graph, onward, line, used, hop_reach(line))
+        chosen = _best(routes, wanted)
+        if chosen is not None and chosen.hop > SHORTEST_GAP and _rivals(chosen, routes) and not _leads(chosen, wanted):
+            doubts.append((float(onward.tip[0]), float(onward.tip[1])))
+            return None
+    if chosen is not None and _rivals(chosen, routes) and not _leads(chosen, wanted):
+        doubts.append((float(onward.tip[0]), float(onward.tip[1])))
+    return chosen
+
+
+def _best(routes: list[Route], wanted: frozenset[int]) -> Route | None:
+    """The cheapest route, one over a wanted chain before others."""
+    leading = [r for r in routes if _leads(r, wanted) and r.cost <= 2.0 * ACCEPT]
+    if leading:
+        return leading[0]
+    return routes[0] if routes and routes[0].cost <= ACCEPT else None
+
+
+def _leads(route: Route, wanted: frozenset[int]) -> bool:
+    return any(number in wanted for number, _ in route.entries)
+
+
+def _rivals(chosen: Route, routes: list[Route]) -> bool:
+    """Whether another route that comes out elsewhere is almost as good."""
+    return any(r is not chosen and r.cost < chosen.cost + MARGIN and _apart(r.places, chosen.places) for r in routes)
+
+
+def _apart(a: Floats, b: Floats) -> bool:
+    nearest = np.hypot(*(a[-1] - b).T).min()
+    return bool(nearest > APART and np.hypot(*(b[-1] - a).T).min() > APART)
+
+
+def _only_way(graph: ChainGraph, end: End, routes: list[Route], line: Line, used: set[int]) -> Route | None:
+    """At a kink the one way on that no other line at the junction claims as its straight continuation."""
+    firsts = [e for e in meeting(graph, end) if e[0] not in used]
+    open_firsts = [e for e in firsts if not _claimed(graph, e, [f for f in firsts if f != e], line)]
+    open_firsts = [e for e in open_firsts if graph.chains[e[0]].length > 2.0 * line.width] or open_firsts
+    if len(open_firsts) != 1:
+        return None
+    for route in routes:
+        if route.entries[0] == open_firsts[0]:
+            return Route(entries=route.entries[:1], places=route.places, cost=route.cost, hop=0.0)
+    return None
+
+
+def _claimed(graph: ChainGraph, entry: End, others: list[End], line: Line) -> bool:
+    """Whether another chain at the junction continues this one smoothly."""
+    back = heading(oriented(graph, entry)[::-1])
+    if back is None:
+        return False
+    for rival in others:
+        ahead, aside = back.frame(oriented(graph, rival)[: int(line.look_ahead)])
+        if np.mean(np.minimum((aside / back.spread(ahead)) ** 2, 30.0)) < ACCEPT and ahead[-1] > 0:
+            return True
+    return False
