@@ -10,6 +10,7 @@ import numpy as np
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, Mark
 from curvelab.records.curve import EDGES, Curve, Part
+from curvelab.records.edges import edge_groups
 from curvelab.records.finding import Finding
 from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.sheet import Sheet
@@ -146,26 +147,12 @@ def _edge(curve: Curve | None) -> Json | None:
     }
 
 
-def _grouped(curves: Iterable[Curve]) -> list[dict[str, Curve]]:
-    """Edges that belong together; a second curve of the same edge (another meaning) begins a band of its own."""
-    bands: dict[object, list[dict[str, Curve]]] = {}
-    for curve in curves:
-        alike = (curve.element, curve.base, curve.quantity, curve.conditions, tuple(sorted(curve.at.items())))
-        same = bands.setdefault(alike, [])
-        free = next((band for band in same if curve.edge not in band), None)
-        if free is None:
-            free = {}
-            same.append(free)
-        free[curve.edge] = curve
-    return [band for same in bands.values() for band in same]
-
-
 def _bands(reading: Reading) -> Iterable[Json]:
     owners: list[tuple[str | None, Sequence[Curve]]] = [
         (device.nameplate.key, device.curves) for device in reading.devices
     ] or [(None, [read.curve for read in reading.curves])]
     for key, curves in owners:
-        for band in _grouped(curves):
+        for band in edge_groups(curves):
             any_edge = next(iter(band.values()))
             yield {
                 "device": key,
@@ -195,6 +182,8 @@ def _finding(finding: Finding) -> Json:
         "source": finding.source,
         "rule": finding.rule,
         "note": finding.note,
+        "permitted": finding.permitted,
+        "time_s": finding.time_s,
     }
 
 

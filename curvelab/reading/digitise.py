@@ -8,7 +8,7 @@ from curvelab.axes.calibrate import calibrate
 from curvelab.devices.device import Device
 from curvelab.errors import InputError, SheetError
 from curvelab.reading.accept import accept
-from curvelab.reading.assemble import assemble
+from curvelab.reading.assemble import assemble, owned
 from curvelab.reading.follow import follow_curves
 from curvelab.reading.model import fitted_curves, typed_curves
 from curvelab.reading.watch import Watch, unwatched
@@ -59,7 +59,8 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Readin
     axes: Axes | None = None
     warnings: tuple[ReadingWarning, ...] = ()
     quantity = worksheet.value.quantity if worksheet.value else "time"
-    curves: tuple[ReadCurve, ...] = typed_curves([entry for entry in worksheet.curves if entry.points], quantity)
+    entries = [owned(worksheet, entry, number) for number, entry in enumerate(worksheet.curves, start=1)]
+    curves: tuple[ReadCurve, ...] = typed_curves([entry for entry in entries if entry.points], quantity)
     if worksheet.sheet is not None:
         watch("Opening the sheet", 0.0)
         sheet = _open(worksheet.sheet, folder)
@@ -67,7 +68,7 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Readin
         axes, doubts = calibrate(
             sheet, worksheet.current or AxisEntry(quantity="current"), worksheet.value or AxisEntry(quantity="time")
         )
-        guided = tuple(entry for entry in worksheet.curves if entry.through)
+        guided = tuple(entry for entry in entries if entry.through)
         followed, more_doubts = follow_curves(sheet, axes, guided, watch)
         key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=worksheet.sheet.plot, file=worksheet.sheet.file)
         watch("Fitting the bands", 0.0)

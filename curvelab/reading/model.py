@@ -122,6 +122,7 @@ def _read_curve(fitted: _Fitted, axes: Axes, sheet: SheetKey) -> ReadCurve:
         sd_value=sd_value,
         curve=replace(curve, leaves_top=_leaves_top(trace, axes), sheet=sheet),
         devices=entry.devices,
+        tolerance=entry.tolerance,
     )
 
 
@@ -140,6 +141,7 @@ def typed_curves(entries: Sequence[CurveEntry], quantity: str) -> tuple[ReadCurv
                 sd_value=part.sd_value,
                 curve=curve,
                 devices=entry.devices,
+                tolerance=entry.tolerance,
             )
         )
     return tuple(result)

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 from curvelab.records.arrays import Floats, freeze
 from curvelab.records.axes import Axes
 from curvelab.records.curve import Curve
-from curvelab.records.device import DeviceRecord
+from curvelab.records.device import DeviceRecord, Tolerance
 from curvelab.records.finding import Finding
 from curvelab.records.sheet import Sheet
 from curvelab.records.trace import Trace
@@ -19,7 +19,7 @@ class ReadCurve:
 
     ``current``, ``value`` are those of the trace's places in base units, ``sd_current``, ``sd_value`` their relative
     standard uncertainties (NaN where steep or flat). ``curve`` is the fitted and tabulated model, ``label`` what is
-    printed on the line.
+    printed on the line, ``tolerance`` what the worksheet states about this very line.
     """
 
     trace: Trace | None
@@ -29,6 +29,7 @@ class ReadCurve:
     sd_value: Floats
     curve: Curve
     devices: tuple[str, ...]
+    tolerance: Tolerance | None = None
     label: str = ""
 
     def __post_init__(self) -> None:
