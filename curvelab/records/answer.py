@@ -23,6 +23,8 @@ class EdgeAnswer:
         The 95 % interval; NaN where the uncertainty is not known.
     basis : str
         ``sheet``, ``standard`` or ``declared``.
+    meaning : str, or None
+        What ends at that time, such as ``pre_arcing`` or ``clearing``.
     """
 
     status: str | NDArray[Any]
@@ -30,6 +32,7 @@ class EdgeAnswer:
     lower: float | Floats
     upper: float | Floats
     basis: str
+    meaning: str | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)

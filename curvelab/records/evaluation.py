@@ -105,9 +105,7 @@ def _value_table(curve: Curve, own: bool) -> PowerTable:
             [
                 value,
                 *(
-                    chain_table(
-                        chain.current, chain.value, first=_takes_first(curve, larger=larger), clamped=True
-                    )
+                    chain_table(chain.current, chain.value, first=_takes_first(curve, larger=larger), clamped=True)
                     for chain, larger in zip(bounds, (False, True), strict=True)
                 ),
             ]
@@ -125,9 +123,7 @@ def _current_table(curve: Curve) -> PowerTable:
         return current
     lower, upper = bounds
     return _masked(
-        side_by_side(
-            [current, _inverse(lower, first=False, clamped=True), _inverse(upper, first=True, clamped=True)]
-        )
+        side_by_side([current, _inverse(lower, first=False, clamped=True), _inverse(upper, first=True, clamped=True)])
     )
 
 

@@ -1,0 +1,89 @@
+"""One edge of a device asked: lines turned to their base, conditions and elements combined."""
+
+from collections.abc import Mapping, Sequence
+
+import numpy as np
+
+from curvelab.devices.combine import ElementFound, earliest, latest, shortest
+from curvelab.devices.element import currents_of, times_of
+from curvelab.devices.found import ABOVE_BREAKING, NOT_COVERED, NOT_SEEN, Found, without_number
+from curvelab.devices.lines import Line, Lines
+from curvelab.records.arrays import Floats
+from curvelab.records.curve import Edge
+from curvelab.records.evaluation import right_end
+
+Units = Mapping[str, float]
+"""Amperes (or what is asked in) of one unit of each base."""
+
+
+def edge_times(
+    elements: Sequence[Lines], edge: Edge, units: Units, asked: tuple[Floats, float | None], *, own: bool
+) -> Found:
+    """Times of one edge at currents in A; ``asked`` is the currents and the breaking capacity."""
+    current_a, breaking_a = asked
+    if not elements:
+        return without_number(NOT_SEEN, current_a.size)
+    found = earliest([_element_times(each, edge, units, asked, own=own) for each in elements], edge)
+    if breaking_a is None:
+        return found
+    above = current_a > breaking_a * (1 + 1e-12)
+    return found.where(above, without_number(ABOVE_BREAKING, current_a.size)) if above.any() else found
+
+
+def edge_currents(elements: Sequence[Lines], edge: Edge, units: Units, time_s: Floats) -> Found:
+    """Currents of one edge for times: the least that any element trips by, or that all elements hold up to."""
+    if not elements:
+        return without_number(NOT_SEEN, time_s.size)
+    founds = [
+        _over_conditions([currents_of(line, time_s).scaled(units[line.curve.base]) for line in each.lines], edge)
+        if each.lines
+        else without_number(NOT_COVERED, time_s.size)
+        for each in elements
+    ]
+    return founds[0] if len(founds) == 1 else _least(founds, edge)
+
+
+def _element_times(
+    element: Lines, edge: Edge, units: Units, asked: tuple[Floats, float | None], *, own: bool
+) -> ElementFound:
+    current_a, breaking_a = asked
+    if not element.lines:
+        nothing = np.full(current_a.size, np.nan)
+        return ElementFound(found=without_number(NOT_COVERED, current_a.size), ended_at=nothing)
+    founds = []
+    for line in element.lines:
+        unit = units[line.curve.base]
+        founds.append(times_of(line, current_a / unit, None if breaking_a is None else breaking_a / unit, own=own))
+    return ElementFound(found=_over_conditions(founds, edge), ended_at=_ended_at(element.lines, units, current_a))
+
+
+def _over_conditions(founds: Sequence[Found], edge: Edge) -> Found:
+    if len(founds) == 1:
+        return founds[0]
+    return shortest(founds) if edge == "fast" else latest(founds)
+
+
+def _ended_at(lines: Sequence[Line], units: Units, current_a: Floats) -> Floats:
+    """The time at which an element's lines ended, where the current lies to the right of all of them."""
+    ended = np.full(current_a.size, np.inf)
+    for line in lines:
+        end = right_end(line.curve)
+        beyond = current_a > end.current * units[line.curve.base] * (1 + 1e-12)
+        ended = (
+            np.fmin(ended, np.where(beyond, end.value * line.time_factor, np.nan)) if beyond.any() else ended * np.nan
+        )
+    return ended
+
+
+def _least(founds: Sequence[Found], edge: Edge) -> Found:
+    """The least current over elements.
+
+    Slow: any element that surely trips is enough. Fast and mean: all must be known, as any of them may trip first.
+    """
+    silent = np.inf if edge == "slow" else -np.inf
+    currents = [np.where(np.isnan(found.value), silent, found.value) for found in founds]
+    chosen = np.argmin(currents, axis=0)
+    result = founds[0]
+    for index, found in enumerate(founds[1:], start=1):
+        result = result.where(chosen == index, found)
+    return result

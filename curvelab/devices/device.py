@@ -1,0 +1,231 @@
+"""A device that can be asked: elements combined at a setting, currents turned between bases, answers with status."""
+
+from collections.abc import Mapping
+from types import MappingProxyType
+
+import numpy as np
+from numpy.typing import ArrayLike
+
+from curvelab.devices.ask import edge_currents, edge_times
+from curvelab.devices.bases import amperes
+from curvelab.devices.breaking import breaking_capacity_a
+from curvelab.devices.found import Found, shown
+from curvelab.devices.lines import Lines, lines_of_edge, needed_settings
+from curvelab.devices.question import Path, Question, path_of
+from curvelab.devices.settings import Given, checked_settings, missing_settings
+from curvelab.errors import DeviceError
+from curvelab.records.answer import EdgeAnswer, TripCurrents, TripTimes
+from curvelab.records.arrays import Floats
+from curvelab.records.band import Band, bands_of
+from curvelab.records.curve import MEANINGS, Conditions, Edge
+from curvelab.records.device import DeviceRecord, Nameplate
+
+_NONE: Given = MappingProxyType({})
+_EDGES: tuple[Edge, ...] = ("fast", "slow", "mean")
+
+
+class Device:
+    """A stored or read device at its settings; it never changes.
+
+    Parameters
+    ----------
+    record : DeviceRecord
+        Nameplate and curves.
+    settings : mapping, optional
+        Setting by name: a number, or ``"off"``.
+
+    Raises
+    ------
+    DeviceError
+        A setting the device does not have, or a value it cannot take.
+    """
+
+    def __init__(self, record: DeviceRecord, settings: Given = _NONE) -> None:
+        self._record = record
+        self._settings = checked_settings(record.nameplate, settings)
+        self._times = tuple(curve for curve in record.curves if curve.quantity == "time")
+
+    def __repr__(self) -> str:
+        settings = "".join(f", {name}={value}" for name, value in self._settings.items())
+        return f"<Device {self.key}{settings}>"
+
+    @property
+    def record(self) -> DeviceRecord:
+        """What is stored of it."""
+        return self._record
+
+    @property
+    def nameplate(self) -> Nameplate:
+        """What it is called and rated."""
+        return self._record.nameplate
+
+    @property
+    def key(self) -> str:
+        """Its key in a library."""
+        return self._record.nameplate.key
+
+    @property
+    def revision(self) -> int | None:
+        """Its revision; None where it does not come from a library."""
+        return self._record.revision
+
+    @property
+    def state(self) -> str | None:
+        """The state of its revision; None where it does not come from a library."""
+        return self._record.state
+
+    @property
+    def settings(self) -> Mapping[str, float | str]:
+        """The settings it is asked at."""
+        return self._settings
+
+    @property
+    def bands(self) -> tuple[Band, ...]:
+        """Its curves gathered into bands."""
+        return bands_of(self._record.curves)
+
+    @property
+    def is_set(self) -> bool:
+        """Whether it can be asked: it is not adjustable, or has the settings its curves depend on."""
+        declared = {setting.name for setting in self.nameplate.settings}
+        missing = [name for name in needed_settings(self._times) if name in declared and name not in self._settings]
+        return not missing and (not declared or bool(self._settings))
+
+    def at(self, **settings: float | str) -> "Device":
+        """The device at settings, such as ``at(ir=0.8, isd=5)`` or ``at(ii="off")``; those given before are kept.
+
+        Raises
+        ------
+        DeviceError
+            A setting the device does not have, or a value it cannot take; the message says what is possible.
+        """
+        return Device(self._record, {**self._settings, **settings})
+
+    def trip_time(  # noqa: PLR0913 - what a current is, is said by name
+        self,
+        current: ArrayLike,
+        base: str = "A",
+        *,
+        path: Path | None = None,
+        meaning: str | None = None,
+        conditions: Conditions = Conditions(),
+        own: bool = False,
+    ) -> TripTimes:
+        """Times in s at currents, edge by edge, with 95 % intervals and status.
+
+        Parameters
+        ----------
+        current : float or array
+            Prospective current in ``base``, positive.
+        base : str
+            ``A`` or multiples of a rating or setting.
+        path, meaning, conditions
+            See `Question`.
+        own : bool
+            Intervals without the part of the uncertainty that all curves of a sheet share, for differences.
+
+        Raises
+        ------
+        DeviceError
+            A current that is not positive, a base the device lacks, or an adjustable device without its settings.
+        """
+        asked = _positive(current, "current")
+        question = Question(path=path, meaning=meaning, conditions=conditions)
+        way = path_of(question, self.nameplate, base)
+        self._refuse_unset()
+        current_a = np.ravel(asked) * amperes(self.nameplate, self._settings, base)
+        breaking = breaking_capacity_a(self.nameplate, question, way)
+        answers: dict[str, EdgeAnswer | None] = {}
+        for edge in _EDGES:
+            lines = self._lines(edge, question, way)
+            units = self._units(lines, 1.0)
+            found = None if lines is None else edge_times(lines, edge, units, (current_a, breaking), own=own)
+            answers[edge] = _shown(found, lines, asked.shape)
+        return TripTimes(current=_as_given(asked), base=base, **answers)
+
+    def trip_current(
+        self,
+        time_s: ArrayLike,
+        base: str = "A",
+        *,
+        path: Path | None = None,
+        meaning: str | None = None,
+        conditions: Conditions = Conditions(),
+    ) -> TripCurrents:
+        """Currents for times: the least that surely trips by the time, the greatest that surely holds for it.
+
+        Parameters
+        ----------
+        time_s : float or array
+            Positive, in s.
+        base : str
+            What the currents are to be counted in.
+        path, meaning, conditions
+            See `Question`.
+
+        Raises
+        ------
+        DeviceError
+            As for `trip_time`.
+        """
+        asked = _positive(time_s, "time")
+        question = Question(path=path, meaning=meaning, conditions=conditions)
+        way = path_of(question, self.nameplate, base)
+        self._refuse_unset()
+        unit = amperes(self.nameplate, self._settings, base)
+        answers: list[EdgeAnswer | None] = []
+        for edge in _EDGES:
+            lines = self._lines(edge, question, way)
+            found = None if lines is None else edge_currents(lines, edge, self._units(lines, unit), np.ravel(asked))
+            answers.append(_shown(found, lines, asked.shape))
+        holds, trips, mean = answers
+        return TripCurrents(time_s=_as_given(asked), base=base, trips=trips, holds=holds, mean=mean)
+
+    def _refuse_unset(self) -> None:
+        if not self.is_set:
+            raise missing_settings(self.nameplate)
+
+    def _lines(self, edge: Edge, question: Question, way: Path) -> tuple[Lines, ...] | None:
+        return lines_of_edge(self._times, edge, self.nameplate, self._settings, question, way)
+
+    def _units(self, elements: tuple[Lines, ...] | None, of_unit: float) -> dict[str, float]:
+        """What one unit of each base the lines are drawn in is, in units of ``of_unit`` amperes."""
+        bases = {line.curve.base for each in elements or () for line in each.lines}
+        return {base: amperes(self.nameplate, self._settings, base) / of_unit for base in sorted(bases)}
+
+
+def _shown(found: Found | None, elements: tuple[Lines, ...] | None, shape: tuple[int, ...]) -> EdgeAnswer | None:
+    """An edge's answer in the shape of what was asked, with the weakest basis and meaning of its lines."""
+    if found is None or elements is None:
+        return None
+    bases = {line.curve.basis for each in elements for line in each.lines}
+    basis = next((name for name in ("declared", "sheet", "standard") if name in bases), "sheet")
+    said = {each.meaning for each in elements}
+    meaning = next((name for name in MEANINGS if name in said), None)
+    return shown(found, basis, meaning, shape=shape)
+
+
+def _positive(numbers: ArrayLike, what: str) -> Floats:
+    """Numbers asked as an array of their own shape.
+
+    Raises
+    ------
+    DeviceError
+        One is not a positive finite number.
+    """
+    try:
+        asked = np.asarray(numbers, dtype=np.float64)
+    except (TypeError, ValueError):
+        raise DeviceError(
+            f"A {what} of {numbers!r} is not a number", "A positive number, or an array of them"
+        ) from None
+    wrong = ~(np.isfinite(asked) & (asked > 0))
+    if wrong.any():
+        raise DeviceError(
+            f"A {what} of {asked[wrong].flat[0]:g} cannot be asked", f"Each {what} must be positive and finite"
+        )
+    return asked
+
+
+def _as_given(asked: Floats) -> float | Floats:
+    return float(asked) if asked.ndim == 0 else asked
