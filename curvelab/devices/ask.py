@@ -13,21 +13,21 @@ from curvelab.records.curve import Edge
 from curvelab.records.evaluation import right_end
 
 Units = Mapping[str, float]
-"""Amperes (or what is asked in) of one unit of each base."""
+"""What one unit of each base is in the base asked."""
 
 
 def edge_times(
     elements: Sequence[Lines], edge: Edge, units: Units, asked: tuple[Floats, float | None], *, own: bool
 ) -> Found:
-    """Times of one edge at currents in A; ``asked`` is the currents and the breaking capacity."""
-    current_a, breaking_a = asked
+    """Times of one edge; ``asked`` is the currents and the breaking capacity, in the base asked."""
+    current, breaking = asked
     if not elements:
-        return without_number(NOT_SEEN, current_a.size)
+        return without_number(NOT_SEEN, current.size)
     found = earliest([_element_times(each, edge, units, asked, own=own) for each in elements], edge)
-    if breaking_a is None:
+    if breaking is None:
         return found
-    above = current_a > breaking_a * (1 + 1e-12)
-    return found.where(above, without_number(ABOVE_BREAKING, current_a.size)) if above.any() else found
+    above = current > breaking * (1 + 1e-12)
+    return found.where(above, without_number(ABOVE_BREAKING, current.size)) if above.any() else found
 
 
 def edge_currents(elements: Sequence[Lines], edge: Edge, units: Units, time_s: Floats) -> Found:
@@ -46,15 +46,15 @@ def edge_currents(elements: Sequence[Lines], edge: Edge, units: Units, time_s: F
 def _element_times(
     element: Lines, edge: Edge, units: Units, asked: tuple[Floats, float | None], *, own: bool
 ) -> ElementFound:
-    current_a, breaking_a = asked
+    current, breaking = asked
     if not element.lines:
-        nothing = np.full(current_a.size, np.nan)
-        return ElementFound(found=without_number(NOT_COVERED, current_a.size), ended_at=nothing)
+        nothing = np.full(current.size, np.nan)
+        return ElementFound(found=without_number(NOT_COVERED, current.size), ended_at=nothing)
     founds = []
     for line in element.lines:
         unit = units[line.curve.base]
-        founds.append(times_of(line, current_a / unit, None if breaking_a is None else breaking_a / unit, own=own))
-    return ElementFound(found=_over_conditions(founds, edge), ended_at=_ended_at(element.lines, units, current_a))
+        founds.append(times_of(line, current / unit, None if breaking is None else breaking / unit, own=own))
+    return ElementFound(found=_over_conditions(founds, edge), ended_at=_ended_at(element.lines, units, current))
 
 
 def _over_conditions(founds: Sequence[Found], edge: Edge) -> Found:
@@ -63,12 +63,12 @@ def _over_conditions(founds: Sequence[Found], edge: Edge) -> Found:
     return shortest(founds) if edge == "fast" else latest(founds)
 
 
-def _ended_at(lines: Sequence[Line], units: Units, current_a: Floats) -> Floats:
+def _ended_at(lines: Sequence[Line], units: Units, current: Floats) -> Floats:
     """The time at which an element's lines ended, where the current lies to the right of all of them."""
-    ended = np.full(current_a.size, np.inf)
+    ended = np.full(current.size, np.inf)
     for line in lines:
         end = right_end(line.curve)
-        beyond = current_a > end.current * units[line.curve.base] * (1 + 1e-12)
+        beyond = current > end.current * units[line.curve.base] * (1 + 1e-12)
         ended = (
             np.fmin(ended, np.where(beyond, end.value * line.time_factor, np.nan)) if beyond.any() else ended * np.nan
         )

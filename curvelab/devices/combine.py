@@ -1,8 +1,8 @@
 """Elements combined: the earliest trips, edge by edge, and an element nobody knows of never makes an answer surer.
 
-Of each element an edge's answer says that its time lies in a range: ``value`` exactly there, ``at_least`` from there up,
-``at_most`` from there down, ``never`` at no time, ``not_covered`` anywhere. The earliest of all elements then lies between
-the least lower end and the least upper end.
+Of each element an edge's answer says that its time lies in a range: ``value`` exactly there, ``at_least`` from there
+up, ``at_most`` from there down, ``never`` at no time, ``not_covered`` anywhere. The earliest of all elements then lies
+between the least lower end and the least upper end.
 """
 
 from collections.abc import Sequence

@@ -101,7 +101,7 @@ class Device:
         """
         return Device(self._record, {**self._settings, **settings})
 
-    def trip_time(  # noqa: PLR0913 - what a current is, is said by name
+    def trip_time(
         self,
         current: ArrayLike,
         base: str = "A",
@@ -133,13 +133,13 @@ class Device:
         question = Question(path=path, meaning=meaning, conditions=conditions)
         way = path_of(question, self.nameplate, base)
         self._refuse_unset()
-        current_a = np.ravel(asked) * amperes(self.nameplate, self._settings, base)
-        breaking = breaking_capacity_a(self.nameplate, question, way)
+        unit = amperes(self.nameplate, self._settings, base)
+        capacity_a = breaking_capacity_a(self.nameplate, question, way)
+        limited = np.ravel(asked), None if capacity_a is None else capacity_a / unit
         answers: dict[str, EdgeAnswer | None] = {}
         for edge in _EDGES:
             lines = self._lines(edge, question, way)
-            units = self._units(lines, 1.0)
-            found = None if lines is None else edge_times(lines, edge, units, (current_a, breaking), own=own)
+            found = None if lines is None else edge_times(lines, edge, self._units(lines, unit), limited, own=own)
             answers[edge] = _shown(found, lines, asked.shape)
         return TripTimes(current=_as_given(asked), base=base, **answers)
 

@@ -13,11 +13,12 @@ from curvelab.devices.found import (
     Codes,
     Found,
     plain,
+    without_number,
 )
 from curvelab.devices.lines import Line
 from curvelab.records.arrays import Floats
 from curvelab.records.curve import Curve
-from curvelab.records.evaluation import currents_at, left_end, right_end, values_at
+from curvelab.records.evaluation import currents_at, left_end, outer_bounds, right_end, values_at
 
 _PICKS_UP = ("delayed", "instantaneous", "earth", "neutral", "override", "residual")
 """Elements that act from a threshold on; a line of theirs that begins with a vertical stretch declares it."""
@@ -55,34 +56,33 @@ def times_of(line: Line, current: Floats, breaking: float | None, *, own: bool =
     bounded = values_at(curve, current, own=own)
     found = plain(bounded.value, bounded.lower, bounded.upper)
     if not found.all_values:
-        found = _outside(curve, current, breaking, found)
+        found = _outside(curve, current, breaking, found, own=own)
     if line.bound:
         found = _as_bound(found, AT_MOST if curve.edge == "slow" else AT_LEAST)
     return found.scaled(line.time_factor)
 
 
-def _outside(curve: Curve, current: Floats, breaking: float | None, found: Found) -> Found:
+def _outside(curve: Curve, current: Floats, breaking: float | None, found: Found, *, own: bool) -> Found:
     missing = found.code == NOT_COVERED
     left, right = left_end(curve), right_end(curve)
     to_the_left = missing & (current < left.current)
+    lower, upper = outer_bounds(curve, current, own=own)
     if curve.leaves_top:
-        found = found.where(to_the_left, _constant(AT_LEAST, left.value, left.value_lower, np.nan, current.size))
+        at_least = replace(_constant(AT_LEAST, left.value, current.size), lower=lower)
+        found = found.where(to_the_left, at_least)
     threshold = pick_up(curve)
     if threshold is not None:
-        found = found.where(to_the_left & (current < threshold), _constant(NEVER, np.nan, np.nan, np.nan, current.size))
+        found = found.where(to_the_left & (current < threshold), without_number(NEVER, current.size))
     if curve.edge == "slow" and breaking is not None:
         beyond = missing & (current > right.current) & (current <= breaking)
-        found = found.where(beyond, _constant(AT_MOST, right.value, np.nan, right.value_upper, current.size))
+        found = found.where(beyond, replace(_constant(AT_MOST, right.value, current.size), upper=upper))
     return found
 
 
-def _constant(code: int, value: float, lower: float, upper: float, size: int) -> Found:
-    return Found(
-        code=np.full(size, code, dtype=np.int8),
-        value=np.full(size, value),
-        lower=np.full(size, lower),
-        upper=np.full(size, upper),
-    )
+def _constant(code: int, value: float, size: int) -> Found:
+    """One bound for everything asked, its interval not known."""
+    unknown = np.full(size, np.nan)
+    return Found(code=np.full(size, code, dtype=np.int8), value=np.full(size, value), lower=unknown, upper=unknown)
 
 
 def _as_bound(found: Found, code: int) -> Found:
@@ -97,8 +97,10 @@ def _as_bound(found: Found, code: int) -> Found:
 
 
 def currents_of(line: Line, time_s: Floats) -> Found:
-    """Currents of a line, in its base, for times in s: of the slow edge the least that surely trips by the time, of the
-    fast edge the greatest that surely does not trip before it.
+    """Currents of a line, in its base, for times in s.
+
+    Of the slow edge the least that surely trips by the time, of the fast edge the greatest that surely does not trip
+    before it.
     """
     curve = line.curve
     times = time_s / line.time_factor
@@ -133,11 +135,11 @@ def _beyond(curve: Curve, times: Floats, found: Found) -> Found:
     declared = threshold is not None and threshold == left.current
     if curve.edge == "slow":
         # At its first current the slow edge is already short enough.
-        return found.where(longer, _constant(VALUE if declared else AT_MOST, left.current, np.nan, np.nan, times.size))
+        return found.where(longer, _constant(VALUE if declared else AT_MOST, left.current, times.size))
     if curve.edge == "fast":
         # Up to its last current the fast edge is still long enough; before a declared pick-up it never trips.
-        found = found.where(shorter, _constant(AT_LEAST, right.current, np.nan, np.nan, times.size))
+        found = found.where(shorter, _constant(AT_LEAST, right.current, times.size))
         if threshold is not None:
             code = VALUE if declared else AT_LEAST
-            found = found.where(longer, _constant(code, threshold, np.nan, np.nan, times.size))
+            found = found.where(longer, _constant(code, threshold, times.size))
     return found

@@ -55,9 +55,9 @@ def checked_nameplate(plate: Nameplate) -> Nameplate:
     for entry in plate.breaking:
         if not (math.isfinite(entry.value_a) and entry.value_a > 0):
             raise DeviceError(f"'{plate.key}' has {entry.quantity} = {entry.value_a:g} A", "A positive number")
-    for entry in plate.derating:
-        if not (math.isfinite(entry.factor) and entry.factor > 0):
-            raise DeviceError(f"'{plate.key}' has a derating factor of {entry.factor:g}", "A positive number")
+    for step in plate.derating:
+        if not (math.isfinite(step.factor) and step.factor > 0):
+            raise DeviceError(f"'{plate.key}' has a derating factor of {step.factor:g}", "A positive number")
     for setting in plate.settings:
         _check_setting(plate, setting)
     return plate

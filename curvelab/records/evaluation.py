@@ -22,12 +22,10 @@ class Bounded:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class End:
-    """One end of a curve with the interval of its current and of its value."""
+    """One end of a curve."""
 
     current: float
     value: float
-    value_lower: float
-    value_upper: float
 
 
 def values_at(curve: Curve, current: Floats, *, own: bool = False) -> Bounded:
@@ -47,6 +45,19 @@ def values_at(curve: Curve, current: Floats, *, own: bool = False) -> Bounded:
         between parts and outside the ends.
     """
     return _bounded(_value_table(curve, own), current)
+
+
+def outer_bounds(curve: Curve, current: Floats, *, own: bool = False) -> tuple[Floats, Floats]:
+    """Lower and upper bound carried on level beyond the curve's ends; NaN where the uncertainty is not known.
+
+    Left of a falling curve the lower bound rises to its first value, right of it the upper falls to its last.
+    """
+    table = _bounds_table(curve, own)
+    if table is None:
+        unknown = np.full(current.size, np.nan)
+        return unknown, unknown
+    lower, upper = table(current)
+    return lower, upper
 
 
 def currents_at(curve: Curve, value: Floats) -> Bounded:
@@ -97,19 +108,21 @@ def _value_table(curve: Curve, own: bool) -> PowerTable:
         for start, stop in zip(best.starts, stops, strict=True)
     ]
     value = end_to_end(parts, first=first)
+    bounds = _bounds_table(curve, own)
+    return value if bounds is None else _masked(side_by_side([value, bounds]))
+
+
+@lru_cache(maxsize=1024)
+def _bounds_table(curve: Curve, own: bool) -> PowerTable | None:
+    """Lower and upper side by side; None where the uncertainty is not known."""
     bounds = bound_chains(curve, own=own)
     if bounds is None:
-        return value
-    return _masked(
-        side_by_side(
-            [
-                value,
-                *(
-                    chain_table(chain.current, chain.value, first=_takes_first(curve, larger=larger), clamped=True)
-                    for chain, larger in zip(bounds, (False, True), strict=True)
-                ),
-            ]
-        )
+        return None
+    return side_by_side(
+        [
+            chain_table(chain.current, chain.value, first=_takes_first(curve, larger=larger), clamped=True)
+            for chain, larger in zip(bounds, (False, True), strict=True)
+        ]
     )
 
 
@@ -155,11 +168,4 @@ def _masked(table: PowerTable) -> PowerTable:
 @lru_cache(maxsize=1024)
 def _end(curve: Curve, index: int) -> End:
     best = best_chain(curve)
-    current = best.current[index]
-    bounds = values_at(curve, np.array([current]))
-    return End(
-        current=float(current),
-        value=float(best.value[index]),
-        value_lower=float(min(bounds.lower[0], best.value[index])) if np.isfinite(bounds.lower[0]) else np.nan,
-        value_upper=float(max(bounds.upper[0], best.value[index])) if np.isfinite(bounds.upper[0]) else np.nan,
-    )
+    return End(current=float(best.current[index]), value=float(best.value[index]))

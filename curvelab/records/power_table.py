@@ -8,7 +8,7 @@ import numpy as np
 from curvelab.records.arrays import Floats
 
 NUDGE = 1e-12
-"""Relative distance within which an asked number counts as a tabulated one: turning a current between bases rounds it."""
+"""Relative distance within which an asked number counts as a tabulated one: turning currents between bases rounds."""
 
 _SLICING_PAYS_FROM = 64
 """Asked numbers a row from which sorted ones are cheaper worked slice by slice than gathered."""
@@ -40,11 +40,11 @@ class PowerTable:
             return self._by_slices(asked, log_asked)
         row = self.breaks.searchsorted(asked)
         answers = np.empty((self.value.shape[0], asked.size))
-        for anchor, value, slope, answer in zip(self.log_anchor, self.value, self.slope, answers, strict=True):
-            np.subtract(log_asked, anchor.take(row), out=answer)
-            answer *= slope.take(row)
+        for chain, answer in enumerate(answers):
+            np.subtract(log_asked, self.log_anchor[chain].take(row), out=answer)
+            np.multiply(answer, self.slope[chain].take(row), out=answer)
             np.exp(answer, out=answer)
-            answer *= value.take(row)
+            np.multiply(answer, self.value[chain].take(row), out=answer)
         return answers
 
     def _by_slices(self, asked: Floats, log_asked: Floats) -> Floats:
@@ -79,23 +79,21 @@ def chain_table(given: Floats, answer: Floats, *, first: bool, clamped: bool = F
     clamped : bool
         Outside its ends the chain answers its end values, else NaN.
     """
-    if given.size == 1:
-        given, answer = np.repeat(given, 2), np.repeat(answer, 2)
-    breaks = given * (1 + NUDGE if first else 1 - NUDGE)
-    breaks[0], breaks[-1] = given[0] * (1 - NUDGE), given[-1] * (1 + NUDGE)
+    before, after = given * (1 - NUDGE), given * (1 + NUDGE)
+    breaks = np.concatenate((before[:1], after) if first else (before, after[-1:]))
     log_given = np.log(given)
     run, rise = np.diff(log_given), np.diff(np.log(answer))
-    vertical = run == 0
-    slope = np.divide(rise, run, out=np.zeros_like(run), where=~vertical)
-    # Anchored where the row is closed, so that a tabulated number gives its tabulated answer to the last digit.
-    anchored_right = np.where(vertical, not first, first)
-    anchor = np.arange(run.size) + anchored_right
-    outside = np.array([answer[0], answer[-1]]) if clamped else np.full(2, np.nan)
+    slope = np.divide(rise, run, out=np.zeros_like(run), where=run != 0)
+    # Each row is anchored where it is closed, so that a tabulated number gives its tabulated answer to the last digit;
+    # the one end that no row closes has a row of its own.
+    level = np.zeros(1)
+    slopes = (level, level, slope, level) if first else (level, slope, level, level)
+    ends = answer[[0, -1]] if clamped else np.full(2, np.nan)
     return PowerTable(
         breaks=breaks,
-        log_anchor=np.concatenate(([log_given[0]], log_given[anchor], [log_given[-1]]))[None],
-        value=np.concatenate((outside[:1], answer[anchor], outside[1:]))[None],
-        slope=np.concatenate(([0.0], slope, [0.0]))[None],
+        log_anchor=np.concatenate((log_given[:1], log_given, log_given[-1:]))[None],
+        value=np.concatenate((ends[:1], answer, ends[1:]))[None],
+        slope=np.concatenate(slopes)[None],
     )
 
 
