@@ -64,41 +64,52 @@ def _inside_one(points: Floats, clip: Clip) -> list[Floats]:
     low, high = clip.box
     if np.any(points.max(axis=0) < low - SLACK) or np.any(points.min(axis=0) > high + SLACK):
         return []
-    is_box = clip.is_box
-    if is_box and np.all(points >= low - SLACK) and np.all(points <= high + SLACK):
+    if not clip.is_box:
+        return _joined(points, _spans_in_area(points, clip))
+    if np.all(points >= low - SLACK) and np.all(points <= high + SLACK):
         return [points]
-    pieces: list[Floats] = []
-    running: list[Floats] = []
-    for start, end in itertools.pairwise(points):
-        for enter, leave in _spans_in_box(start, end, low, high) if is_box else _spans_in_area(start, end, clip):
-            first, last = start + enter * (end - start), start + leave * (end - start)
-            if running and not np.array_equal(running[-1], first):
-                pieces.append(np.array(running))
-                running = []
-            running = running or [first]
-            running.append(last)
-    if running:
-        pieces.append(np.array(running))
-    return [piece for piece in pieces if len(piece) >= 2]
+    return _joined(points, _spans_in_box(points, low - SLACK, high + SLACK))
 
 
-def _spans_in_box(start: Floats, end: Floats, low: Floats, high: Floats) -> list[tuple[float, float]]:
-    """The share of a straight line inside an upright rectangle (Liang and Barsky 1984)."""
-    enter, leave = 0.0, 1.0
-    for axis in (0, 1):
-        along = end[axis] - start[axis]
-        to_low, to_high = low[axis] - SLACK - start[axis], high[axis] + SLACK - start[axis]
-        if along == 0.0:
-            if to_low > 0.0 or to_high < 0.0:
-                return []
-            continue
-        near, far = sorted((to_low / along, to_high / along))
-        enter, leave = max(enter, near), min(leave, far)
-    return [(enter, leave)] if enter < leave else []
+def _joined(points: Floats, spans: Floats) -> list[Floats]:
+    """Polylines of spans, shape (k, 3): number of the side, and the shares of it where the span begins and ends."""
+    if len(spans) == 0:
+        return []
+    side, begin, end = spans[:, 0].astype(int), spans[:, 1:2], spans[:, 2:3]
+    along = points[side + 1] - points[side]
+    firsts = points[side] + begin * along
+    lasts = np.where(end == 1.0, points[side + 1], points[side] + end * along)
+    follows = (np.diff(side) == 1) & (end[:-1, 0] == 1.0) & (begin[1:, 0] == 0.0)
+    starts = np.flatnonzero(np.concatenate([[True], ~follows]))
+    stops = [*starts[1:], len(side)]
+    return [np.vstack([firsts[a], lasts[a:b]]) for a, b in zip(starts, stops, strict=True)]
 
 
-def _spans_in_area(start: Floats, end: Floats, clip: Clip) -> list[tuple[float, float]]:
-    """The shares of a straight line inside polygons, by the even-odd rule."""
+def _spans_in_box(points: Floats, low: Floats, high: Floats) -> Floats:
+    """Spans of each side of a polyline inside an upright rectangle (Liang and Barsky 1984)."""
+    start, along = points[:-1], np.diff(points, axis=0)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        to_low, to_high = (low - start) / along, (high - start) / along
+    level = along == 0.0
+    within = (start >= low) & (start <= high)
+    near = np.where(level, np.where(within, -np.inf, np.inf), np.minimum(to_low, to_high))
+    far = np.where(level, np.where(within, np.inf, -np.inf), np.maximum(to_low, to_high))
+    enter, leave = np.maximum(near.max(axis=1), 0.0), np.minimum(far.min(axis=1), 1.0)
+    side = np.flatnonzero(enter < leave)
+    return np.stack([side, enter[side], leave[side]], axis=1)
+
+
+def _spans_in_area(points: Floats, clip: Clip) -> Floats:
+    """Spans of each side of a polyline inside polygons, by the even-odd rule."""
+    spans = [
+        (number, enter, leave)
+        for number, (start, end) in enumerate(itertools.pairwise(points))
+        for enter, leave in _shares_in_area(start, end, clip)
+    ]
+    return np.reshape(np.array(spans, dtype=np.float64), (-1, 3))
+
+
+def _shares_in_area(start: Floats, end: Floats, clip: Clip) -> list[tuple[float, float]]:
     along, sides, offset = end - start, clip.nexts - clip.corners, clip.corners - start
     cross = along[0] * sides[:, 1] - along[1] * sides[:, 0]
     with np.errstate(divide="ignore", invalid="ignore"):
@@ -108,11 +119,12 @@ def _spans_in_area(start: Floats, end: Floats, clip: Clip) -> list[tuple[float, 
     cuts = np.unique(np.concatenate([[0.0], hits, [1.0]]))
     spans: list[tuple[float, float]] = []
     for enter, leave in itertools.pairwise(cuts):
-        if _is_inside(start + (enter + leave) / 2 * along, clip):
-            if spans and spans[-1][1] == enter:
-                spans[-1] = (spans[-1][0], float(leave))
-            else:
-                spans.append((float(enter), float(leave)))
+        if not _is_inside(start + (enter + leave) / 2 * along, clip):
+            continue
+        if spans and spans[-1][1] == enter:
+            spans[-1] = (spans[-1][0], float(leave))
+        else:
+            spans.append((float(enter), float(leave)))
     return spans
 
 

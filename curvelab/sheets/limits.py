@@ -26,3 +26,6 @@ NESTING = 64
 
 ELEMENTS = 400_000
 """Objects or elements visited on one page, counting each use of a repeated one."""
+
+SVG_BYTES = 40_000_000
+"""Size of an SVG file, whose text grows about tenfold when parsed."""
