@@ -12,7 +12,7 @@ from demo_curves.drawing.design import (
     SheetDesign,
 )
 from demo_curves.drawing.formulas import inverse_piece, with_vertices
-from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line
+from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line, remarks
 
 RATINGS = [6, 10, 16, 20, 25, 32, 40]
 TOP_S = 20000.0
@@ -80,9 +80,13 @@ def band_b() -> DemoSheet:
         heading("Tripping characteristic type B", (92.4, 62)),
         Note(text="QM B series, 6 A to 40 A, 230 V a.c.", at_pt=(92.4, 80), size_pt=10),
         Note(text="Cold state, one pole loaded\nReference ambient 30 °C", at_pt=(318, 136), size_pt=8.5, boxed=True),
-        Note(text="Band between shortest and longest time to clear.", at_pt=(92.4, 720), size_pt=7.5),
+        remarks(
+            (92.4, 716),
+            "The band lies between the shortest and the longest time to clear.",
+            "For other ambient temperatures correct the thermal part by 0.5 % of In per kelvin.",
+        ),
     )
-    title = block((92.4, 742), 406.5, "Type B, time-current band", "QM-101")
+    title = block((92.4, 752), 406.5, "Type B, time-current band", "QM-101")
     design = SheetDesign(page=a4(200), plots=(plot,), notes=notes, title_block=title, border_pt=28)
     scan = ScanCopy(scan=Scan(angle_deg=0.9, stretch=(1.001, 0.999), seed=11), kind="jpg", dpi=200)
     return DemoSheet(
@@ -98,10 +102,10 @@ def bands_c_and_d() -> DemoSheet:
     label = CurveLabel(text="C", along=0.79, offset_pt=(-9, 0), size_pt=9)
     label_d = CurveLabel(text="D", along=0.8, offset_pt=(9, 0), size_pt=9)
     curves = (
-        fast_edge(1.15, 10.5, 5.6, name="C fast", labels=(label,), **red, **of_c),
-        slow_edge(1.37, 74.0, 9.3, 50.0, name="C slow", **red, **of_c),
-        fast_edge(1.165, 15.0, 11.2, name="D fast", **green, **of_d),
-        slow_edge(1.40, 92.0, 18.4, 50.0, name="D slow", labels=(label_d,), **green, **of_d),
+        fast_edge(1.14, 10.5, 5.6, name="C fast", labels=(label,), **red, **of_c),
+        slow_edge(1.355, 70.0, 9.3, 50.0, name="C slow", **red, **of_c),
+        fast_edge(1.19, 17.0, 11.2, name="D fast", **green, **of_d),
+        slow_edge(1.42, 94.0, 18.4, 50.0, name="D slow", labels=(label_d,), **green, **of_d),
     )
     plot = PlotDesign(
         frame_pt=(98.2, 92.7, 522.6, 610.4),
@@ -121,7 +125,7 @@ def bands_c_and_d() -> DemoSheet:
             size_pt=8,
         ),
     )
-    title = block((98.2, 716), 424.4, "Types C and D, time-current bands", "QM-102")
+    title = block((98.2, 762), 424.4, "Types C and D, time-current bands", "QM-102")
     design = SheetDesign(page=a4(200), plots=(plot,), font="serif", notes=notes, title_block=title)
     scan = ScanCopy(
         scan=Scan(angle_deg=-1.4, stretch=(0.999, 1.002), blur_px=0.8, noise=2.5, light=0.12, seed=12),
@@ -151,8 +155,14 @@ def late_breaker() -> DemoSheet:
     notes = (
         heading("QM C 16 A, withdrawn 1998 issue", (86.6, 66), 12),
         Note(text="Trial lot. Not for new work.", at_pt=(392, 83), size_pt=8),
+        remarks(
+            (86.6, 622),
+            "Thermal release of the 1998 lot, cold, 30 °C.",
+            "Magnetic release between 5.7 and 9.1 In.",
+            "Superseded by sheet QM-102.",
+        ),
     )
-    title = block((86.6, 640), 393.7, "QM C 16 A", "QM-087")
+    title = block((86.6, 754), 393.7, "QM C 16 A", "QM-087")
     design = SheetDesign(page=a4(200), plots=(plot,), font="stix", notes=notes, title_block=title, border_pt=22)
     scan = ScanCopy(
         scan=Scan(angle_deg=0.6, blur_px=0.6, noise=3, light=0.04, seed=13), kind="g4", dpi=300, level=186.0
@@ -179,8 +189,14 @@ def loose_magnetic_breaker() -> DemoSheet:
         legend_at_pt=(352, 104),
         legend=(("slow", "Longest time"), ("fast", "Shortest time")),
     )
-    notes = (heading("QM C 20 A", (82.3, 58)), Note(text="Magnetic release 4 to 8 In", at_pt=(82.3, 76), size_pt=9))
-    title = block((82.3, 690), 389.9, "QM C 20 A, special", "QM-131")
+    notes = (
+        heading("QM C 20 A", (82.3, 58)),
+        Note(text="Magnetic release 4 to 8 In", at_pt=(82.3, 76), size_pt=9),
+        remarks(
+            (82.3, 668), "Made to order for long pump cables. Cold, 30 °C.", "Check the loop impedance against 8 In."
+        ),
+    )
+    title = block((82.3, 756), 389.9, "QM C 20 A, special", "QM-131")
     design = SheetDesign(page=a4(200), plots=(plot,), notes=notes, title_block=title)
     return DemoSheet(
         name="mcb-loose-magnetic", title="QM C 20 A, special", number="QM-131", design=design,

@@ -98,7 +98,7 @@ def family() -> DemoSheet:
         scan=Scan(angle_deg=0.5, stretch=(1.0015, 0.9995), blur_px=0.9, noise=5, light=0.1, seed=21),
         kind="jpg",
         dpi=300,
-        quality=72,
+        quality=60,
     )
     return DemoSheet(
         name="fuse-gg-family", title="gG fuse-links, pre-arcing times", number="QF-210", design=design,

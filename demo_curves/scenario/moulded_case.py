@@ -6,7 +6,7 @@ from dataclasses import replace
 from demo_curves.drawing.degrade import Scan
 from demo_curves.drawing.design import AxisDesign, CurveLabel, GridStyle, Note, PlotDesign, SheetDesign
 from demo_curves.drawing.formulas import inverse_piece, straight
-from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line
+from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line, remarks
 
 KEY = "riverside-feeder-250"
 
@@ -44,9 +44,14 @@ def _sheet(name: str, title: str, number: str, plot: PlotDesign) -> DemoSheet:
         Note(
             text="Electronic release, settings Ir 0.4 to 1.0 In (In = 250 A), 400 V a.c.", at_pt=(left, 78), size_pt=8.5
         ),
+        remarks(
+            (left, bottom + 56),
+            "From cold at 40 °C, all poles loaded.",
+            "The lines of an element are its shortest and its longest time to clear.",
+        ),
     )
     design = SheetDesign(
-        page=a4(200), plots=(plot,), notes=notes, title_block=block((left, bottom + 70), right - left, title, number),
+        page=a4(200), plots=(plot,), notes=notes, title_block=block((left, 750), right - left, title, number),
         border_pt=20,
     )  # fmt: skip
     return DemoSheet(
@@ -77,7 +82,7 @@ def long_time() -> DemoSheet:
     plot = PlotDesign(
         frame_pt=(90.8, 98.4, 500.2, 660.3),
         current=AxisDesign(quantity="current", unit="xIr", low=1, high=20, label="I / Ir", labelled=(1, 2, 3, 5)),
-        value=AxisDesign(quantity="time", unit="s", low=0.1, high=10000, label="Clearing time / s"),
+        value=AxisDesign(quantity="time", unit="s", low=0.1, high=1000, label="Clearing time / s"),
         curves=tuple(curves),
     )
     scan = ScanCopy(scan=Scan(angle_deg=-0.7, blur_px=0.7, noise=2, seed=51), kind="tif", dpi=150)

@@ -4,7 +4,7 @@ from demo_curves.drawing.degrade import Scan
 from demo_curves.drawing.design import AxisDesign, CurveLabel, GridStyle, Note, PlotDesign, SheetDesign
 from demo_curves.drawing.formulas import relay_line, straight
 from demo_curves.scenario.breakers import single
-from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line
+from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line, remarks
 
 
 def relay() -> DemoSheet:
@@ -88,8 +88,13 @@ def let_through() -> DemoSheet:
     notes = (
         heading("QM C, largest let-through energy", (98.3, 62)),
         Note(text="230 V a.c., one pole, up to Icn = 6 kA", at_pt=(98.3, 80), size_pt=9),
+        remarks(
+            (98.3, 592),
+            "Largest value over the making angle, power factor as tested.",
+            "Not to be extended beyond 6 kA.",
+        ),
     )
-    title = block((98.3, 606), 402.6, "QM C, let-through", "QM-110")
+    title = block((98.3, 752), 402.6, "QM C, let-through", "QM-110")
     design = SheetDesign(page=a4(200), plots=(plot,), notes=notes, title_block=title)
     devices = tuple(single(f"riverside-c{rating}", "C", rating) for _, ratings, _, _ in groups for rating in ratings)
     return DemoSheet(

@@ -66,3 +66,9 @@ def block(at_pt: tuple[float, float], width_pt: float, title: str, number: str) 
 def heading(text: str, at_pt: tuple[float, float], size_pt: float = 14.0) -> Note:
     """The sheet's title."""
     return Note(text=text, at_pt=at_pt, size_pt=size_pt, bold=True)
+
+
+def remarks(at_pt: tuple[float, float], *lines: str) -> Note:
+    """Numbered remarks beneath a plot."""
+    text = "\n".join(f"{number}  {text}" for number, text in enumerate(lines, start=1))
+    return Note(text=text, at_pt=at_pt, size_pt=7.5)

@@ -15,7 +15,7 @@ from demo_curves.drawing.design import (
 )
 from demo_curves.drawing.formulas import Line, straight
 from demo_curves.scenario.breakers import fast_edge, slow_edge
-from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line
+from demo_curves.scenario.parts import DemoSheet, ScanCopy, a4, block, heading, line, remarks
 
 # Multiples of the rated residual operating current: inside IEC 61008-1 Table 1 (general 0.3 s, 0.15 s, 0.04 s at one,
 # two and five times; type S at most 0.5 s, 0.2 s, 0.15 s and at least 0.13 s, 0.06 s, 0.05 s).
@@ -66,10 +66,17 @@ def general() -> DemoSheet:
         heading("QR residual-current device, 30 mA", (90.1, 64)),
         Note(text="General type, waveform A, 40 A, 230 V a.c.", at_pt=(90.1, 84), size_pt=9.5),
         Note(text="Suddenly applied sinusoidal\nresidual current", at_pt=(352, 140), size_pt=8, boxed=True),
+        remarks(
+            (90.1, 536),
+            "Tested at 20 °C with a sinusoidal residual current applied suddenly at 0°.",
+            "Does not trip at or below 15 mA.",
+            "Short-circuit protection by a fuse of at most 63 A gG, or by QM breakers up to 40 A.",
+            "Test monthly with the button T.",
+        ),
     )
-    title = block((90.1, 546), 420.6, "QR 30 mA general, break time", "QR-301")
+    title = block((90.1, 752), 420.6, "QR 30 mA general, break time", "QR-301")
     design = SheetDesign(page=a4(200), plots=(plot,), notes=notes, title_block=title)
-    scan = ScanCopy(scan=Scan(angle_deg=1.8, blur_px=0.8, noise=6, light=0.14, paper=229, seed=31), kind="jpg", dpi=200)
+    scan = ScanCopy(scan=Scan(angle_deg=1.8, blur_px=0.8, noise=4, light=0.14, paper=229, seed=31), kind="jpg", dpi=200)
     return DemoSheet(
         name="rcd-general", title="QR 30 mA general, break time", number="QR-301", design=design,
         devices=(rcd("riverside-rcd30", 0.03, "general"),), seed=301, renderer="pdfium", scan=scan,
@@ -92,8 +99,14 @@ def delayed() -> DemoSheet:
         Note(
             text="Upper line: longest break time\nLower line: shortest time", at_pt=(300, 130), size_pt=8.5, boxed=True
         ),
+        remarks(
+            (88.8, 588),
+            "Selective with general type devices of at most 30 mA downstream.",
+            "Rated current 63 A, 230 V a.c.",
+            "Does not trip at or below 0.5 IΔn.",
+        ),
     )
-    title = block((88.8, 600), 403.4, "QR 100 mA type S, break time", "QR-305")
+    title = block((88.8, 750), 403.4, "QR 100 mA type S, break time", "QR-305")
     design = SheetDesign(page=a4(200), plots=(plot,), font="stix", notes=notes, title_block=title, border_pt=25)
     return DemoSheet(
         name="rcd-delayed", title="QR 100 mA type S, break time", number="QR-305", design=design,
@@ -136,8 +149,11 @@ def rcbo_overcurrent() -> DemoSheet:
     notes = (
         heading("QMR C 20 A, overcurrent", (93.9, 60), 13),
         Note(text="Residual element: see sheet QMR-402", at_pt=(93.9, 78), size_pt=8.5),
+        remarks(
+            (93.9, 696), "Cold, 30 °C, one protected pole.", "Printed current times ten is the current in amperes."
+        ),
     )
-    title = block((93.9, 712), 380.5, "QMR C 20 A / 30 mA, overcurrent", "QMR-401")
+    title = block((93.9, 760), 380.5, "QMR C 20 A / 30 mA, overcurrent", "QMR-401")
     design = SheetDesign(page=a4(200), plots=(plot,), font="mono", notes=notes, title_block=title)
     return DemoSheet(
         name="rcbo-overcurrent", title="QMR C 20 A / 30 mA, overcurrent", number="QMR-401", design=design,
@@ -148,18 +164,26 @@ def rcbo_overcurrent() -> DemoSheet:
 def rcbo_residual() -> DemoSheet:
     """The residual element of the same RCBO."""
     fast, slow = ((shape[0] * 1.03, shape[1] * 0.93) for shape in (GENERAL_FAST, GENERAL_SLOW))
+    look = {"element": "residual", "width_pt": 1.3}
     label = CurveLabel(text="longest", along=0.8, offset_pt=(0, -9), size_pt=8)
-    fast_line, slow_line = _band(fast, slow, 1.0, width_pt=1.3)
-    labelled = line("slow", slow, element="residual", width_pt=1.3, labels=(label,))
     plot = PlotDesign(
         frame_pt=(93.9, 94.3, 474.4, 430.6),
         current=AxisDesign(quantity="current", unit="xIdn", low=0.3, high=30, label="I / IΔn", labelled=(1, 3, 5)),
         value=AxisDesign(quantity="time", unit="s", low=0.005, high=1, label="Time / s", labelled=(1, 2, 5)),
-        curves=(fast_line, labelled if slow_line.width_pt else slow_line),
+        curves=(line("fast", fast, edge="fast", **look), line("slow", slow, labels=(label,), **look)),
         grid=GridStyle(major_colour="#777777", minor_colour="#bdbdbd"),
     )
-    notes = (heading("QMR C 20 A, residual element 30 mA", (93.9, 60), 13),)
-    title = block((93.9, 510), 380.5, "QMR C 20 A / 30 mA, residual", "QMR-402")
+    notes = (
+        heading("QMR C 20 A, residual element 30 mA", (93.9, 60), 13),
+        Note(text="Overcurrent: see sheet QMR-401", at_pt=(93.9, 78), size_pt=8.5),
+        remarks(
+            (93.9, 494),
+            "IΔn = 30 mA, waveform A, general type.",
+            "Break time after a suddenly applied sinusoidal residual current.",
+            "The time of the overcurrent element is not included.",
+        ),
+    )
+    title = block((93.9, 760), 380.5, "QMR C 20 A / 30 mA, residual", "QMR-402")
     design = SheetDesign(page=a4(200), plots=(plot,), font="mono", notes=notes, title_block=title)
     return DemoSheet(
         name="rcbo-residual", title="QMR C 20 A / 30 mA, residual", number="QMR-402", design=design,
