@@ -16,7 +16,7 @@ _SAME = 1e-9
 
 
 def written_range(setting: Setting) -> str:
-    """A setting with its range as one reads it: ``ir 0.4 to 1 xIn``, ``tr 2, 4, 8 (at 6 Ir)``, ``ii 2 to 10 or off``."""
+    """A setting with its range as one reads it: ``ir 0.4 to 1 xIn``, ``tr 2, 4, 8 (at 6 Ir)``, ``ii 2 or off``."""
     if setting.steps:
         numbers = ", ".join(f"{step:g}" for step in setting.steps)
     elif setting.from_value is not None and setting.to_value is not None:
