@@ -1,0 +1,81 @@
+"""Lines looked for near where a rough map has them, good to a fraction of a pixel: enough to refine the map."""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from curvelab.axes.paths import Look
+from curvelab.axes.strips import Strips
+from curvelab.records.arrays import Floats
+from curvelab.records.axes import PlaneMap
+
+FAINT = 0.35
+"""Share of a line's usual darkness below which it is not there."""
+
+LEAST_DARK = 2.0
+"""Grey levels by which a line is darker than the paper at least."""
+
+STRAIGHT = 1.0
+"""Pixels by which the strips of a line may leave its own straight line."""
+
+LEAST_STRIPS = 4
+LEAST_SHARE = 0.4
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Found:
+    """A line found: its scaled value, places on the image, and how much darker than the paper it is."""
+
+    scaled: float
+    points: Floats
+    dark: float
+
+
+def search_lines(
+    look: Look, strips: Strips, plane: PlaneMap, scaled: Floats, reach: float, least: float = LEAST_DARK
+) -> list[Found]:
+    """Lines at least ``least`` grey levels dark within ``reach`` pixels of their predicted paths."""
+    if not len(scaled):
+        return []
+    paths = look.paths(plane, scaled, strips.along)
+    spacing = np.abs(np.diff(paths.mean(axis=1)))
+    room = np.minimum(np.append(spacing, np.inf), np.insert(spacing, 0, np.inf))
+    found = []
+    for value, path, space in zip(scaled, paths, room, strict=True):
+        across, dark = _darkest(strips, path, min(reach, 0.45 * space))
+        good = dark > max(least, FAINT * float(np.median(dark)))
+        good &= _straight(strips.along, across - path, good)
+        if np.sum(good) >= max(LEAST_STRIPS, LEAST_SHARE * len(path)):
+            points = look.places(across[good], strips.along[good])
+            found.append(Found(scaled=float(value), points=points, dark=float(np.median(dark[good]))))
+    return found
+
+
+def _darkest(strips: Strips, path: Floats, reach: float) -> tuple[Floats, Floats]:
+    """Place and darkness of the darkest pixel near the path in each strip, refined by a parabola."""
+    width = strips.dark.shape[1]
+    window = np.arange(-int(np.ceil(reach)), int(np.ceil(reach)) + 1)
+    columns = np.clip(np.rint(path).astype(np.int64)[:, None] + window, 1, width - 2)
+    rows = np.arange(len(path))
+    best = columns[rows, np.argmax(strips.dark[rows[:, None], columns], axis=1)]
+    left, top, right = (strips.dark[rows, best + k].astype(np.float64) for k in (-1, 0, 1))
+    bend = left - 2 * top + right
+    shift = np.where(bend < 0, 0.5 * (left - right) / np.where(bend < 0, bend, 1.0), 0.0)
+    return best + np.clip(shift, -0.5, 0.5), top
+
+
+def _straight(along: Floats, offset: Floats, good: NDArray[np.bool_]) -> NDArray[np.bool_]:
+    """Strips that agree on one straight line: repeated least absolute deviation, then a fixed tolerance."""
+    middle = along.mean()
+    weight = good.astype(np.float64)
+    residual = offset
+    for _ in range(8):
+        if np.sum(weight > 0) < 2:
+            return np.zeros(len(along), dtype=bool)
+        design = np.stack([np.ones_like(along), (along - middle) / 1000.0], axis=1)
+        root = np.sqrt(weight)
+        fitted = np.linalg.lstsq(design * root[:, None], offset * root, rcond=None)[0]
+        residual = np.abs(offset - design @ fitted)
+        weight = good / np.maximum(residual, 0.05)
+    return residual <= STRAIGHT

@@ -1,0 +1,143 @@
+"""Where dark lines run on an image: strips across it, the slope the lines share, and their darkness along the axis.
+
+Everything here only searches; what is found is measured on the untouched grey levels afterwards.
+"""
+
+from dataclasses import dataclass
+from typing import Any
+
+import cv2
+import numpy as np
+from numpy.typing import NDArray
+
+from curvelab.records.arrays import Bytes, Floats
+
+STRIP = 16
+"""Rows averaged into one strip: short enough that a line 5 degrees askew moves less than its own width."""
+
+PAPER_REACH = 25
+"""Pixels across within which the lightest level is the paper."""
+
+STEEPEST = 0.105
+"""Largest slope searched, 6 degrees."""
+
+COARSE = 3
+"""Strips joined, and pixels across joined, in the coarse search for the slope."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Strips:
+    """Darkness against the paper nearby, of strips along the lines.
+
+    Parameters
+    ----------
+    dark : array, shape (n, width), float32
+        Grey levels darker than the paper, smoothed for the search.
+    along : array, shape (n,)
+        Places of the strips' middles.
+    """
+
+    dark: NDArray[np.float32]
+    along: Floats
+
+    @property
+    def middle(self) -> float:
+        """The place along the lines about which slopes turn."""
+        return float(self.along.mean())
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Profile:
+    """Strength of lines, 0 to 1, at places ``first + step * k`` across, moved along the slope to ``middle``."""
+
+    strength: Floats
+    first: float
+    step: float
+    middle: float
+
+    def at(self, across: Floats) -> Floats:
+        """Strength at places; 0 beyond the ends."""
+        places = self.first + self.step * np.arange(len(self.strength))
+        return np.interp(across, places, self.strength, left=0.0, right=0.0)
+
+    def peaks(self, least: float = 0.5) -> Floats:
+        """Places of the local maxima above ``least``."""
+        s = self.strength
+        top = (s[1:-1] >= least) & (s[1:-1] > s[:-2]) & (s[1:-1] >= s[2:])
+        found: Floats = self.first + self.step * (np.flatnonzero(top) + 1)
+        return found
+
+
+def strips_of(image: Bytes, rows: tuple[int, int]) -> Strips:
+    """Strips of ``image`` (lines run down its rows) between two rows."""
+    count = max(1, (rows[1] - rows[0]) // STRIP)
+    part = image[rows[0] : rows[0] + count * STRIP]
+    means = part.reshape(count, -1, image.shape[1]).mean(axis=1, dtype=np.float32)
+    paper = cv2.morphologyEx(means, cv2.MORPH_CLOSE, np.ones((1, PAPER_REACH), np.uint8))
+    dark: Any = cv2.GaussianBlur(paper - means, (0, 0), sigmaX=1.0, sigmaY=0.01)
+    dark -= np.median(dark, axis=1, keepdims=True)
+    along = rows[0] + STRIP * (np.arange(count) + 0.5) - 0.5
+    return Strips(dark=np.maximum(dark, 0.0), along=along)
+
+
+def shared_slopes(first: Strips, second: Strips) -> tuple[float, float]:
+    """Slopes (across by along) of the lines of both directions.
+
+    A turned page gives both directions opposite slopes: that joins their evidence. Each is then refined by itself,
+    as paper and scanners also shear a little.
+    """
+    length = max(np.ptp(first.along), np.ptp(second.along), 1.0)
+    steps = int(np.ceil(STEEPEST * length / 3.0))
+    slopes = np.arange(-steps, steps + 1) * STEEPEST / max(steps, 1)
+    energies = [_energies(_coarse(first), slopes, COARSE), _energies(_coarse(second), -slopes, COARSE)]
+    joint = sum(energy / max(energy.max(), 1e-12) for energy in energies)
+    best = float(slopes[int(np.argmax(joint))])
+    return _refined(first, best), _refined(second, -best)
+
+
+def profile_along(strips: Strips, slope: float) -> Profile:
+    """Strength of lines of one slope: the median over the strips, so that curves and lettering do not count."""
+    moved = _moved(strips.dark, slope * (strips.along - strips.middle))
+    dark = np.median(moved, axis=0)
+    floor = float(np.median(dark))
+    peaks = dark[1:-1][(dark[1:-1] > dark[:-2]) & (dark[1:-1] >= dark[2:])] - floor
+    noise = 1.4826 * float(np.median(np.abs(dark - floor)))
+    strong = peaks[peaks > max(6 * noise, 2.0)]
+    full = 0.5 * float(np.quantile(strong, 0.4)) if strong.size else np.inf
+    return Profile(strength=np.clip((dark - floor) / full, 0.0, 1.0), first=0.0, step=1.0, middle=strips.middle)
+
+
+def _coarse(strips: Strips) -> Strips:
+    n, width = strips.dark.shape[0] // COARSE, strips.dark.shape[1] // COARSE
+    if n < 3:
+        return Strips(dark=strips.dark[:, : width * COARSE].reshape(-1, width, COARSE).mean(axis=2), along=strips.along)
+    dark = strips.dark[: n * COARSE, : width * COARSE].reshape(n, COARSE, width, COARSE).mean(axis=(1, 3))
+    return Strips(dark=dark, along=strips.along[: n * COARSE].reshape(n, COARSE).mean(axis=1))
+
+
+def _energies(strips: Strips, slopes: Floats, pixel: int) -> Floats:
+    """How sharply the strips add up when moved along each slope."""
+    offset = strips.along - strips.along.mean()
+    capped = np.minimum(strips.dark, np.quantile(strips.dark, 0.98) + 1e-6)
+    sums = (_moved(capped, slope * offset / pixel).mean(axis=0) for slope in slopes)
+    return np.array([float(np.sum(total**2)) for total in sums])
+
+
+def _refined(strips: Strips, slope: float) -> float:
+    half = float(np.ptp(strips.along)) / 2 + 1.0
+    step = 0.5 / half
+    slopes = slope + step * np.arange(-16, 17)
+    energy = _energies(strips, slopes, 1)
+    k = int(np.clip(np.argmax(energy), 1, len(slopes) - 2))
+    below, top, above = energy[k - 1 : k + 2]
+    bend = below - 2 * top + above
+    return float(slopes[k] + (step * 0.5 * (below - above) / bend if bend < 0 else 0.0))
+
+
+def _moved(dark: NDArray[np.float32], shifts: Floats) -> NDArray[np.float32]:
+    """Rows moved left by whole pixels, zero where nothing is known."""
+    width = dark.shape[1]
+    columns = np.arange(width)[None, :] + np.rint(shifts).astype(np.int64)[:, None]
+    inside = (columns >= 0) & (columns < width)
+    moved = np.take_along_axis(dark, np.clip(columns, 0, width - 1), axis=1)
+    return np.where(inside, moved, np.float32(0.0))
