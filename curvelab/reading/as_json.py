@@ -9,7 +9,7 @@ import numpy as np
 
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, Mark
-from curvelab.records.curve import EDGES, Curve, Part
+from curvelab.records.curve import Curve, Edge, Part
 from curvelab.records.edges import edge_groups
 from curvelab.records.finding import Finding
 from curvelab.records.reading import ReadCurve, Reading
@@ -20,6 +20,7 @@ from curvelab.records.worksheet import SheetEntry
 Json: TypeAlias = dict[str, Any]
 
 FORMAT = 1
+EDGE_ORDER: tuple[Edge, ...] = ("fast", "slow", "mean")
 PROJECTIVE = tuple(f"h{index}" for index in range(8))
 
 
@@ -161,7 +162,7 @@ def _bands(reading: Reading) -> Iterable[Json]:
                 "start": any_edge.conditions.start,
                 "conditions": asdict(any_edge.conditions),
                 "at": dict(sorted(any_edge.at.items())),
-                **{edge: _edge(band.get(edge)) for edge in EDGES},
+                **{edge: _edge(band.get(edge)) for edge in EDGE_ORDER},
             }
 
 

@@ -12,6 +12,8 @@ class Finding:
 
     ``limit`` and ``value`` are in ``unit`` (``s``, ``A``, ``A2s`` or a base); ``value`` and ``interval`` are None
     where the curve does not reach. ``advisory`` marks a rule that is not published in what was seen of the standard.
+    ``permitted`` is the side of the limit on which the value meets it. The limit's place on the plot is (``current``,
+    ``limit``) for a time, and (``limit``, ``time_s``) for a current.
     ``note`` says in one sentence what would settle an undecided finding, or which bound was used.
     """
 
@@ -30,3 +32,5 @@ class Finding:
     current: float | None = None
     base: str | None = None
     note: str = ""
+    permitted: Literal["at_least", "at_most"] | None = None
+    time_s: float | None = None

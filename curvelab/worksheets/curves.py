@@ -115,7 +115,7 @@ def _check_origin(table: Table, *, has_sheet: bool) -> None:
             "A curve is typed or traced",
             "Make two [[curves]] of it, or drop one of them",
         )
-    if not typed and not {"through", "colour"} & set(traced):
+    if not typed and "through" not in traced:
         raise WorksheetError(
             f"{table.place}: nothing says where this curve is",
             "Expected through = [[x, y]], places the line passes",

@@ -47,8 +47,7 @@ def sheet_path(worksheet: Path, file: str) -> Path:
     place = f"{worksheet.name}, [sheet]"
     check_relative(file, place)
     folder = worksheet.resolve().parent
-    # Backslashes are read as separators everywhere, so that a worksheet from Windows opens elsewhere.
-    target = folder.joinpath(*PureWindowsPath(file).parts)
+    target = folder / file
     try:
         resolved = target.resolve()
     except (OSError, RuntimeError) as error:

@@ -137,7 +137,7 @@ def _sheet(top: Table, name: str) -> SheetEntry | None:
     check_relative(file, table.place)
     sha256 = table.pattern("sha256", "[0-9a-fA-F]{64}", "Expected the 64 hexadecimal digits of the file's SHA-256")
     return SheetEntry(
-        file=file,
+        file=file.replace("\\", "/"),
         page=table.count("page") or 1,
         plot=table.count("plot") or 1,
         sha256=sha256.lower() if sha256 else None,

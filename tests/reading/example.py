@@ -66,11 +66,12 @@ FAST = ([1.15, 1.5, 2.0, 3.0, 3.0, 50.0], [100.0, 20.0, 8.0, 3.0, 0.012, 0.012])
 def read_curve(edge, points, quantity="time"):
     current, value = map(np.asarray, points)
     steep = np.array([0.01, 0.01, 0.01, NAN, NAN, 0.01])
+    places = axes(quantity).places(current, value)
     trace = Trace(
-        places=axes(quantity).places(current, value),
+        places=places,
         sd=np.full(current.shape, 0.05),
         correlation_length=3.0,
-        gaps=(Gap(start=(200.0, 300.0), end=(202.0, 310.0)),),
+        gaps=(Gap(start=tuple(places[3].tolist()), end=tuple(places[4].tolist())),),
         ends_at_frame=(True, False),
         colour=(176, 32, 32),
         width=2.0,

@@ -1,0 +1,1 @@
+"""Figures of records: bands on log-log axes, and a reading laid over its sheet."""

@@ -1,0 +1,113 @@
+"""The sheet as the ground of a picture: its own pixels one to one, or its exact strokes and words drawn again."""
+
+from collections.abc import Sequence
+from itertools import groupby
+
+import numpy as np
+from matplotlib.axes import Axes as Canvas
+from matplotlib.figure import Figure
+from matplotlib.patches import PathPatch
+from matplotlib.path import Path
+
+from curvelab.plots.ink import PAPER
+from curvelab.records.arrays import Floats
+from curvelab.records.sheet import Pixels, Sheet, Stroke, Word
+
+A4_LONGER_INCHES = 11.69
+"""A page is taken to be of this length, so that hairlines are hairlines at any resolution."""
+COARSEST_DPI = 110.0
+"""A small image is taken to be smaller than a page, so that words on it can be read."""
+VECTOR_PIXELS = 2339
+"""Longer side of the picture of a vector page: 200 dots an inch on A4."""
+
+
+class Ground:
+    """A figure that shows the sheet, and the way from places to it.
+
+    Parameters
+    ----------
+    sheet : Sheet
+        With pixels: drawn one to one. Without: its strokes and words are drawn.
+    """
+
+    def __init__(self, sheet: Sheet) -> None:
+        self._pixels = sheet.pixels
+        if self._pixels is not None:
+            height, width = self._pixels.grey.shape
+            self._scale = 1.0
+        else:
+            self._scale = VECTOR_PIXELS / max(sheet.width, sheet.height)
+            width, height = round(sheet.width * self._scale), round(sheet.height * self._scale)
+        dpi = max(COARSEST_DPI, max(height, width) / A4_LONGER_INCHES)
+        # A little more than whole pixels: the size is rounded down when the figure is drawn.
+        size = (width + 0.01) / dpi, (height + 0.01) / dpi
+        self.figure = Figure(figsize=size, dpi=dpi, facecolor=PAPER)
+        self.canvas: Canvas = self.figure.add_axes((0, 0, 1, 1))
+        self.canvas.set_axis_off()
+        if self._pixels is not None:
+            _show(self.canvas, self._pixels)
+        self.canvas.set_xlim(-0.5, width - 0.5)
+        self.canvas.set_ylim(height - 0.5, -0.5)
+        if self._pixels is None:
+            points = self._scale * 72 / dpi
+            self._draw_strokes(sheet.strokes, points)
+            self._draw_words(sheet.words, points)
+
+    def at(self, places: object) -> tuple[Floats, Floats]:
+        """Places, shape (n, 2), as coordinates across and down the canvas."""
+        array = np.asarray(places, dtype=np.float64).reshape(-1, 2)
+        # The corner of a vector page is its corner; the first pixel's centre lies half a pixel inside.
+        found = array * self._scale - 0.5 if self._pixels is None else self._pixels.columns_rows(array)
+        return found[:, 0], found[:, 1]
+
+    def _path(self, strokes: Sequence[Stroke]) -> Path:
+        """One path of several pieces, so that holes stay holes."""
+        vertices, codes = [], []
+        for stroke in strokes:
+            corners = np.column_stack(self.at(stroke.points))
+            if stroke.closed:
+                corners = np.concatenate([corners, corners[:1]])
+            vertices.append(corners)
+            last = Path.CLOSEPOLY if stroke.closed else Path.LINETO
+            codes.append(np.array([Path.MOVETO, *[Path.LINETO] * (len(corners) - 2), last], dtype=Path.code_type))
+        return Path(np.concatenate(vertices), np.concatenate(codes))
+
+    def _draw_strokes(self, strokes: Sequence[Stroke], points: float) -> None:
+        for _, pieces in groupby(strokes, key=lambda stroke: (stroke.path, stroke.filled)):
+            same = list(pieces)
+            first = same[0]
+            colour = tuple(part / 255 for part in first.colour)
+            dashes = (0.0, tuple(max(length * points, 0.01) for length in first.dash)) if first.dash else "-"
+            self.canvas.add_patch(
+                PathPatch(
+                    self._path(same),
+                    fill=first.filled,
+                    facecolor=colour,
+                    edgecolor="none" if first.filled else colour,
+                    linewidth=first.width * points,
+                    linestyle=dashes,
+                    capstyle="butt",
+                    zorder=0,
+                )
+            )
+
+    def _draw_words(self, words: Sequence[Word], points: float) -> None:
+        for word in words:
+            x0, y0, x1, y1 = word.box
+            across, down = self.at([((x0 + x1) / 2, (y0 + y1) / 2)])
+            self.canvas.text(
+                float(across[0]),
+                float(down[0]),
+                word.text,
+                fontsize=word.height * points,
+                rotation=word.turned_deg,
+                ha="center",
+                va="center",
+                parse_math=False,
+                zorder=0,
+            )
+
+
+def _show(canvas: Canvas, pixels: Pixels) -> None:
+    image = pixels.grey if pixels.colour is None else pixels.colour
+    canvas.imshow(image, cmap="gray", vmin=0, vmax=255, interpolation="none", aspect="auto", zorder=0)

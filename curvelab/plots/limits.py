@@ -1,0 +1,98 @@
+"""Limits of a standard on a picture: a short bracket whose open side is permitted, its multiple beside it."""
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+
+from matplotlib.axes import Axes
+from matplotlib.path import Path
+
+from curvelab.plots.ink import GRAPHITE, PAPER, WARM
+from curvelab.plots.subject import Subject, units_per_unit
+from curvelab.records.finding import Finding
+from curvelab.units import BASES, written_current
+
+LEG = 0.55
+SIZE = 13.0
+"""Of the bracket, in points."""
+SETTLED = ("meets", "not covered")
+"""Outcomes that need no second look; the others are named beside the limit."""
+MULTIPLE_OF = {
+    "xIn": r"$I_\mathrm{n}$",
+    "xIr": r"$I_\mathrm{r}$",
+    "xIsd": r"$I_\mathrm{sd}$",
+    "xIi": r"$I_\mathrm{i}$",
+    "xIg": r"$I_\mathrm{g}$",
+    "xIdn": r"$I_\mathrm{\Delta n}$",
+}
+
+_DOWN = ((-1.0, -LEG), (-1.0, 0.0), (1.0, 0.0), (1.0, -LEG))
+OPENINGS = {
+    (False, "at_most"): (_DOWN, (0, 4), "center", "bottom"),
+    (False, "at_least"): (tuple((x, -y) for x, y in _DOWN), (0, -4), "center", "top"),
+    (True, "at_most"): (tuple((y, x) for x, y in _DOWN), (4, 0), "left", "center"),
+    (True, "at_least"): (tuple((-y, x) for x, y in _DOWN), (-4, 0), "right", "center"),
+}
+"""(limit of a current, permitted side) -> bracket, place of its words in points, and how they are set there."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Limit:
+    """A limit as it is drawn: its place on the plot, and what is written beside it."""
+
+    finding: Finding
+    of_current: bool
+    current: float
+    time_s: float
+    words: str
+
+
+def placed_limits(findings: Iterable[Finding], subjects: Sequence[Subject], base: str) -> tuple[Limit, ...]:
+    """The findings of the devices drawn that have a place on a time-current plot counted in ``base``."""
+    by_key = {subject.plate.key: subject for subject in subjects}
+    limits = (_limit(each, by_key[each.device], base) for each in findings if each.device in by_key)
+    return tuple(limit for limit in limits if limit is not None)
+
+
+def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
+    of_current = finding.unit in BASES
+    current, own_base = (finding.limit, finding.unit) if of_current else (finding.current, finding.base)
+    time_s = finding.time_s if of_current else finding.limit
+    if finding.permitted is None or current is None or own_base is None or time_s is None:
+        return None
+    scale = units_per_unit(subject, own_base, base)
+    if scale is None or finding.unit not in ("s", *BASES):
+        return None
+    words = written_current(current, "A") if own_base == "A" else f"{current:g} {MULTIPLE_OF[own_base]}"
+    if finding.outcome not in SETTLED:
+        words = f"{words}, {finding.outcome}"
+    return Limit(finding=finding, of_current=of_current, current=current * scale, time_s=time_s, words=words)
+
+
+def draw_limit(axes: Axes, limit: Limit) -> None:
+    """One bracket, with its words on its closed side."""
+    corners, offset, across, along = OPENINGS[limit.of_current, limit.finding.permitted or "at_most"]
+    colour = GRAPHITE if limit.finding.outcome in SETTLED else WARM
+    axes.plot(
+        [limit.current],
+        [limit.time_s],
+        marker=Path(corners),
+        markersize=SIZE,
+        markerfacecolor="none",
+        markeredgecolor=colour,
+        markeredgewidth=1.2,
+        linestyle="none",
+        clip_on=False,
+        zorder=5,
+    )
+    axes.annotate(
+        limit.words,
+        (limit.current, limit.time_s),
+        xytext=offset,
+        textcoords="offset points",
+        ha=across,
+        va=along,
+        fontsize=6.5,
+        color=colour,
+        zorder=6,
+        bbox={"boxstyle": "square,pad=0.15", "facecolor": PAPER, "edgecolor": "none", "alpha": 0.85},
+    )

@@ -1,0 +1,172 @@
+"""A reading laid over its sheet: the untouched page, and on it in hairlines what was measured and followed."""
+
+from collections.abc import Iterator, Sequence
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+from matplotlib import rc_context
+from matplotlib.figure import Figure
+from matplotlib.patches import Polygon
+from matplotlib.patheffects import withStroke
+from numpy.typing import ArrayLike
+
+from curvelab.errors import InputError
+from curvelab.plots.ground import Ground
+from curvelab.plots.ink import INK, PAPER, STYLE, WARM
+from curvelab.plots.save import picture_format, save_figure
+from curvelab.records.arrays import Floats
+from curvelab.records.axes import Axes, Axis, Mark
+from curvelab.records.curve import Edge
+from curvelab.records.reading import ReadCurve, Reading
+from curvelab.records.trace import Place, Trace
+from curvelab.units import written_current, written_time
+
+HAIRLINE = 0.35
+EDGE_WIDTH: dict[Edge, float] = {"fast": 0.45, "slow": 0.9, "mean": 0.6}
+"""In points on such a page."""
+
+
+def draw_overlay(reading: Reading, path: str | Path) -> None:
+    """Draw the sheet as it is, pixel for pixel, with the reading over it, as PNG, SVG or PDF by the file's ending.
+
+    Blue-green is what was read: grid hairlines, fast edges thin, slow edges thicker, mean lines dashed. The warm colour
+    is what a person gave or should look at: marks, guide places, rectangles left out, gaps, open warnings.
+
+    Raises
+    ------
+    InputError
+        The reading has no sheet, or the picture cannot be written under that name.
+    """
+    picture_format(path)
+    save_figure(overlay_figure(reading), path)
+
+
+def overlay_figure(reading: Reading) -> Figure:
+    """The figure of `draw_overlay`, one pixel of the sheet on one of its own."""
+    sheet = reading.sheet
+    if sheet is None:
+        raise InputError("The reading has no sheet to draw on", "", "Draw its bands instead")
+    with rc_context(STYLE):
+        ground = Ground(sheet)
+        if reading.axes is not None:
+            _draw_axes(ground, reading.axes)
+        for number, curve in enumerate(reading.curves):
+            if curve.trace is not None:
+                _draw_curve(ground, curve, curve.trace, number)
+        _draw_given(ground, reading)
+    return ground.figure
+
+
+def _line(ground: Ground, places: ArrayLike, width: float, **look: Any) -> None:
+    across, down = ground.at(places)
+    ground.canvas.plot(across, down, linewidth=width, solid_capstyle="butt", **look)
+
+
+def _words(ground: Ground, place: Place, words: str, colour: str, offset: tuple[float, float]) -> None:
+    across, down = ground.at(place)
+    ground.canvas.annotate(
+        words,
+        (float(across[0]), float(down[0])),
+        xytext=offset,
+        textcoords="offset points",
+        fontsize=5.5,
+        color=colour,
+        ha="left" if offset[0] >= 0 else "right",
+        va="center",
+        path_effects=[withStroke(linewidth=1.6, foreground=PAPER)],
+        zorder=6,
+        annotation_clip=False,
+    )
+
+
+def _draw_axes(ground: Ground, axes: Axes) -> None:
+    for line in axes.grid:
+        _line(ground, line.points, HAIRLINE, color=INK, alpha=0.6, zorder=2)
+    for axis in (axes.current, axes.value):
+        for mark in axis.marks:
+            _draw_mark(ground, axis, mark)
+
+
+def _draw_mark(ground: Ground, axis: Axis, mark: Mark) -> None:
+    colour = WARM if mark.origin == "given" else INK
+    across, down = ground.at(mark.at)
+    ground.canvas.plot(
+        across, down, marker="+", markersize=7, markeredgewidth=0.6, color=colour, linestyle="none", zorder=5
+    )
+    ground.canvas.plot(
+        across,
+        down,
+        marker="o",
+        markersize=4.5,
+        markeredgewidth=0.5,
+        markerfacecolor="none",
+        color=colour,
+        linestyle="none",
+        zorder=5,
+    )
+    _words(ground, mark.at, _mark_words(axis, mark), colour, (4.5, -5.0))
+
+
+def _mark_words(axis: Axis, mark: Mark) -> str:
+    value = axis.value_of(mark)
+    if axis.quantity == "time":
+        return written_time(value)
+    if axis.quantity == "let_through":
+        return f"{value:g} A²s"
+    return written_current(value, axis.base)
+
+
+def _stretches(trace: Trace) -> Iterator[Floats]:
+    """The trace's places, cut where a gap lies between two of them."""
+    before = {int(np.argmin(np.hypot(*(trace.places - np.array(gap.start)).T))) for gap in trace.gaps}
+    yield from np.split(trace.places, sorted(index + 1 for index in before))
+
+
+def _draw_curve(ground: Ground, curve: ReadCurve, trace: Trace, number: int) -> None:
+    edge = curve.curve.edge
+    for stretch in _stretches(trace):
+        dashes = (0.0, (5.0, 2.0)) if edge == "mean" else "-"
+        _line(ground, stretch, EDGE_WIDTH[edge], color=INK, linestyle=dashes, zorder=4)
+    for gap in trace.gaps:
+        ends = np.array([gap.start, gap.end])
+        _line(ground, ends, 0.6, color=WARM, linestyle=(0.0, (1.0, 1.5)), zorder=4)
+    if len(trace.places):
+        place = trace.places[(len(trace.places) * (2 + number % 3)) // 7]
+        side = -5.0 if edge == "fast" else 5.0
+        _words(ground, (float(place[0]), float(place[1])), _curve_words(curve), INK, (side, 0.0))
+
+
+def _curve_words(curve: ReadCurve) -> str:
+    names = curve.devices if len(curve.devices) <= 1 else (f"{curve.devices[0]} and {len(curve.devices) - 1} more",)
+    element = () if curve.curve.element == "whole" else (curve.curve.element,)
+    return " · ".join([*names, *element, curve.curve.edge])
+
+
+def _draw_given(ground: Ground, reading: Reading) -> None:
+    """What the worksheet says of places, and where something is open."""
+    for entry in reading.worksheet.curves:
+        _points(ground, entry.through, marker="D", size=3.2)
+        for x0, y0, x1, y1 in entry.avoid:
+            corners = np.column_stack(ground.at([[x0, y0], [x1, y0], [x1, y1], [x0, y1]]))
+            ground.canvas.add_patch(
+                Polygon(corners, fill=False, edgecolor=WARM, linewidth=0.5, linestyle="--", zorder=3)
+            )
+    open_places = [each.at for each in reading.warnings if each.at is not None and each.accepted is None]
+    _points(ground, open_places, marker="o", size=12.0)
+
+
+def _points(ground: Ground, places: Sequence[Place], *, marker: str, size: float) -> None:
+    if places:
+        across, down = ground.at(places)
+        ground.canvas.plot(
+            across,
+            down,
+            marker=marker,
+            markersize=size,
+            markeredgewidth=0.6,
+            markerfacecolor="none",
+            markeredgecolor=WARM,
+            linestyle="none",
+            zorder=5,
+        )
