@@ -105,7 +105,7 @@ def bands_c_and_d() -> DemoSheet:
         fast_edge(1.14, 10.5, 5.6, name="C fast", labels=(label,), **red, **of_c),
         slow_edge(1.355, 70.0, 9.3, 50.0, name="C slow", **red, **of_c),
         fast_edge(1.19, 17.0, 11.2, name="D fast", **green, **of_d),
-        slow_edge(1.42, 94.0, 18.4, 50.0, name="D slow", labels=(label_d,), **green, **of_d),
+        slow_edge(1.42, 94.0, 18.4, 110.0, name="D slow", labels=(label_d,), **green, **of_d),
     )
     plot = PlotDesign(
         frame_pt=(98.2, 92.7, 522.6, 610.4),

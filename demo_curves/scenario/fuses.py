@@ -88,7 +88,7 @@ def family() -> DemoSheet:
     notes = (
         heading("QF fuse-links gG, 16 A to 200 A", (84.7, 54), 13),
         Note(text="Mean pre-arcing time-current characteristics", at_pt=(84.7, 70), size_pt=9),
-        Note(text="Tolerance ±10 % in current.\nVirtual times below 0.1 s.", at_pt=(392, 112), size_pt=8, boxed=True),
+        Note(text="Tolerance ±10 % in current.\nSinusoidal a.c., from cold.", at_pt=(392, 112), size_pt=8, boxed=True),
         Note(text="Numbers on the lines: rated current In in A", at_pt=(84.7, 735), size_pt=7.5),
     )
     title = block((84.7, 752), 453.4, "gG fuse-links, pre-arcing times", "QF-210")
