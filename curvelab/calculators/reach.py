@@ -60,7 +60,7 @@ def clears_first(margin_at: MarginAt, knots: Floats, margin: Margin) -> Reach:
     upper, closed = _first_end(margin_at, knots, margin, "upper", start) if known else (None, False)
     return Reach(
         status="value" if ended else "at_least",
-        from_a=float(knots[start]),
+        from_a=_first_start(margin_at, knots, margin, start),
         up_to_a=up_to,
         lower_a=None if lower is None else min(lower, up_to),
         upper_a=max(upper, up_to) if upper is not None and closed else None,
@@ -73,6 +73,13 @@ def contacts(margin_at: MarginAt, knots: Floats, margin: Margin) -> tuple[float,
     before, after = best[:-1], best[1:]
     crossing = np.flatnonzero((np.sign(before) != np.sign(after)) & ~np.isnan(before) & ~np.isnan(after))
     return tuple(_crossing(margin_at, knots, "best", int(place)) for place in crossing)
+
+
+def _first_start(margin_at: MarginAt, knots: Floats, margin: Margin, start: int) -> float:
+    """Where the margin rises above 0 before the knot ``start``; the knot itself where nothing is known before it."""
+    if start == 0 or np.isnan(margin.best[start - 1]):
+        return float(knots[start])
+    return _crossing(margin_at, knots, "best", start - 1)
 
 
 def _first_end(margin_at: MarginAt, knots: Floats, margin: Margin, name: str, start: int) -> tuple[float, bool]:
