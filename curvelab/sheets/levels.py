@@ -1,5 +1,7 @@
 """Decoded images of every colour mode become grey levels, and colours where the page has any."""
 
+from collections.abc import Callable
+
 import numpy as np
 from numpy.typing import NDArray
 from PIL import Image
@@ -9,6 +11,9 @@ from curvelab.records.arrays import Bytes
 WHITE = 255
 ROWS_AT_ONCE = 256
 
+MODES = ("1", "L", "LA", "La", "P", "PA", "RGB", "RGBA", "RGBa", "RGBX", "CMYK", "YCbCr")
+"""Pillow's colour modes with 8 bits of grey or colour."""
+
 COLOURED_DIFFERENCE = 32
 """Spread between red, green and blue of a pixel from which it counts as coloured: above JPEG's noise on grey ink."""
 
@@ -16,26 +21,68 @@ COLOURED_SHARE = 2e-5
 """Share of coloured pixels from which a page has colour: a thin line of 60 pixels' length on an A4 page at 300 dpi."""
 
 
-def grey_and_colour(image: Image.Image) -> tuple[Bytes, Bytes | None]:
-    """Luminance, shape (rows, columns), and colours, shape (rows, columns, 3), or None where the page is neutral.
+class UnknownModeError(ValueError):
+    """A colour mode that carries no grey levels."""
 
-    Transparent places are white paper. 16-bit grey is divided down, white-is-zero already turned.
+
+Band = Callable[[int, int], Image.Image]
+"""Rows of an image from the first to before the second number."""
+
+
+def image_levels(image: Image.Image) -> tuple[Bytes, Bytes | None]:
+    """Levels of a decoded image, see `banded_levels`.
 
     Raises
     ------
-    ValueError
+    UnknownModeError
         The colour mode is one that carries no grey levels (32-bit, Lab, ...).
     """
-    if image.mode.startswith("I;16") or (image.mode == "I" and image.format == "PNG"):
-        return from_sixteen_bits(np.asarray(image)), None
+    if not (image.mode in MODES or image.mode.startswith("I;16") or (image.mode == "I" and image.format == "PNG")):
+        raise UnknownModeError(image.mode)
+    return banded_levels(lambda first, last: image.crop((0, first, image.width, last)), image.size)
+
+
+def banded_levels(band: Band, size: tuple[int, int]) -> tuple[Bytes, Bytes | None]:
+    """Luminance, shape (rows, columns), and colours, shape (rows, columns, 3), or None where the page is neutral.
+
+    Transparent places are white paper; 16-bit grey is divided down. The image is taken in bands of rows, so that no
+    second copy of a large page is ever held.
+
+    Parameters
+    ----------
+    band : callable
+        Gives rows of the image.
+    size : tuple of int
+        Columns and rows.
+    """
+    columns, rows = size
+    grey = np.empty((rows, columns), dtype=np.uint8)
+    colour: Bytes | None = None
+    coloured = 0
+    for first in range(0, rows, ROWS_AT_ONCE):
+        last = min(first + ROWS_AT_ONCE, rows)
+        opaque = _opaque(band(first, last))
+        grey[first:last] = np.asarray(opaque.convert("L"))
+        if opaque.mode == "RGB":
+            colour = np.empty((rows, columns, 3), dtype=np.uint8) if colour is None else colour
+            colour[first:last] = np.asarray(opaque)
+            coloured += _coloured(colour[first:last])
+    return grey, colour if coloured > COLOURED_SHARE * rows * columns else None
+
+
+def _opaque(image: Image.Image) -> Image.Image:
+    """8-bit grey or RGB on white paper."""
+    if image.mode.startswith("I"):
+        return Image.fromarray(from_sixteen_bits(np.asarray(image)))
     opaque = on_white(image)
-    if opaque.mode in ("1", "L"):
-        return np.asarray(opaque.convert("L")), None
-    if opaque.mode not in ("RGB", "P", "CMYK", "YCbCr"):
-        raise ValueError(f"colour mode {opaque.mode}")
-    in_colour = opaque.convert("RGB")
-    grey, colour = np.asarray(in_colour.convert("L")), np.asarray(in_colour)
-    return grey, colour if has_colour(colour) else None
+    return opaque.convert("L" if opaque.mode in ("1", "L") else "RGB")
+
+
+def _coloured(colour: Bytes) -> int:
+    """How many pixels are coloured."""
+    red, green, blue = colour[..., 0], colour[..., 1], colour[..., 2]
+    spread = np.maximum(np.maximum(red, green), blue) - np.minimum(np.minimum(red, green), blue)
+    return int(np.count_nonzero(spread >= COLOURED_DIFFERENCE))
 
 
 def from_sixteen_bits(levels: NDArray[np.generic]) -> Bytes:
@@ -59,15 +106,3 @@ def on_white(image: Image.Image) -> Image.Image:
     paper = Image.new(flat, image.size, "white")
     paper.paste(image.convert(flat), mask=image.getchannel("A"))
     return paper
-
-
-def has_colour(colour: Bytes) -> bool:
-    """Whether enough pixels are coloured for colour to mean anything."""
-    coloured = 0
-    for first in range(0, len(colour), ROWS_AT_ONCE):
-        rows = colour[first : first + ROWS_AT_ONCE]
-        red, green, blue = rows[..., 0], rows[..., 1], rows[..., 2]
-        highest = np.maximum(np.maximum(red, green), blue)
-        lowest = np.minimum(np.minimum(red, green), blue)
-        coloured += int(np.count_nonzero(highest - lowest >= COLOURED_DIFFERENCE))
-    return bool(coloured > COLOURED_SHARE * colour[..., 0].size)

@@ -10,7 +10,7 @@ from pypdfium2 import raw
 from curvelab.records.arrays import Bytes, Floats
 from curvelab.records.sheet import Pixels
 from curvelab.sheets.affine import compose, from_six
-from curvelab.sheets.levels import WHITE, grey_and_colour
+from curvelab.sheets.levels import WHITE, banded_levels
 from curvelab.sheets.pdfobjects import Painted
 from curvelab.sheets.source import Source
 
@@ -55,11 +55,16 @@ def _size(image: Painted, page: pdfium.PdfPage) -> tuple[int, int]:
 
 
 def _levels(bitmap: pdfium.PdfBitmap) -> tuple[Bytes, Bytes | None]:
-    size, data = (bitmap.width, bitmap.height), bitmap.buffer
-    image = Image.frombuffer("RGBA", size, data, "raw", "BGRA", bitmap.stride, 1)
-    if image.getchannel("A").getextrema() == (WHITE, WHITE):
-        image = image.convert("RGB")
-    return grey_and_colour(image)
+    """Levels of a bitmap with blue, green, red and alpha."""
+    data, width, stride = np.frombuffer(bitmap.buffer, dtype=np.uint8), bitmap.width, bitmap.stride
+
+    def band(first: int, last: int) -> Image.Image:
+        rows = data[first * stride : last * stride]
+        image = Image.frombuffer("RGBA", (width, last - first), rows, "raw", "BGRA", stride, 1)
+        opaque = image.getchannel("A").getextrema() == (WHITE, WHITE)
+        return image.convert("RGB") if opaque else image
+
+    return banded_levels(band, (width, bitmap.height))
 
 
 def upright(grey: Bytes, colour: Bytes | None, to_place: Floats) -> Pixels:

@@ -11,7 +11,7 @@ from curvelab.errors import SheetError
 from curvelab.records.sheet import Pixels, Sheet
 from curvelab.sheets import limits
 from curvelab.sheets.affine import IDENTITY
-from curvelab.sheets.levels import grey_and_colour
+from curvelab.sheets.levels import UnknownModeError, image_levels
 from curvelab.sheets.source import Source
 
 FORMATS = ("PNG", "JPEG", "TIFF", "BMP", "WEBP")
@@ -85,13 +85,12 @@ def _frames(source: Source, image: Image.Image) -> int:
 
 def _pixels(source: Source, image: Image.Image) -> Pixels:
     inverted = image.mode.startswith("I;16") and _white_is_zero(image)
-    upright = ImageOps.exif_transpose(image)
-    upright.format = image.format
+    ImageOps.exif_transpose(image, in_place=True)
     try:
-        grey, colour = grey_and_colour(upright)
-    except ValueError as error:
+        grey, colour = image_levels(image)
+    except UnknownModeError as error:
         raise SheetError(
-            f"Page {source.page} of '{source.name}' is an image of {error}, which has no grey levels",
+            f"Page {source.page} of '{source.name}' is an image of colour mode {error}, which has no grey levels",
             "8 or 16 bits of grey or colour are read",
             "Save it as 8-bit grey or RGB",
         ) from error

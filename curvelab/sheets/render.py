@@ -10,7 +10,7 @@ from curvelab.records.sheet import Pixels
 from curvelab.sheets import limits
 from curvelab.sheets.affine import from_six
 from curvelab.sheets.kind import kind_of
-from curvelab.sheets.levels import grey_and_colour
+from curvelab.sheets.levels import image_levels
 from curvelab.sheets.pdfium import opened_page
 from curvelab.sheets.source import Source
 
@@ -32,7 +32,7 @@ def render_page(name: str, data: bytes, page: int = 1, dots_per_inch: float = 20
         width, height = handle.get_size()
         scale = min(dots_per_inch / POINTS_PER_INCH, math.sqrt(limits.RENDERED_PIXELS / (width * height)))
         try:
-            grey, colour = grey_and_colour(handle.render(scale=scale).to_pil())
+            grey, colour = image_levels(handle.render(scale=scale).to_pil())
         except pdfium.PdfiumError as error:
             raise source.damaged("PDF") from error
     rows, columns = grey.shape
