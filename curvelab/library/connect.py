@@ -24,7 +24,7 @@ def open_to_read(path: Path) -> sqlite3.Connection:
     Raises
     ------
     NotFoundError
-        There is no such file.
+        There is no such file, or it is empty.
     LibraryError, SchemaError
         It is not a library this program can read.
     """
@@ -33,15 +33,12 @@ def open_to_read(path: Path) -> sqlite3.Connection:
             f"There is no library at {path}", "", "Store a worksheet first, or give another library file"
         )
     with named_errors(path):
-        connection = _connect(path, "ro")
         try:
-            version = _version(connection, path)
+            connection, version = _opened(path, "ro")
         except sqlite3.OperationalError as error:
-            connection.close()
             if not _lies_in_read_only_folder(path, error):
                 raise
-            connection = _connect(path, "ro&immutable=1")
-            version = _version(connection, path)
+            connection, version = _opened(path, "ro&immutable=1")
     if version != SCHEMA_VERSION:
         connection.close()
         raise _older(path, version)
@@ -61,9 +58,8 @@ def open_to_write(path: Path) -> sqlite3.Connection:
             f"The folder {path.parent} of the library does not exist", "", "Create it, or give another place"
         )
     with named_errors(path):
-        connection = _connect(path, "rwc")
+        connection, _ = _opened(path, "rwc")
         connection.execute("PRAGMA foreign_keys = ON")
-        _version(connection, path)
     return connection
 
 
@@ -116,6 +112,16 @@ _WORDS = {
 }
 
 
+def _opened(path: Path, mode: str) -> tuple[sqlite3.Connection, int]:
+    """A connection and the schema version, 0 for an empty file."""
+    connection = _connect(path, mode)
+    try:
+        return connection, _version(connection, path)
+    except BaseException:
+        connection.close()
+        raise
+
+
 def _connect(path: Path, mode: str) -> sqlite3.Connection:
     """Connect through an address built from the path, so that ``#`` and ``?`` in it stay part of the name."""
     if sqlite3.sqlite_version_info < OLDEST_SQLITE:
@@ -124,6 +130,8 @@ def _connect(path: Path, mode: str) -> sqlite3.Connection:
             "SQLite 3.37 or later is needed",
             "Use a newer Python",
         )
+    if path.is_dir():
+        raise LibraryError(f"{path} is a folder", "A library is one file", "Give the file, such as firm.sqlite")
     return sqlite3.connect(f"{path.as_uri()}?mode={mode}", uri=True, timeout=BUSY_S, isolation_level=None)
 
 
@@ -135,15 +143,15 @@ def _lies_in_read_only_folder(path: Path, error: sqlite3.OperationalError) -> bo
 
 
 def _version(connection: sqlite3.Connection, path: Path) -> int:
-    """The schema version, 0 for an empty file; closes the connection where the file is not ours or newer."""
+    """The schema version; refuses what is not ours or newer."""
+    connection.execute("BEGIN")  # one view of all three: another program may be beginning this very file
     (application,) = connection.execute("PRAGMA application_id").fetchone()
     (version,) = connection.execute("PRAGMA user_version").fetchone()
     (objects,) = connection.execute("SELECT count(*) FROM sqlite_master").fetchone()
+    connection.execute("COMMIT")
     if application != APPLICATION_ID and objects:
-        connection.close()
         raise LibraryError(f"{path} is not a library: it is the database of another program", "", "Give a library file")
     if version > SCHEMA_VERSION:
-        connection.close()
         raise SchemaError(
             f"The library {path} has schema {version}",
             f"This program knows schemas up to {SCHEMA_VERSION}",
@@ -154,7 +162,7 @@ def _version(connection: sqlite3.Connection, path: Path) -> int:
 
 def _older(path: Path, version: int) -> LibraryError:
     if version == 0:
-        return LibraryError(
+        return NotFoundError(
             f"{path} is empty and holds no library", "", "Store a worksheet first, or give a library file"
         )
     return SchemaError(

@@ -36,8 +36,11 @@ def open_library(path: str | os.PathLike[str] | None = None, *, create: bool = T
         The file is not a library this program can use.
     """
     library = Library(library_path(path))
-    if library.path.exists() or not create:
+    try:
         library.open()
+    except NotFoundError:
+        if not create:
+            raise
     return library
 
 
