@@ -6,7 +6,6 @@ from dataclasses import dataclass
 import numpy as np
 
 from curvelab.calculators.margin import Margin
-from curvelab.devices.bases import amperes
 from curvelab.devices.device import Device
 from curvelab.records.arrays import Floats
 
@@ -34,17 +33,8 @@ class Reach:
 
 
 def knots_of(*devices: Device) -> Floats:
-    """Every tabulated current of the devices in A, with a place just before and after each, rising."""
-    currents = [
-        part.current * amperes(device.nameplate, device.settings, curve.base)
-        for device in devices
-        for curve in device.record.curves
-        if curve.quantity == "time"
-        for part in curve.parts
-    ]
-    if not currents:
-        return np.array([])
-    tabulated = np.concatenate(currents)
+    """Every current in A at which a line of the devices may bend, with a place just before and after each, rising."""
+    tabulated = np.concatenate([device.bends_a() for device in devices])
     return np.unique(np.concatenate((tabulated * (1 - _STEP), tabulated, tabulated * (1 + _STEP))))
 
 

@@ -23,7 +23,8 @@ def edge_times(
     current, breaking = asked
     if not elements:
         return without_number(NOT_SEEN, current.size)
-    found = earliest([_element_times(each, edge, units, asked, own=own) for each in elements], edge)
+    founds = [_element_times(each, edge, units, asked, own=own) for each in elements]
+    found = founds[0] if len(founds) == 1 else _earliest(elements, founds, edge, units, current)
     if breaking is None:
         return found
     above = current > breaking * (1 + 1e-12)
@@ -43,18 +44,20 @@ def edge_currents(elements: Sequence[Lines], edge: Edge, units: Units, time_s: F
     return founds[0] if len(founds) == 1 else _least(founds, edge)
 
 
-def _element_times(
-    element: Lines, edge: Edge, units: Units, asked: tuple[Floats, float | None], *, own: bool
-) -> ElementFound:
+def _earliest(elements: Sequence[Lines], founds: Sequence[Found], edge: Edge, units: Units, current: Floats) -> Found:
+    ended = [_ended_at(each.lines, units, current) for each in elements]
+    return earliest([ElementFound(found=found, ended_at=time) for found, time in zip(founds, ended, strict=True)], edge)
+
+
+def _element_times(element: Lines, edge: Edge, units: Units, asked: tuple[Floats, float | None], *, own: bool) -> Found:
     current, breaking = asked
     if not element.lines:
-        nothing = np.full(current.size, np.nan)
-        return ElementFound(found=without_number(NOT_COVERED, current.size), ended_at=nothing)
+        return without_number(NOT_COVERED, current.size)
     founds = []
     for line in element.lines:
         unit = units[line.curve.base]
         founds.append(times_of(line, current / unit, None if breaking is None else breaking / unit, own=own))
-    return ElementFound(found=_over_conditions(founds, edge), ended_at=_ended_at(element.lines, units, current))
+    return _over_conditions(founds, edge)
 
 
 def _over_conditions(founds: Sequence[Found], edge: Edge) -> Found:
@@ -64,15 +67,15 @@ def _over_conditions(founds: Sequence[Found], edge: Edge) -> Found:
 
 
 def _ended_at(lines: Sequence[Line], units: Units, current: Floats) -> Floats:
-    """The time at which an element's lines ended, where the current lies to the right of all of them."""
-    ended = np.full(current.size, np.inf)
+    """The time at which an element's lines ended, where the current lies to the right of all of them; NaN elsewhere."""
+    if not lines:
+        return np.full(current.size, np.nan)
+    times = []
     for line in lines:
         end = right_end(line.curve)
         beyond = current > end.current * units[line.curve.base] * (1 + 1e-12)
-        ended = (
-            np.fmin(ended, np.where(beyond, end.value * line.time_factor, np.nan)) if beyond.any() else ended * np.nan
-        )
-    return ended
+        times.append(np.where(beyond, end.value * line.time_factor, np.nan))
+    return np.asarray(np.min(times, axis=0))
 
 
 def _least(founds: Sequence[Found], edge: Edge) -> Found:

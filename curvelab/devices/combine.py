@@ -25,8 +25,6 @@ class ElementFound:
 
 def earliest(elements: Sequence[ElementFound], edge: str) -> Found:
     """The earliest of several elements on one edge."""
-    if len(elements) == 1:
-        return elements[0].found
     founds = [element.found for element in elements]
     if all(found.all_values for found in founds):
         return _pick(founds, np.argmin([found.value for found in founds], axis=0))

@@ -9,9 +9,10 @@ from numpy.typing import ArrayLike
 from curvelab.devices.ask import edge_currents, edge_times
 from curvelab.devices.bases import amperes
 from curvelab.devices.breaking import breaking_capacity_a
+from curvelab.devices.element import pick_up
 from curvelab.devices.found import Found, shown
-from curvelab.devices.lines import Lines, lines_of_edge, needed_settings
-from curvelab.devices.question import Path, Question, path_of
+from curvelab.devices.lines import Lines, is_off, lines_of_edge, needed_settings
+from curvelab.devices.question import Path, Question, path_of, sees
 from curvelab.devices.settings import Given, checked_settings, missing_settings
 from curvelab.errors import DeviceError
 from curvelab.records.answer import EdgeAnswer, TripCurrents, TripTimes
@@ -180,6 +181,29 @@ class Device:
             answers.append(_shown(found, lines, asked.shape))
         holds, trips, mean = answers
         return TripCurrents(time_s=_as_given(asked), base=base, trips=trips, holds=holds, mean=mean)
+
+    def bends_a(self) -> Floats:
+        """Currents in A, rising, at which its times may bend or step: what is tabulated, and declared pick-ups.
+
+        Of the elements that act on the path a current has when nothing else is said; shape (n,), empty without curves.
+
+        Raises
+        ------
+        DeviceError
+            An adjustable device without its settings, or a rating its curves need is missing.
+        """
+        self._refuse_unset()
+        way = path_of(Question(), self.nameplate, "A")
+        acting = [
+            curve for curve in self._times if sees(curve.element, way) and not is_off(curve.element, self._settings)
+        ]
+        bends = [
+            np.append(part.current, pick_up(curve) or part.current[:0])
+            * amperes(self.nameplate, self._settings, curve.base)
+            for curve in acting
+            for part in curve.parts
+        ]
+        return np.unique(np.concatenate(bends)) if bends else np.array([])
 
     def _refuse_unset(self) -> None:
         if not self.is_set:

@@ -43,7 +43,7 @@ def lines_of_edge(
     if not any(curve.edge == edge for curve in curves):
         return None
     elements = dict.fromkeys(curve.element for curve in curves)
-    acting = [element for element in elements if sees(element, path) and not _is_off(element, settings)]
+    acting = [element for element in elements if sees(element, path) and not is_off(element, settings)]
     return tuple(
         _lines_of_element([curve for curve in curves if curve.element == element], edge, plate, settings, question)
         for element in acting
@@ -60,7 +60,8 @@ def needed_settings(curves: Sequence[Curve]) -> tuple[str, ...]:
     return tuple(needed)
 
 
-def _is_off(element: str, settings: Given) -> bool:
+def is_off(element: str, settings: Given) -> bool:
+    """Whether an element is switched off."""
     return settings.get(SETTING_OF_ELEMENT.get(element, "")) == OFF
 
 

@@ -10,6 +10,9 @@ from curvelab.records.arrays import Floats
 NUDGE = 1e-12
 """Relative distance within which an asked number counts as a tabulated one: turning currents between bases rounds."""
 
+_BLOCK = 16_384
+"""Numbers worked at a time, so that what is in between stays in the processor's cache."""
+
 _SLICING_PAYS_FROM = 64
 """Asked numbers a row from which sorted ones are cheaper worked slice by slice than gathered."""
 
@@ -33,38 +36,37 @@ class PowerTable:
 
     def __call__(self, asked: Floats) -> Floats:
         """Answers of the k chains, shape (k, n), at the n positive numbers asked."""
-        with np.errstate(divide="ignore", invalid="ignore"):
-            log_asked = np.log(asked)
-        rows = self.breaks.size + 1
-        if asked.size >= _SLICING_PAYS_FROM * rows and bool((asked[1:] >= asked[:-1]).all()):
-            return self._by_slices(asked, log_asked)
-        row = self.breaks.searchsorted(asked)
         answers = np.empty((self.value.shape[0], asked.size))
-        for chain, answer in enumerate(answers):
-            np.subtract(log_asked, self.log_anchor[chain].take(row), out=answer)
-            np.multiply(answer, self.slope[chain].take(row), out=answer)
-            np.exp(answer, out=answer)
-            np.multiply(answer, self.value[chain].take(row), out=answer)
+        for start in range(0, asked.size, _BLOCK):
+            here = slice(start, start + _BLOCK)
+            self._answer(asked[here], answers[:, here])
         return answers
 
-    def _by_slices(self, asked: Floats, log_asked: Floats) -> Floats:
-        """The same for sorted numbers: each row is one slice with constants."""
-        ends = [0, *asked.searchsorted(self.breaks, side="right").tolist(), asked.size]
-        answers = np.empty((self.value.shape[0], asked.size))
-        for row in range(len(ends) - 1):
-            here = slice(ends[row], ends[row + 1])
-            if here.start == here.stop:
-                continue
-            for chain in range(answers.shape[0]):
-                answer = answers[chain, here]
-                if np.isnan(self.value[chain, row]):
-                    answer.fill(np.nan)
-                    continue
-                np.subtract(log_asked[here], self.log_anchor[chain, row], out=answer)
-                answer *= self.slope[chain, row]
-                np.exp(answer, out=answer)
-                answer *= self.value[chain, row]
-        return answers
+    def _answer(self, asked: Floats, answers: Floats) -> None:
+        """Answers to one block, written into ``answers``."""
+        with np.errstate(divide="ignore", invalid="ignore"):
+            log_asked = np.log(asked)
+        if asked.size >= _SLICING_PAYS_FROM and bool((asked[1:] >= asked[:-1]).all()):
+            first, last = self.breaks.searchsorted(asked[[0, -1]])
+            if asked.size >= _SLICING_PAYS_FROM * (last - first + 1):
+                ends = asked.searchsorted(self.breaks[first:last], side="right").tolist()
+                for row, start, stop in zip(range(first, last + 1), [0, *ends], [*ends, asked.size], strict=True):
+                    self._fill(row, log_asked[start:stop], answers[:, start:stop])
+                return
+        rows = self.breaks.searchsorted(asked)
+        for chain, answer in enumerate(answers):
+            np.subtract(log_asked, self.log_anchor[chain].take(rows), out=answer)
+            np.multiply(answer, self.slope[chain].take(rows), out=answer)
+            np.exp(answer, out=answer)
+            np.multiply(answer, self.value[chain].take(rows), out=answer)
+
+    def _fill(self, row: int, log_asked: Floats, answers: Floats) -> None:
+        """Answers of numbers that all lie in one row."""
+        for chain, answer in enumerate(answers):
+            np.subtract(log_asked, self.log_anchor[chain, row], out=answer)
+            np.multiply(answer, self.slope[chain, row], out=answer)
+            np.exp(answer, out=answer)
+            np.multiply(answer, self.value[chain, row], out=answer)
 
 
 def chain_table(given: Floats, answer: Floats, *, first: bool, clamped: bool = False) -> PowerTable:

@@ -126,6 +126,21 @@ def test_below_the_upstream_pick_up_the_downstream_device_clears_first():
     assert result.b_over_a.value.tolist() == [0.0]
 
 
+def test_an_element_that_is_off_is_left_out():
+    upstream = moulded_case().at(ir=1.0, tr=8, ii="off")
+    result = pair(upstream, flat("down", 0.02)).b_clears_first
+    assert (result.status, result.up_to_a) == ("at_least", pytest.approx(3000.0))
+
+
+def test_the_reach_ends_where_an_upstream_element_is_not_known():
+    # Between its pick-up at 1.0 Ir and its first point at 1.05 Ir nothing is known of the overload element.
+    plate = moulded_case().record.nameplate
+    curves = tuple(replace(curve, leaves_top=False) for curve in moulded_case().record.curves)
+    upstream = Device(DeviceRecord(nameplate=plate, curves=curves)).at(ir=1.0, tr=8, ii=5)
+    result = pair(upstream, flat("down", 0.02)).b_clears_first
+    assert (result.status, result.up_to_a) == ("at_least", pytest.approx(250.0, rel=1e-6))
+
+
 def test_where_the_curves_end_before_they_meet_it_is_at_least_that_far():
     result = pair(flat("up", 5.0), flat("down", 1.0)).b_clears_first
     assert (result.status, result.up_to_a) == ("at_least", pytest.approx(10_000.0))

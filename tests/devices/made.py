@@ -1,4 +1,4 @@
-"""Devices made by hand for the tests: an invented maker's breaker, fuse, residual device, adjustable breaker and relay."""
+"""Devices made by hand for the tests: a breaker, a residual-current device and an adjustable breaker."""
 
 import numpy as np
 
@@ -45,7 +45,8 @@ SETTINGS = (
 
 def moulded_case(**fields):
     """Long-time element in multiples of Ir with its delay as multiplier, and an instantaneous one at Ii."""
-    long_time = {"base": "xIr", "element": "overload", "time_setting": "tr", "time_setting_at": 8.0, "at": {"tr": 8.0}}
+    long_time = {"base": "xIr", "element": "overload", "leaves_top": True}
+    long_time |= {"time_setting": "tr", "time_setting_at": 8.0, "at": {"tr": 8.0}}
     at_once = {"base": "xIi", "element": "instantaneous"}
     return device(
         line("fast", [(1.05, 3000), (6, 6.4), (12, 1.6)], **long_time),

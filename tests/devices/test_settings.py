@@ -89,6 +89,16 @@ def test_beyond_its_line_an_element_is_overtaken_by_the_one_drawn_lower():
     assert (answer.slow.status, answer.slow.value) == ("value", 0.04)
 
 
+def test_left_of_an_element_that_is_not_drawn_nothing_is_known_though_another_is_drawn_lower():
+    asked = device(
+        line("fast", [(4, 100), (20, 2)], element="overload"),
+        line("fast", [(2, 0.02), (50, 0.01)], element="instantaneous"),
+        rated_current_a=10.0,
+    )
+    assert asked.trip_time(30.0).fast.status == "not_covered"
+    assert asked.trip_time(50.0).fast.status == "value"
+
+
 def test_an_element_nobody_knows_of_makes_no_answer_surer():
     # The instantaneous element's lines begin without a step: nobody knows what it does below 10 In.
     asked = device(

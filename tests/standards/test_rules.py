@@ -74,7 +74,7 @@ def test_a_rule_that_is_not_published_is_advisory(tmp_path, confidence):
     ],
 )
 def test_a_table_that_is_not_valid_says_which_rule_and_field(tmp_path, old, new, message):
-    with pytest.raises(StandardError, match="works.toml") as error:
+    with pytest.raises(StandardError, match=r"works\.toml") as error:
         read_table(written(tmp_path, TABLE.replace(old, new, 1)))
     assert message in str(error.value)
     assert "\n" not in str(error.value)
