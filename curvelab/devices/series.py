@@ -57,9 +57,14 @@ def _record(plate: Nameplate, tolerance: Tolerance | None, curves: Sequence[Curv
 
 def _declared_edges(curves: Sequence[Curve], tolerance: Tolerance) -> tuple[Curve, ...]:
     """Edges of the mean lines that have none of their own."""
-    held = {curve.identity for curve in curves}
+    held = {_line(curve) for curve in curves}
     derived = (edge for mean in curves if mean.edge == "mean" for edge in edges_of_mean(mean, tolerance))
-    return tuple(edge for edge in derived if edge.identity not in held)
+    return tuple(edge for edge in derived if _line(edge) not in held)
+
+
+def _line(curve: Curve) -> tuple[object, ...]:
+    """What only one curve of a device may be: a pre-arcing and an operating line may stand side by side."""
+    return (curve.meaning, *curve.identity)
 
 
 def _check_curve(plate: Nameplate, curve: Curve) -> None:
@@ -83,10 +88,10 @@ def _check_curve(plate: Nameplate, curve: Curve) -> None:
 def _refuse_twins(plate: Nameplate, curves: Sequence[Curve]) -> None:
     seen: set[tuple[object, ...]] = set()
     for curve in curves:
-        if curve.identity in seen:
+        if _line(curve) in seen:
             raise DeviceError(
                 f"'{plate.key}' has two {curve.edge} edges of element '{curve.element}' for the same conditions",
-                "One line for each element, edge, conditions and settings",
-                "Say what differs: element, at, start, voltage_v",
+                "One line for each element, edge, meaning, conditions and settings",
+                "Say what differs: element, meaning, at, start, voltage_v",
             )
-        seen.add(curve.identity)
+        seen.add(_line(curve))

@@ -50,6 +50,19 @@ def test_a_device_tolerance_turns_mean_lines_without_edges_into_bands():
     assert kept.curves[1] is slow
 
 
+def test_a_pre_arcing_and_an_operating_line_stand_side_by_side():
+    lines = [
+        line("mean", [(100, time), (1000, time / 100)], base="A", meaning=meaning)
+        for meaning, time in (("pre_arcing", 8.0), ("operating", 10.0))
+    ]
+    plate = replace(PLATE, kind="fuse", characteristic="gG")
+    record, _ = one(plate, tuple(lines), Tolerance(time=(-0.1, 0.1)))
+    assert len(record.curves) == 6
+    times = Device(record).trip_time(100.0)
+    assert (times.fast.value, times.fast.meaning) == (pytest.approx(7.2), "pre_arcing")
+    assert (times.slow.value, times.slow.meaning) == (pytest.approx(11.0), "operating")
+
+
 @pytest.mark.parametrize(
     ("changes", "message"),
     [
