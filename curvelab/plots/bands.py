@@ -89,7 +89,7 @@ def _draw_subject(axes: Axes, subject: Subject) -> None:
     colour = subject.ink.colour
     for group in subject.groups:
         if "fast" in group and "slow" in group:
-            for outline in between_outlines(group["fast"], group["slow"]):
+            for outline in between_outlines(group["fast"], group["slow"], axes.get_ylim()[0]):
                 axes.add_patch(Polygon(outline, facecolor=(colour, FILL), edgecolor="none", zorder=2))
                 if subject.ink.hatch:
                     # The hatch takes the edge's colour; without a width the edge itself is not drawn.

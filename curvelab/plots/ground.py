@@ -53,6 +53,13 @@ class Ground:
             self._draw_strokes(sheet.strokes, points)
             self._draw_words(sheet.words, points)
 
+    @property
+    def size(self) -> tuple[float, float]:
+        """Width and height of the canvas in its own coordinates."""
+        left, right = self.canvas.get_xlim()
+        bottom, top = self.canvas.get_ylim()
+        return right - left, bottom - top
+
     def at(self, places: object) -> tuple[Floats, Floats]:
         """Places, shape (n, 2), as coordinates across and down the canvas."""
         array = np.asarray(places, dtype=np.float64).reshape(-1, 2)
@@ -109,5 +116,6 @@ class Ground:
 
 
 def _show(canvas: Canvas, pixels: Pixels) -> None:
-    image = pixels.grey if pixels.colour is None else pixels.colour
-    canvas.imshow(image, cmap="gray", vmin=0, vmax=255, interpolation="none", aspect="auto", zorder=0)
+    """The image as it is: three channels, since a grey scale of colours would round the levels."""
+    image = np.repeat(pixels.grey[:, :, None], 3, axis=2) if pixels.colour is None else pixels.colour
+    canvas.imshow(image, interpolation="none", aspect="auto", zorder=0)

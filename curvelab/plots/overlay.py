@@ -14,6 +14,7 @@ from numpy.typing import ArrayLike
 from curvelab.errors import InputError
 from curvelab.plots.ground import Ground
 from curvelab.plots.ink import INK, PAPER, STYLE, WARM
+from curvelab.plots.placing import Words
 from curvelab.plots.save import picture_format, save_figure
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, Mark
@@ -24,7 +25,8 @@ from curvelab.units import written_current, written_time
 
 HAIRLINE = 0.35
 EDGE_WIDTH: dict[Edge, float] = {"fast": 0.45, "slow": 0.9, "mean": 0.6}
-"""In points on such a page."""
+LETTERS = 5.5
+"""In points."""
 
 
 def draw_overlay(reading: Reading, path: str | Path) -> None:
@@ -51,9 +53,12 @@ def overlay_figure(reading: Reading) -> Figure:
         ground = Ground(sheet)
         if reading.axes is not None:
             _draw_axes(ground, reading.axes)
-        for number, curve in enumerate(reading.curves):
-            if curve.trace is not None:
-                _draw_curve(ground, curve, curve.trace, number)
+        traced = [
+            (curve, curve.trace) for curve in reading.curves if curve.trace is not None and len(curve.trace.places)
+        ]
+        for curve, trace in traced:
+            _draw_trace(ground, curve.curve.edge, trace)
+        _draw_names(ground, traced)
         _draw_given(ground, reading)
     return ground.figure
 
@@ -63,14 +68,13 @@ def _line(ground: Ground, places: ArrayLike, width: float, **look: Any) -> None:
     ground.canvas.plot(across, down, linewidth=width, solid_capstyle="butt", **look)
 
 
-def _words(ground: Ground, place: Place, words: str, colour: str, offset: tuple[float, float]) -> None:
-    across, down = ground.at(place)
+def _words(ground: Ground, at: Place, words: str, colour: str, offset: tuple[float, float]) -> None:
     ground.canvas.annotate(
         words,
-        (float(across[0]), float(down[0])),
+        at,
         xytext=offset,
         textcoords="offset points",
-        fontsize=5.5,
+        fontsize=LETTERS,
         color=colour,
         ha="left" if offset[0] >= 0 else "right",
         va="center",
@@ -105,7 +109,7 @@ def _draw_mark(ground: Ground, axis: Axis, mark: Mark) -> None:
         linestyle="none",
         zorder=5,
     )
-    _words(ground, mark.at, _mark_words(axis, mark), colour, (4.5, -5.0))
+    _words(ground, (float(across[0]), float(down[0])), _mark_words(axis, mark), colour, (4.5, -5.0))
 
 
 def _mark_words(axis: Axis, mark: Mark) -> str:
@@ -123,18 +127,23 @@ def _stretches(trace: Trace) -> Iterator[Floats]:
     yield from np.split(trace.places, sorted(index + 1 for index in before))
 
 
-def _draw_curve(ground: Ground, curve: ReadCurve, trace: Trace, number: int) -> None:
-    edge = curve.curve.edge
+def _draw_trace(ground: Ground, edge: Edge, trace: Trace) -> None:
     for stretch in _stretches(trace):
         dashes = (0.0, (5.0, 2.0)) if edge == "mean" else "-"
         _line(ground, stretch, EDGE_WIDTH[edge], color=INK, linestyle=dashes, zorder=4)
     for gap in trace.gaps:
-        ends = np.array([gap.start, gap.end])
-        _line(ground, ends, 0.6, color=WARM, linestyle=(0.0, (1.0, 1.5)), zorder=4)
-    if len(trace.places):
-        place = trace.places[(len(trace.places) * (2 + number % 3)) // 7]
-        side = -5.0 if edge == "fast" else 5.0
-        _words(ground, (float(place[0]), float(place[1])), _curve_words(curve), INK, (side, 0.0))
+        _line(ground, [gap.start, gap.end], 0.6, color=WARM, linestyle=(0.0, (1.0, 1.5)), zorder=4)
+
+
+def _draw_names(ground: Ground, traced: Sequence[tuple[ReadCurve, Trace]]) -> None:
+    """Each curve's name beside it, where it covers least."""
+    lines = [np.column_stack(ground.at(trace.places)) for _, trace in traced]
+    letter = LETTERS * ground.figure.dpi / 72
+    words = Words(lines=lines, letter=(0.6 * letter, 1.3 * letter), page=ground.size)
+    for line, (curve, _) in zip(lines, traced, strict=True):
+        name = _curve_words(curve)
+        place, right = words.beside(line, name)
+        _words(ground, place, name, INK, (5.0 if right else -5.0, 0.0))
 
 
 def _curve_words(curve: ReadCurve) -> str:

@@ -11,6 +11,8 @@ from curvelab.records.curve import COVERAGE_FACTOR, Curve, Part
 
 SAME_SIDE = 0.03
 """Decades within which two ends count as being at one side of the plot."""
+SLIT = 0.08
+"""Decades: a gap no wider than this along the diagonal, a missing corner, opens the line but not the area."""
 
 
 def halo_outlines(curve: Curve) -> Iterator[Floats]:
@@ -31,14 +33,17 @@ def halo_outlines(curve: Curve) -> Iterator[Floats]:
             yield np.concatenate([line * move, (line / move)[::-1]])
 
 
-def between_outlines(fast: Curve, slow: Curve) -> Iterator[Floats]:
-    """Outlines of the area between two edges, none across a gap of either; shape (n, 2) as (current, value).
+def between_outlines(fast: Curve, slow: Curve, floor: float) -> Iterator[Floats]:
+    """Outlines of the area between two edges, cut at each gap of either; shape (n, 2) as (current, value).
 
     Along the diagonal of log-log paper a monotone curve passes every place once, even where it is vertical or
-    horizontal. So the area is cut there at each end of a gap.
+    horizontal. So the area is cut there at each end of a gap. Where the fast edge leaves the paper at its floor, the
+    area goes on along the floor.
     """
     forwards = -1.0 if falls(fast) else 1.0
     paths = [[_along(part, forwards) for part in curve.parts] for curve in (fast, slow)]
+    if falls(fast):
+        paths[0][-1] = _along_floor(paths[0][-1], paths[1][-1], float(np.log10(floor)))
     for start, end in _uncut(paths):
         sides = [_clipped(path, start, end) for path in paths]
         if all(len(side) for side in sides):
@@ -49,6 +54,14 @@ def _along(part: Part, forwards: float) -> Floats:
     """Columns: distance along the diagonal, log current, log value."""
     current, value = np.log10(part.current), np.log10(part.value)
     return np.column_stack([current + forwards * value, current, value])
+
+
+def _along_floor(fast: Floats, slow: Floats, floor: float) -> Floats:
+    """The fast edge, carried on along the floor to where the slow edge ends, where it has left the paper there."""
+    across = slow[-1, 1]
+    if fast[-1, 2] > floor + SAME_SIDE or across <= fast[-1, 1]:
+        return fast
+    return np.concatenate([fast, [[across - floor, across, floor]]])
 
 
 def _uncut(paths: list[list[Floats]]) -> Iterator[tuple[float, float]]:
@@ -72,7 +85,7 @@ def _face(one: Floats, other: Floats) -> bool:
 
 def _gaps(path: list[Floats]) -> Iterator[tuple[float, float]]:
     for before, after in pairwise(path):
-        if before[-1, 0] < after[0, 0]:
+        if before[-1, 0] + SLIT < after[0, 0]:
             yield float(before[-1, 0]), float(after[0, 0])
 
 

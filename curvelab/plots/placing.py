@@ -1,0 +1,56 @@
+"""Where words go on a drawing so that they cover as little of it as can be."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+
+import numpy as np
+
+from curvelab.records.arrays import Floats
+
+ALONG = np.linspace(0.12, 0.88, 20)
+"""Where along a line its words may stand, as fractions of its points."""
+TAKEN_WEIGHT, OUTSIDE_WEIGHT = 50.0, 1e6
+"""Covering other words, or leaving the page, is as bad as covering so many points of lines."""
+
+Box = tuple[float, float, float, float]
+
+
+@dataclass(kw_only=True, slots=True)
+class Words:
+    """Places for words, each chosen after those before.
+
+    Parameters
+    ----------
+    lines : sequence of array, shape (n, 2)
+        Places across and down that should stay free, about evenly spaced.
+    letter : tuple of float
+        Width and height of a letter, in the same unit.
+    page : tuple of float
+        Width and height of the drawing; words that leave it are the last choice.
+    """
+
+    lines: Sequence[Floats]
+    letter: tuple[float, float]
+    page: tuple[float, float]
+    taken: list[Box] = field(default_factory=list)
+
+    def beside(self, line: Floats, text: str) -> tuple[tuple[float, float], bool]:
+        """The point of the line beside which the text covers least, and whether it stands to its right."""
+        width, height = (len(text) + 1) * self.letter[0], self.letter[1]
+        options: list[tuple[float, int, tuple[float, float], bool, Box]] = []
+        for place in line[(ALONG * (len(line) - 1)).astype(int)]:
+            for right in (True, False):
+                left = place[0] + self.letter[0] if right else place[0] - self.letter[0] - width
+                box = (left, place[1] - height / 2, left + width, place[1] + height / 2)
+                options.append((self._covered(box), len(options), (float(place[0]), float(place[1])), right, box))
+        _, _, place, right, box = min(options)
+        self.taken.append(box)
+        return place, right
+
+    def _covered(self, box: Box) -> float:
+        x0, y0, x1, y1 = box
+        points = np.concatenate(self.lines)
+        inside = (points[:, 0] > x0) & (points[:, 0] < x1) & (points[:, 1] > y0) & (points[:, 1] < y1)
+        clashes = sum(x0 < other[2] and other[0] < x1 and y0 < other[3] and other[1] < y1 for other in self.taken)
+        outside = x0 < 0 or y0 < 0 or x1 > self.page[0] or y1 > self.page[1]
+        return float(inside.sum()) + TAKEN_WEIGHT * clashes + OUTSIDE_WEIGHT * outside
