@@ -25,7 +25,7 @@ from curvelab.worksheets.write import worksheet_text
 )
 @click.option("--picture", "picture_file", type=click.Path(dir_okay=False), help="Draw the reading over its sheet.")
 @click.option("--library", "library_file", type=click.Path(dir_okay=False), help="Store the devices in this library.")
-def command(  # noqa: PLR0913 - one argument an option
+def command(
     source: str,
     page: int | None,
     plot: int | None,

@@ -1,5 +1,6 @@
 """``curvelab query``: what a stored device does at a current, or which currents go with a time."""
 
+from math import isnan
 from typing import Any
 
 import click
@@ -25,7 +26,7 @@ REACHED = {"value", "at_least", "at_most", "never"}
 )
 @library_option
 @json_option
-def command(  # noqa: PLR0913 - one argument an option
+def command(
     key: str,
     currents: tuple[float, ...],
     times: tuple[float, ...],
@@ -78,13 +79,13 @@ def _as_json(device: Device, answers: list[dict[str, Any]]) -> dict[str, Any]:
 
 
 def _number(value: Any) -> float | None:
-    return None if value != value else float(value)
+    return None if isnan(value) else float(value)
 
 
 def _edge_json(found: EdgeAnswer | None) -> dict[str, Any] | None:
     if found is None:
         return None
-    known = found.lower == found.lower and found.upper == found.upper
+    known = not (isnan(found.lower) or isnan(found.upper))
     return {
         "status": found.status,
         "value": _number(found.value),
@@ -110,12 +111,12 @@ def _as_text(device: Device, answers: list[dict[str, Any]]) -> str:
 def _cell(found: EdgeAnswer | None, *, times: bool) -> str:
     if found is None:
         return "-"
-    if found.value != found.value:
+    if isnan(found.value):
         return str(found.status).replace("_", " ")
 
     def written(value: Any) -> str:
         return written_time(float(value)) if times else written_current(float(value), "A")
 
     prefix = {"at_least": "at least ", "at_most": "at most "}.get(str(found.status), "")
-    interval = f" ({written(found.lower)} to {written(found.upper)})" if found.lower == found.lower else ""
+    interval = "" if isnan(found.lower) else f" ({written(found.lower)} to {written(found.upper)})"
     return f"{prefix}{written(found.value)}{interval}"

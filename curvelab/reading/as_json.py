@@ -37,7 +37,7 @@ def reading_json(reading: Reading) -> Json:
         "axes": _axes(reading.axes) if reading.axes else None,
         "curves": [_curve(curve) for curve in reading.curves],
         "bands": list(_bands(reading)),
-        "findings": [_finding(finding) for finding in reading.findings],
+        "findings": [finding_json(finding) for finding in reading.findings],
         "warnings": [_warning(warning) for warning in reading.warnings],
     }
 
@@ -166,7 +166,8 @@ def _bands(reading: Reading) -> Iterable[Json]:
             }
 
 
-def _finding(finding: Finding) -> Json:
+def finding_json(finding: Finding) -> Json:
+    """One finding, as in the reading's list."""
     return {
         "device": finding.device,
         "standard": finding.standard,
