@@ -42,7 +42,7 @@ def scanner_image(drawn: DrawnPage, page: Page, place_map: PlaceMap, scan: Scan)
     Drawn and moved at a multiple of the resolution, then averaged down: interpolation then leaves no bias worth
     mentioning in the places of lines.
     """
-    times = max(2, round(600 / page.dpi))
+    times = 2 if page.dpi >= 200 else 3
     fine = grey(raster(drawn, enlarged(page, times), scan.renderer))
     moved = _moved(fine, place_map, times)
     if scan.blur_px > 0:

@@ -53,15 +53,21 @@ class Affine:
 
     def forward(self, points: Points) -> Points:
         """Clean places to scanned places."""
-        return points @ self.matrix[:, :2].T + self.matrix[:, 2]
+        return _turned(points, self.matrix[:, :2]) + self.matrix[:, 2]
 
     def inverse(self, points: Points) -> Points:
         """Scanned places to clean places."""
-        return np.asarray((points - self.matrix[:, 2]) @ np.linalg.inv(self.matrix[:, :2]).T)
+        return _turned(points - self.matrix[:, 2], np.linalg.inv(self.matrix[:, :2]))
 
     def described(self) -> dict[str, object]:
         """Name of the map and its matrix."""
         return {"kind": "affine", "matrix": self.matrix.tolist()}
+
+
+def _turned(points: Points, square: NDArray[np.float64]) -> Points:
+    """Points times a square; written out, as a matrix product this thin is slow for a whole page of pixels."""
+    x, y = points[:, 0], points[:, 1]
+    return np.stack([square[0, 0] * x + square[0, 1] * y, square[1, 0] * x + square[1, 1] * y], axis=1)
 
 
 def scan_skew(size_px: tuple[int, int], angle_deg: float, stretch: tuple[float, float]) -> Affine:

@@ -3,6 +3,7 @@
 from collections.abc import Callable, Mapping
 from types import MappingProxyType
 
+import cv2
 import numpy as np
 from numpy.typing import NDArray
 
@@ -43,7 +44,7 @@ def enlarged(page: Page, times: int) -> Page:
 
 def grey(pixels: Pixels) -> Pixels:
     """Luminance (ITU-R BT.601 weights), rounded."""
-    return np.asarray(np.rint(pixels @ np.array([0.299, 0.587, 0.114])), dtype=np.uint8)
+    return np.asarray(cv2.cvtColor(pixels, cv2.COLOR_RGB2GRAY))
 
 
 def raster(drawn: DrawnPage, page: Page, renderer: str) -> Pixels:

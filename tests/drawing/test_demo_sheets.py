@@ -117,7 +117,8 @@ def test_fuse_lines_lie_inside_the_gates_with_their_tolerance(rating: int) -> No
 
 
 def test_fuse_lines_do_not_cross() -> None:
-    lines = [curve_of(fuses.family(), f"{rating}") for rating in sorted(fuses.GATES)]
+    plot = lay_out(fuses.family().design).truth.plots[0]
+    lines = [plot.curve(f"{rating}") for rating in sorted(fuses.GATES)]
     times = np.geomspace(0.002, 9000, 60)
     for smaller, larger in pairwise(lines):
         assert all(current_at(larger, time) > 1.05 * current_at(smaller, time) for time in times)
