@@ -23,6 +23,8 @@ AMPLITUDE_SD = 0.3
 OUTLIER = 3.0
 FLOOR = 0.012
 """Least misfit of the model, in shares of the line's ink."""
+TWO_LEVEL_FLOOR = 0.3
+"""The same in a 1-bit scan: pixels at a stroke's edges are black or white, not grey."""
 GRID_DOUBT = 0.06
 """Doubt of the predicted grid ink, in shares of it."""
 COVERED_SD = 0.1
@@ -101,10 +103,12 @@ def measure_centres(raster: Raster, course: Course, ink: Floats, width: float) -
     blur = 0.6
     profile = stroke_profile(width, blur, _reach(width, blur) + 3.0)
     across = course.across
+    floor = TWO_LEVEL_FLOOR if raster.ink.two_level else FLOOR
+    noise = raster.ink.noise / max(float(np.abs(ink).mean()), 0.05)
     fit = None
     for number in range(PASSES):
         window = _window(raster, course, ink, profile)
-        fit = _fit(window, profile, raster.ink.noise / max(float(np.abs(ink).mean()), 0.05))
+        fit = _fit(window, profile, noise, floor)
         across = course.across + fit.offset / course.cosine
         if number == PASSES - 1:
             break
@@ -172,18 +176,18 @@ def _beside(excess: Floats, distance: Floats, inside: Floats, edge: float, cours
     return result
 
 
-def _fit(window: _Window, profile: StrokeProfile, noise: float) -> _Fit:
+def _fit(window: _Window, profile: StrokeProfile, noise: float, floor: float) -> _Fit:
     count = len(window.distance)
     offset, amplitude = np.zeros(count), np.ones(count)
     room = 1.0 - window.under
-    scale = max(noise, FLOOR)
+    scale = max(noise, floor)
     for step in range(STEPS + 1):
         u = window.distance - offset[:, None]
         shape = profile.value(u, window.angle) * room
         tilt = -amplitude[:, None] * profile.derivative(u, window.angle) * room
         residual = window.seen - window.under - amplitude[:, None] * shape
-        doubt = 1.0 / (1.0 + (GRID_DOUBT * window.grid / scale) ** 2)
-        weight = window.inside * doubt / (1.0 + (residual / (OUTLIER * scale)) ** 2) ** 2
+        trusted = window.inside / (1.0 + (GRID_DOUBT * window.grid / scale) ** 2)
+        weight = trusted / (1.0 + (residual / (OUTLIER * scale)) ** 2) ** 2
         dd = (weight * tilt * tilt).sum(axis=1)
         da = (weight * tilt * shape).sum(axis=1)
         prior = (scale / AMPLITUDE_SD) ** 2
@@ -197,10 +201,10 @@ def _fit(window: _Window, profile: StrokeProfile, noise: float) -> _Fit:
             amplitude = np.clip(amplitude + (dd * ra - da * rd) / determinant, 0.0, 1.6)
         if step == 0:
             scale = max(scale, _robust(residual[window.inside > 0]))
-    scale = max(noise, _robust(residual[window.inside > 0]))
-    total = np.maximum((window.inside * tilt * tilt).sum(axis=1), 1e-12)
+    scale = max(noise, _robust(residual[window.inside > 0]), floor if floor > FLOOR else 0.0)
+    total = np.maximum((trusted * tilt * tilt).sum(axis=1), 1e-12)
     clear = np.clip(dd / total, 1e-3, 1.0)
-    misfit = np.sqrt((weight * residual**2).sum(axis=1) / np.maximum(weight.sum(axis=1), 1e-6)) / max(scale, FLOOR)
+    misfit = np.sqrt((weight * residual**2).sum(axis=1) / np.maximum(weight.sum(axis=1), 1e-6)) / max(scale, floor)
     sd = scale * np.sqrt(aa / determinant) * np.maximum(1.0, misfit)
     sd = np.hypot(sd, COVERED_SD * (1.0 - clear) / clear)
     return _Fit(offset=offset, amplitude=_ink_there(window, profile, offset), sd=sd, misfit=misfit, noise=scale)

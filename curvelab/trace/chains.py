@@ -56,6 +56,11 @@ class ChainGraph:
     tip_ends: tuple[tuple[int, int], ...]
 
 
+def is_bridge(chain: Chain) -> bool:
+    """Whether it may be the merged stretch of two crossing lines, which says little of either."""
+    return FREE not in chain.junctions and chain.length <= 8.0 * max(chain.width, 1.0)
+
+
 def build_graph(skeleton: Mask, density: NDArray[np.float32], widths: NDArray[np.float32]) -> ChainGraph:
     """Chains of a thinned mask, short spurs left out.
 

@@ -11,7 +11,10 @@ from curvelab.trace.ink import Image, Ink
 
 BIN = 0.25
 """Width in px of the bins a line's profile is measured in."""
+BINS = np.arange(-8.0, 8.0 + BIN / 2, BIN)
+"""Distances in px a profile is kept at."""
 QUANTILE = 0.35
+TWO_LEVEL_QUANTILE = 0.85
 QUANTILE_OFFSET = 0.385
 """A low quantile along the line passes over curves that cross or follow it; in noise it lies 0.385 sd below the middle."""
 
@@ -40,31 +43,29 @@ class _Course:
     centre: Floats
     reach: int
     vertical: bool
+    outermost: bool
 
 
 def predict_grid(ink: Ink, pixels: Pixels, grid: tuple[GridLine, ...]) -> GridInk:
     """Ink of every grid line as its own mean profile predicts it, the larger where lines cross."""
-    predicted = np.zeros(ink.dark.shape, dtype=np.float32)
-    tints = []
+    values = {axis: [line.value for line in grid if line.axis == axis] for axis in ("current", "value")}
+    courses = []
     for line in grid:
-        course = _course(ink, pixels, line)
-        if course is None:
-            continue
-        seen = ink.dark if course.vertical else ink.dark.T
-        target = predicted if course.vertical else predicted.T
-        rows, columns = _pixels_along(course, seen.shape[1])
-        offset = columns - course.centre[:, None]
-        profile = _profile(seen[rows, columns], offset, course.reach, ink.noise)
-        ink_there = np.interp(offset, *profile)
-        np.maximum.at(target, (rows, columns), ink_there.astype(np.float32))
-        if ink.density.shape[2] == 3:
-            tints.append(_tint(ink, course))
+        course = _course(ink, pixels, line, line.value in (min(values[line.axis]), max(values[line.axis])))
+        if course is not None:
+            courses.append(course)
+    profiles = [_profile(ink, course) for course in courses]
+    limit = _common_limit(courses, profiles)
+    predicted = np.zeros(ink.dark.shape, dtype=np.float32)
+    for course, profile in zip(courses, profiles, strict=True):
+        allowed = profile if course.outermost else np.minimum(profile, limit)
+        _draw(predicted if course.vertical else predicted.T, course, allowed)
     channels = ink.density.shape[2]
-    tint = np.median(tints, axis=0) if tints else np.ones(channels)
+    tint = np.median([_tint(ink, course) for course in courses], axis=0) if courses else np.ones(channels)
     return GridInk(dark=predicted, tint=tint)
 
 
-def _course(ink: Ink, pixels: Pixels, line: GridLine) -> _Course | None:
+def _course(ink: Ink, pixels: Pixels, line: GridLine, outermost: bool) -> _Course | None:
     if len(line.points) < 2:
         return None
     places = pixels.columns_rows(line.points) - np.array(ink.origin)
@@ -83,7 +84,7 @@ def _course(ink: Ink, pixels: Pixels, line: GridLine) -> _Course | None:
     inside = (centre > reach + 1) & (centre < breadth - reach - 2)
     if not inside.any():
         return None
-    return _Course(along=positions[inside], centre=centre[inside], reach=reach, vertical=vertical)
+    return _Course(along=positions[inside], centre=centre[inside], reach=reach, vertical=vertical, outermost=outermost)
 
 
 def _pixels_along(course: _Course, breadth: int) -> tuple[np.ndarray, np.ndarray]:
@@ -93,23 +94,41 @@ def _pixels_along(course: _Course, breadth: int) -> tuple[np.ndarray, np.ndarray
     return rows, columns
 
 
-def _profile(seen: Image, offset: Floats, reach: int, noise: float) -> tuple[Floats, Floats]:
-    """The line's profile: a low quantile of the ink in bins of the distance from the centre."""
-    bins = np.round(offset / BIN).astype(int)
-    low = int(-np.ceil((reach + 1) / BIN))
+def _profile(ink: Ink, course: _Course) -> Floats:
+    """The line's profile on ``BINS``: a low quantile of the ink at each distance from its centre, 0 beyond its reach."""
+    seen = ink.dark if course.vertical else ink.dark.T
+    rows, columns = _pixels_along(course, seen.shape[1])
+    offset = columns - course.centre[:, None]
     centres, levels = [], []
-    flat_bins, flat_seen = bins.ravel(), seen.ravel()
-    order = np.argsort(flat_bins, kind="stable")
-    edges = np.searchsorted(flat_bins[order], np.arange(low, -low + 2))
-    for k in range(edges.size - 1):
-        members = order[edges[k] : edges[k + 1]]
-        if members.size >= 12:
-            centres.append(float(np.mean(offset.ravel()[members])))
-            levels.append(float(np.quantile(flat_seen[members], QUANTILE)) + QUANTILE_OFFSET * noise)
+    # a thin line comes and goes in a 1-bit scan: wherever it may be, the pixels beside it decide
+    share, lift = (TWO_LEVEL_QUANTILE, 0.0) if ink.two_level else (QUANTILE, QUANTILE_OFFSET * ink.noise)
+    # pixels lie one apart, so each column of offsets drifts slowly: its quantiles are taken over stretches of offset
+    bins = np.round(offset / BIN).astype(int)
+    values = seen[rows, columns]
+    for k in range(int(bins.min()), int(bins.max()) + 1):
+        members = bins == k
+        if members.sum() >= 12:
+            centres.append(float(offset[members].mean()))
+            levels.append(float(np.quantile(values[members], share)) + lift)
     if len(centres) < 2:
-        return np.array([-reach, reach], dtype=float), np.zeros(2)
-    profile = np.clip(np.array(levels), 0.0, 1.0)
-    return np.array(centres), profile
+        return np.zeros(BINS.size)
+    return np.clip(np.interp(BINS, centres, levels, left=0.0, right=0.0), 0.0, 1.0)
+
+
+def _common_limit(courses: list[_Course], profiles: list[Floats]) -> Floats:
+    """Ink that at least three lines inside the plot reach: a curve that follows one line all along is not its grid."""
+    inner = [profile for course, profile in zip(courses, profiles, strict=True) if not course.outermost]
+    if len(inner) < 3:
+        return np.ones(BINS.size)
+    limit: Floats = 1.1 * np.sort(np.array(inner), axis=0)[-3]
+    return limit
+
+
+def _draw(target: Image, course: _Course, profile: Floats) -> None:
+    """Add a line to the predicted ink; the larger stays where lines cross."""
+    rows, columns = _pixels_along(course, target.shape[1])
+    level = np.interp(columns - course.centre[:, None], BINS, profile).astype(np.float32)
+    target[rows, columns] = np.maximum(target[rows, columns], level)
 
 
 def _tint(ink: Ink, course: _Course) -> Floats:

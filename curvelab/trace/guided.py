@@ -9,6 +9,7 @@ from curvelab.trace.guide import Guide
 from curvelab.trace.prepared import Prepared
 from curvelab.trace.raster import trace_raster
 from curvelab.trace.select import written
+from curvelab.trace.vector import trace_strokes
 from curvelab.trace.window import plot_window
 
 __all__ = ["Guide", "trace_guided"]
@@ -29,7 +30,8 @@ def trace_guided(prepared: Prepared, guide: Guide) -> tuple[Trace, tuple[Reading
         A place lies off the plot, no line is there, the places lie on different lines, or no line has the colour.
     """
     _check_places(prepared, guide)
-    assert prepared.raster is not None
+    if prepared.raster is None:
+        return trace_strokes(prepared, guide)
     return trace_raster(prepared, prepared.raster, guide)
 
 
@@ -37,7 +39,8 @@ def _check_places(prepared: Prepared, guide: Guide) -> None:
     if not guide.through:
         raise TraceError("A curve has no guide place", "At least one place on the line is expected", "Add `through`")
     window = plot_window(prepared.axes)
-    slack = 8.0 * prepared.pixels.size_in_places
+    # a hand-set place may lie just outside: 8 px, or 3 pt of exact strokes
+    slack = 8.0 * prepared.raster.pixels.size_in_places if prepared.raster else 3.0
     for place in guide.through:
         depth = float(window.depth(np.array([place]))[0])
         if not depth >= -slack:

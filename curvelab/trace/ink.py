@@ -7,7 +7,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from curvelab.records.axes import Axes
-from curvelab.records.sheet import Sheet
+from curvelab.records.sheet import Pixels
 
 Image = NDArray[np.float32]
 
@@ -44,10 +44,9 @@ class Ink:
     two_level: bool
 
 
-def read_ink(sheet: Sheet, axes: Axes) -> Ink:
-    """Ink of the part of the sheet inside the plot's frame."""
-    columns, rows = _crop(sheet, axes)
-    pixels = sheet.pixels
+def read_ink(pixels: Pixels, axes: Axes) -> Ink:
+    """Ink of the part of the image inside the plot's frame."""
+    columns, rows = _crop(pixels, axes)
     chosen = pixels.grey if pixels.colour is None else pixels.colour
     levels = np.ascontiguousarray(chosen[rows, columns])
     if levels.ndim == 3 and _is_neutral(levels):
@@ -68,10 +67,10 @@ def read_ink(sheet: Sheet, axes: Axes) -> Ink:
     )
 
 
-def _crop(sheet: Sheet, axes: Axes) -> tuple[slice, slice]:
+def _crop(pixels: Pixels, axes: Axes) -> tuple[slice, slice]:
     x0, y0, x1, y1 = axes.frame
-    corners = sheet.pixels.columns_rows(np.array([[x0, y0], [x1, y0], [x1, y1], [x0, y1]]))
-    height, width = sheet.pixels.grey.shape
+    corners = pixels.columns_rows(np.array([[x0, y0], [x1, y0], [x1, y1], [x0, y1]]))
+    height, width = pixels.grey.shape
     left, top = np.floor(corners.min(axis=0)).astype(int) - MARGIN
     right, bottom = np.ceil(corners.max(axis=0)).astype(int) + MARGIN + 1
     return slice(max(0, int(left)), min(width, int(right))), slice(max(0, int(top)), min(height, int(bottom)))

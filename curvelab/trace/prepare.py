@@ -1,7 +1,8 @@
 """Prepare a plot for tracing: everything that does not depend on which line is asked for."""
 
+from curvelab.errors import TraceError
 from curvelab.records.axes import Axes
-from curvelab.records.sheet import Sheet
+from curvelab.records.sheet import Pixels, Sheet
 from curvelab.trace.gridmodel import predict_grid
 from curvelab.trace.ink import read_ink
 from curvelab.trace.prepared import Prepared, Raster
@@ -19,13 +20,21 @@ def prepare(sheet: Sheet, axes: Axes) -> Prepared:
         Its exact strokes are used where it has them, else its pixels.
     axes : Axes
         With the measured grid lines in ``axes.grid``.
+
+    Raises
+    ------
+    TraceError
+        The page has neither strokes nor pixels.
     """
-    raster = None if sheet.is_vector else _raster(sheet, axes)
-    return Prepared(axes=axes, pixels=sheet.pixels, raster=raster, strokes=sheet.strokes)
+    if sheet.is_vector:
+        return Prepared(axes=axes, raster=None, strokes=sheet.strokes)
+    if sheet.pixels is None:
+        raise TraceError(f"Page {sheet.page} of {sheet.file} is blank", "A page with curves is expected")
+    return Prepared(axes=axes, raster=_raster(sheet.pixels, axes), strokes=())
 
 
-def _raster(sheet: Sheet, axes: Axes) -> Raster:
-    ink = read_ink(sheet, axes)
-    grid = predict_grid(ink, sheet.pixels, axes.grid)
+def _raster(pixels: Pixels, axes: Axes) -> Raster:
+    ink = read_ink(pixels, axes)
+    grid = predict_grid(ink, pixels, axes.grid)
     skeleton, fill, widths, graph = stroke_graph(curve_ink(ink, grid), ink.noise)
-    return Raster(ink=ink, grid=grid, skeleton=skeleton, fill=fill, widths=widths, graph=graph)
+    return Raster(pixels=pixels, ink=ink, grid=grid, skeleton=skeleton, fill=fill, widths=widths, graph=graph)

@@ -16,6 +16,7 @@ class Raster:
 
     Parameters
     ----------
+    pixels : Pixels
     ink : Ink
     grid : GridInk
         Predicted ink of the grid.
@@ -28,6 +29,7 @@ class Raster:
     graph : ChainGraph
     """
 
+    pixels: Pixels
     ink: Ink
     grid: GridInk
     skeleton: Mask
@@ -44,6 +46,5 @@ class Prepared:
     """
 
     axes: Axes
-    pixels: Pixels
     raster: Raster | None
     strokes: tuple[Stroke, ...]

@@ -25,47 +25,49 @@ AT_FRAME = 4.0
 def trace_raster(prepared: Prepared, raster: Raster, guide: Guide) -> tuple[Trace, tuple[ReadingWarning, ...]]:
     """Trace one line on pixels; see ``trace_guided``."""
     places = np.array(guide.through, dtype=np.float64)
-    pixels = prepared.pixels.columns_rows(places) - np.array(raster.ink.origin)
+    pixels = raster.pixels.columns_rows(places) - np.array(raster.ink.origin)
     wanted = ink_of_colour(guide.colour, raster.ink.density.shape[2])
-    graph = _graph(prepared, raster, guide)
-    walk = _walk(prepared, graph, pixels, guide, wanted)
+    graph = _graph(raster, guide)
+    walk = _walk(raster, graph, pixels, guide, wanted)
     centres = _centres(raster, graph, walk)
     window = plot_window(prepared.axes)
     origin = np.array(raster.ink.origin)
-    everywhere = prepared.pixels.places(centres.course.places(centres.across) + origin)
-    measured = keep_seen(centres, window.holds(everywhere, 0.5 * prepared.pixels.size_in_places))
+    everywhere = raster.pixels.places(centres.course.places(centres.across) + origin)
+    measured = keep_seen(centres, window.holds(everywhere, 0.5 * raster.pixels.size_in_places))
     if measured is None:
         raise TraceError(
             f"No line can be measured at {written(guide.through[0])}",
             "A line a few pixels wide with visible ink is expected",
             "Set the guide place on the line",
         )
-    trace = _trace(prepared, window, centres, measured, pixels)
-    return trace, _warnings(prepared, walk, origin)
+    trace = _trace(raster, window, centres, measured, pixels)
+    return trace, _warnings(raster, walk)
 
 
-def _graph(prepared: Prepared, raster: Raster, guide: Guide) -> ChainGraph:
+def _graph(raster: Raster, guide: Guide) -> ChainGraph:
     """The page's chains, or chains without what the guide says to avoid."""
     if not guide.avoid:
         return raster.graph
     skeleton = raster.skeleton.copy()
     for x0, y0, x1, y1 in guide.avoid:
-        corners = prepared.pixels.columns_rows(np.array([[x0, y0], [x1, y1], [x0, y1], [x1, y0]])) - raster.ink.origin
+        corners = raster.pixels.columns_rows(np.array([[x0, y0], [x1, y1], [x0, y1], [x1, y0]])) - raster.ink.origin
         low = np.clip(np.floor(corners.min(axis=0)).astype(int), 0, None)
         high = np.clip(np.ceil(corners.max(axis=0)).astype(int) + 1, 0, None)
         skeleton[low[1] : high[1], low[0] : high[0]] = False
     return build_graph(skeleton, curve_ink(raster.ink, raster.grid), raster.widths)
 
 
-def _walk(prepared: Prepared, graph: ChainGraph, pixels: Floats, guide: Guide, wanted: Floats | None) -> Walk:
+def _walk(raster: Raster, graph: ChainGraph, pixels: Floats, guide: Guide, wanted: Floats | None) -> Walk:
     """The line through every guide place."""
     near = [chains_near(graph, pixel, wanted) for pixel in pixels]
     for place, pixel, found in zip(guide.through, pixels, near, strict=True):
         if not found:
-            raise _nothing_there(prepared, graph, place, pixel, wanted, guide.colour)
+            raise _nothing_there(raster, graph, place, pixel, wanted, guide.colour)
     targets = frozenset(found[0][1] for found in near)
     missed: tuple[float, int] | None = None
-    for _, start in near[0][:MOST_STARTS]:
+    # the guide on the longest plain stretch of line says most about it
+    first = max(range(len(near)), key=lambda k: graph.chains[near[k][0][1]].length)
+    for _, start in near[first][:MOST_STARTS]:
         walk = walk_both_ways(graph, start, targets)
         distances = np.array([np.hypot(*(walk.line - pixel).T).min() for pixel in pixels])
         far = int(distances.argmax())
@@ -76,14 +78,14 @@ def _walk(prepared: Prepared, graph: ChainGraph, pixels: Floats, guide: Guide, w
     assert missed is not None
     distance, far = missed
     raise TraceError(
-        f"Guide places {written(guide.through[0])} and {written(guide.through[far])} lie on different lines",
-        f"The line through the first passes {distance * prepared.pixels.size_in_places:.1f} from the other",
+        f"Guide places {written(guide.through[first])} and {written(guide.through[far])} lie on different lines",
+        f"The line through the first passes {distance * raster.pixels.size_in_places:.1f} from the other",
         "Move one of them, or add a place between them",
     )
 
 
 def _nothing_there(
-    prepared: Prepared,
+    raster: Raster,
     graph: ChainGraph,
     place: tuple[float, float],
     pixel: Floats,
@@ -97,7 +99,7 @@ def _nothing_there(
             "Correct the colour, or leave it out",
         )
     distance = nearest_line(graph, pixel)
-    size = prepared.pixels.size_in_places
+    size = raster.pixels.size_in_places
     return TraceError(
         f"No line at guide place {written(place)}",
         "No line on this plot" if distance is None else f"The nearest line is {distance * size:.1f} away",
@@ -111,9 +113,9 @@ def _centres(raster: Raster, graph: ChainGraph, walk: Walk) -> Centres:
     return measure_centres(raster, course_of(walk.line, width, 0.5 * width + 6.0), longest.ink, width)
 
 
-def _trace(prepared: Prepared, window: PlotWindow, centres: Centres, measured: Measured, guides: Floats) -> Trace:
-    pixels = prepared.pixels
-    origin = np.array(prepared.raster.ink.origin) if prepared.raster else np.zeros(2)
+def _trace(raster: Raster, window: PlotWindow, centres: Centres, measured: Measured, guides: Floats) -> Trace:
+    pixels = raster.pixels
+    origin = np.array(raster.ink.origin)
     places = pixels.places(measured.places + origin)
     gaps = gap_records(measured.gaps, places)
     sd, size = measured.sd, pixels.size_in_places
@@ -145,12 +147,12 @@ def _runs_backwards(places: Floats, guides: Floats) -> bool:
     return order[-1] < order[0]
 
 
-def _warnings(prepared: Prepared, walk: Walk, origin: Floats) -> tuple[ReadingWarning, ...]:
+def _warnings(raster: Raster, walk: Walk) -> tuple[ReadingWarning, ...]:
     return tuple(
         ReadingWarning(
             code="trace-doubt",
             text="The line could go on two ways here; add a guide place beyond this place",
             at=(float(place[0]), float(place[1])),
         )
-        for place in (prepared.pixels.places((np.array([doubt]) + origin))[0] for doubt in walk.doubts)
+        for place in (raster.pixels.places((np.array([doubt]) + np.array(raster.ink.origin)))[0] for doubt in walk.doubts)
     )

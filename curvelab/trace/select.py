@@ -7,7 +7,7 @@ import numpy as np
 from curvelab.errors import TraceError
 from curvelab.records.arrays import Floats
 from curvelab.records.trace import Place
-from curvelab.trace.chains import ChainGraph
+from curvelab.trace.chains import ChainGraph, is_bridge
 
 REACH = 8.0
 """px within which a guide place means a line (a hand-set place scatters by 1.5 to 4 px)."""
@@ -43,7 +43,7 @@ def tint_distance(ink: Floats, wanted: Floats) -> float:
 
 
 def chains_near(graph: ChainGraph, place: Floats, wanted: Floats | None) -> list[tuple[float, int]]:
-    """(distance in px, chain) of the chains a guide place may mean, likeliest first."""
+    """(distance in px with what speaks against it, chain) of the chains a place may mean, likeliest first."""
     found = []
     for number, chain in enumerate(graph.chains):
         low, high = chain.points.min(axis=0), chain.points.max(axis=0)
@@ -53,8 +53,7 @@ def chains_near(graph: ChainGraph, place: Floats, wanted: Floats | None) -> list
         distance = float(np.hypot(*(chain.points - place).T).min())
         if distance > reach or (wanted is not None and tint_distance(chain.ink, wanted) > TINT_TOLERANCE):
             continue
-        short = 6.0 if chain.length < STUB else 0.0
-        found.append((distance + short, number))
+        found.append((distance + (6.0 if chain.length < STUB else 4.0 if is_bridge(chain) else 0.0), number))
     return sorted(found)
 
 

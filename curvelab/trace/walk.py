@@ -5,7 +5,7 @@ from dataclasses import dataclass, field
 import numpy as np
 
 from curvelab.records.arrays import Floats
-from curvelab.trace.chains import FREE, ChainGraph
+from curvelab.trace.chains import ChainGraph, is_bridge
 from curvelab.trace.heading import Heading, heading
 from curvelab.trace.routes import (
     End,
@@ -25,6 +25,8 @@ MARGIN = 1.0
 """A second route this near in cost makes the choice a doubt."""
 APART = 3.0
 """px: routes closer than this are one."""
+SHORT_HOP = 8.0
+"""Stroke widths: the next dash is looked for before anything further."""
 SHORTEST_GAP = 6.0
 """px: a shorter break is print or a crossing, not a gap."""
 
@@ -97,7 +99,7 @@ def _walk(graph: ChainGraph, end: End, line: Line, used: set[int], wanted: froze
             used.add(entry[0])
             walk.places.append(points)
             count += len(points)
-            if _is_trusted(graph, entry, line):
+            if not is_bridge(graph.chains[entry[0]]):
                 trusted.append(points)
         end = other(route.entries[-1])
 
@@ -107,12 +109,6 @@ def _history(trusted: list[Floats], line: Line) -> Floats:
     history = np.concatenate(trusted[-6:])
     pulled = int(np.ceil(0.7 * line.width))
     return history[:-pulled] if len(history) > 4 * pulled + 8 else history
-
-
-def _is_trusted(graph: ChainGraph, entry: End, line: Line) -> bool:
-    """A short run between two junctions may be the merged stretch of two lines: it gives no direction."""
-    chain = graph.chains[entry[0]]
-    return FREE in chain.junctions or chain.length > 8.0 * line.width
 
 
 def _next_route(
@@ -131,8 +127,11 @@ def _next_route(
     if chosen is None:
         chosen = _only_way(graph, end, routes, line, used)
     if chosen is None:
-        routes = routes_over_gap(graph, onward, line, used, hop_reach(line))
-        chosen = _best(routes, wanted)
+        for reach in (SHORT_HOP * line.width, hop_reach(line)):
+            routes = routes_over_gap(graph, onward, line, used, reach)
+            chosen = _best(routes, wanted)
+            if chosen is not None:
+                break
         if chosen is not None and chosen.hop > SHORTEST_GAP and _rivals(chosen, routes) and not _leads(chosen, wanted):
             doubts.append((float(onward.tip[0]), float(onward.tip[1])))
             return None
@@ -154,7 +153,7 @@ def _leads(route: Route, wanted: frozenset[int]) -> bool:
 
 
 def _rivals(chosen: Route, routes: list[Route]) -> bool:
-    """Whether another route that comes out elsewhere is almost as good."""
+    """Whether another route that comes out elsewhere, not merely further along, is almost as good."""
     return any(r is not chosen and r.cost < chosen.cost + MARGIN and _apart(r.places, chosen.places) for r in routes)
 
 
