@@ -101,15 +101,32 @@ def _laid(axis: Axis, ruler: Ruler, ends: Range, profile: Profile, lines: Floats
     moved = Ruler(
         origin=ruler.origin + float(errors[i]) - (per_scaled - ruler.per_scaled) * ends[0], per_scaled=per_scaled
     )
-    share_met = float(met[i, j]) / max(len(lines), 1)
+    moved = _settled(moved, lines, profile)
+    share_met = float(np.mean(profile.at(moved.across(lines)))) if len(lines) else 0.0
     explained = _explained(axis, moved, ends, profile, lines)
     return Alignment(ruler=moved, lines=lines, met=share_met, explained=explained, score=float(score[i, j]))
+
+
+def _settled(ruler: Ruler, lines: Floats, profile: Profile) -> Ruler:
+    """The ruler through the peaks next to its lines, three of them at least."""
+    if not profile.peaks.size or len(lines) < 3:
+        return ruler
+    room = 0.45 * np.abs(np.diff(ruler.across(lines))).min()
+    for near in (4.0, 3.0, 2.0):
+        places = ruler.across(lines)
+        nearest = profile.peaks[np.argmin(np.abs(places[:, None] - profile.peaks[None, :]), axis=1)]
+        good = np.abs(nearest - places) <= min(near * profile.step, room)
+        if np.sum(good) < 3:
+            return ruler
+        per_scaled, origin = np.polyfit(lines[good], nearest[good], 1)
+        ruler = Ruler(origin=float(origin), per_scaled=float(per_scaled))
+    return ruler
 
 
 def _explained(axis: Axis, ruler: Ruler, ends: Range, profile: Profile, lines: Floats) -> float:
     """Share of the lines seen between the outermost marks that the finest pattern has too."""
     low, high = sorted(ruler.across(np.array(ends)))
-    seen = profile.peaks()
+    seen = profile.peaks
     seen = seen[(seen > low - 3 * profile.step) & (seen < high + 3 * profile.step)]
     if not seen.size:
         return 0.0

@@ -44,7 +44,7 @@ def aligned_marks(axis: Axis, across: Floats, profile: Profile) -> Alignment:
 
 def disagrees(alignment: Alignment, profile: Profile) -> bool:
     """Whether enough lines are seen to say that the marks do not fit them."""
-    return not alignment.agrees and len(profile.peaks()) >= 5
+    return not alignment.agrees and len(profile.peaks) >= 5
 
 
 def rough_rows(ruler: Ruler, slope: float, middle: float, across: int, centre: Floats, reach: float) -> Floats:

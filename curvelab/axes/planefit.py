@@ -119,7 +119,13 @@ def affine_map(centre: Floats, reach: float, rows: Floats) -> PlaneMap:
     )
 
 
-def fit_plane(start: PlaneMap, lines: Sequence[Line], scatter: Scatter, tilts: Sequence[Tilt] = ()) -> Fitted:
+def fit_plane(
+    start: PlaneMap,
+    lines: Sequence[Line],
+    scatter: Scatter,
+    tilts: Sequence[Tilt] = (),
+    models: Sequence[Model] = RICHER,
+) -> Fitted:
     """The simplest map that the lines support.
 
     Parameters
@@ -131,6 +137,8 @@ def fit_plane(start: PlaneMap, lines: Sequence[Line], scatter: Scatter, tilts: S
     scatter : Scatter
     tilts : sequence of Tilt
         One for each axis whose lines are single places.
+    models : sequence of Model
+        What is tried beside the affine map.
 
     Raises
     ------
@@ -140,7 +148,7 @@ def fit_plane(start: PlaneMap, lines: Sequence[Line], scatter: Scatter, tilts: S
     problem = _Problem.of(lines, scatter, tilts)
     best = problem.solved(start, AFFINE)
     fewest = min(int(np.sum(problem.line_axis[problem.estimated] == axis)) for axis in (0, 1))
-    for model in RICHER:
+    for model in models:
         if fewest < model.lines:
             break
         trial = problem.solved(start, model)
@@ -185,7 +193,8 @@ class _Problem:
     def solved(self, start: PlaneMap, model: Model) -> Fitted:
         """Fit one model: variances, steps and outlying lines in turn until they settle."""
         size = 8 + 2 * len(model.powers)
-        plane = replace(start, powers=model.powers, warp=np.zeros((2, len(model.powers))))
+        affine = np.where(np.arange(8) < 6, start.projective, 0.0)
+        plane = replace(start, projective=affine, powers=model.powers, warp=np.zeros((2, len(model.powers))))
         kept = np.ones(len(self.line_axis), dtype=bool)
         residual, rows = self._linear(plane, model)
         line_sd, place_sd = self._variances(residual, kept, 0)

@@ -11,8 +11,8 @@ from curvelab.axes.grid import AXIS_NAMES, Grid, aligned_marks, disagrees, rough
 from curvelab.axes.marks import FEWEST_LINES, mark_values, with_marks
 from curvelab.axes.measure import Measured, measure_lines
 from curvelab.axes.paths import Look
-from curvelab.axes.pattern import Range, finer_lines, linear_lines
-from curvelab.axes.planefit import Line, Scatter, affine_map, fit_plane
+from curvelab.axes.pattern import MAIN, Range, finer_lines, linear_lines, log_lines
+from curvelab.axes.planefit import RICHER, Line, Model, Scatter, affine_map, fit_plane
 from curvelab.axes.search import search_lines
 from curvelab.axes.strips import STRIP, Profile, Strips, profile_along, shared_slopes, strips_of
 from curvelab.records.arrays import Bytes, Floats
@@ -20,10 +20,6 @@ from curvelab.records.axes import Axis, GridLine, PlaneMap
 from curvelab.records.sheet import Pixels
 
 SEARCH_SCATTER = Scatter(lines=(0.05, 0.05), place=0.2)
-SEARCH_REACH = 3.0
-
-FAINTEST = 0.3
-"""Darkness of a finer line as a share of that of the main ones, at least."""
 
 LEAST_STRIPS = 12
 
@@ -54,6 +50,15 @@ class _State:
     covered: tuple[Range, Range]
 
 
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class _Round:
+    """One round of the search: the part of the image looked at, how far off lines may be, and the maps allowed."""
+
+    strips: list[Strips]
+    reach: float
+    models: tuple[Model, ...]
+
+
 def raster_grid(pixels: Pixels, axes: tuple[Axis, Axis]) -> Grid:
     """The grid lines of an image.
 
@@ -73,11 +78,12 @@ def raster_grid(pixels: Pixels, axes: tuple[Axis, Axis]) -> Grid:
         return Grid(lines=(), covered=seeds, disagrees=astray)
     main = tuple(alignment.lines if alignment.agrees else np.zeros(0) for alignment in laid)
     state = _State(plane=_first_plane(views, laid, slopes), lines=(main[0], main[1]), covered=seeds)
-    state = _searched(state, views, state.lines, [view.seed for view in views])
+    state = _searched(state, views, state.lines, _Round(strips=[view.seed for view in views], reach=3.0, models=()))
     state = _extended(state, views)
-    candidates = tuple(_candidates(view.axis, alignment, reach) for view, alignment, reach in zip(views, laid, state.covered, strict=True))
-    for _ in range(2):
-        state = _searched(state, views, (candidates[0], candidates[1]), _inside(state, views))
+    for finest, reach in ((False, 3.0), (False, 2.0), (True, 1.2)):
+        candidates = [_candidates(axis, alignment, part, finest=finest) for axis, alignment, part in zip(axes, laid, state.covered, strict=True)]
+        part = _Round(strips=_inside(state, views), reach=reach, models=RICHER)
+        state = _searched(state, views, (candidates[0], candidates[1]), part)
     grid = [
         _grid_line(pixels, view, line)
         for k, view in enumerate(views)
@@ -132,20 +138,18 @@ def _first_plane(views: tuple[_View, _View], laid: list[Alignment], slopes: tupl
 
 
 def _searched(
-    state: _State, views: tuple[_View, _View], candidates: tuple[Floats, Floats], strips: list[Strips]
+    state: _State, views: tuple[_View, _View], candidates: tuple[Floats, Floats], part: _Round
 ) -> _State:
     """The lines found among candidates, and the map fitted to them."""
     lines: list[Line] = []
     values = []
-    for view, scaled, part in zip(views, candidates, strips, strict=True):
-        found = search_lines(view.look, part, state.plane, scaled, SEARCH_REACH)
-        usual = FAINTEST * float(np.median([line.dark for line in found])) if found else 0.0
-        found = [line for line in found if line.dark >= usual]
+    for view, scaled, strips in zip(views, candidates, part.strips, strict=True):
+        found = search_lines(view.look, strips, state.plane, scaled, part.reach)
         values.append(np.array([line.scaled for line in found]))
         lines += [Line(axis=view.look.axis, scaled=line.scaled, points=line.points) for line in found]
     axes = (views[0].axis, views[1].axis)
     lines, tilts = with_marks(lines, axes, (views[0].marks, views[1].marks), 1.0)
-    fitted = fit_plane(state.plane, lines, SEARCH_SCATTER, tilts)
+    fitted = fit_plane(state.plane, lines, SEARCH_SCATTER, tilts, part.models)
     return _State(plane=fitted.map, lines=(values[0], values[1]), covered=state.covered)
 
 
@@ -154,18 +158,18 @@ def _extended(state: _State, views: tuple[_View, _View]) -> _State:
     covered = list(state.covered)
     for k, view in enumerate(views):
         if len(state.lines[k]) >= FEWEST_LINES:
-            covered[1 - k] = covered_range(view.look, view.whole, state.plane, state.lines[k], state.covered[1 - k])
+            covered[1 - k] = covered_range(view.look, state.plane, state.lines[k], state.lines[1 - k], state.covered[1 - k])
     return replace(state, covered=(covered[0], covered[1]))
 
 
-def _candidates(axis: Axis, alignment: Alignment, covered: Range) -> Floats:
-    """Lines that may be there: those of the finest paper, or the steps found."""
+def _candidates(axis: Axis, alignment: Alignment, covered: Range, *, finest: bool) -> Floats:
+    """Lines that may be there: the main ones or those of the finest paper; on a linear axis the steps found."""
     if not alignment.agrees:
         return np.zeros(0)
     margin = 2.0 / abs(alignment.ruler.per_scaled)
     wide = (covered[0] - margin, covered[1] + margin)
     if axis.scale == "log":
-        return finer_lines(axis, wide)
+        return finer_lines(axis, wide) if finest else log_lines(axis, wide, MAIN)
     return linear_lines(axis, wide, alignment.step)
 
 

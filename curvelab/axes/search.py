@@ -16,6 +16,9 @@ FAINT = 0.35
 LEAST_DARK = 2.0
 """Grey levels by which a line is darker than the paper at least."""
 
+ABOVE_NOISE = 3.0
+"""The same in standard deviations of the paper's noise; the darkest of a few pixels is rarely above."""
+
 STRAIGHT = 1.0
 """Pixels by which the strips of a line may leave its own straight line."""
 
@@ -33,14 +36,15 @@ class Found:
 
 
 def search_lines(
-    look: Look, strips: Strips, plane: PlaneMap, scaled: Floats, reach: float, least: float = LEAST_DARK
+    look: Look, strips: Strips, plane: PlaneMap, scaled: Floats, reach: float
 ) -> list[Found]:
-    """Lines at least ``least`` grey levels dark within ``reach`` pixels of their predicted paths."""
+    """Lines clearly darker than the paper within ``reach`` pixels of their predicted paths."""
     if not len(scaled):
         return []
     paths = look.paths(plane, scaled, strips.along)
     spacing = np.abs(np.diff(paths.mean(axis=1)))
     room = np.minimum(np.append(spacing, np.inf), np.insert(spacing, 0, np.inf))
+    least = max(LEAST_DARK, ABOVE_NOISE * strips.noise)
     found = []
     for value, path, space in zip(scaled, paths, room, strict=True):
         across, dark = _darkest(strips, path, min(reach, 0.45 * space))
@@ -53,16 +57,19 @@ def search_lines(
 
 
 def _darkest(strips: Strips, path: Floats, reach: float) -> tuple[Floats, Floats]:
-    """Place and darkness of the darkest pixel near the path in each strip, refined by a parabola."""
+    """Place and darkness of the darkest pixel near the path in each strip, refined by a parabola.
+
+    A pixel at the window's end that leads up to something darker outside belongs to another line: darkness 0.
+    """
     width = strips.dark.shape[1]
     window = np.arange(-int(np.ceil(reach)), int(np.ceil(reach)) + 1)
     columns = np.clip(np.rint(path).astype(np.int64)[:, None] + window, 1, width - 2)
     rows = np.arange(len(path))
     best = columns[rows, np.argmax(strips.dark[rows[:, None], columns], axis=1)]
     left, top, right = (strips.dark[rows, best + k].astype(np.float64) for k in (-1, 0, 1))
-    bend = left - 2 * top + right
-    shift = np.where(bend < 0, 0.5 * (left - right) / np.where(bend < 0, bend, 1.0), 0.0)
-    return best + np.clip(shift, -0.5, 0.5), top
+    peak = (top >= left) & (top >= right) & (left + right < 2 * top)
+    shift = 0.5 * (left - right) / np.where(peak, left - 2 * top + right, 1.0)
+    return np.where(peak, best + shift, path), np.where(peak, top, 0.0)
 
 
 def _straight(along: Floats, offset: Floats, good: NDArray[np.bool_]) -> NDArray[np.bool_]:

@@ -4,6 +4,7 @@ Everything here only searches; what is found is measured on the untouched grey l
 """
 
 from dataclasses import dataclass
+from functools import cached_property
 from typing import Any
 
 import cv2
@@ -25,6 +26,10 @@ COARSE = 3
 """Strips joined, and pixels across joined, in the coarse search for the slope."""
 
 
+LEAST_DARK = 4.0
+"""Grey levels by which a line is darker than the paper in the profile, at least."""
+
+
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Strips:
     """Darkness against the paper nearby, of strips along the lines.
@@ -41,30 +46,42 @@ class Strips:
     along: Floats
 
     @property
+    def noise(self) -> float:
+        """Standard deviation of the darkness where there is only paper, in grey levels."""
+        some = self.dark[:: max(1, len(self.dark) // 40)]
+        return 1.4826 * float(np.median(np.abs(some)))
+
+    @property
     def middle(self) -> float:
         """The place along the lines about which slopes turn."""
         return float(self.along.mean())
 
 
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class Profile:
-    """Strength of lines, 0 to 1, at places ``first + step * k`` across, moved along the slope to ``middle``."""
+CLEAR = 0.5
+"""Share of a clear line's darkness from which on a peak of the profile is a line."""
 
-    strength: Floats
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Profile:
+    """Darkness at places ``first + step * k`` across, moved along the slope to ``middle``, in units of a clear line."""
+
+    dark: Floats
     first: float
     step: float
     middle: float
 
     def at(self, across: Floats) -> Floats:
-        """Strength at places; 0 beyond the ends."""
-        places = self.first + self.step * np.arange(len(self.strength))
-        return np.interp(across, places, self.strength, left=0.0, right=0.0)
+        """Strength of the line at places, 0 to 1; 0 beyond the ends."""
+        places = self.first + self.step * np.arange(len(self.dark))
+        return np.clip(np.interp(across, places, self.dark, left=0.0, right=0.0), 0.0, 1.0)
 
-    def peaks(self, least: float = 0.5) -> Floats:
-        """Places of the local maxima above ``least``."""
-        s = self.strength
-        top = (s[1:-1] >= least) & (s[1:-1] > s[:-2]) & (s[1:-1] >= s[2:])
-        found: Floats = self.first + self.step * (np.flatnonzero(top) + 1)
+    @cached_property
+    def peaks(self) -> Floats:
+        """Places of the lines, between pixels."""
+        left, top, right = self.dark[:-2], self.dark[1:-1], self.dark[2:]
+        k = np.flatnonzero((top >= CLEAR) & (top > left) & (top >= right))
+        bend = left[k] - 2 * top[k] + right[k]
+        found: Floats = self.first + self.step * (k + 1 + 0.5 * (left[k] - right[k]) / bend)
         return found
 
 
@@ -77,7 +94,7 @@ def strips_of(image: Bytes, rows: tuple[int, int]) -> Strips:
     dark: Any = cv2.GaussianBlur(paper - means, (0, 0), sigmaX=1.0, sigmaY=0.01)
     dark -= np.median(dark, axis=1, keepdims=True)
     along = rows[0] + STRIP * (np.arange(count) + 0.5) - 0.5
-    return Strips(dark=np.maximum(dark, 0.0), along=along)
+    return Strips(dark=dark, along=along)
 
 
 def shared_slopes(first: Strips, second: Strips) -> tuple[float, float]:
@@ -102,9 +119,10 @@ def profile_along(strips: Strips, slope: float) -> Profile:
     floor = float(np.median(dark))
     peaks = dark[1:-1][(dark[1:-1] > dark[:-2]) & (dark[1:-1] >= dark[2:])] - floor
     noise = 1.4826 * float(np.median(np.abs(dark - floor)))
-    strong = peaks[peaks > max(6 * noise, 2.0)]
-    full = 0.5 * float(np.quantile(strong, 0.4)) if strong.size else np.inf
-    return Profile(strength=np.clip((dark - floor) / full, 0.0, 1.0), first=0.0, step=1.0, middle=strips.middle)
+    # A faint line counts as much as a dark one, once it is clearly above noise and the rings beside dark lines.
+    strong = float(np.quantile(peaks, 0.98)) if peaks.size else 0.0
+    full = max(8 * noise, LEAST_DARK, 0.05 * strong)
+    return Profile(dark=(dark - floor) / full, first=0.0, step=1.0, middle=strips.middle)
 
 
 def _coarse(strips: Strips) -> Strips:
@@ -118,7 +136,7 @@ def _coarse(strips: Strips) -> Strips:
 def _energies(strips: Strips, slopes: Floats, pixel: int) -> Floats:
     """How sharply the strips add up when moved along each slope."""
     offset = strips.along - strips.along.mean()
-    capped = np.minimum(strips.dark, np.quantile(strips.dark, 0.98) + 1e-6)
+    capped = np.clip(strips.dark, 0.0, max(float(np.quantile(strips.dark, 0.98)), LEAST_DARK))
     sums = (_moved(capped, slope * offset / pixel).mean(axis=0) for slope in slopes)
     return np.array([float(np.sum(total**2)) for total in sums])
 
