@@ -28,7 +28,7 @@ def open_to_read(path: Path) -> sqlite3.Connection:
     LibraryError, SchemaError
         It is not a library this program can read.
     """
-    if not path.exists():
+    if not _is_there(path):
         raise NotFoundError(
             f"There is no library at {path}", "", "Store a worksheet first, or give another library file"
         )
@@ -53,7 +53,7 @@ def open_to_write(path: Path) -> sqlite3.Connection:
     LibraryError, SchemaError
         The file cannot be written, or is something else.
     """
-    if not path.parent.is_dir():
+    if not _is_there(path.parent):
         raise LibraryError(
             f"The folder {path.parent} of the library does not exist", "", "Create it, or give another place"
         )
@@ -112,6 +112,17 @@ _WORDS = {
 }
 
 
+def _is_there(path: Path) -> bool:
+    """Whether a file or folder exists; one that may not even be looked at is refused."""
+    try:
+        path.stat()
+    except PermissionError as error:
+        raise LibraryError(f"The place {path} may not be opened", "", "Allow access to it, or give another") from error
+    except OSError:
+        return False
+    return True
+
+
 def _opened(path: Path, mode: str) -> tuple[sqlite3.Connection, int]:
     """A connection and the schema version, 0 for an empty file."""
     connection = _connect(path, mode)
@@ -130,7 +141,7 @@ def _connect(path: Path, mode: str) -> sqlite3.Connection:
             "SQLite 3.37 or later is needed",
             "Use a newer Python",
         )
-    if path.is_dir():
+    if os.path.isdir(path):
         raise LibraryError(f"{path} is a folder", "A library is one file", "Give the file, such as firm.sqlite")
     return sqlite3.connect(f"{path.as_uri()}?mode={mode}", uri=True, timeout=BUSY_S, isolation_level=None)
 

@@ -12,6 +12,7 @@ from curvelab.errors import NotFoundError
 from curvelab.library.connect import named_errors, open_to_read
 from curvelab.library.load import read_device
 from curvelab.library.place import data_folder, library_path
+from curvelab.library.sheet_files import read_sheet_files
 from curvelab.library.sound import refuse_unsound
 from curvelab.library.stored import Signature, Stored
 from curvelab.records.device import DeviceRecord
@@ -145,7 +146,8 @@ class Library:
         Raises
         ------
         InputError
-            A device is unsound, or its key is already used by another kind of device. Nothing is stored.
+            A device is unsound, its key is used by another kind of device, or a sheet's file has changed since it
+            was read. Nothing is stored.
         LibraryError
             The file cannot be written.
         """
@@ -153,11 +155,13 @@ class Library:
         for item in items:
             for record in item.devices if isinstance(item, Reading) else (item,):
                 refuse_unsound(record)
+        sheets = {item.sheet.sha256 for item in items if isinstance(item, Reading) and item.sheet}
+        contents = read_sheet_files(sheet_files, sheets)
         # Only storing needs the writing side with its slower imports; asking a device starts without them.
         from curvelab.library import save  # noqa: PLC0415
 
         with named_errors(self.path):
-            return save.store(self._open_writer(), items, Signature(author=author, reason=reason), sheet_files)
+            return save.store(self._open_writer(), items, Signature(author=author, reason=reason), contents)
 
     def _open_writer(self) -> Any:
         from curvelab.library import migrate  # noqa: PLC0415 - as above

@@ -1,10 +1,9 @@
 """Stores devices as new revisions, all of one call or none; what is already there makes no revision."""
 
 import sqlite3
-from collections.abc import Iterable, Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import replace
 from datetime import UTC, datetime
-from pathlib import Path
 
 from sqlite_utils import Database
 
@@ -17,7 +16,7 @@ from curvelab.library.identity import NO_STATEMENT, curve_sha256, revision_sha25
 from curvelab.library.load import HeldCurve
 from curvelab.library.merge import carried_curves, merged_nameplate, refuse_other_kind
 from curvelab.library.rows import WaitingRows
-from curvelab.library.sheet_files import SheetFile
+from curvelab.library.sheet_files import keep_sheet_files
 from curvelab.library.stored import Signature, Stored
 from curvelab.records.curve import Curve, SheetKey
 from curvelab.records.device import DeviceRecord
@@ -27,22 +26,20 @@ Storable = Reading | DeviceRecord
 
 
 def store(
-    database: Database, items: Sequence[Storable], signature: Signature, sheet_files: Iterable[Path] = ()
+    database: Database, items: Sequence[Storable], signature: Signature, sheet_files: Mapping[str, bytes]
 ) -> list[Stored]:
-    """Store readings and devices in one transaction.
+    """Store readings, devices and the bytes of sheets (SHA-256 -> bytes) in one transaction.
 
     Raises
     ------
     InputError
-        A key is already used by another kind of device, or a sheet's file cannot be kept.
+        A key is already used by another kind of device.
     """
-    files = [SheetFile.read(file) for file in sheet_files]
     with transaction(database.conn):
         batch = _Batch(database.conn, signature)
         stored = [one for item in items for one in batch.take(item)]
         batch.rows.write()
-        for file in files:
-            file.keep(database.conn)
+        keep_sheet_files(database.conn, sheet_files)
     return stored
 
 

@@ -2,48 +2,48 @@
 
 import hashlib
 import sqlite3
-from dataclasses import dataclass
+from collections.abc import Collection, Iterable, Mapping
 from pathlib import Path
-from typing import Self
 
 from curvelab.errors import SheetError
 
 
-@dataclass(frozen=True, kw_only=True, slots=True)
-class SheetFile:
-    """A sheet's file as it is now."""
+def read_sheet_files(files: Iterable[Path], sheets: Collection[str]) -> dict[str, bytes]:
+    """SHA-256 -> bytes of each file.
 
-    file: Path
-    sha256: str
-    content: bytes
+    Parameters
+    ----------
+    files : iterable of Path
+    sheets : collection of str
+        SHA-256 of the sheets that were read.
 
-    @classmethod
-    def read(cls, file: Path) -> Self:
-        """Read the file.
-
-        Raises
-        ------
-        SheetError
-            It cannot be read.
-        """
+    Raises
+    ------
+    SheetError
+        A file cannot be read, or has changed since it was read as a sheet.
+    """
+    contents = {}
+    for file in files:
         try:
             content = file.read_bytes()
         except OSError as error:
             raise SheetError(f"The sheet's file {file} cannot be read: {error.strerror}") from error
-        return cls(file=file, sha256=hashlib.sha256(content).hexdigest(), content=content)
-
-    def keep(self, connection: sqlite3.Connection) -> None:
-        """Store the bytes unless they are there.
-
-        Raises
-        ------
-        SheetError
-            The library holds no sheet of these bytes: the file has changed since it was read.
-        """
-        if connection.execute("SELECT 1 FROM sheet WHERE sha256 = ?", (self.sha256,)).fetchone() is None:
+        sha256 = hashlib.sha256(content).hexdigest()
+        if sha256 not in sheets:
             raise SheetError(
-                f"The file {self.file} is not the one that was read: its bytes differ",
-                "",
-                "Read it again, then store; nothing was stored",
+                f"The file {file} is not the one that was read: its bytes differ", "", "Read it again, then store"
             )
-        connection.execute("INSERT OR IGNORE INTO source (sha256, bytes) VALUES (?, ?)", (self.sha256, self.content))
+        contents[sha256] = content
+    return contents
+
+
+def keep_sheet_files(connection: sqlite3.Connection, contents: Mapping[str, bytes]) -> None:
+    """Store the bytes of files that the library has a sheet of, unless they are there."""
+    connection.executemany(
+        """
+        INSERT INTO source (sha256, bytes) SELECT :sha256, :content
+        WHERE EXISTS (SELECT 1 FROM sheet WHERE sha256 = :sha256)
+          AND NOT EXISTS (SELECT 1 FROM source WHERE sha256 = :sha256)
+        """,
+        [{"sha256": sha256, "content": content} for sha256, content in contents.items()],
+    )

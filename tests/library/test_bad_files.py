@@ -3,9 +3,9 @@
 import os
 import shutil
 import sqlite3
-import stat
 import subprocess
 import sys
+import tempfile
 import textwrap
 from pathlib import Path
 
@@ -16,7 +16,7 @@ from curvelab.library import connect
 from curvelab.library.key import split_key
 from curvelab.library.library import open_library
 from curvelab.library.place import library_path
-from tests.library.devices import breaker, curve
+from tests.library.devices import breaker, curve, reading
 
 NOBODY = 65534
 
@@ -148,55 +148,75 @@ def test_the_reading_side_cannot_write(firm: Path) -> None:
         library.open().execute("INSERT INTO device VALUES (1000, 'x', 'mcb')")
 
 
-@pytest.mark.skipif(not hasattr(os, "setuid") or os.getuid() != 0, reason="needs to become another user")
-@pytest.mark.parametrize("folder_mode", [0o555, 0o777])
-def test_a_read_only_library_can_be_asked_and_not_changed(firm: Path, folder_mode: int) -> None:
-    firm.chmod(stat.S_IREAD | 0o444)
+def as_nobody(path: Path) -> list[str]:
+    """What a user without any right to write is told when reading and when storing."""
     script = textwrap.dedent(
         f"""
-        import os, sys
+        import os
         from pathlib import Path
         from curvelab.errors import LibraryError
         from curvelab.library import migrate, save
-        from curvelab.library.library import open_library
+        from curvelab.library.library import Library
         from tests.library.devices import breaker, curve
-        folder = os.open({str(firm.parent)!r}, os.O_RDONLY)
-        os.fchdir(folder)
         os.setuid({NOBODY})
-        with open_library(Path({str(firm)!r})) as library:
-            print(library.record("b32").revision)
-            try:
-                library.store(breaker("b32", curve("fast")))
-            except LibraryError as error:
-                print(error)
+        with Library(Path({str(path)!r})) as library:
+            for work in (lambda: library.record("b32").revision, lambda: library.store(breaker("b32", curve("fast")))):
+                try:
+                    print(work())
+                except LibraryError as error:
+                    print(error)
         """
     )
-    for folder in (firm.parent, *firm.parent.parents):
-        if folder.stat().st_uid == os.getuid() and "pytest" in str(folder):
-            folder.chmod(0o755)
-    firm.parent.chmod(folder_mode)
-    before = firm.read_bytes()
     done = subprocess.run(
         [sys.executable, "-c", script], capture_output=True, text=True, check=False, cwd=Path(__file__).parents[2]
     )
     assert done.stderr == ""
-    revision, refusal = done.stdout.splitlines()
+    return done.stdout.splitlines()
+
+
+@pytest.fixture
+def guarded(firm: Path) -> Path:
+    """A library that others may read but not write, outside the private folders of the test runner."""
+    with tempfile.TemporaryDirectory() as folder:
+        path = Path(shutil.copy(firm, folder))
+        path.chmod(0o444)
+        yield path
+
+
+becomes_nobody = pytest.mark.skipif(
+    not hasattr(os, "setuid") or os.getuid() != 0, reason="needs to become another user"
+)
+
+
+@becomes_nobody
+@pytest.mark.parametrize("folder_mode", [0o555, 0o777])
+def test_a_read_only_library_can_be_asked_and_not_changed(guarded: Path, folder_mode: int) -> None:
+    guarded.parent.chmod(folder_mode)
+    before = guarded.read_bytes()
+    revision, refusal = as_nobody(guarded)
     assert revision == "1"
     assert "may not be written" in refusal
-    assert firm.read_bytes() == before
+    assert guarded.read_bytes() == before
+
+
+@becomes_nobody
+def test_a_library_in_a_closed_folder(guarded: Path) -> None:
+    guarded.parent.chmod(0o700)
+    reading_refused, storing_refused = as_nobody(guarded)
+    assert "may not be opened" in reading_refused
+    assert "cannot be opened" in storing_refused
 
 
 def test_a_sheet_file_that_changed_or_vanished(tmp_path: Path) -> None:
     file = tmp_path / "sheet.png"
+    given = reading(breaker("b32", curve()))
     with open_library(tmp_path / "firm.sqlite") as library:
         with pytest.raises(SheetError, match="cannot be read: No such file"):
-            library.store(breaker("b32", curve()), sheet_files=[file])
+            library.store(given, sheet_files=[file])
         file.write_bytes(b"another")
         with pytest.raises(SheetError, match="its bytes differ"):
-            library.store(breaker("b32", curve()), sheet_files=[file])
-    shutil.copy(tmp_path / "firm.sqlite", tmp_path / "copy.sqlite")
-    with open_library(tmp_path / "copy.sqlite") as library:
-        assert library.keys() == []
+            library.store(given, sheet_files=[file])
+    assert list(tmp_path.iterdir()) == [file]
 
 
 def test_a_key_or_revision_that_is_not_there(firm: Path) -> None:
