@@ -110,7 +110,7 @@ def _fit_scattered(strand: Strand) -> CurveFit:
 
 def _segments(strand: Strand, numbers: int) -> Segments:
     noise = _pilot(strand)
-    return fit_segments(strand, noise, kink_candidates(strand, noise, strand.blur), numbers)
+    return fit_segments(strand, noise, kink_candidates(strand, noise), numbers)
 
 
 def _pilot(strand: Strand) -> Noise:

@@ -1,5 +1,7 @@
 """Exact strokes: their own points, joined by straight lines, are the curve; nothing is there to be averaged."""
 
+from typing import NoReturn
+
 import numpy as np
 from numpy.typing import NDArray
 from scipy.optimize import isotonic_regression
@@ -57,9 +59,31 @@ def kept_samples(strand: Strand, corners: NDArray[np.intp]) -> Samples:
     FitError
         The strokes run backwards by more than their rounding.
     """
+    _check_forward(strand)
     u, v = _monotone(strand, corners)
     own = np.interp(u, strand.u, strand.sd) ** 2
     return polyline(u, v, own, calibration_at(u, np.gradient(v, u), strand))
+
+
+def _check_forward(strand: Strand) -> None:
+    """Refuse strokes that turn back on themselves, which their order along u would hide."""
+    forward = strand.u[np.argsort(strand.order)]
+    if forward[0] > forward[-1]:
+        forward = forward[::-1]
+    back = np.maximum.accumulate(forward) - forward
+    k = int(np.argmax(back))
+    if back[k] > max(ROUNDING * float(np.median(strand.sd)), THINNED):
+        place = int(np.searchsorted(strand.u, forward[k]))
+        _refuse(strand, strand.u[place], strand.v[place], float(back[k]))
+
+
+def _refuse(strand: Strand, u: float, v: float, by: float) -> NoReturn:
+    log_current, log_value = unrotated(np.array([u]), np.array([v]), strand.rising)
+    raise FitError(
+        f"The strokes at {10 ** log_current[0]:.6g}, {10 ** log_value[0]:.6g} run backwards by {by:.2g} decade",
+        f"A curve that never {'falls' if strand.rising else 'rises'}",
+        "Guide the curve there, or avoid what does not belong to it",
+    )
 
 
 def _monotone(strand: Strand, corners: NDArray[np.intp]) -> tuple[Floats, Floats]:
@@ -70,11 +94,7 @@ def _monotone(strand: Strand, corners: NDArray[np.intp]) -> tuple[Floats, Floats
     limit = np.maximum(ROUNDING * strand.sd[corners], THINNED)
     if np.any(off > limit):
         k = int(np.argmax(off - limit))
-        raise FitError(
-            f"The strokes at {10 ** log_current[k]:.6g}, {10 ** log_value[k]:.6g} run backwards by {off[k]:.2g} decade",
-            f"A curve that never {'falls' if strand.rising else 'rises'}",
-            "Guide the curve there, or avoid what does not belong to it",
-        )
+        _refuse(strand, strand.u[corners[k]], strand.v[corners[k]], float(off[k]))
     u, v = rotated(straight_current, straight_value, strand.rising)
     apart = np.diff(u, prepend=-np.inf) > 0.0
     return u[apart], v[apart]

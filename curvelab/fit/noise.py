@@ -15,8 +15,13 @@ PRIOR_NEIGHBOURS = 60.0
 TUKEY = 6.0
 """Standard deviations at which a point's weight reaches zero; 98 % efficient for normal errors."""
 
-WINDOW = 5.0
-"""Correlations are summed up to this many times the inflation found so far (Sokal's automatic windowing)."""
+FEWEST_LAGS, MOST_LAGS = 4, 64
+
+MOST_TAKEN = 0.3
+"""Share of the variance that the fit's own parameters are credited with at most."""
+
+INSIGNIFICANT = 1.5
+"""Correlations are summed up to the first below this many standard errors, 1 / sqrt(n), of one that is none."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -60,13 +65,16 @@ def measured_noise(residuals: list[Floats], parameters: float, stated: Noise) ->
     count = sum(len(piece) for piece in clipped)
     if count < 2:
         return stated
-    covariances = _autocovariances(clipped)
+    # Beyond half of what one parameter spans, residuals tell of the fit, not of the noise.
+    covariances = _autocovariances(clipped, lags=max(int(count / (2.0 * max(parameters, 1.0))), FEWEST_LAGS))
+    if covariances[0] == 0.0:
+        return stated
     inflation, variance = stated.inflation, covariances[0]
     for _ in range(4):
-        taken = min(inflation * parameters / count, 0.5)
+        taken = min(inflation * parameters / count, MOST_TAKEN)
         variance = covariances[0] / (1.0 - taken)
         # Fitted parameters lower the covariance at short lags by what they lower the variance.
-        inflation = _summed((covariances + variance * taken) / variance)
+        inflation = _summed((covariances + variance * taken) / variance, INSIGNIFICANT / np.sqrt(count))
         shared = PRIOR_NEIGHBOURS / (count + PRIOR_NEIGHBOURS)
         inflation = (1.0 - shared) * inflation + shared * stated.inflation
     free = max(count / inflation - parameters, 0.0)
@@ -81,9 +89,8 @@ def _clipped(residual: Floats) -> Floats:
     return np.clip(residual, -limit, limit)
 
 
-def _autocovariances(pieces: list[Floats]) -> Floats:
-    longest = max(len(piece) for piece in pieces)
-    lags = min(64, max(longest // 4, 1))
+def _autocovariances(pieces: list[Floats], lags: int) -> Floats:
+    lags = min(lags, MOST_LAGS)
     sums, counts = np.zeros(lags), np.zeros(lags)
     for piece in pieces:
         for lag in range(min(lags, len(piece))):
@@ -92,10 +99,8 @@ def _autocovariances(pieces: list[Floats]) -> Floats:
     return sums / np.maximum(counts, 1.0)
 
 
-def _summed(correlations: Floats) -> float:
-    total = 1.0
-    for lag in range(1, len(correlations)):
-        if lag > WINDOW * total:
-            break
-        total += 2.0 * correlations[lag]
-    return max(float(total), 1.0)
+def _summed(correlations: Floats, least: float) -> float:
+    """1 + 2 x the sum of the leading correlations that are not noise themselves."""
+    none = np.flatnonzero(correlations < least)
+    last = int(none[0]) if none.size else len(correlations)
+    return 1.0 + 2.0 * float(np.sum(correlations[1:last]))

@@ -25,6 +25,9 @@ KINK_PARAMETERS = 2.0
 CROSSING_REACH = 0.02
 """Decades beyond the last points within which two stretches must cross."""
 
+APPROACH = 2e-3
+"""Decades within which two stretches must come of each other to be tried again."""
+
 REFINEMENTS = 3
 """Rounds in which kinks move to crossings and the points near them are shared out again, at most."""
 
@@ -70,7 +73,7 @@ def fit_segments(strand: Strand, noise: Noise, kinks: list[float], numbers: int 
     kinks, stretches = _needed(strand, noise, kinks, stretches)
     for _ in range(REFINEMENTS):
         before = kinks
-        kinks, stretches = _crossed(strand, kinks, stretches)
+        kinks, stretches = _crossed(strand, kinks, stretches, approach=True)
         stretches = _fitted(strand, noise, kinks, numbers, stretches, settled=True)
         noise = _noise(strand, stretches)
         if len(before) == len(kinks) and np.allclose(before, kinks, rtol=0.0, atol=0.5 * strand.spacing):
@@ -197,21 +200,30 @@ def _prefers_merged(strand: Strand, noise: Noise, left: Stretch, right: Stretch,
     return noise.misfit(merged.residual[kept]) + price * merged.edf <= apart
 
 
-def _crossed(strand: Strand, kinks: list[float], stretches: list[Stretch]) -> tuple[list[float], list[Stretch]]:
-    """Move every kink to where its stretches cross; without a crossing the two are merged by dropping the kink."""
+def _crossed(
+    strand: Strand, kinks: list[float], stretches: list[Stretch], *, approach: bool = False
+) -> tuple[list[float], list[Stretch]]:
+    """Move every kink to where its stretches cross; one whose stretches do not, or that leaves none, is dropped.
+
+    The stretches that remain valid come with the kinks, or none where kinks were lost for want of points.
+    """
     moved: list[float] = []
     joined = [stretches[0]]
     for kink, right in zip(kinks, stretches[1:], strict=True):
-        place = _crossing(strand, joined[-1], right, kink)
+        place = _crossing(strand, joined[-1], right, kink, approach=approach)
         if place is None or (moved and place <= moved[-1]):
             continue
         moved.append(place)
         joined.append(right)
-    return moved, joined
+    usable = _with_points(strand, moved)
+    return (moved, joined) if len(usable) == len(moved) else (usable, [])
 
 
-def _crossing(strand: Strand, left: Stretch, right: Stretch, near: float) -> float | None:
-    """The crossing nearest to a place, between the points on either side or shortly beyond them."""
+def _crossing(strand: Strand, left: Stretch, right: Stretch, near: float, *, approach: bool) -> float | None:
+    """The crossing nearest to a place, between the points on either side or shortly beyond them.
+
+    Without one, ``approach`` takes the place where they come closest, from which a further round may find it.
+    """
     reach = max(CROSSING_REACH, 2.0 * strand.blur, 4.0 * strand.spacing)
     start = max(strand.u[left.last - 1] - reach, 0.5 * (strand.u[left.first] + strand.u[left.last - 1]))
     end = min(strand.u[right.first] + reach, 0.5 * (strand.u[right.first] + strand.u[right.last - 1]))
@@ -219,7 +231,8 @@ def _crossing(strand: Strand, left: Stretch, right: Stretch, near: float) -> flo
     difference = right.value(grid) - left.value(grid)
     changes = np.flatnonzero(np.sign(difference[:-1]) != np.sign(difference[1:]))
     if changes.size == 0:
-        return None
+        closest = int(np.argmin(np.abs(difference)))
+        return float(grid[closest]) if approach and abs(difference[closest]) <= APPROACH else None
     k = changes[np.argmin(np.abs(grid[changes] - near))]
     return _root(left, right, grid[k], grid[k + 1])
 

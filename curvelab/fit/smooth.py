@@ -69,7 +69,7 @@ def fit_smooth(basis: Floats, v: Floats, weight: Floats, step: float = np.inf) -
     # A coefficient without any point and a penalty too small for the arithmetic would leave `held` singular.
     held[np.diag_indices_from(held)] += 1e-13 * np.trace(information)
     roughness, modes = eigh(unit * penalty, held)
-    roughness = np.maximum(roughness, 0.0)
+    roughness[:PENALTY_ORDER] = 0.0  # a parabola is not penalised; in ascending order, these are its modes
     amplitude = modes.T @ (weighted.T @ v)
     chosen = _penalty(roughness, amplitude)
     shrink = 1.0 / (1.0 + chosen * roughness)

@@ -72,6 +72,7 @@ def strand_of(points: FitPoints, *, rising: bool) -> Strand:
     """
     _check(points)
     u, v = rotated(points.log_current, points.log_value, rising)
+    _check_direction(points, u, v, rising)
     order = np.argsort(u, kind="stable")
     backwards = u[0] > u[-1]
     if backwards:
@@ -117,28 +118,45 @@ def _check(points: FitPoints) -> None:
         )
 
 
+def _check_direction(points: FitPoints, u: Floats, v: Floats, rising: bool) -> None:
+    """Refuse a curve that as a whole runs the other way: from its first to its last points v changes more than u."""
+    tenth = max(len(u) // 10, 1)
+    along, across = (abs(np.median(column[-tenth:]) - np.median(column[:tenth])) for column in (u, v))
+    if across > along + points.blur + STRAY_SCALES * np.median(points.sd):
+        wrong, right = ("falls", "rises") if rising else ("rises", "falls")
+        raise FitError(
+            f"The curve {wrong} with the current, from {10 ** points.log_value[0]:.4g} at "
+            f"{10 ** points.log_current[0]:.4g} to {10 ** points.log_value[-1]:.4g} at "
+            f"{10 ** points.log_current[-1]:.4g}",
+            f"A curve whose value {right}, or stays, as the current grows",
+            "Check the axes and which curve the guides follow",
+        )
+
+
 def _not_stray(u: Floats, v: Floats, sd: Floats) -> NDArray[np.bool_]:
-    """False where a lone point lies off the lines between its neighbours on both sides.
+    """False where a lone point lies off the lines through its neighbours.
 
     The reference is the median over pairs of neighbours at growing distance, so that one stray among them does not
     matter; the scale is robust and local, so that the corner of two straight stretches stays.
     """
-    kept = np.ones(len(u), dtype=bool)
-    if len(u) < 4 * NEIGHBOURS:
-        return kept
-    inner = slice(NEIGHBOURS, len(u) - NEIGHBOURS)
-    estimates = []
-    for d in range(1, NEIGHBOURS + 1):
-        before, after = slice(NEIGHBOURS - d, len(u) - NEIGHBOURS - d), slice(NEIGHBOURS + d, len(u) - NEIGHBOURS + d)
-        width = np.maximum(u[after] - u[before], np.finfo(float).tiny)
-        share = np.clip((u[inner] - u[before]) / width, 0.0, 1.0)
-        estimates.append(v[before] + share * (v[after] - v[before]))
-    deviation = np.abs(v[inner] - np.median(estimates, axis=0))
+    if len(u) < 4 * NEIGHBOURS + 1:
+        return np.ones(len(u), dtype=bool)
+    deviation = np.abs(v - np.median([_from_pair(u, v, d) for d in range(1, NEIGHBOURS + 1)], axis=0))
     window = 4 * NEIGHBOURS + 1
-    local = deviation
-    if len(deviation) > window:
-        medians = np.median(sliding_window_view(deviation, window), axis=1)
-        local = np.pad(medians, window // 2, mode="edge")
-    scale = np.maximum(1.4826 * local, np.maximum(sd[inner], 1.4826 * np.median(deviation)))
-    kept[inner] = deviation <= STRAY_SCALES * scale
+    local = np.pad(np.median(sliding_window_view(deviation, window), axis=1), window // 2, mode="edge")
+    scale = np.maximum(1.4826 * np.maximum(local, np.median(deviation)), sd)
+    kept: NDArray[np.bool_] = deviation <= STRAY_SCALES * scale
     return kept
+
+
+def _from_pair(u: Floats, v: Floats, distance: int) -> Floats:
+    """V at every u on the line through the points at that distance on both sides, at the ends on the inner side."""
+    k = np.arange(len(u))
+    first, second = k - distance, k + distance
+    at_start, at_end = first < 0, second >= len(u)
+    first[at_start], second[at_start] = k[at_start] + distance, k[at_start] + 2 * distance
+    first[at_end], second[at_end] = k[at_end] - 2 * distance, k[at_end] - distance
+    width = u[second] - u[first]
+    share = np.where(width > 0.0, (u - u[first]) / np.where(width > 0.0, width, 1.0), 0.5)
+    line: Floats = v[first] + np.clip(share, -1.0, 2.0) * (v[second] - v[first])
+    return line

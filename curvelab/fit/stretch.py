@@ -14,6 +14,8 @@ from curvelab.records.fit import Form
 
 PASSES = 3
 LEAST_FOR_SPLINE = 8
+NEARLY_UPRIGHT = 0.98
+"""|dv/du| from which a line may be meant to be vertical or horizontal: 0.6 degrees from it."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -99,7 +101,7 @@ def fit_stretch(strand: Strand, noise: Noise, extent: Extent) -> Stretch:
     if extent.form == "line" or np.count_nonzero(data.kept) < LEAST_FOR_SPLINE:
         return best
     spline = _spline(data, extent)
-    price = np.log(max(np.count_nonzero(data.kept) / noise.inflation, 2.0))
+    price = data.price
     return best if best.misfit + price * best.edf <= spline.misfit + price * spline.edf else spline
 
 
@@ -110,6 +112,11 @@ class _Data:
     sd: Floats
     kept: NDArray[np.bool_]
     noise: Noise
+
+    @property
+    def price(self) -> float:
+        """What a parameter costs in the Bayes information criterion: the logarithm of the effective points."""
+        return float(np.log(max(np.count_nonzero(self.kept) / self.noise.inflation, 2.0)))
 
     def weight(self, slope: Floats, robust: Floats) -> Floats:
         """1 / variance of v, inflated for correlation."""
@@ -157,35 +164,35 @@ def _spline(data: _Data, extent: Extent) -> Stretch:
 
 
 def _line(data: _Data, extent: Extent) -> Stretch:
-    """The best of a vertical, a horizontal and a sloping line."""
-    lines = [_straight(data, extent, slope) for slope in (-1.0, 1.0, None)]
-    price = np.log(max(np.count_nonzero(data.kept) / data.noise.inflation, 2.0))
-    return min(lines, key=lambda line: line.misfit + price * line.edf)
+    """The best of a sloping and, where it nearly is that, a vertical or horizontal line."""
+    sloping = _straight(data, extent, None)
+    slope = float(sloping.slope(sloping.knots[:1])[0])
+    if abs(slope) < NEARLY_UPRIGHT:
+        return sloping
+    upright = _straight(data, extent, float(np.sign(slope)))
+    price = data.price
+    return upright if upright.misfit + price * upright.edf <= sloping.misfit + price * sloping.edf else sloping
 
 
 def _straight(data: _Data, extent: Extent, fixed: float | None) -> Stretch:
+    """A line of fixed or free dv/du: its values at both ends of the extent are the coefficients."""
     ends = np.array([extent.start, extent.end])
-    shape = np.stack([(ends[1] - data.u), (data.u - ends[0])], axis=1) / (ends[1] - ends[0])
+    reach = extent.end - extent.start
+    share = (data.u - extent.start) / reach
     known = 0.0 if fixed is None else fixed
     rise = known * (ends - ends[0])
     free = np.eye(2) if fixed is None else np.ones((2, 1))
-    robust = data.kept.astype(float)
-    if fixed is not None:
-        robust = data.robust(
-            data.residual(shape @ rise + np.median((data.v - shape @ rise)[data.kept]), known + 0 * data.u)
-        )
-    slope = np.full_like(data.u, known)
+    basis = np.stack([1.0 - share, share], axis=1) @ free
+    level = data.v - known * (data.u - extent.start)
+    slope, robust = np.full_like(data.u, known), data.kept.astype(np.float64)
     for _ in range(PASSES):
         weight = data.weight(slope, robust)
-        basis = shape @ free
-        covariance = np.linalg.pinv(basis.T @ (basis * weight[:, None]))
-        coefficients = rise + free @ (covariance @ (basis.T @ (weight * (data.v - shape @ rise))))
-        reach = ends[1] - ends[0]
-        if abs(coefficients[1] - coefficients[0]) > reach:
-            middle = coefficients.mean()
-            coefficients = middle + 0.5 * np.sign(coefficients[1] - coefficients[0]) * np.array([-reach, reach])
-        slope = np.full_like(data.u, (coefficients[1] - coefficients[0]) / reach)
-        residual = data.residual(shape @ coefficients, slope)
+        covariance = np.linalg.inv(basis.T @ (basis * weight[:, None]))
+        coefficients = rise + free @ (covariance @ (basis.T @ (weight * level)))
+        turn = np.clip((coefficients[1] - coefficients[0]) / reach, -1.0, 1.0)
+        coefficients = coefficients.mean() + turn * (ends - ends.mean())
+        slope = np.full_like(data.u, turn)
+        residual = data.residual(coefficients[0] + turn * (data.u - extent.start), slope)
         robust = data.robust(residual)
     spread = free @ covariance @ free.T
     return Stretch(
