@@ -15,7 +15,7 @@ def shared(tmp_path_factory: pytest.TempPathFactory) -> Library:
         yield library
 
 
-@settings(max_examples=60, deadline=None, suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large])
+@settings(max_examples=40, deadline=None, suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large])
 @given(record=records)
 def test_any_device_comes_back_bit_for_bit(tmp_path_factory: pytest.TempPathFactory, record: DeviceRecord) -> None:
     with open_library(tmp_path_factory.mktemp("library") / "one.sqlite") as library:
