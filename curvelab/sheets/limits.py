@@ -15,7 +15,7 @@ RENDERED_PIXELS = 36_000_000
 STROKES = 200_000
 """Exact pieces of paths on one page; a dense log-log page has some hundreds."""
 
-STROKE_POINTS = 3_000_000
+STROKE_POINTS = 1_000_000
 """Points of all strokes of one page together."""
 
 CHARACTERS = 200_000

@@ -2,16 +2,20 @@
 
 import hashlib
 import os
+from collections.abc import Callable, Mapping
 from pathlib import Path
 
 from curvelab.errors import SheetError
 from curvelab.records.sheet import Sheet
 from curvelab.sheets import limits
-from curvelab.sheets.kind import SUPPORTED, kind_of
+from curvelab.sheets.kind import SUPPORTED, Kind, kind_of
 from curvelab.sheets.pdf import pdf_page
 from curvelab.sheets.raster import raster_page
 from curvelab.sheets.source import Source
+from curvelab.sheets.strokes import TooManyPointsError
 from curvelab.sheets.svg import svg_page
+
+READERS: Mapping[Kind | None, Callable[[Source], Sheet]] = {"raster": raster_page, "pdf": pdf_page, "svg": svg_page}
 
 
 def open_sheet(path: str | os.PathLike[str], page: int = 1) -> Sheet:
@@ -46,13 +50,12 @@ def sheet_from_bytes(name: str, data: bytes, page: int = 1) -> Sheet:
         raise SheetError(f"'{name}' is empty", SUPPORTED)
     if len(data) > limits.FILE_BYTES:
         raise too_large(name, len(data))
-    match kind_of(data):
-        case "raster":
-            return raster_page(source)
-        case "pdf":
-            return pdf_page(source)
-        case "svg":
-            return svg_page(source)
+    reader = READERS.get(kind_of(data))
+    if reader is not None:
+        try:
+            return reader(source)
+        except TooManyPointsError as error:
+            raise source.over("points on its lines", limits.STROKE_POINTS) from error
     raise SheetError(f"'{name}' is not a sheet that can be read", SUPPORTED, "Save the page as one of these")
 
 

@@ -12,7 +12,7 @@ from curvelab.sheets.pdfobjects import Painted, Walk
 from curvelab.sheets.pdfpaths import strokes_of
 from curvelab.sheets.pdftext import words_on
 from curvelab.sheets.source import Source
-from curvelab.sheets.strokes import Setting
+from curvelab.sheets.strokes import PointCount, Setting
 
 SCAN_SHARE = 0.1
 """An image below this share of the page is a logo or a photo, not a scanned plot."""
@@ -53,18 +53,16 @@ def pdf_page(source: Source) -> Sheet:
 def _painted(page: pdfium.PdfPage, to_place: Floats, source: Source) -> tuple[list[Painted], list[Stroke]]:
     images: list[Painted] = []
     strokes: list[Stroke] = []
-    points = 0
+    points = PointCount()
     for number, painted in enumerate(Walk(source).objects(page, to_place)):
         if painted.kind == raw.FPDF_PAGEOBJ_IMAGE:
             images.append(painted)
             continue
         found = strokes_of(painted.handle, Setting(to_place=painted.to_place, clips=painted.clips, path=number))
         strokes.extend(found)
-        points += sum(len(stroke.points) for stroke in found)
+        points.add(sum(len(stroke.points) for stroke in found))
         if len(strokes) > limits.STROKES:
             raise source.over("strokes", limits.STROKES)
-        if points > limits.STROKE_POINTS:
-            raise source.over("points", limits.STROKE_POINTS)
     return images, strokes
 
 

@@ -36,6 +36,8 @@ def opened_page(source: Source) -> Iterator[tuple[pdfium.PdfPage, int]]:
                 page = document[source.page - 1]
             except pdfium.PdfiumError as error:
                 raise source.damaged("PDF") from error
+            if not all(page.get_size()):
+                raise source.damaged("PDF")
             yield page, pages
         finally:
             document.close()

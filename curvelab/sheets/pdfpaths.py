@@ -10,7 +10,7 @@ from pypdfium2 import raw
 from curvelab.records.arrays import Floats
 from curvelab.records.sheet import Stroke
 from curvelab.sheets.bezier import flattened
-from curvelab.sheets.strokes import Colour, Paint, Polyline, Setting, strokes_from
+from curvelab.sheets.strokes import Colour, Paint, PointCount, Polyline, Setting, strokes_from
 
 
 def path_segments(handle: Any) -> Iterator[Any]:
@@ -43,18 +43,22 @@ def subpaths(segments: Iterator[Any], tolerance: float) -> list[Polyline]:
         if len(points) >= 2:
             found.append((np.array(points), closed))
 
+    count = PointCount()
     x, y = ctypes.c_float(), ctypes.c_float()
     for segment in segments:
         raw.FPDFPathSegment_GetPoint(segment, ctypes.byref(x), ctypes.byref(y))
         point = np.array([x.value, y.value])
         kind = raw.FPDFPathSegment_GetType(segment)
+        count.add(1)
         if kind == raw.FPDF_SEGMENT_MOVETO or not points:
             finish()
             points, controls, closed = [point], [], False
         elif kind == raw.FPDF_SEGMENT_BEZIERTO:
             controls.append(point)
             if len(controls) == 3:
-                points.extend(flattened((points[-1], *controls), tolerance))
+                curve = flattened((points[-1], *controls), tolerance)
+                points.extend(curve)
+                count.add(len(curve))
                 controls = []
         else:
             points.append(point)

@@ -6,11 +6,36 @@ import numpy as np
 
 from curvelab.records.arrays import Floats
 from curvelab.records.sheet import Stroke
+from curvelab.sheets import limits
 from curvelab.sheets.affine import apply, scale_of
 from curvelab.sheets.clip import Clip, pieces_inside
 
 FLATNESS = 1e-3
 """Greatest distance in the sheet's unit between a curve and its polyline: below 2e-5 decade at 60 units a decade."""
+
+
+class TooManyPointsError(Exception):
+    """The lines of a page have more points than the limit."""
+
+
+class PointCount:
+    """Counts points while they are made, so that a hostile path is given up early."""
+
+    def __init__(self) -> None:
+        self._points = 0
+
+    def add(self, points: int) -> None:
+        """Count some more.
+
+        Raises
+        ------
+        TooManyPointsError
+            They are more than the limit.
+        """
+        self._points += points
+        if self._points > limits.STROKE_POINTS:
+            raise TooManyPointsError
+
 
 Colour = tuple[int, int, int]
 Polyline = tuple[Floats, bool]

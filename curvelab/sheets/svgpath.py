@@ -8,7 +8,7 @@ import numpy as np
 from curvelab.records.arrays import Floats
 from curvelab.sheets.bezier import flattened
 from curvelab.sheets.ellipse import Arc, arc_points
-from curvelab.sheets.strokes import Polyline
+from curvelab.sheets.strokes import PointCount, Polyline
 from curvelab.sheets.svgnumbers import NUMBER
 
 COUNTS = {"M": 2, "L": 2, "H": 1, "V": 1, "C": 6, "S": 4, "Q": 4, "T": 2, "A": 7, "Z": 0}
@@ -68,6 +68,7 @@ class _Pen:
 
     def __init__(self, tolerance: float) -> None:
         self._tolerance = tolerance
+        self._count = PointCount()
         self._found: list[Polyline] = []
         self._points: list[Floats] = []
         self._control: tuple[str, Floats] | None = None
@@ -121,6 +122,7 @@ class _Pen:
         self._points = [place]
 
     def _add(self, places: Floats) -> None:
+        self._count.add(len(places))
         self._points.extend(places)
 
     def _cubic(self, ends: Floats) -> None:

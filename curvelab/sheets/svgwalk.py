@@ -13,7 +13,7 @@ from curvelab.sheets.affine import apply, compose, from_six, scale_of
 from curvelab.sheets.characters import Character
 from curvelab.sheets.clip import Clip, clip_of
 from curvelab.sheets.source import Source
-from curvelab.sheets.strokes import FLATNESS, Paint, Setting, strokes_from
+from curvelab.sheets.strokes import FLATNESS, Paint, PointCount, Setting, strokes_from
 from curvelab.sheets.svgnumbers import colour, length, numbers, transform
 from curvelab.sheets.svgshapes import SHAPES, shape_polylines
 from curvelab.sheets.svgstyle import INITIAL, Rules, local_name, style_of
@@ -43,7 +43,7 @@ class SvgWalk:
         self._source = source
         self._named = {name: element for element in root.iter() if (name := element.get("id"))}
         self._seen = 0
-        self._points = 0
+        self._points = PointCount()
         self._paths = 0
 
     def visit_children(self, root: Element, to_place: Floats) -> None:
@@ -105,9 +105,7 @@ class SvgWalk:
         self._paths += 1
         setting = Setting(to_place=state.to_place, clips=state.clips, path=self._paths)
         polylines = shape_polylines(element, setting.tolerance)
-        self._points += sum(len(points) for points, _ in polylines)
-        if self._points > limits.STROKE_POINTS:
-            raise self._source.over("points", limits.STROKE_POINTS)
+        self._points.add(sum(len(points) for points, _ in polylines))
         self.strokes += strokes_from(polylines, paint, setting)
         if len(self.strokes) > limits.STROKES:
             raise self._source.over("strokes", limits.STROKES)

@@ -24,7 +24,9 @@ def pdf(objects: Mapping[int, bytes | str]) -> bytes:
     return bytes(out)
 
 
-def one_page(content: str, page: str = "", resources: str = "", extra: Mapping[int, bytes | str] | None = None) -> bytes:
+def one_page(
+    content: str, page: str = "", resources: str = "", extra: Mapping[int, bytes | str] | None = None
+) -> bytes:
     """A file of one page, 200 x 300 points unless ``page`` says otherwise; ``extra`` objects count from 5."""
     box = "" if "/MediaBox" in page else "/MediaBox [0 0 200 300]"
     return pdf(
