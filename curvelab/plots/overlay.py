@@ -58,7 +58,8 @@ def overlay_figure(reading: Reading) -> Figure:
         ]
         for curve, trace in traced:
             _draw_trace(ground, curve.curve.edge, trace)
-        _draw_names(ground, traced)
+        if traced:
+            _draw_names(ground, traced)
         _draw_given(ground, reading)
     return ground.figure
 
@@ -136,13 +137,14 @@ def _draw_trace(ground: Ground, edge: Edge, trace: Trace) -> None:
 
 
 def _draw_names(ground: Ground, traced: Sequence[tuple[ReadCurve, Trace]]) -> None:
-    """Each curve's name beside it, where it covers least."""
+    """Each curve's name beside it, where it covers least; a dot says which line is meant."""
     lines = [np.column_stack(ground.at(trace.places)) for _, trace in traced]
     letter = LETTERS * ground.figure.dpi / 72
     words = Words(lines=lines, letter=(0.6 * letter, 1.3 * letter), page=ground.size)
     for line, (curve, _) in zip(lines, traced, strict=True):
         name = _curve_words(curve)
         place, right = words.beside(line, name)
+        ground.canvas.plot(*place, marker="o", markersize=2.2, color=INK, linestyle="none", zorder=5)
         _words(ground, place, name, INK, (5.0 if right else -5.0, 0.0))
 
 

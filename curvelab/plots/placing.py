@@ -22,7 +22,7 @@ class Words:
     Parameters
     ----------
     lines : sequence of array, shape (n, 2)
-        Places across and down that should stay free, about evenly spaced.
+        Polylines across and down that should stay free, also where they jump a gap.
     letter : tuple of float
         Width and height of a letter, in the same unit.
     page : tuple of float
@@ -33,6 +33,10 @@ class Words:
     letter: tuple[float, float]
     page: tuple[float, float]
     taken: list[Box] = field(default_factory=list)
+    _points: Floats = field(init=False)
+
+    def __post_init__(self) -> None:
+        self._points = np.concatenate([_dense(line, self.letter[0] / 2) for line in self.lines])
 
     def beside(self, line: Floats, text: str) -> tuple[tuple[float, float], bool]:
         """The point of the line beside which the text covers least, and whether it stands to its right."""
@@ -49,8 +53,15 @@ class Words:
 
     def _covered(self, box: Box) -> float:
         x0, y0, x1, y1 = box
-        points = np.concatenate(self.lines)
-        inside = (points[:, 0] > x0) & (points[:, 0] < x1) & (points[:, 1] > y0) & (points[:, 1] < y1)
+        across, down = self._points.T
+        inside = (across > x0) & (across < x1) & (down > y0) & (down < y1)
         clashes = sum(x0 < other[2] and other[0] < x1 and y0 < other[3] and other[1] < y1 for other in self.taken)
         outside = x0 < 0 or y0 < 0 or x1 > self.page[0] or y1 > self.page[1]
         return float(inside.sum()) + TAKEN_WEIGHT * clashes + OUTSIDE_WEIGHT * outside
+
+
+def _dense(line: Floats, step: float) -> Floats:
+    """Points along a polyline at even steps."""
+    along = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(line, axis=0).T))])
+    even = np.arange(0.0, along[-1] + step, step)
+    return np.column_stack([np.interp(even, along, line[:, axis]) for axis in (0, 1)])
