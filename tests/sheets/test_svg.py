@@ -1,14 +1,16 @@
-"""SVG files: path data against closed forms, and whole pages by three writers."""
+"""SVG files: path data against closed forms, and whole pages by two writers."""
 
 import io
 import math
 
-import cairo
 import matplotlib as mpl
 import numpy as np
 import pytest
 from matplotlib.backends.backend_svg import FigureCanvasSVG
 from matplotlib.figure import Figure
+from reportlab.graphics import renderSVG
+from reportlab.graphics.shapes import Drawing, PolyLine, String
+from reportlab.lib.colors import Color
 from svgelements import Path
 
 from curvelab.errors import SheetError
@@ -51,21 +53,18 @@ def test_a_matplotlib_page_is_exact() -> None:
     assert (sheet.unit, sheet.width, sheet.height) == ("px", pytest.approx(595.44), pytest.approx(841.68))
 
 
-def test_a_cairo_page_is_exact() -> None:
+def test_a_reportlab_page_is_exact() -> None:
     places = np.stack([np.linspace(60, 300, 40), np.linspace(5, 18, 40) ** 2], axis=1)
-    buffer = io.BytesIO()
-    with cairo.SVGSurface(buffer, 400, 500) as surface:
-        context = cairo.Context(surface)
-        context.set_source_rgb(1, 0, 0)
-        context.set_line_width(1.5)
-        context.set_dash([4, 2])
-        for place in places:
-            context.line_to(*place)
-        context.stroke()
-    sheet = sheet_from_bytes("a.svg", buffer.getvalue())
-    (curve,) = sheet.strokes
-    assert np.abs(curve.points - places).max() <= 0.5 / 256  # cairo keeps coordinates in steps of 1/256
-    assert (curve.colour, curve.width, curve.dash) == ((255, 0, 0), 1.5, (4.0, 2.0))
+    drawing = Drawing(400, 500)
+    drawing.add(PolyLine(places.ravel().tolist(), strokeColor=Color(1, 0, 0), strokeWidth=1.5, strokeDashArray=[4, 2]))
+    drawing.add(String(100, 200, "Time in s", textAnchor="middle", fontSize=9))
+    sheet = sheet_from_bytes("a.svg", renderSVG.drawToString(drawing).encode())
+    (curve,) = (stroke for stroke in sheet.strokes if stroke.colour == (255, 0, 0))
+    assert np.abs(curve.points - (places * [1, -1] + [0, 500])).max() <= 6e-5  # it writes seven figures
+    assert (curve.width, curve.dash) == (1.5, (4.0, 2.0))
+    (word,) = sheet.words
+    assert (word.text, word.height, word.turned_deg) == ("Time in s", 9, 0)
+    assert sum(word.box[::2]) / 2 == pytest.approx(100, abs=1.0)
 
 
 PATHS = [
