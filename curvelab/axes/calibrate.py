@@ -1,7 +1,5 @@
 """Axes of a plot from marks and the grid that is printed there."""
 
-import numpy as np
-
 from curvelab.axes.entries import checked_axes
 from curvelab.axes.finish import finished_axes
 from curvelab.axes.raster import raster_grid
@@ -30,8 +28,6 @@ def calibrate(sheet: Sheet, current: AxisEntry, value: AxisEntry) -> tuple[Axes,
         Marks, units, factors or directions that cannot be used.
     """
     axes, warnings = checked_axes(sheet, current, value)
-    grid = vector_grid(sheet, axes) if sheet.is_vector else None
-    if grid is None or not grid.lines:
-        grid = raster_grid(sheet.pixels, axes)
+    grid = raster_grid(sheet.pixels, axes) if sheet.pixels else vector_grid(sheet, axes)
     calibrated, doubts = finished_axes(sheet, axes, grid)
     return calibrated, (*warnings, *doubts)

@@ -3,6 +3,7 @@
 import math
 from typing import get_args
 
+from curvelab.axes.marks import pixel_size
 from curvelab.errors import AxesError, InputError
 from curvelab.records.axes import Axis, Direction, Mark, Scale
 from curvelab.records.sheet import Sheet
@@ -129,7 +130,7 @@ def _check_mark(sheet: Sheet, axis: Axis, mark: Mark) -> None:
 
 def _check_pairs(sheet: Sheet, axis: Axis) -> None:
     index = 0 if axis.direction == "x" else 1
-    least = CLOSEST_MARKS * sheet.pixels.size_in_places
+    least = CLOSEST_MARKS * pixel_size(sheet)
     for i, first in enumerate(axis.marks):
         for second in axis.marks[i + 1 :]:
             pair = f"{mark_text(first)} and {mark_text(second)} of {table_name(axis.quantity)}"

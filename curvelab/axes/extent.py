@@ -86,13 +86,15 @@ def _ends(share: Floats, first: int, last: int) -> tuple[int, int]:
     least = THERE * usual
 
     def stop(start: int, step: int) -> int:
-        # The mean of the run that lies ahead tells whether the lines go on.
+        # The mean of the run that lies ahead tells whether the lines go on; then pixel by pixel to the very end.
         k = start
-        while 0 <= k < len(share) and _ahead(share, k, step) >= least:
+        while 0 <= k + step < len(share) and _ahead(share, k, step) >= least:
             k += step
-        while 0 <= k - step < len(share) and share[min(max(k, 0), len(share) - 1)] < least:
+        while 0 <= k - step < len(share) and share[k] < least:
             k -= step
-        return min(max(k, 0), len(share) - 1)
+        while 0 <= k + step < len(share) and share[k + step] >= least:
+            k += step
+        return k
 
     return stop(first, -1), stop(last, 1)
 

@@ -6,8 +6,8 @@ import numpy as np
 
 from curvelab.axes.entries import mark_text, table_name
 from curvelab.axes.grid import AXIS_NAMES, Grid, rough_rows
-from curvelab.axes.marks import AGREEING, CLICK_SD, FEWEST_LINES, fitted_ruler, mark_values, with_marks
-from curvelab.axes.planefit import Fitted, Line, Scatter, affine_map, fit_plane
+from curvelab.axes.marks import AGREEING, CLICK_SD, FEWEST_LINES, fitted_ruler, mark_places, mark_values, pixel_size, with_marks
+from curvelab.axes.planefit import RICHER, Fitted, Line, Scatter, affine_map, fit_plane
 from curvelab.axes.snapped import SNAPPED_SD, snapped_axes
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, GridLine, PlaneMap
@@ -24,8 +24,8 @@ VECTOR_SD = 1e-5
 
 def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Axes, tuple[ReadingWarning, ...]]:
     """Fit the final map in places of the sheet and say what is doubtful."""
-    pixel = sheet.pixels.size_in_places
-    snapped = (False, False) if sheet.is_vector else snapped_axes(sheet.pixels, axes, grid.lines)
+    pixel = pixel_size(sheet)
+    snapped = snapped_axes(sheet.pixels, axes, grid.lines) if sheet.pixels else (False, False)
     fitted, used = _fitted(sheet, axes, grid, snapped)
     marked = (_with_residuals(axes[0], 0, fitted.map), _with_residuals(axes[1], 1, fitted.map))
     residuals = np.array([mark.residual for axis in marked for mark in axis.marks])
@@ -50,19 +50,17 @@ def _fitted(
     sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid, snapped: tuple[bool, bool]
 ) -> tuple[Fitted, tuple[bool, bool]]:
     """The map, and for each axis whether its lines decided."""
-    pixel = sheet.pixels.size_in_places
-    places = (_mark_places(axes[0]), _mark_places(axes[1]))
+    pixel = pixel_size(sheet)
+    places = (mark_places(axes[0]), mark_places(axes[1]))
     lines = [_line(axes, line) for line in grid.lines]
     used = tuple(sum(line.axis == k for line in lines) >= FEWEST_LINES for k in (0, 1))
     lines, tilts = with_marks(lines, axes, places, pixel)
-    least, place = (VECTOR_SD, VECTOR_SD) if sheet.is_vector else (LEAST_LINE_SD * pixel, LEAST_PLACE_SD * pixel)
+    least, place = (VECTOR_SD, VECTOR_SD) if sheet.pixels is None else (LEAST_LINE_SD * pixel, LEAST_PLACE_SD * pixel)
     line_sds = [SNAPPED_SD * pixel if moved else least for moved in snapped]
     scatter = Scatter(lines=(line_sds[0], line_sds[1]), place=place)
-    return fit_plane(_start(axes, places, lines), lines, scatter, tilts), (used[0], used[1])
-
-
-def _mark_places(axis: Axis) -> Floats:
-    return np.array([mark.at for mark in axis.marks], dtype=np.float64)
+    # Strokes lie where an affine map put them; pixels may have been bent on the way.
+    models = () if sheet.pixels is None else RICHER
+    return fit_plane(_start(axes, places, lines), lines, scatter, tilts, models), (used[0], used[1])
 
 
 def _line(axes: tuple[Axis, Axis], line: GridLine) -> Line:
@@ -85,7 +83,7 @@ def _start(axes: tuple[Axis, Axis], places: tuple[Floats, Floats], lines: list[L
 
 def _with_residuals(axis: Axis, index: int, plane: PlaneMap) -> Axis:
     """The axis with each mark's distance along it from where the map has its value."""
-    places = _mark_places(axis)
+    places = mark_places(axis)
     along = plane.jacobian(places)[:, index, 0 if axis.direction == "x" else 1]
     residuals = (plane.scaled(places)[:, index] - mark_values(axis)) / along
     marks = (replace(mark, residual=float(residual)) for mark, residual in zip(axis.marks, residuals, strict=True))

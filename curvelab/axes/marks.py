@@ -8,9 +8,12 @@ from curvelab.axes.comb import Ruler
 from curvelab.axes.planefit import Line, Tilt
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axis
+from curvelab.records.sheet import Sheet
 
 CLICK_SD = 0.7
 """Standard deviation of a mark clicked by hand, in pixels; common practice, confirmed by no published figure."""
+
+SEEN_HIGH = 2000.0
 
 AGREEING = 4.0
 """Pixels from the ruler within which a mark is clicked as well as hands do."""
@@ -26,9 +29,19 @@ FEWEST_LINES = 3
 """Grid lines from which on an axis needs no marks."""
 
 
+def pixel_size(sheet: Sheet) -> float:
+    """What a hand clicks by, in the sheet's unit: a pixel of the image, or of a vector page seen 2000 pixels high."""
+    return sheet.pixels.size_in_places if sheet.pixels else max(sheet.width, sheet.height) / SEEN_HIGH
+
+
 def mark_values(axis: Axis) -> Floats:
     """Scaled values of an axis's marks."""
     return axis.scaled([axis.value_of(mark) for mark in axis.marks])
+
+
+def mark_places(axis: Axis) -> Floats:
+    """Places of an axis's marks, shape (n, 2)."""
+    return np.array([mark.at for mark in axis.marks], dtype=np.float64)
 
 
 def fitted_ruler(across: Floats, scaled: Floats) -> Ruler:

@@ -151,7 +151,10 @@ def fit_plane(
     for model in models:
         if fewest < model.lines:
             break
-        trial = problem.solved(start, model)
+        try:
+            trial = problem.solved(start, model)
+        except AxesError:
+            continue
         if trial.criterion < best.criterion - CLEARLY:
             best = trial
     return best
