@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 from curvelab.errors import FitError
 from curvelab.fit.corners import corner_kinks, kinks_of
 from curvelab.fit.exact import corners_of, kept_samples, points_piece
-from curvelab.fit.gaps import runs_of
+from curvelab.fit.gaps import gap_at, runs_of
 from curvelab.fit.kinks import kink_candidates
 from curvelab.fit.noise import Noise
 from curvelab.fit.rotate import unrotated
@@ -76,7 +76,7 @@ def _fit_exact(strand: Strand) -> CurveFit:
         rising=strand.rising,
         pieces=tuple(points_piece(one) for one in samples),
         kinks=tuple(kink for one in samples for kink in corner_kinks(one, strand.rising)),
-        gaps=(),
+        gaps=tuple(gap_at(strand, k, bridged=False) for k in strand.gaps),
         parts=tuple(part_of(one, rising=strand.rising) for one in samples),
         smoothing=(0.0,) * len(samples),
         edf=float(sum(len(indices) for indices in corners)),

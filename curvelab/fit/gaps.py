@@ -46,14 +46,17 @@ def runs_of(strand: Strand, segments: Segments) -> tuple[list[Run], list[FitGap]
         bridged = _bridged(strand, segments, k)
         if not bridged:
             cuts.append(k)
-        ends = unrotated(strand.u[k - 1 : k + 1], strand.v[k - 1 : k + 1], strand.rising)
-        start, end = (
-            (float(log_current), float(log_value)) for log_current, log_value in zip(ends[0], ends[1], strict=True)
-        )
-        gaps.append(FitGap(start=start, end=end, bridged=bridged))
+        gaps.append(gap_at(strand, k, bridged=bridged))
     edges = [*cuts, len(strand.u)]
     runs = [Run(first=a, last=b) for a, b in pairwise(edges)]
     return [run for run in runs if np.count_nonzero(strand.kept[run.first : run.last]) >= 2], gaps
+
+
+def gap_at(strand: Strand, k: int, *, bridged: bool) -> FitGap:
+    """The gap between points k - 1 and k."""
+    log_current, log_value = unrotated(strand.u[k - 1 : k + 1], strand.v[k - 1 : k + 1], strand.rising)
+    start, end = zip(log_current.tolist(), log_value.tolist(), strict=True)
+    return FitGap(start=start, end=end, bridged=bridged)
 
 
 def _bridged(strand: Strand, segments: Segments, k: int) -> bool:

@@ -22,6 +22,9 @@ LEAST_JUMP = 0.02
 MEMBERS = 20
 """Groups of points that a parabola is fitted to; at the shortest length a group is one point."""
 
+STRIDE = 3
+"""Of the places between groups, every so many-th is looked at: a jump stands out over many."""
+
 FEWEST_MEMBERS = 6
 LONGEST = 0.3
 """Decades that a parabola covers at most."""
@@ -64,7 +67,7 @@ def slope_jumps(groups: "_Groups", noise: Noise) -> Jumps:
     u, v, weight = groups.u, groups.v, groups.weight
     step = float(np.median(np.diff(u)))
     members = MEMBERS + int(np.ceil(groups.hole / max(step, 1e-12)))
-    place = 0.5 * (u[1:] + u[:-1])
+    place = (0.5 * (u[1:] + u[:-1]))[::STRIDE]
     length = min(members * step, LONGEST)
     distance = _windows(u, members) - place[:, None]
     weights = _windows(np.where(weight > 0.0, weight, 0.0), members, ends=0.0)
@@ -106,12 +109,12 @@ class _Groups:
 
 
 def _windows(values: Floats, members: int, ends: float | None = None) -> Floats:
-    """The ``members`` values on either side of every place between two values, shape (places, 2 members)."""
+    """The ``members`` values on either side of every ``STRIDE``-th place between two, shape (places, 2 members)."""
     if ends is None:
         padded = np.pad(values, members - 1, mode="edge")
     else:
         padded = np.pad(values, members - 1, constant_values=ends)
-    return sliding_window_view(padded, 2 * members)
+    return sliding_window_view(padded, 2 * members)[::STRIDE]
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)

@@ -71,16 +71,17 @@ def fit_segments(strand: Strand, noise: Noise, kinks: list[float], numbers: int 
     noise = _noise(strand, stretches)
     stretches = _fitted(strand, noise, kinks, numbers, stretches)
     kinks, stretches = _needed(strand, noise, kinks, stretches)
-    for _ in range(REFINEMENTS):
-        before = kinks
-        kinks, stretches = _crossed(strand, kinks, stretches, approach=True)
-        stretches = _fitted(strand, noise, kinks, numbers, stretches, settled=True)
-        noise = _noise(strand, stretches)
-        if len(before) == len(kinks) and np.allclose(before, kinks, rtol=0.0, atol=0.5 * strand.spacing):
+    for round_ in range(REFINEMENTS):
+        crossings, _ = _crossed(strand, kinks, stretches, approach=True)
+        settled = len(crossings) == len(kinks) and np.allclose(crossings, kinks, rtol=0.0, atol=0.5 * strand.spacing)
+        if round_ > 0 and settled:
             break
+        kinks, forms = crossings, stretches if len(crossings) == len(kinks) else []
+        stretches = _fitted(strand, noise, kinks, numbers, forms, settled=True)
+        noise = _noise(strand, stretches)
     vertices, joined = _crossed(strand, kinks, stretches)
     while len(joined) != len(stretches):
-        stretches = _fitted(strand, noise, vertices, numbers, [])
+        stretches = _fitted(strand, noise, vertices, numbers, [], settled=True)
         vertices, joined = _crossed(strand, vertices, stretches)
     return Segments(strand=strand, stretches=tuple(joined), vertices=tuple(vertices), noise=noise)
 
@@ -125,7 +126,8 @@ def _fitted(
 ) -> list[Stretch]:
     """Fit the stretches between the kinks.
 
-    Those that were straight before leave their numbers to the others; ``settled`` keeps every form as it was before.
+    Those that were straight before leave their numbers to the others; ``settled`` keeps every form as it was before
+    and makes every stretch monotone.
     """
     spans = list(pairwise([None, *kinks, None]))
     forms = [stretch.form for stretch in before] if len(before) == len(spans) else [None] * len(spans)
@@ -135,7 +137,7 @@ def _fitted(
     length = sum(extent.end - extent.start for extent in curved)
     step = max(length / max(numbers - fixed, 4), LEAST_STEP, POINTS_A_STEP * strand.spacing)
     return [
-        fit_stretch(strand, noise, replace(extent, step=step, form=form if settled else None))
+        fit_stretch(strand, noise, replace(extent, step=step, form=form if settled else None, settled=settled))
         for extent, form in zip(extents, forms, strict=True)
     ]
 

@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.interpolate import BSpline
+from scipy.interpolate import BSpline, splev
 
 from curvelab.fit.noise import TUKEY, Noise
 from curvelab.fit.smooth import DEGREE, design, fit_smooth, uniform_knots
@@ -42,15 +42,12 @@ class Stretch:
 
     def value(self, u: Floats) -> Floats:
         """V at u; beyond the knots the end's tangent goes on (only ever used on the way to a kink)."""
-        inside = np.clip(u, self.knots[self.degree], self.knots[-self.degree - 1])
-        on_knots: Floats = self._spline(inside)
-        return on_knots + self.slope(u) * (u - inside)
+        inside = self._inside(u)
+        return self._evaluated(inside, 0) + self.slope(u) * (u - inside)
 
     def slope(self, u: Floats) -> Floats:
         """dv/du at u."""
-        inside = np.clip(u, self.knots[self.degree], self.knots[-self.degree - 1])
-        derived: Floats = np.clip(self._spline.derivative()(inside), -1.0, 1.0)
-        return derived
+        return np.clip(self._evaluated(self._inside(u), 1), -1.0, 1.0)
 
     def variance(self, u: Floats) -> Floats:
         """Variance of v at u, in decades^2."""
@@ -62,9 +59,11 @@ class Stretch:
         basis = design(u, self.knots, self.degree)
         return _quadratic(basis, self.scatter)
 
-    @property
-    def _spline(self) -> BSpline:
-        return BSpline(self.knots, self.coefficients, self.degree, extrapolate=True)
+    def _inside(self, u: Floats) -> Floats:
+        return np.clip(u, self.knots[self.degree], self.knots[-self.degree - 1])
+
+    def _evaluated(self, u: Floats, derivative: int) -> Floats:
+        return np.asarray(splev(u, (self.knots, self.coefficients, self.degree), der=derivative), dtype=np.float64)
 
 
 def _quadratic(basis: Floats, matrix: Floats) -> Floats:
@@ -75,7 +74,10 @@ def _quadratic(basis: Floats, matrix: Floats) -> Floats:
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Extent:
-    """Which points a stretch has, the range of u its model must cover, the knots' spacing, and its form if settled."""
+    """Which points a stretch has, the range of u its model must cover, the knots' spacing, and its form where known.
+
+    Until the kinks are ``settled``, models are compared only, for which fewer passes do and slopes may be free.
+    """
 
     first: int
     last: int
@@ -83,6 +85,7 @@ class Extent:
     end: float
     step: float
     form: Form | None = None
+    settled: bool = False
 
 
 def fit_stretch(strand: Strand, noise: Noise, extent: Extent) -> Stretch:
@@ -141,8 +144,9 @@ def _spline(data: _Data, extent: Extent) -> Stretch:
     basis = design(data.u, knots)
     slopes = BSpline.design_matrix(data.u, knots[1:-1], DEGREE - 1).toarray()
     slope, robust = np.zeros_like(data.u), data.kept.astype(float)
-    for remaining in reversed(range(PASSES)):
-        smooth = fit_smooth(basis, data.v, data.weight(slope, robust), step if remaining == 0 else np.inf)
+    for remaining in reversed(range(PASSES if extent.settled else PASSES - 1)):
+        monotone = extent.settled and remaining == 0
+        smooth = fit_smooth(basis, data.v, data.weight(slope, robust), step if monotone else np.inf)
         slope = np.clip(slopes @ (np.diff(smooth.coefficients) / step), -1.0, 1.0)
         residual = data.residual(basis @ smooth.coefficients, slope)
         robust = data.robust(residual)

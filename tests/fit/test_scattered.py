@@ -57,7 +57,7 @@ def test_stated_intervals_hold_the_truth():
     inside, points = 0, 0
     for noise in NOISES:
         for form in FORMS:
-            truth, results = fits(form, noise, SEEDS[:4])
+            truth, results = fits(form, noise, SEEDS[:3])
             for fit in results:
                 error, sd = errors_along(truth, fit, px=PX)
                 inside += np.count_nonzero(np.abs(error) <= COVERAGE_FACTOR * sd)
