@@ -56,7 +56,8 @@ def _element_times(element: Lines, edge: Edge, units: Units, asked: tuple[Floats
     founds = []
     for line in element.lines:
         unit = units[line.curve.base]
-        founds.append(times_of(line, current / unit, None if breaking is None else breaking / unit, own=own))
+        in_base = current if unit == 1.0 else current / unit
+        founds.append(times_of(line, in_base, None if breaking is None else breaking / unit, own=own))
     return _over_conditions(founds, edge)
 
 

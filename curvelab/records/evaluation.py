@@ -8,7 +8,7 @@ import numpy as np
 from curvelab.records.arrays import Floats
 from curvelab.records.chains import Chain, best_chain, bound_chains, falls
 from curvelab.records.curve import Curve
-from curvelab.records.power_table import PowerTable, chain_table, end_to_end, side_by_side
+from curvelab.records.power_table import PowerTable, chain_table, end_to_end, side_by_side, with_bounds
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -86,9 +86,6 @@ def _bounded(table: PowerTable, asked: Floats) -> Bounded:
         unknown = np.broadcast_to(np.nan, asked.shape)
         return Bounded(value=answers[0], lower=unknown, upper=unknown)
     value, lower, upper = answers
-    # The chains enclose the best line; this takes care of their last digit.
-    np.minimum(lower, value, out=lower)
-    np.maximum(upper, value, out=upper)
     return Bounded(value=value, lower=lower, upper=upper)
 
 
@@ -109,7 +106,7 @@ def _value_table(curve: Curve, own: bool) -> PowerTable:
     ]
     value = end_to_end(parts, first=first)
     bounds = _bounds_table(curve, own)
-    return value if bounds is None else _masked(side_by_side([value, bounds]))
+    return value if bounds is None else with_bounds(value, bounds)
 
 
 @lru_cache(maxsize=1024)
@@ -135,9 +132,8 @@ def _current_table(curve: Curve) -> PowerTable:
     if bounds is None:
         return current
     lower, upper = bounds
-    return _masked(
-        side_by_side([current, _inverse(lower, first=False, clamped=True), _inverse(upper, first=True, clamped=True)])
-    )
+    sides = [_inverse(lower, first=False, clamped=True), _inverse(upper, first=True, clamped=True)]
+    return with_bounds(current, side_by_side(sides))
 
 
 def _inverse(chain: Chain, *, first: bool, clamped: bool) -> PowerTable:
@@ -152,17 +148,6 @@ def _bridged(chain: Chain, edge: str) -> Chain:
     current = np.insert(chain.current, at, chain.current[at - 1] if edge == "fast" else chain.current[at])
     value = np.insert(chain.value, at, chain.value[at] if edge == "fast" else chain.value[at - 1])
     return Chain(current=current, value=value, starts=(0,))
-
-
-def _masked(table: PowerTable) -> PowerTable:
-    """No interval where there is no value."""
-    covered = ~np.isnan(table.value[0])
-    return PowerTable(
-        breaks=table.breaks,
-        log_anchor=table.log_anchor,
-        value=np.where(covered, table.value, np.nan),
-        slope=table.slope,
-    )
 
 
 @lru_cache(maxsize=1024)

@@ -1,7 +1,7 @@
 """Straight lines in log-log as a table of power laws: several chains looked up at once, with one search."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -10,7 +10,10 @@ from curvelab.records.arrays import Floats
 NUDGE = 1e-12
 """Relative distance within which an asked number counts as a tabulated one: turning currents between bases rounds."""
 
-_BLOCK = 16_384
+_VERTICAL = 1e-9
+"""Two points this close in ln of what is given are one step: a nudge is small beside it."""
+
+_BLOCK = 65_536
 """Numbers worked at a time, so that what is in between stays in the processor's cache."""
 
 _SLICING_PAYS_FROM = 64
@@ -27,12 +30,15 @@ class PowerTable:
         Rising; row i lies between breaks i - 1 and i.
     log_anchor, value, slope : array, shape (k, m + 1)
         NaN value where the row is not covered. At an anchor the answer is exactly the tabulated value.
+    enclosing : bool
+        Chains 1 and 2 are the bounds of chain 0: no rounding leaves it outside them.
     """
 
     breaks: Floats
     log_anchor: Floats
     value: Floats
     slope: Floats
+    enclosing: bool = False
 
     def __call__(self, asked: Floats) -> Floats:
         """Answers of the k chains, shape (k, n), at the n positive numbers asked."""
@@ -40,6 +46,10 @@ class PowerTable:
         for start in range(0, asked.size, _BLOCK):
             here = slice(start, start + _BLOCK)
             self._answer(asked[here], answers[:, here])
+            if self.enclosing:
+                value, lower, upper = answers[:, here]
+                np.minimum(lower, value, out=lower)
+                np.maximum(upper, value, out=upper)
         return answers
 
     def _answer(self, asked: Floats, answers: Floats) -> None:
@@ -85,7 +95,7 @@ def chain_table(given: Floats, answer: Floats, *, first: bool, clamped: bool = F
     breaks = np.concatenate((before[:1], after) if first else (before, after[-1:]))
     log_given = np.log(given)
     run, rise = np.diff(log_given), np.diff(np.log(answer))
-    slope = np.divide(rise, run, out=np.zeros_like(run), where=run != 0)
+    slope = np.divide(rise, run, out=np.zeros_like(run), where=run > _VERTICAL)
     # Each row is anchored where it is closed, so that a tabulated number gives its tabulated answer to the last digit;
     # the one end that no row closes has a row of its own.
     level = np.zeros(1)
@@ -97,6 +107,13 @@ def chain_table(given: Floats, answer: Floats, *, first: bool, clamped: bool = F
         value=np.concatenate((ends[:1], answer, ends[1:]))[None],
         slope=np.concatenate(slopes)[None],
     )
+
+
+def with_bounds(value: PowerTable, bounds: PowerTable) -> PowerTable:
+    """A value with its lower and upper bound: none of them where there is no value."""
+    table = side_by_side([value, bounds])
+    covered = ~np.isnan(table.value[0])
+    return replace(table, value=np.where(covered, table.value, np.nan), enclosing=True)
 
 
 def side_by_side(tables: Sequence[PowerTable]) -> PowerTable:

@@ -223,3 +223,10 @@ def test_curves_gather_into_bands_and_a_band_asks_its_edges():
     inverse = first.currents("fast", np.array([0.4]))
     assert inverse is not None
     assert inverse.value[0] == 5.0
+
+
+def test_two_points_a_rounding_apart_are_one_step():
+    near = typed_part([2.0, 5.0, 5.0 * (1 + 1e-13), 40.0], [100.0, 8.0, 0.05, 0.02])
+    assert at(curve("slow", near), 5.0).value[0] == 8.0
+    assert at(curve("fast", near), 5.0).value[0] == pytest.approx(0.05, rel=1e-9)
+    assert currents_at(curve("slow", near), np.array([0.4])).value[0] == pytest.approx(5.0, rel=1e-9)
