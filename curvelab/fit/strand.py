@@ -7,6 +7,7 @@ from numpy.lib.stride_tricks import sliding_window_view
 from numpy.typing import NDArray
 
 from curvelab.errors import FitError
+from curvelab.fit.islands import SCATTER, on_the_line
 from curvelab.fit.noise import Noise, stated_noise
 from curvelab.fit.rotate import rotated
 from curvelab.records.arrays import Floats
@@ -73,24 +74,26 @@ def strand_of(points: FitPoints, *, rising: bool) -> Strand:
     _check(points)
     u, v = rotated(points.log_current, points.log_value, rising)
     _check_direction(points, u, v, rising)
-    order = np.argsort(u, kind="stable")
-    backwards = u[0] > u[-1]
-    if backwards:
-        order = np.argsort(u[::-1], kind="stable")
-        order = len(u) - 1 - order
+    backwards = bool(u[0] > u[-1])
+    along = np.arange(len(u))[::-1] if backwards else np.arange(len(u))
+    order = along[np.argsort(u[along], kind="stable")]
+    kept = np.zeros(len(u), dtype=bool)
+    tolerance = SCATTER * float(np.median(points.sd)) + 0.25 * points.blur
+    kept[along] = on_the_line(u[along], v[along], tolerance)
     first_after_gap = [k - 1 if backwards else k for k in points.breaks]
     place = np.empty(len(u), dtype=np.intp)
     place[order] = np.arange(len(u))
     gaps = tuple(sorted({int(place[k]) for k in first_after_gap if 0 <= k < len(u)} - {0}))
-    u, v = u[order], v[order]
+    u, v, sd, kept = u[order], v[order], points.sd[order], kept[order]
+    kept[kept] = _not_stray(u[kept], v[kept], sd[kept])
     return Strand(
         u=u,
         v=v,
-        sd=points.sd[order],
+        sd=sd,
         common=points.common[order],
         order=order,
         gaps=gaps,
-        kept=_not_stray(u, v, points.sd[order]),
+        kept=kept,
         rising=rising,
         blur=points.blur,
         correlation_length=points.correlation_length,

@@ -177,3 +177,20 @@ def test_what_is_no_curve_is_refused(x, y, message):
 
 def replaced(points, **changes):
     return dataclasses.replace(points, **changes)
+
+
+@pytest.mark.parametrize("form", FORMS)
+@pytest.mark.parametrize(("count", "off_px"), [(20, 3.0), (60, 20.0)])
+def test_a_run_of_points_on_something_else_is_not_followed(form, count, off_px):
+    truth = FORMS[form]()
+    points = drawn(truth, np.random.default_rng(11), noise=lambda rng, n: correlated(rng, n, 1.2))
+    x, y = points.log_current.copy(), points.log_value.copy()
+    run = slice(250, 250 + count)
+    x[run] += off_px / PX / np.sqrt(2.0)
+    y[run] += off_px / PX / np.sqrt(2.0)
+    fit = fit_curve(replaced(points, log_current=x, log_value=y))
+    error, _ = errors_along(truth, fit, px=PX)
+    assert set(range(250, 250 + count)) <= set(fit.strays)
+    assert len(fit.strays) < count + 25
+    assert len(fit.kinks) == len(truth.kinks)
+    assert np.abs(error).max() * PX < 0.15
