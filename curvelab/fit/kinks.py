@@ -199,8 +199,7 @@ def _best_split(groups: "_Groups", near: float, length: float) -> _Split | None:
 
 
 def _agrees(jump: float, place: float, finer: Jumps) -> bool:
+    """Whether parabolas of a shorter length see the same jump somewhere near, or cannot tell."""
     near = (np.abs(finer.place - place) <= 0.5 * finer.length) & np.isfinite(finer.sd)
-    if not near.any():
-        return True
-    k = np.flatnonzero(near)[np.argmax(finer.gain[near])]
-    return bool(abs(jump - finer.jump[k]) <= 0.3 * abs(jump) + 3.0 * finer.sd[k])
+    alike = np.abs(jump - finer.jump[near]) <= 0.3 * abs(jump) + 3.0 * finer.sd[near]
+    return bool(alike.any() or not near.any())
