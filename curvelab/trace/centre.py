@@ -15,6 +15,7 @@ from curvelab.records.arrays import Floats
 from curvelab.trace.course import Course, recentred
 from curvelab.trace.prepared import Raster
 from curvelab.trace.profile import StrokeProfile, stroke_profile
+from curvelab.trace.thinning import Mask
 
 PASSES = 3
 STEPS = 3
@@ -27,6 +28,12 @@ TWO_LEVEL_FLOOR = 0.3
 """The same in a 1-bit scan: pixels at a stroke's edges are black or white, not grey."""
 GRID_DOUBT = 0.06
 """Doubt of the predicted grid ink, in shares of it."""
+STEADY = 0.5
+"""px: a centre this far from the line through its neighbours counts a quarter."""
+STRAY = 0.3
+"""px: beyond this and three standard deviations a centre is another stroke's."""
+LEAST_SD = 0.02
+"""px: what renderers that count few sub-pixels leave even without noise."""
 COVERED_SD = 0.1
 """px: error at a node where other ink covers half of what tells the centre."""
 MOST_FITTED = 400
@@ -113,7 +120,8 @@ def measure_centres(raster: Raster, course: Course, ink: Floats, width: float) -
         if number == PASSES - 1:
             break
         good = (fit.amplitude > 0.5) & (fit.sd < WORST_USED)
-        course = recentred(course, across, np.where(good, 1.0 / fit.sd**2, 1e-6))
+        steady = 1.0 / (1.0 + (fit.offset / (STEADY if number else 1.0)) ** 2) ** 2
+        course = recentred(course, across, np.where(good, steady / fit.sd**2, 1e-6))
         if number == 0 and good.sum() > 20:
             ink = ink * float(np.median(fit.amplitude[good]))
         profile, ink = _refined(raster, course, ink, profile, good)
@@ -121,7 +129,7 @@ def measure_centres(raster: Raster, course: Course, ink: Floats, width: float) -
     return Centres(
         course=course,
         across=across,
-        sd=fit.sd,
+        sd=np.where(np.abs(fit.offset) > STRAY + 3.0 * fit.sd, np.hypot(fit.sd, 2.0 * fit.offset), fit.sd),
         amplitude=fit.amplitude,
         misfit=fit.misfit,
         width=profile.width,
@@ -147,7 +155,7 @@ def _window(raster: Raster, course: Course, ink: Floats, profile: StrokeProfile)
     rows, columns = np.clip(rows, 0, height - 1), np.clip(columns, 0, width - 1)
     weights = ink / float(ink @ ink)
     seen = raster.ink.density[rows, columns] @ weights
-    grid = raster.grid.dark[rows, columns] * float(raster.grid.tint @ weights)
+    grid = raster.grid.dark[rows, columns].astype(np.float64) * float(raster.grid.tint @ weights)
     distance = (pixel - course.across[:, None]) * course.cosine[:, None]
     within = inside & (np.abs(distance) <= reach)
     beside = _beside(seen - grid, distance, inside & (np.abs(distance) <= reach + 2.0), reach - 0.8, course)
@@ -161,7 +169,7 @@ def _window(raster: Raster, course: Course, ink: Floats, profile: StrokeProfile)
     )
 
 
-def _beside(excess: Floats, distance: Floats, inside: Floats, edge: float, course: Course) -> Floats:
+def _beside(excess: Floats, distance: Floats, inside: Mask, edge: float, course: Course) -> Floats:
     """Level beside the line at each pixel: running medians of both flanks, the change between them under the stroke."""
     levels = []
     for flank in (inside & (distance < -edge), inside & (distance > edge)):
@@ -206,7 +214,7 @@ def _fit(window: _Window, profile: StrokeProfile, noise: float, floor: float) ->
     clear = np.clip(dd / total, 1e-3, 1.0)
     misfit = np.sqrt((weight * residual**2).sum(axis=1) / np.maximum(weight.sum(axis=1), 1e-6)) / max(scale, floor)
     sd = scale * np.sqrt(aa / determinant) * np.maximum(1.0, misfit)
-    sd = np.hypot(sd, COVERED_SD * (1.0 - clear) / clear)
+    sd = np.sqrt(sd**2 + (COVERED_SD * (1.0 - clear) / clear) ** 2 + LEAST_SD**2)
     return _Fit(offset=offset, amplitude=_ink_there(window, profile, offset), sd=sd, misfit=misfit, noise=scale)
 
 
@@ -222,7 +230,7 @@ def _robust(residual: Floats) -> float:
 
 
 def _refined(
-    raster: Raster, course: Course, ink: Floats, profile: StrokeProfile, good: Floats
+    raster: Raster, course: Course, ink: Floats, profile: StrokeProfile, good: Mask
 ) -> tuple[StrokeProfile, Floats]:
     """Width, blur and ink fitted to the line as a whole."""
     members = np.flatnonzero(good)
@@ -259,7 +267,7 @@ def _refined(
         loss="soft_l1",
         f_scale=0.05,
         max_nfev=8,
-        diff_step=1e-3,
+        diff_step=[1e-3],
     )
     width, blur, amplitude = (float(v) for v in found.x)
     return stroke_profile(width, blur, _reach(width, blur) + 3.0), ink * amplitude

@@ -11,6 +11,8 @@ from curvelab.records.arrays import Floats
 from curvelab.trace.thinning import RING, Mask, ring_codes
 
 FREE = -1
+AT_FRAME = 13
+"""px: an end within half of this of the frame leaves the plot."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -47,13 +49,15 @@ class ChainGraph:
     """All chains of a plot.
 
     ``ends[j]`` lists, for junction j, the pairs (chain, side) that meet there, side 0 for a chain's first point and 1
-    for its last. ``free`` finds free ends near a place; its points belong to ``free_ends`` in order.
+    for its last. ``tips`` finds ends near a place; its points belong to ``tip_ends`` in order.
+    ``leaving`` are the ends at the plot's frame: nothing goes on from there.
     """
 
     chains: tuple[Chain, ...]
     ends: tuple[tuple[tuple[int, int], ...], ...]
     tips: cKDTree | None
     tip_ends: tuple[tuple[int, int], ...]
+    leaving: frozenset[tuple[int, int]]
 
 
 def is_bridge(chain: Chain) -> bool:
@@ -61,7 +65,7 @@ def is_bridge(chain: Chain) -> bool:
     return FREE not in chain.junctions and chain.length <= 8.0 * max(chain.width, 1.0)
 
 
-def build_graph(skeleton: Mask, density: NDArray[np.float32], widths: NDArray[np.float32]) -> ChainGraph:
+def build_graph(skeleton: Mask, density: NDArray[np.float32], widths: NDArray[np.float32], inside: Mask) -> ChainGraph:
     """Chains of a thinned mask, short spurs left out.
 
     Parameters
@@ -71,7 +75,10 @@ def build_graph(skeleton: Mask, density: NDArray[np.float32], widths: NDArray[np
         Ink of the curves alone.
     widths : array, shape (height, width)
         Local width of the strokes in px.
+    inside : array, shape (height, width), bool
+        Pixels inside the plot's frame.
     """
+    deep = cv2.erode(np.pad(inside, 1).astype(np.uint8), np.ones((AT_FRAME, AT_FRAME), dtype=np.uint8))[1:-1, 1:-1]
     runs, junction_count = _runs(skeleton)
     kept = []
     for pixels, junctions in runs:
@@ -96,7 +103,9 @@ def build_graph(skeleton: Mask, density: NDArray[np.float32], widths: NDArray[np
             if chain.junctions[side] != FREE:
                 ends[chain.junctions[side]].append((number, side))
     places = np.array([kept[number].points[-side] for number, side in tips])
+    leaving = frozenset(end for end, (x, y) in zip(tips, places.astype(int).tolist(), strict=True) if not deep[y, x])
     return ChainGraph(
+        leaving=leaving,
         chains=tuple(kept),
         ends=tuple(tuple(meeting) for meeting in ends),
         tips=cKDTree(places) if tips else None,
@@ -117,7 +126,7 @@ def _runs(skeleton: Mask) -> tuple[list[Run], int]:
     junction_map = np.zeros_like(framed)
     junction_map.ravel()[at[degree >= 3]] = 1
     count, labels = cv2.connectedComponents(junction_map, connectivity=8)
-    junction_of = labels.ravel() - 1
+    junction_of = labels.ravel().astype(np.intp) - 1
     steps = [row * width + column for row, column in RING]
     neighbours = {
         int(pixel): [int(pixel) + steps[k] for k in range(8) if code >> k & 1]
@@ -151,7 +160,7 @@ def _follow(start: int, neighbours: dict[int, list[int]], junctions: set[int], s
 
 
 def _run_junctions(
-    run: list[int], neighbours: dict[int, list[int]], junctions: set[int], junction_of: NDArray[np.int32]
+    run: list[int], neighbours: dict[int, list[int]], junctions: set[int], junction_of: NDArray[np.intp]
 ) -> tuple[int, int]:
     first, last = (
         list(dict.fromkeys(int(junction_of[q]) for q in neighbours[pixel] if q in junctions))

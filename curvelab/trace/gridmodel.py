@@ -13,10 +13,10 @@ BIN = 0.25
 """Width in px of the bins a line's profile is measured in."""
 BINS = np.arange(-8.0, 8.0 + BIN / 2, BIN)
 """Distances in px a profile is kept at."""
-QUANTILE = 0.35
+QUANTILE = 0.12
 TWO_LEVEL_QUANTILE = 0.85
-QUANTILE_OFFSET = 0.385
-"""A low quantile along the line passes over curves that cross or follow it; in noise it lies 0.385 sd below the middle."""
+QUANTILE_OFFSET = 1.175
+"""A low quantile along the line passes over curves that cross or follow it; in noise it lies 1.175 sd below the middle."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -55,7 +55,7 @@ def predict_grid(ink: Ink, pixels: Pixels, grid: tuple[GridLine, ...]) -> GridIn
         if course is not None:
             courses.append(course)
     profiles = [_profile(ink, course) for course in courses]
-    limit = _common_limit(courses, profiles)
+    limit = _common_limit(courses, profiles) if ink.two_level else np.ones(BINS.size)
     predicted = np.zeros(ink.dark.shape, dtype=np.float32)
     for course, profile in zip(courses, profiles, strict=True):
         allowed = profile if course.outermost else np.minimum(profile, limit)
@@ -112,15 +112,16 @@ def _profile(ink: Ink, course: _Course) -> Floats:
             levels.append(float(np.quantile(values[members], share)) + lift)
     if len(centres) < 2:
         return np.zeros(BINS.size)
-    return np.clip(np.interp(BINS, centres, levels, left=0.0, right=0.0), 0.0, 1.0)
+    profile: Floats = np.clip(np.interp(BINS, centres, levels, left=0.0, right=0.0), 0.0, 1.0)
+    return profile
 
 
 def _common_limit(courses: list[_Course], profiles: list[Floats]) -> Floats:
-    """Ink that at least three lines inside the plot reach: a curve that follows one line all along is not its grid."""
+    """Ink that at least two lines inside the plot reach: a curve that follows one line all along is not its grid."""
     inner = [profile for course, profile in zip(courses, profiles, strict=True) if not course.outermost]
-    if len(inner) < 3:
+    if len(inner) < 2:
         return np.ones(BINS.size)
-    limit: Floats = 1.1 * np.sort(np.array(inner), axis=0)[-3]
+    limit: Floats = 1.1 * np.sort(np.array(inner), axis=0)[-2]
     return limit
 
 

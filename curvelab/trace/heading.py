@@ -42,7 +42,7 @@ class Heading:
     def spread(self, ahead: Floats) -> Floats:
         """Standard deviation in px of the continuation at a distance ahead."""
         relative = np.abs(ahead) / max(self.base, 4.0)
-        result: Floats = 0.6 + 0.5 * relative + 0.25 * relative**2
+        result: Floats = 1.0 + 1.0 * relative + 0.25 * relative**2
         return result
 
 

@@ -51,7 +51,7 @@ def read_ink(pixels: Pixels, axes: Axes) -> Ink:
     levels = np.ascontiguousarray(chosen[rows, columns])
     if levels.ndim == 3 and _is_neutral(levels):
         levels = np.ascontiguousarray(pixels.grey[rows, columns])
-    planes = levels if levels.ndim == 3 else levels[:, :, None]
+    planes = levels.reshape(levels.shape[0], levels.shape[1], -1)
     density = np.empty(planes.shape, dtype=np.float32)
     for k in range(planes.shape[2]):
         plane = planes[:, :, k]
@@ -106,4 +106,4 @@ def _noise(dark: Image) -> float:
     sample = dark[::3]
     second = sample[:, 2:] - 2.0 * sample[:, 1:-1] + sample[:, :-2]
     spread = float(np.median(np.abs(second))) / 0.6745 / np.sqrt(6.0)
-    return max(spread, 1.0 / (255.0 * np.sqrt(12.0)))
+    return max(spread, float(1.0 / (255.0 * np.sqrt(12.0))))

@@ -53,9 +53,7 @@ def _sides(outline: Floats) -> tuple[Floats, Floats]:
         return np.stack([np.interp(arc % total, run, closed[:, k]) for k in (0, 1)], axis=1)
 
     starts = np.linspace(0.0, 0.5 * total, 401)
-    spread = [
-        np.hypot(*(at(s + shares * total / 2) - at(s - shares * total / 2)).T).mean() for s in starts
-    ]
+    spread = [np.hypot(*(at(s + shares * total / 2) - at(s - shares * total / 2)).T).mean() for s in starts]
     start = float(starts[int(np.argmin(spread))])
     dense = np.unique(np.r_[(run - start) % total, 0.0, total / 2])
     one = dense[dense <= total / 2]

@@ -1,12 +1,15 @@
 """Prepare a plot for tracing: everything that does not depend on which line is asked for."""
 
+import numpy as np
+
 from curvelab.errors import TraceError
 from curvelab.records.axes import Axes
 from curvelab.records.sheet import Pixels, Sheet
 from curvelab.trace.gridmodel import predict_grid
 from curvelab.trace.ink import read_ink
 from curvelab.trace.prepared import Prepared, Raster
-from curvelab.trace.strokes import curve_ink, stroke_graph
+from curvelab.trace.strokes import curve_ink, plot_area, stroke_graph
+from curvelab.trace.window import plot_window
 
 __all__ = ["Prepared", "prepare"]
 
@@ -36,5 +39,9 @@ def prepare(sheet: Sheet, axes: Axes) -> Prepared:
 def _raster(pixels: Pixels, axes: Axes) -> Raster:
     ink = read_ink(pixels, axes)
     grid = predict_grid(ink, pixels, axes.grid)
-    skeleton, fill, widths, graph = stroke_graph(curve_ink(ink, grid), ink.noise)
-    return Raster(pixels=pixels, ink=ink, grid=grid, skeleton=skeleton, fill=fill, widths=widths, graph=graph)
+    corners = pixels.columns_rows(plot_window(axes).corners()) - np.array(ink.origin)
+    inside = plot_area(ink.dark.shape, corners)
+    skeleton, fill, widths, graph = stroke_graph(curve_ink(ink, grid), inside, ink.noise)
+    return Raster(
+        pixels=pixels, ink=ink, grid=grid, skeleton=skeleton, fill=fill, inside=inside, widths=widths, graph=graph
+    )

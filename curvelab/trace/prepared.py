@@ -24,6 +24,8 @@ class Raster:
         Middle lines of the strokes.
     fill : array, shape (height, width), bool
         Filled areas.
+    inside : array, shape (height, width), bool
+        Pixels inside the plot's frame.
     widths : array, shape (height, width), float32
         Local width of the strokes in px.
     graph : ChainGraph
@@ -34,6 +36,7 @@ class Raster:
     grid: GridInk
     skeleton: Mask
     fill: Mask
+    inside: Mask
     widths: Image
     graph: ChainGraph
 

@@ -62,7 +62,8 @@ def _trapezoid_sum(distance: Floats, angle: float) -> Floats:
     wide, narrow = np.cos(angle), max(np.sin(angle), 1e-6)
 
     def ramp(x: Floats) -> Floats:
-        return 0.5 * np.square(np.maximum(x, 0.0)) / (wide * narrow)
+        area: Floats = 0.5 * np.square(np.maximum(x, 0.0)) / (wide * narrow)
+        return area
 
     outer, inner = 0.5 * (wide + narrow), 0.5 * (wide - narrow)
     total: Floats = ramp(distance + outer) - ramp(distance + inner) - ramp(distance - inner) + ramp(distance - outer)

@@ -14,7 +14,7 @@ from curvelab.trace.outcome import Measured, gap_records, keep_seen
 from curvelab.trace.prepared import Prepared, Raster
 from curvelab.trace.select import REACH, chains_near, ink_of_colour, nearest_line, written
 from curvelab.trace.strokes import curve_ink
-from curvelab.trace.walk import Walk, walk_both_ways
+from curvelab.trace.walk import Walk, united, walk_both_ways
 from curvelab.trace.window import PlotWindow, plot_window
 
 MOST_STARTS = 4
@@ -54,7 +54,7 @@ def _graph(raster: Raster, guide: Guide) -> ChainGraph:
         low = np.clip(np.floor(corners.min(axis=0)).astype(int), 0, None)
         high = np.clip(np.ceil(corners.max(axis=0)).astype(int) + 1, 0, None)
         skeleton[low[1] : high[1], low[0] : high[0]] = False
-    return build_graph(skeleton, curve_ink(raster.ink, raster.grid), raster.widths)
+    return build_graph(skeleton, curve_ink(raster.ink, raster.grid), raster.widths, raster.inside)
 
 
 def _walk(raster: Raster, graph: ChainGraph, pixels: Floats, guide: Guide, wanted: Floats | None) -> Walk:
@@ -64,17 +64,19 @@ def _walk(raster: Raster, graph: ChainGraph, pixels: Floats, guide: Guide, wante
         if not found:
             raise _nothing_there(raster, graph, place, pixel, wanted, guide.colour)
     targets = frozenset(found[0][1] for found in near)
-    missed: tuple[float, int] | None = None
     # the guide on the longest plain stretch of line says most about it
     first = max(range(len(near)), key=lambda k: graph.chains[near[k][0][1]].length)
+    missed: tuple[float, int] | None = None
     for _, start in near[first][:MOST_STARTS]:
         walk = walk_both_ways(graph, start, targets)
-        distances = np.array([np.hypot(*(walk.line - pixel).T).min() for pixel in pixels])
-        far = int(distances.argmax())
-        if distances[far] <= REACH:
+        distance, far = _missed(walk, pixels)
+        if distance > REACH:
+            beyond = walk_both_ways(graph, near[far][0][1], targets)
+            walk = united(walk, beyond, graph.chains[start].width) or walk
+            distance, far = _missed(walk, pixels)
+        if distance <= REACH:
             return walk
-        if missed is None:
-            missed = (float(distances[far]), far)
+        missed = missed or (distance, far)
     assert missed is not None
     distance, far = missed
     raise TraceError(
@@ -82,6 +84,13 @@ def _walk(raster: Raster, graph: ChainGraph, pixels: Floats, guide: Guide, wante
         f"The line through the first passes {distance * raster.pixels.size_in_places:.1f} from the other",
         "Move one of them, or add a place between them",
     )
+
+
+def _missed(walk: Walk, pixels: Floats) -> tuple[float, int]:
+    """Distance in px from the walked line to the guide it misses most, and which one that is."""
+    distances = [float(np.hypot(*(walk.line - pixel).T).min()) for pixel in pixels]
+    far = int(np.argmax(distances))
+    return distances[far], far
 
 
 def _nothing_there(
@@ -154,5 +163,5 @@ def _warnings(raster: Raster, walk: Walk) -> tuple[ReadingWarning, ...]:
             text="The line could go on two ways here; add a guide place beyond this place",
             at=(float(place[0]), float(place[1])),
         )
-        for place in (raster.pixels.places((np.array([doubt]) + np.array(raster.ink.origin)))[0] for doubt in walk.doubts)
+        for place in (raster.pixels.places(np.array([doubt]) + np.array(raster.ink.origin))[0] for doubt in walk.doubts)
     )

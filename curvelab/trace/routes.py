@@ -18,6 +18,8 @@ CAP = 30.0
 HOP_STROKES = 40.0
 LONGEST_HOP = 160.0
 """px: a gap is bridged up to 40 stroke widths, at most this."""
+SHORTEST_FAR_SIDE = 0.18
+"""Least length of what lies beyond an unseen stretch, relative to that stretch."""
 TINT_SPREAD = 0.2
 """Difference of ink between chains of one line, relative to the ink."""
 
@@ -89,9 +91,10 @@ def routes_over_gap(graph: ChainGraph, onward: Heading, line: Line, used: set[in
         entry = graph.tip_ends[index]
         if entry[0] in used:
             continue
-        start = oriented(graph, entry)
-        ahead, aside = onward.frame(start[:1])
-        if ahead[0] < 1.0 or abs(aside[0]) > 3.0 * onward.spread(ahead)[0]:
+        # the tip itself may be frayed: the best of the first places within a stroke's width counts
+        start = oriented(graph, entry)[: max(1, int(line.width))]
+        ahead, aside = onward.frame(start)
+        if ahead[0] < 1.0 or np.abs(aside).min() > 3.0 * onward.spread(ahead)[0]:
             continue
         for entries in _extended(graph, (entry,), line.look_ahead, used):
             route = _route(graph, entries, onward, line, hop=float(ahead[0]))
@@ -132,11 +135,11 @@ def _route(graph: ChainGraph, entries: tuple[End, ...], onward: Heading, line: L
     weights = 1.0 + run[seen] / line.look_ahead
     cost = float(np.average(deviation, weights=weights))
     cost += 2.0 * max(0.0, 1.0 - run[-1] / (5.0 * line.width))
-    cost += _colour_cost(graph, entries, line) + 3.0 * hop / hop_reach(line)
+    cost += colour_cost(graph, entries, line) + 3.0 * hop / hop_reach(line)
     return Route(entries=entries, places=places[seen], cost=cost, hop=hop)
 
 
-def _colour_cost(graph: ChainGraph, entries: tuple[End, ...], line: Line) -> float:
+def colour_cost(graph: ChainGraph, entries: tuple[End, ...], line: Line) -> float:
     """How far ink and width of the route's longest chain are from the line's."""
     chain = max((graph.chains[number] for number, _ in entries), key=lambda c: c.length)
     if chain.length < 3.0 * line.width:
@@ -152,7 +155,7 @@ def _looks_back(route: Route, onward: Heading, hop: float) -> bool:
     if route.hop <= 4.0:
         return True
     length = float(np.hypot(*np.diff(route.places, axis=0).T).sum()) if len(route.places) > 1 else 1.0
-    if length < 0.35 * hop:
+    if length < SHORTEST_FAR_SIDE * hop:
         return False
     back = heading(route.places[::-1])
     if back is None:

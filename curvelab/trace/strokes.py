@@ -3,6 +3,7 @@
 import cv2
 import numpy as np
 
+from curvelab.records.arrays import Floats
 from curvelab.trace.chains import ChainGraph, build_graph
 from curvelab.trace.gridmodel import GridInk
 from curvelab.trace.ink import Image, Ink
@@ -54,13 +55,20 @@ def filled_areas(mask: Mask) -> Mask:
     return cv2.morphologyEx(mask.astype(np.uint8), cv2.MORPH_OPEN, kernel).astype(bool)
 
 
-def stroke_graph(excess: Image, noise: float) -> tuple[Mask, Mask, Image, ChainGraph]:
+def plot_area(shape: tuple[int, ...], corners: Floats) -> Mask:
+    """Pixels inside the plot's four corners (column, row)."""
+    area = np.zeros(shape, dtype=np.uint8)
+    cv2.fillConvexPoly(area, np.round(corners).astype(np.int32), 1)
+    return area.astype(bool)
+
+
+def stroke_graph(excess: Image, inside: Mask, noise: float) -> tuple[Mask, Mask, Image, ChainGraph]:
     """Middle lines, filled areas, widths and chains of the ink beyond the grid's."""
-    mask = stroke_mask(excess, noise)
+    mask = stroke_mask(excess, noise) & inside
     fill = filled_areas(mask)
     grown = cv2.dilate(fill.astype(np.uint8), np.ones((3, 3), dtype=np.uint8)).astype(bool)
     strokes = mask & ~grown
     distance = cv2.distanceTransform(strokes.astype(np.uint8), cv2.DIST_L2, 5)
     widths = (2.0 * distance - 1.0).astype(np.float32)
     skeleton = thin(strokes)
-    return skeleton, fill, widths, build_graph(skeleton, excess, widths)
+    return skeleton, fill, widths, build_graph(skeleton, excess, widths, inside)

@@ -11,6 +11,7 @@ from curvelab.trace.routes import (
     End,
     Line,
     Route,
+    colour_cost,
     hop_reach,
     meeting,
     oriented,
@@ -25,6 +26,12 @@ MARGIN = 1.0
 """A second route this near in cost makes the choice a doubt."""
 APART = 3.0
 """px: routes closer than this are one."""
+SHARPEST_TURN = -0.17
+"""Cosine of the sharpest turn a line makes in a break: 100 degrees; no line runs back beside itself."""
+LONGEST_UNITED = 400.0
+"""px: unseen stretch over which two guide places on either side may still join one line."""
+DASHES = 3
+"""Breaks after which a line is dashed."""
 SHORT_HOP = 8.0
 """Stroke widths: the next dash is looked for before anything further."""
 SHORTEST_GAP = 6.0
@@ -36,13 +43,14 @@ class Walk:
     """A line as far as it was walked.
 
     ``places`` are thinned pixels in order; ``jumps`` holds (k, unseen px) where k - 1 and k are joined over ink that is
-    not there; ``doubts`` are places where another way was almost as good.
+    not there; ``hops`` are the breaks passed, px; ``doubts`` are places where another way was almost as good.
     """
 
     places: list[Floats] = field(default_factory=list)
     jumps: list[tuple[int, float]] = field(default_factory=list)
     doubts: list[tuple[float, float]] = field(default_factory=list)
     chains: set[int] = field(default_factory=set)
+    hops: list[float] = field(default_factory=list)
 
     @property
     def line(self) -> Floats:
@@ -89,9 +97,11 @@ def _walk(graph: ChainGraph, end: End, line: Line, used: set[int], wanted: froze
     count = 0
     while True:
         onward = heading(_history(trusted, line))
-        route = _next_route(graph, end, onward, line, used, wanted, walk.doubts)
+        route = _next_route(graph, end, onward, line, used, wanted, walk)
         if route is None:
             return walk
+        if route.hop > 1.0:
+            walk.hops.append(route.hop)
         if route.hop > SHORTEST_GAP:
             walk.jumps.append((count, route.hop))
         for entry in route.entries:
@@ -118,26 +128,55 @@ def _next_route(
     line: Line,
     used: set[int],
     wanted: frozenset[int],
-    doubts: list[tuple[float, float]],
+    walk: Walk,
 ) -> Route | None:
-    if onward is None:
+    if onward is None or end in graph.leaving:
         return None
     routes = routes_through_junction(graph, end, onward, line, used)
     chosen = _best(routes, wanted)
     if chosen is None:
         chosen = _only_way(graph, end, routes, line, used)
     if chosen is None:
-        for reach in (SHORT_HOP * line.width, hop_reach(line)):
-            routes = routes_over_gap(graph, onward, line, used, reach)
-            chosen = _best(routes, wanted)
-            if chosen is not None:
-                break
-        if chosen is not None and chosen.hop > SHORTEST_GAP and _rivals(chosen, routes) and not _leads(chosen, wanted):
-            doubts.append((float(onward.tip[0]), float(onward.tip[1])))
-            return None
+        short = 2.2 * _common_break(walk.hops) if len(walk.hops) >= DASHES else SHORT_HOP * line.width
+        routes = routes_over_gap(graph, onward, line, used, short)
+        chosen = _best(routes, wanted) or _next_dash(graph, end, onward, line, used, walk.hops)
+    if chosen is None:
+        routes = routes_over_gap(graph, onward, line, used, hop_reach(line))
+        chosen = _best(routes, wanted)
     if chosen is not None and _rivals(chosen, routes) and not _leads(chosen, wanted):
-        doubts.append((float(onward.tip[0]), float(onward.tip[1])))
+        walk.doubts.append((float(onward.tip[0]), float(onward.tip[1])))
+        if chosen.hop > SHORTEST_GAP:
+            return None
     return chosen
+
+
+def _common_break(hops: list[float]) -> float:
+    return float(np.median(hops[-8:]))
+
+
+def _next_dash(
+    graph: ChainGraph, end: End, onward: Heading, line: Line, used: set[int], hops: list[float]
+) -> Route | None:
+    """The dash after a kink in a dashed line: the only one of its ink within the common break of those before."""
+    if len(hops) < DASHES or graph.tips is None:
+        return None
+    tip = oriented(graph, other(end))[-1]
+    found: dict[int, tuple[float, End]] = {}
+    for index in graph.tips.query_ball_point(tip, 1.6 * _common_break(hops) + line.width):
+        entry = graph.tip_ends[index]
+        if entry[0] in used or colour_cost(graph, (entry,), line) > 4.0:
+            continue
+        dash = oriented(graph, entry)
+        step = dash[min(len(dash) - 1, int(line.width) + 2)] - dash[0]
+        distance = float(np.hypot(*(dash[0] - tip)))
+        if step @ onward.direction < SHARPEST_TURN * np.hypot(*step):
+            continue
+        found[entry[0]] = min(found.get(entry[0], (np.inf, entry)), (distance, entry))
+    nearest = sorted(found.values())
+    if not nearest or (len(nearest) > 1 and nearest[1][0] < 1.5 * nearest[0][0]):
+        return None
+    distance, entry = nearest[0]
+    return Route(entries=(entry,), places=oriented(graph, entry), cost=0.0, hop=distance)
 
 
 def _best(routes: list[Route], wanted: frozenset[int]) -> Route | None:
@@ -145,7 +184,10 @@ def _best(routes: list[Route], wanted: frozenset[int]) -> Route | None:
     leading = [r for r in routes if _leads(r, wanted) and r.cost <= 2.0 * ACCEPT]
     if leading:
         return leading[0]
-    return routes[0] if routes and routes[0].cost <= ACCEPT else None
+    if not routes or routes[0].cost > ACCEPT:
+        return None
+    # of pieces in one line the next comes first
+    return min((r for r in routes if r.cost <= min(ACCEPT, routes[0].cost + MARGIN)), key=lambda r: (r.hop, r.cost))
 
 
 def _leads(route: Route, wanted: frozenset[int]) -> bool:
@@ -154,7 +196,11 @@ def _leads(route: Route, wanted: frozenset[int]) -> bool:
 
 def _rivals(chosen: Route, routes: list[Route]) -> bool:
     """Whether another route that comes out elsewhere, not merely further along, is almost as good."""
-    return any(r is not chosen and r.cost < chosen.cost + MARGIN and _apart(r.places, chosen.places) for r in routes)
+    beyond = chosen.hop + float(np.hypot(*(chosen.places[-1] - chosen.places[0])))
+    return any(
+        r is not chosen and r.cost < chosen.cost + MARGIN and r.hop < beyond and _apart(r.places, chosen.places)
+        for r in routes
+    )
 
 
 def _apart(a: Floats, b: Floats) -> bool:
@@ -185,3 +231,33 @@ def _claimed(graph: ChainGraph, entry: End, others: list[End], line: Line) -> bo
         if np.mean(np.minimum((aside / back.spread(ahead)) ** 2, 30.0)) < ACCEPT and ahead[-1] > 0:
             return True
     return False
+
+
+def united(first: Walk, second: Walk, width: float) -> Walk | None:
+    """Two walks as one line where they face each other over an unseen stretch; None where they do not.
+
+    They face each other where each, continued, comes out at the other's tip, or where they are so near that a kink lies
+    between.
+    """
+    choices = []
+    for one in (first.line, first.line[::-1]):
+        for two in (second.line, second.line[::-1]):
+            distance = float(np.hypot(*(two[0] - one[-1])))
+            ahead, back = heading(one), heading(two[::-1])
+            near = distance <= SHORT_HOP * width
+            if near or (ahead is not None and back is not None and _meets(ahead, two[0]) and _meets(back, one[-1])):
+                choices.append((distance, one, two))
+    if not choices:
+        return None
+    distance, one, two = min(choices, key=lambda choice: choice[0])
+    return Walk(
+        places=[one, two],
+        jumps=[(len(one), distance)],
+        doubts=first.doubts + second.doubts,
+        chains=first.chains | second.chains,
+    )
+
+
+def _meets(onward: Heading, tip: Floats) -> bool:
+    ahead, aside = onward.frame(tip[None])
+    return bool(0 < ahead[0] < LONGEST_UNITED and abs(aside[0]) < 3.0 * onward.spread(ahead)[0])

@@ -28,6 +28,11 @@ class PlotWindow:
         depth: Floats = room.min(axis=1)
         return depth
 
+    def corners(self) -> Floats:
+        """Places of the plot's four corners, in order round it."""
+        (a, c), (b, d) = self.low, self.high
+        return self.axes.map.places(np.array([[a, c], [b, c], [b, d], [a, d]]))
+
     def holds(self, places: Floats, slack: float) -> NDArray[np.bool_]:
         """Which places lie inside, or outside by no more than ``slack``."""
         return self.depth(places) >= -slack

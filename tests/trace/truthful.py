@@ -1,4 +1,4 @@
-"""Axes straight from a drawn sheet's truth, so that tracing is measured alone, and a trace's distance from the truth."""
+"""Axes straight from a drawn sheet's truth, so that tracing is measured alone; a trace's distance from that truth."""
 
 import tomllib
 from dataclasses import dataclass
@@ -153,8 +153,8 @@ def _printed(sheet: Sheet, places: Points) -> Points:
     k = 0 if vertical else 1
     shifts = []
     for place in np.linspace(places[0], places[-1], 300):
-        centre = int(round(place[k]))
-        line = int(round(place[1 - k]))
+        centre = round(place[k])
+        line = round(place[1 - k])
         low, high = centre - 3, centre + 4
         if low < 0 or high > grey.shape[1 - k] or not 0 <= line < grey.shape[k]:
             continue
