@@ -35,6 +35,9 @@ VALUE_UNITS: Mapping[str, Mapping[str, float]] = MappingProxyType(
 
 QUANTITIES = tuple(VALUE_UNITS)
 
+FIGURES, MOST_FIGURES = 3, 6
+"""Significant figures a person is shown, and at most where a narrow interval asks for more."""
+
 
 def unit_factor(quantity: str, unit: str) -> float:
     """Factor from a printed unit to the base unit of its quantity.
@@ -63,32 +66,40 @@ def unit_factor(quantity: str, unit: str) -> float:
     return factors[unit]
 
 
-def _three_figures(value: float) -> str:
-    """Three significant figures without an exponent."""
+def _rounded(value: float, figures: int) -> str:
+    """Significant figures without an exponent."""
     if value == 0 or not math.isfinite(value):
         return f"{value:g}"
-    digits = max(0, 2 - math.floor(math.log10(abs(value)) + 1e-12))
+    digits = max(0, figures - 1 - math.floor(math.log10(abs(value)) + 1e-12))
     text = f"{value:.{digits}f}"
     return text.rstrip("0").rstrip(".") if "." in text else text
 
 
-def written_current(value: float, base: str) -> str:
+def written_current(value: float, base: str, figures: int = FIGURES) -> str:
     """A current as engineers write it, three figures: ``'1.37 kA'``, ``'5 xIn'``."""
     if base != "A":
-        return f"{_three_figures(value)} {base}"
+        return f"{_rounded(value, figures)} {base}"
     if abs(value) >= 1000:
-        return f"{_three_figures(value / 1000)} kA"
+        return f"{_rounded(value / 1000, figures)} kA"
     if 0 < abs(value) < 1:
-        return f"{_three_figures(value * 1000)} mA"
-    return f"{_three_figures(value)} A"
+        return f"{_rounded(value * 1000, figures)} mA"
+    return f"{_rounded(value, figures)} A"
 
 
-def written_time(time_s: float) -> str:
+def written_time(time_s: float, figures: int = FIGURES) -> str:
     """A time as engineers write it, three figures: ``'12.3 ms'``, ``'0.4 s'``, ``'2.5 min'``, ``'1 h'``."""
     if 0 < time_s < 0.1:
-        return f"{_three_figures(time_s * 1e3)} ms"
+        return f"{_rounded(time_s * 1e3, figures)} ms"
     if time_s < 120:
-        return f"{_three_figures(time_s)} s"
+        return f"{_rounded(time_s, figures)} s"
     if time_s < 3600:
-        return f"{_three_figures(time_s / 60)} min"
-    return f"{_three_figures(time_s / 3600)} h"
+        return f"{_rounded(time_s / 60, figures)} min"
+    return f"{_rounded(time_s / 3600, figures)} h"
+
+
+def interval_figures(value: float, lower: float, upper: float) -> int:
+    """As many figures as show the interval about a value: its half-width in two of them, three to six in all."""
+    half = max(abs(upper - value), abs(value - lower))
+    if not (math.isfinite(half) and half > 0 and value != 0):
+        return FIGURES
+    return min(max(FIGURES, 2 - math.floor(math.log10(half / abs(value)))), MOST_FIGURES)

@@ -8,6 +8,7 @@ import curvelab
 from curvelab.cli.check import findings_table
 from curvelab.cli.compare import comparison_text
 from curvelab.cli.output import named
+from curvelab.cli.query import answer_at, answer_for, answers_text
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
 from curvelab.paths import shipped
@@ -15,12 +16,11 @@ from curvelab.plots.bands import draw_bands
 from curvelab.plots.overlay import draw_overlay
 from curvelab.records.reading import Reading
 from curvelab.standards.check import check
-from curvelab.units import written_current, written_time
 
 BREAKER, ASKED_A, ASKED_S = "riverside-b32", 160.0, 0.4
 PAIR = ("riverside-incomer-gg80", "riverside-b16")
 CHECKED = "riverside-loose-c20"
-PICTURED = ("mcb-b", "fuse-gg-family", "mcb-c-d-scan")
+PICTURED = ("mcb-b", "fuse-gg-family", "mccb-long-time")
 """Worksheets whose reading is drawn over its sheet."""
 
 
@@ -38,7 +38,7 @@ def command(output: str) -> int:
             f"Cannot make folder '{output}': {error.strerror}", "", "Choose another with --output"
         ) from None
     library_file = folder / "library.sqlite"
-    worksheets = sorted(shipped("demo_curves").joinpath("sheets").rglob("*.toml"))
+    worksheets = sorted(shipped("demo_curves").joinpath("sheets").glob("*.toml"))
     readings = _read(worksheets, folder, library_file)
     with curvelab.open_library(library_file) as library:
         count = len(library.keys())
@@ -77,18 +77,9 @@ def _read(worksheets: list[Path], folder: Path, library_file: Path) -> list[Read
 
 
 def _say(breaker: Device, checked: Device, pair: list[Device]) -> None:
-    times, currents = breaker.trip_time(ASKED_A), breaker.trip_current(ASKED_S)
-    click.echo(f"\n{named(breaker.nameplate)}")
-    if times.slow is not None and currents.trips is not None:
-        slow, trips = times.slow, currents.trips
-        click.echo(
-            f"  at {written_current(ASKED_A, 'A')} it clears within {written_time(float(slow.value))} "
-            f"(95 %: {written_time(float(slow.lower))} to {written_time(float(slow.upper))})"
-        )
-        click.echo(
-            f"  it surely trips within {written_time(ASKED_S)} from {written_current(float(trips.value), 'A')} "
-            f"(95 %: {written_current(float(trips.lower), 'A')} to {written_current(float(trips.upper), 'A')})"
-        )
+    click.echo("")
+    click.echo(answers_text(breaker, [answer_at(breaker, ASKED_A)]))
+    click.echo(answers_text(breaker, [answer_for(breaker, ASKED_S)]).split("\n", 1)[1])
     click.echo(f"\n{named(checked.nameplate)} (out of standard on purpose)")
     click.echo(findings_table(check(checked)))
     click.echo("")

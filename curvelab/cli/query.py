@@ -11,7 +11,7 @@ from curvelab.cli.output import json_option, library_option, named, table, write
 from curvelab.devices.device import Device
 from curvelab.library.key import split_key
 from curvelab.records.answer import EdgeAnswer
-from curvelab.units import written_current, written_time
+from curvelab.units import interval_figures, written_current, written_time
 
 REACHED = {"value", "at_least", "at_most", "never"}
 """Statuses that answer what was asked; any other makes the exit status 1."""
@@ -43,21 +43,23 @@ def command(
         raise click.UsageError("Give either --current A... or --time S....")
     with curvelab.open_library(library_file, create=False) as library:
         device = library.device(*split_key(key)).at(**dict(settings))
-    answers = [_at_current(device, each) for each in currents] + [_for_time(device, each) for each in times]
+    answers = [answer_at(device, each) for each in currents] + [answer_for(device, each) for each in times]
     if json_file:
         write_json(_as_json(device, answers), json_file)
     if json_file != "-":
-        click.echo(_as_text(device, answers))
+        click.echo(answers_text(device, answers))
     reached = all(edge is None or edge.status in REACHED for answer in answers for edge in answer["edges"].values())
     return 0 if reached and all(any(answer["edges"].values()) for answer in answers) else 1
 
 
-def _at_current(device: Device, current_a: float) -> dict[str, Any]:
+def answer_at(device: Device, current_a: float) -> dict[str, Any]:
+    """What the device does at a current in A."""
     times = device.trip_time(current_a)
     return {"current": current_a, "edges": {"fast": times.fast, "slow": times.slow, "mean": times.mean}}
 
 
-def _for_time(device: Device, time_s: float) -> dict[str, Any]:
+def answer_for(device: Device, time_s: float) -> dict[str, Any]:
+    """Which currents go with a time in s."""
     currents = device.trip_current(time_s)
     return {"time": time_s, "edges": {"trips": currents.trips, "holds": currents.holds, "mean": currents.mean}}
 
@@ -94,7 +96,8 @@ def _edge_json(found: EdgeAnswer | None) -> dict[str, Any] | None:
     }
 
 
-def _as_text(device: Device, answers: list[dict[str, Any]]) -> str:
+def answers_text(device: Device, answers: list[dict[str, Any]]) -> str:
+    """The device's name over a table, a row for each thing asked."""
     state = f", revision {device.revision} ({device.state})" if device.revision else ""
     asks_times = "current" in answers[0]
     names = list(answers[0]["edges"])
@@ -114,8 +117,10 @@ def _cell(found: EdgeAnswer | None, *, times: bool) -> str:
     if isnan(found.value):
         return str(found.status).replace("_", " ")
 
+    figures = interval_figures(float(found.value), float(found.lower), float(found.upper))
+
     def written(value: Any) -> str:
-        return written_time(float(value)) if times else written_current(float(value), "A")
+        return written_time(float(value), figures) if times else written_current(float(value), "A", figures)
 
     prefix = {"at_least": "at least ", "at_most": "at most "}.get(str(found.status), "")
     interval = "" if isnan(found.lower) else f" ({written(found.lower)} to {written(found.upper)})"
