@@ -4,11 +4,11 @@ from dataclasses import replace
 
 import numpy as np
 
-from curvelab.axes.entries import mark_text, table_name
+from curvelab.axes.doubts import doubts_of
 from curvelab.axes.grid import AXIS_NAMES, Grid, rough_rows
-from curvelab.axes.marks import AGREEING, CLICK_SD, FEWEST_LINES, fitted_ruler, mark_places, mark_values, pixel_size, with_marks
-from curvelab.axes.planefit import RICHER, Fitted, Line, Scatter, affine_map, fit_plane
-from curvelab.axes.snapped import SNAPPED_SD, snapped_axes
+from curvelab.axes.marks import FEWEST_LINES, fitted_ruler, mark_places, mark_values, pixel_size, with_marks
+from curvelab.axes.planefit import RICHER, Fitted, Line, Scatter, affine_map, fit_plane, mixed
+from curvelab.axes.snapped import SNAPPED_SD, Snapping, find_snapping
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, GridLine, PlaneMap
 from curvelab.records.sheet import Sheet
@@ -24,9 +24,9 @@ VECTOR_SD = 1e-5
 
 def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Axes, tuple[ReadingWarning, ...]]:
     """Fit the final map in places of the sheet and say what is doubtful."""
-    pixel = pixel_size(sheet)
-    snapped = snapped_axes(sheet.pixels, axes, grid.lines) if sheet.pixels else (False, False)
-    fitted, used = _fitted(sheet, axes, grid, snapped)
+    snapping = find_snapping(sheet.pixels, axes, grid.lines) if sheet.pixels else None
+    fitted = _fitted(sheet, axes, grid, snapping)
+    used = (_enough(grid, 0), _enough(grid, 1))
     marked = (_with_residuals(axes[0], 0, fitted.map), _with_residuals(axes[1], 1, fitted.map))
     residuals = np.array([mark.residual for axis in marked for mark in axis.marks])
     calibrated = Axes(
@@ -38,34 +38,40 @@ def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Ax
         grid_residual_rms=fitted.residual_rms if any(used) else None,
         grid=grid.lines,
     )
-    doubts = [
-        doubt
-        for k, axis in enumerate(marked)
-        for doubt in _doubts(axis, snapped=snapped[k], by_grid=used[k], astray=grid.disagrees[k], pixel=pixel)
-    ]
-    return calibrated, tuple(doubts)
+    return calibrated, tuple(doubts_of(marked, grid, used, snapping is not None, pixel_size(sheet)))
 
 
-def _fitted(
-    sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid, snapped: tuple[bool, bool]
-) -> tuple[Fitted, tuple[bool, bool]]:
-    """The map, and for each axis whether its lines decided."""
+def _enough(grid: Grid, axis: int) -> bool:
+    return sum(line.axis == AXIS_NAMES[axis] for line in grid.lines) >= FEWEST_LINES
+
+
+def _fitted(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid, snapping: Snapping | None) -> Fitted:
+    """The map; where lines may have been shifted with the half pixel, the mean of both, weighed by likelihood."""
     pixel = pixel_size(sheet)
     places = (mark_places(axes[0]), mark_places(axes[1]))
-    lines = [_line(axes, line) for line in grid.lines]
-    used = tuple(sum(line.axis == k for line in lines) >= FEWEST_LINES for k in (0, 1))
-    lines, tilts = with_marks(lines, axes, places, pixel)
-    least, place = (VECTOR_SD, VECTOR_SD) if sheet.pixels is None else (LEAST_LINE_SD * pixel, LEAST_PLACE_SD * pixel)
-    line_sds = [SNAPPED_SD * pixel if moved else least for moved in snapped]
-    scatter = Scatter(lines=(line_sds[0], line_sds[1]), place=place)
-    # Strokes lie where an affine map put them; pixels may have been bent on the way.
-    models = () if sheet.pixels is None else RICHER
-    return fit_plane(_start(axes, places, lines), lines, scatter, tilts, models), (used[0], used[1])
+    if sheet.pixels is None:
+        scatter = Scatter(lines=(VECTOR_SD, VECTOR_SD), place=VECTOR_SD)
+    else:
+        line_sd = pixel * (SNAPPED_SD if snapping else LEAST_LINE_SD)
+        scatter = Scatter(lines=(line_sd, line_sd), place=LEAST_PLACE_SD * pixel)
+    # Strokes lie where an affine map put them; so do lines on whole pixels. Other pixels may have been bent on the way.
+    models = () if sheet.pixels is None or snapping else RICHER
+    fits = []
+    for shift in (0.0, 1.0) if snapping and snapping.ambiguous else (0.0,):
+        lines, tilts = with_marks(_lines(axes, grid, snapping, shift), axes, places, pixel)
+        fits.append(fit_plane(_start(axes, places, lines), lines, scatter, tilts, models))
+    return mixed(fits)
 
 
-def _line(axes: tuple[Axis, Axis], line: GridLine) -> Line:
+def _lines(axes: tuple[Axis, Axis], grid: Grid, snapping: Snapping | None, shift: float) -> list[Line]:
+    """The grid's lines, those on pixels' centres moved back by a share of half a pixel."""
+    back = snapping.centred[:, None] * snapping.shift * shift if snapping else np.zeros((len(grid.lines), 2))
+    return [_line(axes, line, offset) for line, offset in zip(grid.lines, back, strict=True)]
+
+
+def _line(axes: tuple[Axis, Axis], line: GridLine, back: Floats) -> Line:
     k = AXIS_NAMES.index(line.axis)
-    return Line(axis=k, scaled=float(axes[k].scaled(line.value)), points=line.points)
+    return Line(axis=k, scaled=float(axes[k].scaled(line.value)), points=line.points - back)
 
 
 def _start(axes: tuple[Axis, Axis], places: tuple[Floats, Floats], lines: list[Line]) -> PlaneMap:
@@ -94,29 +100,3 @@ def _frame(plane: PlaneMap, grid: Grid) -> tuple[float, float, float, float]:
     corners = plane.places([[current, value] for current in grid.covered[0] for value in grid.covered[1]])
     low, high = corners.min(axis=0), corners.max(axis=0)
     return float(low[0]), float(low[1]), float(high[0]), float(high[1])
-
-
-def _doubts(axis: Axis, *, snapped: bool, by_grid: bool, astray: bool, pixel: float) -> list[ReadingWarning]:
-    name = table_name(axis.quantity)
-    doubts = []
-    if snapped:
-        text = f"The grid lines of {name} were drawn on whole pixels, each up to half a pixel off; the interval says so."
-        doubts.append(ReadingWarning(code="grid-snapped", text=text))
-    if astray:
-        text = (
-            f"The grid lines seen along {name} are not where its marks have them: "
-            f"check values and places of {' and '.join(mark_text(mark) for mark in axis.marks)}."
-        )
-        doubts.append(ReadingWarning(code="grid-disagrees", text=text, at=axis.marks[0].at))
-    if not by_grid:
-        text = (
-            f"{name} rests on its {len(axis.marks)} marks alone, as no grid lines were found for it; a mark is "
-            f"taken to be {CLICK_SD * pixel:.2g} off: give more marks, or exact ones."
-        )
-        doubts.append(ReadingWarning(code="axes-from-marks", text=text))
-    for mark in axis.marks:
-        if mark.residual is not None and abs(mark.residual) > AGREEING * pixel:
-            what = "its grid line" if by_grid else "where the other marks have its value"
-            text = f"The {mark_text(mark)} of {name} lies {abs(mark.residual):.3g} from {what}: correct its place or value."
-            doubts.append(ReadingWarning(code="mark-outlying", text=text, at=mark.at))
-    return doubts

@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from curvelab.axes.paths import Look
-from curvelab.axes.stroke import Centres, Shape, fit_centres, fit_shape
+from curvelab.axes.stroke import Centres, Shape, darkest_places, fit_centres, fit_shape
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import PlaneMap
 
@@ -29,7 +29,10 @@ CROSSING_MARGIN = 3.0
 CLASS_RATIO = 1.5
 """Lines whose strokes differ by more in ink per length are of different classes."""
 
-SHAPE_PROFILES = 160
+SHAPE_PROFILES = 64
+BLURS = (0.5, 0.05)
+"""Where the fit of a stroke's shape starts: as a scan blurs, and as area coverage draws."""
+
 PLACES = 10
 """Places that a measured line is summarised by."""
 
@@ -164,7 +167,8 @@ def _half_widths(look: Look, plane: PlaneMap, scaled: Floats, covered: tuple[flo
 def _fitted(stations: _Stations, half: int, shape: Shape) -> Centres:
     offsets = np.arange(-half, half + 1.0)
     profiles = stations.profiles[:, WIDEST - half : WIDEST + half + 1]
-    return fit_centres(profiles, offsets, shape, stations.path - stations.column)
+    start = darkest_places(profiles, offsets, stations.path - stations.column, NEAR + 0.5)
+    return fit_centres(profiles, offsets, shape, start)
 
 
 def _classes(stations: _Stations, half: NDArray[np.int64], lines: int) -> tuple[list[Shape], NDArray[np.int64]]:
@@ -198,15 +202,17 @@ def _shape(stations: _Stations, half: NDArray[np.int64], mine: NDArray[np.bool_]
     chosen = np.zeros(len(ink), dtype=bool)
     chosen[usual[:: max(1, len(usual) // SHAPE_PROFILES)]] = True
     part = part.where(chosen)
-    darkest = np.median(part.profiles.max(axis=1) - part.profiles.min(axis=1)) if chosen.any() else 1.0
-    width = float(np.clip(np.median(ink) / max(float(darkest), 1.0), 1.0, 2 * narrow - 2))
-    first = Shape(width=width, blur=0.5, amplitude=float(darkest))
+    darkest = max(float(np.median(np.ptp(part.profiles, axis=1))), 1.0) if chosen.any() else 1.0
+    width = float(np.clip(np.median(ink) / darkest, 1.0, 2 * narrow - 2))
+    starts = [Shape(width=width, blur=blur, amplitude=darkest) for blur in BLURS]
     if np.sum(chosen) < 5:
-        return first
-    centres = _fitted(part, narrow, first)
+        return starts[0]
+    centres = _fitted(part, narrow, starts[0])
     good = centres.misfit <= 2.5 * np.median(centres.misfit) + 0.5
     profiles = part.profiles[good, WIDEST - narrow : WIDEST + narrow + 1]
-    return fit_shape(profiles, np.arange(-narrow, narrow + 1.0), first, centres.centre[good])
+    offsets = np.arange(-narrow, narrow + 1.0)
+    fits = [fit_shape(profiles, offsets, start, _fitted(part.where(good), narrow, start).centre) for start in starts]
+    return min(fits, key=lambda fit: fit[1])[0]
 
 
 def _line(

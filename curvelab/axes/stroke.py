@@ -55,6 +55,19 @@ def coverage(offset: Floats, width: float, blur: float) -> tuple[Floats, Floats]
     return value, slope
 
 
+def darkest_places(profiles: Floats, offsets: Floats, expected: Floats, reach: float) -> Floats:
+    """Where to start: the centre of ink of three pixels about the darkest within ``reach`` of what is expected.
+
+    A stroke that is one whole pixel wide starts at that pixel's centre, whatever was expected.
+    """
+    dark = profiles.max(axis=1, keepdims=True) - profiles
+    near = np.abs(offsets - expected[:, None]) <= reach
+    best = np.clip(np.argmax(np.where(near, dark, -1.0), axis=1), 1, len(offsets) - 2)
+    rows = np.arange(len(profiles))
+    left, top, right = (dark[rows, best + k] for k in (-1, 0, 1))
+    return offsets[best] + (right - left) / np.maximum(left + top + right, 1e-9)
+
+
 def fit_centres(profiles: Floats, offsets: Floats, shape: Shape, start: Floats) -> Centres:
     """Least-squares centre, contrast and paper level of each profile for a known stroke shape.
 
@@ -85,11 +98,12 @@ def fit_centres(profiles: Floats, offsets: Floats, shape: Shape, start: Floats) 
     return Centres(centre=centre, amplitude=amplitude, paper=paper, misfit=np.sqrt(np.mean(residual**2, axis=1)))
 
 
-def fit_shape(profiles: Floats, offsets: Floats, start: Shape, centres: Floats) -> Shape:
+def fit_shape(profiles: Floats, offsets: Floats, start: Shape, centres: Floats) -> tuple[Shape, float]:
     """Width, blur and contrast that strokes of one class share; each profile keeps its own centre and paper level.
 
     Damped Gauss-Newton (Levenberg and Marquardt) with the local parameters projected out. Strokes thinner than a pixel
     tell width from contrast only together, by their different phases on the pixels; that is why contrast is shared.
+    The sum of squared misfits is returned too, to choose among starts.
     """
     grey = _centred(profiles)
     best = (np.array([start.width, start.blur, start.amplitude]), centres.astype(np.float64))
@@ -113,7 +127,7 @@ def fit_shape(profiles: Floats, offsets: Floats, start: Shape, centres: Floats) 
         if settled:
             break
     width, blur, amplitude = best[0]
-    return Shape(width=float(width), blur=float(blur), amplitude=float(amplitude))
+    return Shape(width=float(width), blur=float(blur), amplitude=float(amplitude)), cost
 
 
 def _linearised(grey: Floats, offsets: Floats, common: Floats, centre: Floats) -> tuple[Floats, Floats, Floats]:
