@@ -158,7 +158,7 @@ def _window(raster: Raster, course: Course, ink: Floats, profile: StrokeProfile)
     grid = raster.grid.dark[rows, columns].astype(np.float64) * float(raster.grid.tint @ weights)
     distance = (pixel - course.across[:, None]) * course.cosine[:, None]
     within = inside & (np.abs(distance) <= reach)
-    beside = _beside(seen - grid, distance, inside & (np.abs(distance) <= reach + 2.0), reach - 0.8, course)
+    beside = _beside(seen - grid, distance, inside & (np.abs(distance) <= reach + 2.0), reach - 0.8)
     return _Window(
         distance=distance,
         seen=seen,
@@ -169,7 +169,7 @@ def _window(raster: Raster, course: Course, ink: Floats, profile: StrokeProfile)
     )
 
 
-def _beside(excess: Floats, distance: Floats, inside: Mask, edge: float, course: Course) -> Floats:
+def _beside(excess: Floats, distance: Floats, inside: Mask, edge: float) -> Floats:
     """Level beside the line at each pixel: running medians of both flanks, the change between them under the stroke."""
     levels = []
     for flank in (inside & (distance < -edge), inside & (distance > edge)):

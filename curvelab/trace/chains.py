@@ -135,7 +135,7 @@ def _runs(skeleton: Mask) -> tuple[list[Run], int]:
     junction_pixels = set(at[degree >= 3].tolist())
     runs: list[Run] = []
     seen: set[int] = set()
-    starts = [p for p in at[degree <= 1].tolist()]
+    starts = at[degree <= 1].tolist()
     starts += [q for p in sorted(junction_pixels) for q in neighbours[p]]
     starts += at[degree == 2].tolist()
     for start in starts:

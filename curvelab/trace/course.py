@@ -4,6 +4,7 @@ So every pixel near the line belongs to one node and is used once, where it lies
 """
 
 from dataclasses import dataclass, replace
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -160,7 +161,7 @@ def _kinks(dense: Floats, arc: Floats) -> list[tuple[float, float]]:
         # a plateau belongs to one kink: its middle
         level = np.flatnonzero(turn > 0.9 * turn[top])
         level = level[np.abs(level - top) < far]
-        at = int(round(float(level.mean())))
+        at = round(float(level.mean()))
         found.append((float(arc[middle[at]]), float(turn[top])))
         turn[max(0, at - far) : at + far] = 0.0
     return sorted(found)
@@ -169,7 +170,7 @@ def _kinks(dense: Floats, arc: Floats) -> list[tuple[float, float]]:
 def _tangents(dense: Floats, arc: Floats, kinks: list[tuple[float, float]]) -> Floats:
     tangent = np.gradient(dense, axis=0)
     cuts = [0, *np.searchsorted(arc, [kink for kink, _ in kinks]).tolist(), len(arc)]
-    for low, high in zip(cuts[:-1], cuts[1:], strict=True):
+    for low, high in pairwise(cuts):
         if high - low > 1:
             tangent[low:high] = gaussian_filter1d(tangent[low:high], 4.0 / DENSE, axis=0, mode="nearest")
     return tangent

@@ -16,7 +16,7 @@ BINS = np.arange(-8.0, 8.0 + BIN / 2, BIN)
 QUANTILE = 0.12
 TWO_LEVEL_QUANTILE = 0.85
 QUANTILE_OFFSET = 1.175
-"""A low quantile along the line passes over curves that cross or follow it; in noise it lies 1.175 sd below the middle."""
+"""A low quantile along the line passes over curves that cross or follow it; in noise it lies 1.175 sd low."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -95,7 +95,7 @@ def _pixels_along(course: _Course, breadth: int) -> tuple[np.ndarray, np.ndarray
 
 
 def _profile(ink: Ink, course: _Course) -> Floats:
-    """The line's profile on ``BINS``: a low quantile of the ink at each distance from its centre, 0 beyond its reach."""
+    """The line's profile on ``BINS``: a low quantile of the ink at each distance, 0 beyond its reach."""
     seen = ink.dark if course.vertical else ink.dark.T
     rows, columns = _pixels_along(course, seen.shape[1])
     offset = columns - course.centre[:, None]

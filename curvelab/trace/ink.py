@@ -106,4 +106,4 @@ def _noise(dark: Image) -> float:
     sample = dark[::3]
     second = sample[:, 2:] - 2.0 * sample[:, 1:-1] + sample[:, :-2]
     spread = float(np.median(np.abs(second))) / 0.6745 / np.sqrt(6.0)
-    return max(spread, float(1.0 / (255.0 * np.sqrt(12.0))))
+    return max(float(spread), float(1.0 / (255.0 * np.sqrt(12.0))))

@@ -1,6 +1,7 @@
 """From measured centres to a trace: what is seen is kept, what is not becomes a gap."""
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -49,11 +50,7 @@ def keep_seen(centres: Centres, inside: NDArray[np.bool_]) -> Measured | None:
     spread, correlation = _spread(centres, kept)
     index = np.flatnonzero(kept)
     unseen = np.cumsum(~seen * np.gradient(course.arc))
-    gaps = [
-        (k, k + 1)
-        for k, (a, b) in enumerate(zip(index[:-1], index[1:], strict=True))
-        if unseen[b] - unseen[a] > SHORTEST_GAP
-    ]
+    gaps = [(k, k + 1) for k, (a, b) in enumerate(pairwise(index)) if unseen[b] - unseen[a] > SHORTEST_GAP]
     return Measured(
         places=course.places(centres.across)[index],
         sd=(centres.sd * spread)[index],

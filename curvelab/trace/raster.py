@@ -117,9 +117,18 @@ def _nothing_there(
 
 
 def _centres(raster: Raster, graph: ChainGraph, walk: Walk) -> Centres:
-    longest = max((graph.chains[number] for number in walk.chains), key=lambda chain: chain.length)
-    width = max(longest.width, 1.0)
-    return measure_centres(raster, course_of(walk.line, width, 0.5 * width + 6.0), longest.ink, width)
+    chains = [graph.chains[number] for number in sorted(walk.chains)]
+    lengths = np.array([chain.length for chain in chains])
+    width = max(_weighted_median(np.array([chain.width for chain in chains]), lengths), 1.0)
+    inks = np.array([chain.ink for chain in chains])
+    ink = np.array([_weighted_median(inks[:, k], lengths) for k in range(inks.shape[1])])
+    return measure_centres(raster, course_of(walk.line, width, 0.5 * width + 6.0), ink, width)
+
+
+def _weighted_median(values: Floats, weights: Floats) -> float:
+    order = np.argsort(values)
+    total = np.cumsum(weights[order])
+    return float(values[order[int(np.searchsorted(total, 0.5 * total[-1]))]])
 
 
 def _trace(raster: Raster, window: PlotWindow, centres: Centres, measured: Measured, guides: Floats) -> Trace:

@@ -120,8 +120,7 @@ def _extended(graph: ChainGraph, entries: tuple[End, ...], length: float, used: 
         if not onward:
             count += 1
             yield current
-        for entry in onward:
-            stack.append(((*current, entry), left - graph.chains[entry[0]].length - 2.0))
+        stack.extend(((*current, entry), left - graph.chains[entry[0]].length - 2.0) for entry in onward)
 
 
 def _route(graph: ChainGraph, entries: tuple[End, ...], onward: Heading, line: Line, hop: float) -> Route:

@@ -14,6 +14,8 @@ FAINTEST = 0.12
 NOISE_FACTOR = 5.0
 RELATIVE = 0.45
 """A pixel belongs to a stroke above this share of the darkest ink near it, so that close strokes stay apart."""
+FRAME_STROKE = 7
+"""px: the frame's stroke lies within half of this of the frame."""
 NEAR = 7
 WIDEST_STROKE = 15
 """px; what is wider is a filled area."""
@@ -56,10 +58,10 @@ def filled_areas(mask: Mask) -> Mask:
 
 
 def plot_area(shape: tuple[int, ...], corners: Floats) -> Mask:
-    """Pixels inside the plot's four corners (column, row)."""
+    """Pixels inside the plot's four corners (column, row), clear of the frame's own stroke."""
     area = np.zeros(shape, dtype=np.uint8)
     cv2.fillConvexPoly(area, np.round(corners).astype(np.int32), 1)
-    return area.astype(bool)
+    return cv2.erode(area, np.ones((FRAME_STROKE, FRAME_STROKE), dtype=np.uint8)).astype(bool)
 
 
 def stroke_graph(excess: Image, inside: Mask, noise: float) -> tuple[Mask, Mask, Image, ChainGraph]:
