@@ -16,6 +16,9 @@ from curvelab.records.points import FitPoints
 NEIGHBOURS = 5
 """Pairs of neighbours whose interpolation a point is compared with before anything is fitted."""
 
+MOST_LONE = 2
+"""Neighbours that stray together."""
+
 STRAY_SCALES = 8.0
 """Robust standard deviations beyond which a lone point is a stray before anything is fitted."""
 
@@ -148,8 +151,16 @@ def _not_stray(u: Floats, v: Floats, sd: Floats) -> NDArray[np.bool_]:
     window = 4 * NEIGHBOURS + 1
     local = np.pad(np.median(sliding_window_view(deviation, window), axis=1), window // 2, mode="edge")
     scale = np.maximum(1.4826 * np.maximum(local, np.median(deviation)), sd)
-    kept: NDArray[np.bool_] = deviation <= STRAY_SCALES * scale
-    return kept
+    return ~_lone(deviation > STRAY_SCALES * scale)
+
+
+def _lone(off: NDArray[np.bool_]) -> NDArray[np.bool_]:
+    """The runs of points that are few enough to be strays: beside a corner many lie off their neighbours together."""
+    edges = np.flatnonzero(np.diff(np.concatenate([[False], off, [False]]).astype(int)))
+    result = np.zeros_like(off)
+    for start, end in zip(edges[::2], edges[1::2], strict=True):
+        result[start:end] = end - start <= MOST_LONE
+    return result
 
 
 def _from_pair(u: Floats, v: Floats, distance: int) -> Floats:
