@@ -7,8 +7,9 @@ import numpy as np
 from curvelab.axes.doubts import doubts_of
 from curvelab.axes.grid import AXIS_NAMES, Grid, rough_rows
 from curvelab.axes.marks import FEWEST_LINES, fitted_ruler, mark_places, mark_values, pixel_size, with_marks
-from curvelab.axes.planefit import RICHER, Fitted, Line, Scatter, affine_map, fit_plane, mixed
-from curvelab.axes.snapped import SNAPPED_SD, Snapping, find_snapping
+from curvelab.axes.planefit import Line, Scatter, affine_map, fit_plane
+from curvelab.axes.snapfit import snapped_map
+from curvelab.axes.snapped import find_snapping
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, GridLine, PlaneMap
 from curvelab.records.sheet import Sheet
@@ -25,17 +26,18 @@ VECTOR_SD = 1e-5
 def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Axes, tuple[ReadingWarning, ...]]:
     """Fit the final map in places of the sheet and say what is doubtful."""
     snapping = find_snapping(sheet.pixels, axes, grid.lines) if sheet.pixels else None
-    fitted = _fitted(sheet, axes, grid, snapping)
+    plane = snapped_map(sheet.pixels, axes, snapping) if sheet.pixels and snapping else None
+    plane = plane or _fitted(sheet, axes, grid)
     used = (_enough(grid, 0), _enough(grid, 1))
-    marked = (_with_residuals(axes[0], 0, fitted.map), _with_residuals(axes[1], 1, fitted.map))
+    marked = (_with_residuals(axes[0], 0, plane), _with_residuals(axes[1], 1, plane))
     residuals = np.array([mark.residual for axis in marked for mark in axis.marks])
     calibrated = Axes(
         current=marked[0],
         value=marked[1],
-        map=fitted.map,
-        frame=_frame(fitted.map, grid),
+        map=plane,
+        frame=_frame(plane, grid),
         mark_residual_rms=float(np.sqrt(np.mean(residuals**2))),
-        grid_residual_rms=fitted.residual_rms if any(used) else None,
+        grid_residual_rms=_grid_rms(axes, grid, plane) if any(used) else None,
         grid=grid.lines,
     )
     return calibrated, tuple(doubts_of(marked, grid, used, snapping is not None, pixel_size(sheet)))
@@ -45,33 +47,31 @@ def _enough(grid: Grid, axis: int) -> bool:
     return sum(line.axis == AXIS_NAMES[axis] for line in grid.lines) >= FEWEST_LINES
 
 
-def _fitted(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid, snapping: Snapping | None) -> Fitted:
-    """The map; where lines may have been shifted with the half pixel, the mean of both, weighed by likelihood."""
+def _fitted(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> PlaneMap:
+    """The map fitted to the grid lines, or to the marks of an axis that has none."""
     pixel = pixel_size(sheet)
     places = (mark_places(axes[0]), mark_places(axes[1]))
+    lines, tilts = with_marks([_line(axes, line) for line in grid.lines], axes, places, pixel)
+    start = _start(axes, places, lines)
     if sheet.pixels is None:
-        scatter = Scatter(lines=(VECTOR_SD, VECTOR_SD), place=VECTOR_SD)
-    else:
-        line_sd = pixel * (SNAPPED_SD if snapping else LEAST_LINE_SD)
-        scatter = Scatter(lines=(line_sd, line_sd), place=LEAST_PLACE_SD * pixel)
-    # Strokes lie where an affine map put them; so do lines on whole pixels. Other pixels may have been bent on the way.
-    models = () if sheet.pixels is None or snapping else RICHER
-    fits = []
-    for shift in (0.0, 1.0) if snapping and snapping.ambiguous else (0.0,):
-        lines, tilts = with_marks(_lines(axes, grid, snapping, shift), axes, places, pixel)
-        fits.append(fit_plane(_start(axes, places, lines), lines, scatter, tilts, models))
-    return mixed(fits)
+        # Strokes lie where an affine map put them; pixels may have been bent on the way.
+        return fit_plane(start, lines, Scatter(lines=(VECTOR_SD, VECTOR_SD), place=VECTOR_SD), tilts, ()).map
+    line_sd = LEAST_LINE_SD * pixel
+    return fit_plane(start, lines, Scatter(lines=(line_sd, line_sd), place=LEAST_PLACE_SD * pixel), tilts).map
 
 
-def _lines(axes: tuple[Axis, Axis], grid: Grid, snapping: Snapping | None, shift: float) -> list[Line]:
-    """The grid's lines, those on pixels' centres moved back by a share of half a pixel."""
-    back = snapping.centred[:, None] * snapping.shift * shift if snapping else np.zeros((len(grid.lines), 2))
-    return [_line(axes, line, offset) for line, offset in zip(grid.lines, back, strict=True)]
+def _grid_rms(axes: tuple[Axis, Axis], grid: Grid, plane: PlaneMap) -> float:
+    """Root mean square over the lines of their mean distance from where the map has them."""
+    off = []
+    for line in (_line(axes, line) for line in grid.lines):
+        steepness = np.linalg.norm(plane.jacobian(line.points)[:, line.axis], axis=1)
+        off.append(float(np.mean((plane.scaled(line.points)[:, line.axis] - line.scaled) / steepness)))
+    return float(np.sqrt(np.mean(np.square(off))))
 
 
-def _line(axes: tuple[Axis, Axis], line: GridLine, back: Floats) -> Line:
+def _line(axes: tuple[Axis, Axis], line: GridLine) -> Line:
     k = AXIS_NAMES.index(line.axis)
-    return Line(axis=k, scaled=float(axes[k].scaled(line.value)), points=line.points - back)
+    return Line(axis=k, scaled=float(axes[k].scaled(line.value)), points=line.points)
 
 
 def _start(axes: tuple[Axis, Axis], places: tuple[Floats, Floats], lines: list[Line]) -> PlaneMap:

@@ -160,24 +160,6 @@ def fit_plane(
     return best
 
 
-def mixed(fits: Sequence[Fitted]) -> Fitted:
-    """One map for fits of the same model to rival readings of the lines, weighed by their likelihoods.
-
-    The mean of the maps, with the covariance of the mixture: that of each, and the spread between them.
-    """
-    best = min(fits, key=lambda fit: fit.criterion)
-    weights = np.exp(-0.5 * np.array([fit.criterion - best.criterion for fit in fits]))
-    weights /= weights.sum()
-    vectors = np.stack([np.concatenate([fit.map.projective, fit.map.warp.ravel()]) for fit in fits])
-    mean = weights @ vectors
-    spread = (vectors - mean).T @ (weights[:, None] * (vectors - mean))
-    covariance = np.tensordot(weights, [fit.map.covariance for fit in fits], axes=1) + spread
-    plane = replace(
-        best.map, projective=mean[:8], warp=mean[8:].reshape(best.map.warp.shape), covariance=covariance
-    )
-    return replace(best, map=plane)
-
-
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class _Problem:
     """All places in one array, with the line each belongs to."""
