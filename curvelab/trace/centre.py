@@ -254,20 +254,21 @@ def _refined(
     angle = np.broadcast_to(window.angle, window.distance.shape)[use]
 
     def residual(parameters: Floats) -> Floats:
-        width, blur, amplitude = parameters
+        width, blur, amplitude, shift = parameters
         candidate = stroke_profile(width, blur, profile.reach)
-        result: Floats = under + amplitude * candidate.value(distance, angle) * (1.0 - under) - seen
+        result: Floats = under + amplitude * candidate.value(distance - shift, angle) * (1.0 - under) - seen
         return result
 
-    start = np.array([profile.width, profile.blur, 1.0])
+    # along a row or column of pixels the offset looks like a change of the profile: it is fitted with it
+    start = np.array([profile.width, min(profile.blur, 0.3), 1.0, 0.0])
     found = least_squares(
         residual,
         start,
-        bounds=([0.3, 0.05, 0.5], [profile.width * 2 + 1, 3.0, 1.6]),
+        bounds=([0.3, 0.05, 0.5, -1.0], [profile.width * 2 + 1, 3.0, 1.6, 1.0]),
         loss="soft_l1",
         f_scale=0.05,
-        max_nfev=8,
+        max_nfev=14,
         diff_step=[1e-3],
     )
-    width, blur, amplitude = (float(v) for v in found.x)
+    width, blur, amplitude, _ = (float(v) for v in found.x)
     return stroke_profile(width, blur, _reach(width, blur) + 3.0), ink * amplitude

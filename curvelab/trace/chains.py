@@ -11,6 +11,8 @@ from curvelab.records.arrays import Floats
 from curvelab.trace.thinning import RING, Mask, ring_codes
 
 FREE = -1
+MERGED = 20.0
+"""Stroke widths over which two lines that cross at 10 degrees print as one."""
 AT_FRAME = 13
 """px: an end within half of this of the frame leaves the plot."""
 
@@ -62,7 +64,7 @@ class ChainGraph:
 
 def is_bridge(chain: Chain) -> bool:
     """Whether it may be the merged stretch of two crossing lines, which says little of either."""
-    return FREE not in chain.junctions and chain.length <= 8.0 * max(chain.width, 1.0)
+    return FREE not in chain.junctions and chain.length <= MERGED * max(chain.width, 1.0)
 
 
 def build_graph(skeleton: Mask, density: NDArray[np.float32], widths: NDArray[np.float32], inside: Mask) -> ChainGraph:

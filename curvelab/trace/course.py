@@ -19,6 +19,8 @@ WALK_SMOOTHING = 2.0
 LEG = 9.0
 """px of line on either side that a kink's angle is measured over."""
 KINK_DEG = 22.0
+DECIDED = 1.15
+"""Ratio of the steps across and down from which a line is flat or steep."""
 LOCAL = 4.0
 """Nodes: Gaussian of the local straight fit that gives direction and centre line."""
 
@@ -68,7 +70,7 @@ def course_of(walked: Floats, width: float, overshoot: float) -> Course:
     dense, arc = _smoothed(walked, overshoot)
     kinks = _kinks(dense, arc)
     tangent = _tangents(dense, arc, kinks)
-    flat = np.abs(tangent[:, 0]) >= np.abs(tangent[:, 1])
+    flat = _flat(tangent)
     run = _runs(flat, arc, kinks)
     along = np.where(flat, dense[:, 0], dense[:, 1])
     across = np.where(flat, dense[:, 1], dense[:, 0])
@@ -174,6 +176,18 @@ def _tangents(dense: Floats, arc: Floats, kinks: list[tuple[float, float]]) -> F
         if high - low > 1:
             tangent[low:high] = gaussian_filter1d(tangent[low:high], 4.0 / DENSE, axis=0, mode="nearest")
     return tangent
+
+
+def _flat(tangent: Floats) -> NDArray[np.bool_]:
+    """Where the line runs flat; near 45 degrees as it ran before, so that it does not change to and fro."""
+    across, down = np.abs(tangent).T
+    decided = np.flatnonzero(np.maximum(across, down) > DECIDED * np.minimum(across, down))
+    if decided.size == 0:
+        return np.full(len(tangent), bool(across.sum() >= down.sum()))
+    last = np.searchsorted(decided, np.arange(len(tangent)), side="right") - 1
+    at = decided[np.maximum(last, 0)]
+    flat: NDArray[np.bool_] = across[at] >= down[at]
+    return flat
 
 
 def _runs(flat: NDArray[np.bool_], arc: Floats, kinks: list[tuple[float, float]]) -> NDArray[np.intp]:

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from curvelab.records.arrays import Floats
-from curvelab.trace.chains import FREE, ChainGraph
+from curvelab.trace.chains import FREE, MERGED, ChainGraph
 from curvelab.trace.heading import Heading, heading
 
 End = tuple[int, int]
@@ -34,7 +34,7 @@ class Line:
     @property
     def look_ahead(self) -> float:
         """Length in px over which routes are compared: beyond the merged stretch of a crossing of 10 degrees."""
-        return float(np.clip(14.0 * self.width, 40.0, 110.0))
+        return float(np.clip(1.6 * MERGED * self.width, 60.0, 180.0))
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)

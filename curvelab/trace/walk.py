@@ -5,7 +5,7 @@ from dataclasses import dataclass, field
 import numpy as np
 
 from curvelab.records.arrays import Floats
-from curvelab.trace.chains import ChainGraph, is_bridge
+from curvelab.trace.chains import MERGED, ChainGraph, is_bridge
 from curvelab.trace.heading import Heading, heading
 from curvelab.trace.routes import (
     End,
@@ -71,10 +71,15 @@ def walk_both_ways(graph: ChainGraph, start: int, wanted: frozenset[int]) -> Wal
     """
     chain = graph.chains[start]
     line = Line(ink=chain.ink, width=max(chain.width, 1.0))
-    used = {start}
-    forward = _walk(graph, (start, 1), line, used, wanted)
-    backward = _walk(graph, (start, 0), line, used, wanted)
-    return _joined(backward, chain.points, forward, used)
+    hops: list[float] = []
+    while True:
+        used = {start}
+        forward = _walk(graph, (start, 1), line, used, wanted, hops)
+        backward = _walk(graph, (start, 0), line, used, wanted, forward.hops)
+        if len(forward.hops) >= DASHES or len(backward.hops) < DASHES:
+            return _joined(backward, chain.points, forward, used)
+        # the way back told that the line is dashed: the way forward may pass a kink in a break
+        hops = backward.hops
 
 
 def _joined(backward: Walk, middle: Floats, forward: Walk, used: set[int]) -> Walk:
@@ -90,10 +95,11 @@ def _joined(backward: Walk, middle: Floats, forward: Walk, used: set[int]) -> Wa
     )
 
 
-def _walk(graph: ChainGraph, end: End, line: Line, used: set[int], wanted: frozenset[int]) -> Walk:
-    """Walk outwards from a chain's end; ``used`` gains the chains passed."""
-    walk = Walk()
+def _walk(graph: ChainGraph, end: End, line: Line, used: set[int], wanted: frozenset[int], hops: list[float]) -> Walk:
+    """Walk outwards from a chain's end; ``used`` gains the chains passed, ``hops`` are breaks known before."""
+    walk = Walk(hops=list(hops))
     trusted = [oriented(graph, other(end))]
+    merged: list[Floats] = []
     count = 0
     while True:
         onward = heading(_history(trusted, line))
@@ -109,8 +115,10 @@ def _walk(graph: ChainGraph, end: End, line: Line, used: set[int], wanted: froze
             used.add(entry[0])
             walk.places.append(points)
             count += len(points)
-            if not is_bridge(graph.chains[entry[0]]):
-                trusted.append(points)
+            merged = [] if not is_bridge(graph.chains[entry[0]]) else [*merged, points]
+            if not merged or sum(map(len, merged)) > 1.5 * MERGED * line.width:
+                trusted.extend(merged or [points])
+                merged = []
         end = other(route.entries[-1])
 
 
