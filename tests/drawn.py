@@ -14,7 +14,7 @@ from demo_curves.drawing.layout import lay_out
 from demo_curves.drawing.render import VECTOR, grey, raster
 from demo_curves.drawing.truth import PlotTruth, SheetTruth
 from demo_curves.drawing.worksheet import Clicks, WorksheetHead, worksheet_text
-from tests.drawing.shapes import KINDS
+from tests.drawing.shapes import KINDS, Subject
 from tests.drawing.styles import styled
 
 QUALITIES = {
@@ -47,23 +47,34 @@ class DrawnSheet:
 def random_sheet(seed: int, quality: str = "clean", renderer: str | None = None, kind: str | None = None) -> DrawnSheet:
     """A sheet of a quality (see QUALITIES) and kind of device (see KINDS); what is None follows from the seed."""
     rng = np.random.default_rng(seed)
+    kind = kind or sorted(KINDS)[seed % len(KINDS)]
+    return _drawn(KINDS[kind](rng), f"{kind}-{seed}", (seed, rng), quality, renderer)
+
+
+def sheet_of(subject: Subject, seed: int, quality: str = "clean", renderer: str | None = None) -> DrawnSheet:
+    """A sheet of given lines; its look follows from the seed."""
+    return _drawn(subject, f"subject-{seed}", (seed, np.random.default_rng(seed)), quality, renderer)
+
+
+def _drawn(
+    subject: Subject, stem: str, chance: tuple[int, np.random.Generator], quality: str, renderer: str | None
+) -> DrawnSheet:
+    seed, rng = chance
     renderers = QUALITIES[quality]
     renderer = renderer or renderers[seed % len(renderers)]
-    kind = kind or sorted(KINDS)[seed % len(KINDS)]
-    subject = KINDS[kind](rng)
     design = styled(subject, rng, line_art=quality == "bilevel")
     drawn = lay_out(design)
     truth = drawn.truth
     page = design.page
     if quality == "vector":
-        name, data = f"{kind}-{seed}.{renderer[-3:]}", VECTOR[renderer](drawn.ink, page)
+        name, data = f"{stem}.{renderer[-3:]}", VECTOR[renderer](drawn.ink, page)
     elif quality in {"clean", "snapped"}:
         truth = truth.to_pixels()
         pixels = raster(drawn, page, renderer)
-        name, data = f"{kind}-{seed}.png", image_file(pixels if seed % 3 else grey(pixels), "png", page.dpi)
+        name, data = f"{stem}.png", image_file(pixels if seed % 3 else grey(pixels), "png", page.dpi)
     else:
         pixels, truth = scanned(drawn, page, _random_scan(rng, renderer, quality))
-        name, data = _scan_file(f"{kind}-{seed}", pixels, quality, page.dpi, rng)
+        name, data = _scan_file(stem, pixels, quality, page.dpi, rng)
     head = WorksheetHead(file=name, document={"title": subject.title, "maker": "Trial"}, devices=subject.devices)
     clicks = Clicks(seed=seed + 1, marks=int(rng.integers(2, 5)), guides=2)
     return DrawnSheet(name=name, data=data, truth=truth, worksheet=worksheet_text(truth, head, clicks))
