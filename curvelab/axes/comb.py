@@ -3,8 +3,9 @@
 from dataclasses import dataclass, replace
 
 import numpy as np
+from scipy.stats import binom
 
-from curvelab.axes.pattern import MAIN, Range, finer_lines, linear_lines, linear_steps, log_lines
+from curvelab.axes.pattern import MAIN, Range, linear_lines, linear_steps, log_lines, log_patterns
 from curvelab.axes.strips import Profile
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axis
@@ -18,8 +19,14 @@ CLICK_SD = 1.5
 LINE_WORTH = 3.0
 """What one line met is worth, in units of log likelihood."""
 
-LEAST_SHARE = 0.5
-"""Share of the pattern's lines that must be met, and of the lines seen that the pattern must explain."""
+AT_LINE = 1.5
+"""Pixels within which a line seen is one of the pattern, once the ruler rests on the lines."""
+
+EXPLAINED = 0.6
+"""Share of the lines seen that a pattern must explain, and"""
+
+BY_CHANCE = 1e-3
+"""the probability that as many were explained by chance, which it must stay below."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -42,22 +49,15 @@ class Ruler:
 class Alignment:
     """A pattern laid on the lines: the ruler, the lines it predicts, and how well both agree.
 
-    ``met`` is the share of the pattern's lines that are there, ``explained`` the share of the lines that are there
-    which the finest pattern explains; ``score`` compares alignments of the same axis. ``step`` is that of a linear axis
-    in its printed unit, 0 on a log axis.
+    ``agrees`` says whether a printed pattern explains the lines that are there; ``score`` compares alignments of the
+    same axis. ``step`` is that of a linear axis in its printed unit, 0 on a log axis.
     """
 
     ruler: Ruler
     lines: Floats
-    met: float
-    explained: float
+    agrees: bool
     score: float
     step: float = 0.0
-
-    @property
-    def agrees(self) -> bool:
-        """Whether the pattern is the one printed."""
-        return self.met * len(self.lines) >= 3 and self.explained >= LEAST_SHARE
 
 
 def align(axis: Axis, ruler: Ruler, ends: Range, profile: Profile) -> Alignment:
@@ -76,9 +76,7 @@ def align(axis: Axis, ruler: Ruler, ends: Range, profile: Profile) -> Alignment:
         return _laid(axis, ruler, ends, profile, log_lines(axis, ends, MAIN))
     span = abs(ends[1] - ends[0])
     steps = linear_steps(axis, span, 8.0 * profile.step / abs(ruler.per_scaled))
-    tried = [
-        replace(_laid(axis, ruler, ends, profile, linear_lines(axis, ends, step)), step=step) for step in steps
-    ]
+    tried = [replace(_laid(axis, ruler, ends, profile, linear_lines(axis, ends, step)), step=step) for step in steps]
     return max(tried, key=lambda alignment: alignment.score)
 
 
@@ -102,9 +100,9 @@ def _laid(axis: Axis, ruler: Ruler, ends: Range, profile: Profile, lines: Floats
         origin=ruler.origin + float(errors[i]) - (per_scaled - ruler.per_scaled) * ends[0], per_scaled=per_scaled
     )
     moved = _settled(moved, lines, profile)
-    share_met = float(np.mean(profile.at(moved.across(lines)))) if len(lines) else 0.0
-    explained = _explained(axis, moved, ends, profile, lines)
-    return Alignment(ruler=moved, lines=lines, met=share_met, explained=explained, score=float(score[i, j]))
+    patterns = log_patterns(axis, ends) if axis.scale == "log" else [lines]
+    agrees = any(_explains(moved.across(pattern), moved.across(np.array(ends)), profile) for pattern in patterns)
+    return Alignment(ruler=moved, lines=lines, agrees=agrees, score=float(score[i, j]))
 
 
 def _settled(ruler: Ruler, lines: Floats, profile: Profile) -> Ruler:
@@ -123,15 +121,17 @@ def _settled(ruler: Ruler, lines: Floats, profile: Profile) -> Ruler:
     return ruler
 
 
-def _explained(axis: Axis, ruler: Ruler, ends: Range, profile: Profile, lines: Floats) -> float:
-    """Share of the lines seen between the outermost marks that the finest pattern has too."""
-    low, high = sorted(ruler.across(np.array(ends)))
-    seen = profile.peaks
-    seen = seen[(seen > low - 3 * profile.step) & (seen < high + 3 * profile.step)]
-    if not seen.size:
-        return 0.0
-    finest = finer_lines(axis, ends) if axis.scale == "log" else lines
-    places = ruler.across(finest)
-    distance = np.abs(seen[:, None] - places[None, :]).min(axis=1) if places.size else np.full(seen.size, np.inf)
-    return float(np.mean(distance <= 2.5 * profile.step))
+def _explains(places: Floats, ends: Floats, profile: Profile) -> bool:
+    """Whether lines at ``places`` are nearly all that is seen between the outermost marks, and not by chance.
 
+    A dense pattern meets any line within the tolerance of one of its own: the binomial tail counts that in.
+    """
+    margin = 2 * AT_LINE * profile.step
+    low, high = ends.min() - margin, ends.max() + margin
+    seen = profile.peaks[(profile.peaks > low) & (profile.peaks < high)]
+    if not seen.size or not places.size:
+        return False
+    near = np.abs(seen[:, None] - places).min(axis=1) <= AT_LINE * profile.step
+    chance = min(1.0, len(places) * margin / (high - low))
+    count = int(np.sum(near))
+    return count >= EXPLAINED * len(seen) and float(binom.sf(count - 1, len(seen), chance)) < BY_CHANCE

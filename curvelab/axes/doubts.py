@@ -2,18 +2,20 @@
 
 from curvelab.axes.entries import mark_text, table_name
 from curvelab.axes.grid import Grid
-from curvelab.axes.marks import AGREEING, CLICK_SD
-from curvelab.records.axes import Axis
+from curvelab.axes.marks import AGREEING, CLICK_SD, pixel_size
+from curvelab.records.axes import Axis, Mark
+from curvelab.records.sheet import Sheet
 from curvelab.records.warning import ReadingWarning
 
 
 def doubts_of(
-    axes: tuple[Axis, Axis], grid: Grid, by_grid: tuple[bool, bool], snapped: bool, pixel: float
+    sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid, by_grid: tuple[bool, bool], *, snapped: bool
 ) -> list[ReadingWarning]:
     """Warnings about both axes.
 
     Parameters
     ----------
+    sheet : Sheet
     axes : (Axis, Axis)
         With the residuals of their marks.
     grid : Grid
@@ -21,18 +23,17 @@ def doubts_of(
         Whether an axis's grid lines decided.
     snapped : bool
         Whether the lines stand on whole pixels.
-    pixel : float
-        What a hand clicks by, in the sheet's unit.
     """
+    pixel = pixel_size(sheet)
     doubts = [_snapped()] if snapped else []
     for k, axis in enumerate(axes):
         if grid.disagrees[k]:
             doubts.append(_astray(axis))
         if not by_grid[k]:
-            doubts.append(_by_marks(axis, pixel))
+            doubts.append(_by_marks(axis, f"{CLICK_SD * pixel:.2g} {sheet.unit}"))
         doubts += [
-            _outlying(axis, index, by_grid[k])
-            for index, mark in enumerate(axis.marks)
+            _outlying(axis, mark, f"{abs(mark.residual):.3g} {sheet.unit}", by_grid=by_grid[k])
+            for mark in axis.marks
             if mark.residual is not None and abs(mark.residual) > AGREEING * pixel
         ]
     return doubts
@@ -52,19 +53,15 @@ def _astray(axis: Axis) -> ReadingWarning:
     return ReadingWarning(code="grid-disagrees", text=text, at=axis.marks[0].at)
 
 
-def _by_marks(axis: Axis, pixel: float) -> ReadingWarning:
+def _by_marks(axis: Axis, off: str) -> ReadingWarning:
     text = (
-        f"{table_name(axis.quantity)} rests on its {len(axis.marks)} marks alone, as no grid lines were found for it; "
-        f"a mark is taken to be off by {CLICK_SD * pixel:.2g}: give more marks, or exact ones."
+        f"{table_name(axis.quantity)} rests on its {len(axis.marks)} marks alone, as no grid lines confirm them; "
+        f"a mark is taken to be off by {off} as a rule: give more marks, or exact ones."
     )
     return ReadingWarning(code="axes-from-marks", text=text)
 
 
-def _outlying(axis: Axis, index: int, by_grid: bool) -> ReadingWarning:
-    mark = axis.marks[index]
+def _outlying(axis: Axis, mark: Mark, off: str, *, by_grid: bool) -> ReadingWarning:
     what = "its grid line" if by_grid else "where the other marks have its value"
-    text = (
-        f"The {mark_text(mark)} of {table_name(axis.quantity)} lies {abs(mark.residual or 0.0):.3g} from {what}: "
-        "correct its place or value."
-    )
+    text = f"The {mark_text(mark)} of {table_name(axis.quantity)} lies {off} from {what}: correct its place or value."
     return ReadingWarning(code="mark-outlying", text=text, at=mark.at)

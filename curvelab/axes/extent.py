@@ -39,7 +39,9 @@ def covered_range(look: Look, plane: PlaneMap, scaled: Floats, others: Floats, s
     """
     dark, other = _followed(look, plane, _roomy(look, plane, scaled))
     inside = (other >= min(seed)) & (other <= max(seed))
-    usual = np.array([np.median(row[within]) if within.any() else 0.0 for row, within in zip(dark, inside, strict=True)])
+    usual = np.array(
+        [np.median(row[within]) if within.any() else 0.0 for row, within in zip(dark, inside, strict=True)]
+    )
     there = dark > np.maximum(0.5 * usual, LEAST_CONTRAST)[:, None]
     step = abs(float(np.median(np.diff(other, axis=1))))
     lowest = float(other.min())
@@ -67,7 +69,7 @@ def _followed(look: Look, plane: PlaneMap, scaled: Floats) -> tuple[Floats, Floa
     """Contrast of each line in every row of the image, and the other axis's scaled value there."""
     height, width = look.image.shape
     rows = np.arange(height)
-    paths = look.paths(plane, scaled, rows[:: 64].astype(np.float64))
+    paths = look.paths(plane, scaled, rows[::64].astype(np.float64))
     paths = np.stack([np.interp(rows, rows[::64], path) for path in paths])
     other = plane.scaled(look.places(paths, rows.astype(np.float64)).reshape(-1, 2))[:, 1 - look.axis]
     columns = np.rint(paths).astype(np.int64)

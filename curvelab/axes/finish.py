@@ -40,7 +40,7 @@ def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Ax
         grid_residual_rms=_grid_rms(axes, grid, plane) if any(used) else None,
         grid=grid.lines,
     )
-    return calibrated, tuple(doubts_of(marked, grid, used, snapping is not None, pixel_size(sheet)))
+    return calibrated, tuple(doubts_of(sheet, marked, grid, used, snapped=snapping is not None))
 
 
 def _enough(grid: Grid, axis: int) -> bool:

@@ -12,6 +12,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from curvelab.axes.paths import Look
+from curvelab.axes.straight import agreeing
 from curvelab.axes.stroke import Centres, Shape, darkest_places, fit_centres, fit_shape
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import PlaneMap
@@ -36,6 +37,9 @@ BLURS = (0.5, 0.05)
 PLACES = 10
 """Places that a measured line is summarised by."""
 
+LEAST_SPREAD = 0.01
+"""Pixels: stations are never believed to scatter less."""
+
 NEAR = 1.5
 """Pixels by which a line may lie off its prediction."""
 
@@ -56,8 +60,9 @@ class Measured:
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class _Stations:
-    """Mean profiles of stations, shape (n, 2 WIDEST + 1), about whole ``column``; where each was taken, and of which
-    line; ``path`` is where the line was predicted.
+    """Mean profiles of stations, shape (n, 2 WIDEST + 1), about whole columns; of which line and where along.
+
+    ``path`` is where the line was predicted.
     """
 
     profiles: Floats
@@ -118,7 +123,7 @@ def _taken(look: Look, plane: PlaneMap, scaled: Floats, others: Floats, covered:
     first, last = max(float(ends.min()), 0.0), min(float(ends.max()), height - 1.0)
     step = max(STATION, int(np.ceil((last - first) / MOST_STATIONS)))
     tops = np.arange(int(np.ceil(first)), int(last) - STATION + 2, step)
-    middles = tops + (STATION - 1) / 2
+    middles = (tops + (STATION - 1) / 2).astype(np.float64)
     path = look.paths(plane, scaled, middles)
     line, station = np.nonzero(
         (tops[None, :] >= ends[:, :1])
@@ -153,7 +158,8 @@ def _clear_rows(look: Look, plane: PlaneMap, scaled: Floats, others: Floats, hei
         stop = np.clip(np.floor(along + CROSSING_MARGIN) + 1, 0, height).astype(np.int64).ravel()
         np.add.at(covered, (line, start), 1)
         np.add.at(covered, (line, stop), -1)
-    return np.cumsum(covered, axis=1)[:, :height] == 0
+    clear: NDArray[np.bool_] = np.cumsum(covered, axis=1)[:, :height] == 0
+    return clear
 
 
 def _half_widths(look: Look, plane: PlaneMap, scaled: Floats, covered: tuple[float, float]) -> NDArray[np.int64]:
@@ -161,7 +167,8 @@ def _half_widths(look: Look, plane: PlaneMap, scaled: Floats, covered: tuple[flo
     middle = look.crossings(plane, scaled, np.array([0.5 * sum(covered)])).mean()
     spacing = np.abs(np.diff(look.paths(plane, scaled, np.array([middle]))[:, 0]))
     room = np.minimum(np.append(spacing, np.inf), np.insert(spacing, 0, np.inf))
-    return np.clip(np.floor(np.minimum(room, 99.0) - 2.5), NARROWEST, WIDEST).astype(np.int64)
+    half: NDArray[np.int64] = np.clip(np.floor(np.minimum(room, 99.0) - 2.5), NARROWEST, WIDEST).astype(np.int64)
+    return half
 
 
 def _fitted(stations: _Stations, half: int, shape: Shape) -> Centres:
@@ -215,9 +222,7 @@ def _shape(stations: _Stations, half: NDArray[np.int64], mine: NDArray[np.bool_]
     return min(fits, key=lambda fit: fit[1])[0]
 
 
-def _line(
-    look: Look, stations: _Stations, centres: Centres, shape: Shape, line: int, scaled: float
-) -> Measured | None:
+def _line(look: Look, stations: _Stations, centres: Centres, shape: Shape, line: int, scaled: float) -> Measured | None:
     """One line's places from its stations; None where too few agree."""
     mine = np.flatnonzero(stations.line == line)
     across = stations.column[mine] + centres.centre[mine]
@@ -229,7 +234,7 @@ def _line(
     if len(mine) < 4 or usual < 2.0 or np.sum(good) < max(4, 0.3 * len(mine)):
         return None
     along = stations.along[mine]
-    good, scatter = _agreeing(along, offset, good)
+    good, scatter = agreeing(along, offset, good, LEAST_SPREAD)
     if np.sum(good) < 4:
         return None
     groups = [part for part in np.array_split(np.flatnonzero(good), min(PLACES, int(np.sum(good)))) if len(part)]
@@ -243,22 +248,3 @@ def _line(
         width=shape.width,
         darkness=float(np.clip(usual / max(paper, 1.0), 0.0, 1.0)),
     )
-
-
-def _agreeing(along: Floats, offset: Floats, good: NDArray[np.bool_]) -> tuple[NDArray[np.bool_], float]:
-    """Stations within four standard deviations of the line's own straight line, and that standard deviation."""
-    design = np.stack([np.ones_like(along), (along - along.mean()) / 1000.0], axis=1)
-    weight = good.astype(np.float64)
-    spread = 0.0
-    for _ in range(10):
-        root = np.sqrt(weight)
-        fitted = np.linalg.lstsq(design * root[:, None], offset * root, rcond=None)[0]
-        residual = offset - design @ fitted
-        spread = max(1.4826 * float(np.median(np.abs(residual[good]))), LEAST_SPREAD)
-        weight = good * np.square(np.maximum(1 - np.square(residual / (4.685 * spread)), 0.0))
-    kept = good & (np.abs(residual) <= 4.0 * spread)
-    return kept, max(float(np.std(residual[kept])), LEAST_SPREAD) if kept.any() else spread
-
-
-LEAST_SPREAD = 0.01
-"""Pixels: stations are never believed to scatter less."""

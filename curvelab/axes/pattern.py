@@ -35,6 +35,12 @@ def log_lines(axis: Axis, covered: Range, mantissas: Floats) -> Floats:
     return merged[np.diff(merged, prepend=-np.inf) > 1e-9]
 
 
+def log_patterns(axis: Axis, covered: Range) -> list[Floats]:
+    """Lines within ``covered`` of each usual log paper, coarsest first."""
+    papers = (np.array([1.0]), np.array([1.0, 2.0, 5.0]), MAIN, np.union1d(MAIN, HALVES))
+    return [log_lines(axis, covered, paper) for paper in papers] + [finer_lines(axis, covered)]
+
+
 def finer_lines(axis: Axis, covered: Range) -> Floats:
     """Every line that the finest log paper may carry, rising."""
     return log_lines(axis, covered, np.union1d(np.union1d(MAIN, FINE), HALVES))
@@ -45,7 +51,7 @@ def linear_lines(axis: Axis, covered: Range, step: float) -> Floats:
     factor = axis.factor * unit_factor(axis.quantity, axis.unit)
     size = step * factor
     first, last = math.ceil(covered[0] / size - 1e-9), math.floor(covered[1] / size + 1e-9)
-    return np.arange(first, last + 1) * size
+    return size * np.arange(first, last + 1, dtype=np.float64)
 
 
 def linear_steps(axis: Axis, longest: float, shortest: float) -> list[float]:
@@ -58,5 +64,6 @@ def linear_steps(axis: Axis, longest: float, shortest: float) -> list[float]:
 
 def _decades(covered: Range, shift: float, mantissas: Floats) -> Floats:
     first, last = math.floor(covered[0] - shift), math.ceil(covered[1] - shift)
-    scaled = (np.arange(first, last + 1)[:, None] + np.log10(mantissas)[None, :]).ravel() + shift
+    decades = np.arange(first, last + 1, dtype=np.float64) + shift
+    scaled = (decades[:, None] + np.log10(mantissas)).ravel()
     return scaled[(scaled >= covered[0] - 1e-9) & (scaled <= covered[1] + 1e-9)]

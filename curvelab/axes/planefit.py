@@ -27,6 +27,8 @@ STEPS = 4
 """Gauss-Newton steps between two estimates of the variances."""
 
 ROUNDS = 4
+SETTLED = 1e-12
+"""Parameter step, in scaled units, below which the fit stands still."""
 
 QUADRATIC = ((2, 0), (1, 1), (0, 2))
 CUBIC = (*QUADRATIC, (3, 0), (2, 1), (1, 2), (0, 3))
@@ -201,13 +203,14 @@ class _Problem:
         kept = np.ones(len(self.line_axis), dtype=bool)
         residual, rows = self._linear(plane, model)
         line_sd, place_sd = self._variances(residual, kept, 0)
-        inverse = np.zeros((len(model.free), len(model.free)))
         for _ in range(ROUNDS):
             for _ in range(STEPS):
                 weighted, design = self._whitened(residual, rows, kept, line_sd, place_sd, plane, model)
-                step, inverse = _solution(weighted, design)
+                step, _ = _solution(weighted, design)
                 plane = _moved(plane, model, -step)
                 residual, rows = self._linear(plane, model)
+                if np.abs(step).max() < SETTLED:
+                    break
             kept = self._kept(residual)
             line_sd, place_sd = self._variances(residual, kept, len(model.free))
         weighted, design = self._whitened(residual, rows, kept, line_sd, place_sd, plane, model)
@@ -325,7 +328,8 @@ def _tilt_row(plane: PlaneMap, model: Model, tilt: Tilt) -> Floats:
     if tilt.square:
         # Turned lines of the two axes lean by opposite slopes.
         row = row + _lean(plane, 1 - tilt.axis)
-    return row[np.concatenate([[0], 1 + model.free])] / tilt.sd
+    whitened: Floats = row[np.concatenate([[0], 1 + model.free])] / tilt.sd
+    return whitened
 
 
 def _lean(plane: PlaneMap, axis: int) -> Floats:

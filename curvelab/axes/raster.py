@@ -80,8 +80,11 @@ def raster_grid(pixels: Pixels, axes: tuple[Axis, Axis]) -> Grid:
     state = _State(plane=_first_plane(views, laid, slopes), lines=(main[0], main[1]), covered=seeds)
     state = _searched(state, views, state.lines, _Round(strips=[view.seed for view in views], reach=3.0, models=()))
     state = _extended(state, views)
-    for finest, reach in ((False, 3.0), (False, 2.0), (True, 1.2)):
-        candidates = [_candidates(axis, alignment, part, finest=finest) for axis, alignment, part in zip(axes, laid, state.covered, strict=True)]
+    for finest, reach in ((False, 3.0), (True, 1.5)):
+        candidates = [
+            _candidates(axis, alignment, part, finest=finest)
+            for axis, alignment, part in zip(axes, laid, state.covered, strict=True)
+        ]
         part = _Round(strips=_inside(state, views), reach=reach, models=RICHER)
         state = _searched(state, views, (candidates[0], candidates[1]), part)
     grid = [
@@ -137,9 +140,7 @@ def _first_plane(views: tuple[_View, _View], laid: list[Alignment], slopes: tupl
     return affine_map(centre, reach, np.stack(rows))
 
 
-def _searched(
-    state: _State, views: tuple[_View, _View], candidates: tuple[Floats, Floats], part: _Round
-) -> _State:
+def _searched(state: _State, views: tuple[_View, _View], candidates: tuple[Floats, Floats], part: _Round) -> _State:
     """The lines found among candidates, and the map fitted to them."""
     lines: list[Line] = []
     values = []
@@ -158,7 +159,9 @@ def _extended(state: _State, views: tuple[_View, _View]) -> _State:
     covered = list(state.covered)
     for k, view in enumerate(views):
         if len(state.lines[k]) >= FEWEST_LINES:
-            covered[1 - k] = covered_range(view.look, state.plane, state.lines[k], state.lines[1 - k], state.covered[1 - k])
+            covered[1 - k] = covered_range(
+                view.look, state.plane, state.lines[k], state.lines[1 - k], state.covered[1 - k]
+            )
     return replace(state, covered=(covered[0], covered[1]))
 
 

@@ -3,9 +3,9 @@
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
 from curvelab.axes.paths import Look
+from curvelab.axes.straight import near_straight
 from curvelab.axes.strips import Strips
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import PlaneMap
@@ -22,6 +22,9 @@ ABOVE_NOISE = 3.0
 STRAIGHT = 1.0
 """Pixels by which the strips of a line may leave its own straight line."""
 
+PLACES = 10
+"""Places that a line is summarised by."""
+
 LEAST_STRIPS = 4
 LEAST_SHARE = 0.4
 
@@ -35,9 +38,7 @@ class Found:
     dark: float
 
 
-def search_lines(
-    look: Look, strips: Strips, plane: PlaneMap, scaled: Floats, reach: float
-) -> list[Found]:
+def search_lines(look: Look, strips: Strips, plane: PlaneMap, scaled: Floats, reach: float) -> list[Found]:
     """Lines clearly darker than the paper within ``reach`` pixels of their predicted paths."""
     if not len(scaled):
         return []
@@ -49,9 +50,9 @@ def search_lines(
     for value, path, space in zip(scaled, paths, room, strict=True):
         across, dark = _darkest(strips, path, min(reach, 0.45 * space))
         good = dark > max(least, FAINT * float(np.median(dark)))
-        good &= _straight(strips.along, across - path, good)
+        good &= near_straight(strips.along, across - path, good, STRAIGHT)
         if np.sum(good) >= max(LEAST_STRIPS, LEAST_SHARE * len(path)):
-            points = look.places(across[good], strips.along[good])
+            points = _summary(look.places(across[good], strips.along[good]))
             found.append(Found(scaled=float(value), points=points, dark=float(np.median(dark[good]))))
     return found
 
@@ -72,17 +73,6 @@ def _darkest(strips: Strips, path: Floats, reach: float) -> tuple[Floats, Floats
     return np.where(peak, best + shift, path), np.where(peak, top, 0.0)
 
 
-def _straight(along: Floats, offset: Floats, good: NDArray[np.bool_]) -> NDArray[np.bool_]:
-    """Strips that agree on one straight line: repeated least absolute deviation, then a fixed tolerance."""
-    middle = along.mean()
-    weight = good.astype(np.float64)
-    residual = offset
-    for _ in range(8):
-        if np.sum(weight > 0) < 2:
-            return np.zeros(len(along), dtype=bool)
-        design = np.stack([np.ones_like(along), (along - middle) / 1000.0], axis=1)
-        root = np.sqrt(weight)
-        fitted = np.linalg.lstsq(design * root[:, None], offset * root, rcond=None)[0]
-        residual = np.abs(offset - design @ fitted)
-        weight = good / np.maximum(residual, 0.05)
-    return residual <= STRAIGHT
+def _summary(points: Floats) -> Floats:
+    """Means of neighbouring places, a few for the whole line."""
+    return np.array([part.mean(axis=0) for part in np.array_split(points, min(PLACES, len(points)))])

@@ -39,7 +39,7 @@ class _Rulers:
 
 def snapped_map(pixels: Pixels, axes: tuple[Axis, Axis], snapping: Snapping) -> PlaneMap | None:
     """The map from places of the sheet; None where no ruler passes the lines."""
-    spans = [(0.5 * (lines.scaled.max() + lines.scaled.min()), 0.5 * np.ptp(lines.scaled)) for lines in snapping.lines]
+    spans = [_span(lines) for lines in snapping.lines]
     shifts = (0.0, 0.5) if snapping.shift_possible else (0.0,)
     for slack in SLACKS:
         habits = [[_rulers(lines, shift, slack) for lines in snapping.lines] for shift in shifts]
@@ -50,9 +50,15 @@ def snapped_map(pixels: Pixels, axes: tuple[Axis, Axis], snapping: Snapping) -> 
     return None
 
 
+def _span(lines: SnappedLines) -> tuple[float, float]:
+    """Middle and half length of the lines' scaled values."""
+    low, high = float(lines.scaled.min()), float(lines.scaled.max())
+    return 0.5 * (low + high), 0.5 * (high - low)
+
+
 def _rulers(lines: SnappedLines, shift: float, slack: float) -> _Rulers:
     """All rulers that pass the lines within half a pixel, those on centres from ``shift`` before."""
-    middle, half = 0.5 * (lines.scaled.max() + lines.scaled.min()), 0.5 * np.ptp(lines.scaled)
+    middle, half = _span(lines)
     part = (lines.scaled - middle) / half
     across = lines.across - shift * lines.centred
     best = fitted_ruler(across, part)
@@ -62,7 +68,7 @@ def _rulers(lines: SnappedLines, shift: float, slack: float) -> _Rulers:
         normal = np.array([1.0, t])
         corners = cut(cut(corners, normal, o + 0.5 + slack), -normal, 0.5 + slack - o)
     area, mean, covariance = moments(corners)
-    return _Rulers(area=area, mean=mean + (best.origin, best.per_scaled), covariance=covariance)
+    return _Rulers(area=area, mean=mean + np.array([best.origin, best.per_scaled]), covariance=covariance)
 
 
 def _mixed(habits: list[list[_Rulers]], weights: Floats) -> tuple[Floats, Floats]:

@@ -93,7 +93,7 @@ def strips_of(image: Bytes, rows: tuple[int, int]) -> Strips:
     paper = cv2.morphologyEx(means, cv2.MORPH_CLOSE, np.ones((1, PAPER_REACH), np.uint8))
     dark: Any = cv2.GaussianBlur(paper - means, (0, 0), sigmaX=1.0, sigmaY=0.01)
     dark -= np.median(dark, axis=1, keepdims=True)
-    along = rows[0] + STRIP * (np.arange(count) + 0.5) - 0.5
+    along = rows[0] - 0.5 + STRIP * np.arange(0.5, count, dtype=np.float64)
     return Strips(dark=dark, along=along)
 
 
@@ -122,7 +122,7 @@ def profile_along(strips: Strips, slope: float) -> Profile:
     # A faint line counts as much as a dark one, once it is clearly above noise and the rings beside dark lines.
     strong = float(np.quantile(peaks, 0.98)) if peaks.size else 0.0
     full = max(8 * noise, LEAST_DARK, 0.05 * strong)
-    return Profile(dark=(dark - floor) / full, first=0.0, step=1.0, middle=strips.middle)
+    return Profile(dark=((dark - floor) / full).astype(np.float64), first=0.0, step=1.0, middle=strips.middle)
 
 
 def _coarse(strips: Strips) -> Strips:
@@ -144,7 +144,7 @@ def _energies(strips: Strips, slopes: Floats, pixel: int) -> Floats:
 def _refined(strips: Strips, slope: float) -> float:
     half = float(np.ptp(strips.along)) / 2 + 1.0
     step = 0.5 / half
-    slopes = slope + step * np.arange(-16, 17)
+    slopes = slope + step * np.arange(-8.0, 9.0, dtype=np.float64)
     energy = _energies(strips, slopes, 1)
     k = int(np.clip(np.argmax(energy), 1, len(slopes) - 2))
     below, top, above = energy[k - 1 : k + 2]

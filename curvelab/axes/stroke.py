@@ -65,7 +65,8 @@ def darkest_places(profiles: Floats, offsets: Floats, expected: Floats, reach: f
     best = np.clip(np.argmax(np.where(near, dark, -1.0), axis=1), 1, len(offsets) - 2)
     rows = np.arange(len(profiles))
     left, top, right = (dark[rows, best + k] for k in (-1, 0, 1))
-    return offsets[best] + (right - left) / np.maximum(left + top + right, 1e-9)
+    places: Floats = offsets[best] + (right - left) / np.maximum(left + top + right, 1e-9)
+    return places
 
 
 def fit_centres(profiles: Floats, offsets: Floats, shape: Shape, start: Floats) -> Centres:
@@ -148,7 +149,7 @@ def _linearised(grey: Floats, offsets: Floats, common: Floats, centre: Floats) -
 def _common_step(residual: Floats, common: Floats, turn: Floats, damping: float) -> Floats:
     free = np.stack([_without(column, turn).ravel() for column in common])
     normal = free @ free.T
-    damped = normal + damping * np.diag(np.diag(normal)) + 1e-12 * np.eye(len(free))
+    damped = normal + np.diag(damping * np.diag(normal) + 1e-12)
     step: Floats = np.linalg.solve(damped, free @ residual.ravel())
     return step
 
