@@ -173,7 +173,10 @@ class PlaneMap:
         place = np.repeat(self.centre[None, :], len(target), axis=0)
         tolerance = 1e-10 * self.reach
         for _ in range(SOLVER_STEPS):
-            step = np.linalg.solve(self.jacobian(place), (target - self.scaled(place))[:, :, None])[:, :, 0]
+            try:
+                step = np.linalg.solve(self.jacobian(place), (target - self.scaled(place))[:, :, None])[:, :, 0]
+            except np.linalg.LinAlgError:
+                break
             place = place + step
             if not np.all(np.isfinite(step)):
                 break
