@@ -18,8 +18,8 @@ CAP = 30.0
 HOP_STROKES = 40.0
 LONGEST_HOP = 160.0
 """px: a gap is bridged up to 40 stroke widths, at most this."""
-SHORTEST_FAR_SIDE = 0.18
-"""Least length of what lies beyond an unseen stretch, relative to that stretch."""
+THIN = 3.0
+"""px"""
 TINT_SPREAD = 0.2
 """Difference of ink between chains of one line, relative to the ink."""
 
@@ -82,8 +82,13 @@ def routes_through_junction(graph: ChainGraph, end: End, onward: Heading, line: 
     return sorted(routes, key=lambda route: route.cost)
 
 
-def routes_over_gap(graph: ChainGraph, onward: Heading, line: Line, used: set[int], reach: float) -> list[Route]:
-    """Every route that starts ahead after an unseen stretch, best first."""
+def routes_over_gap(
+    graph: ChainGraph, onward: Heading, line: Line, used: set[int], reach: float, far_side: float
+) -> list[Route]:
+    """Every route that starts ahead after an unseen stretch, best first.
+
+    ``far_side`` is the least length of what lies beyond, relative to the unseen stretch.
+    """
     if graph.tips is None:
         return []
     routes = []
@@ -98,7 +103,7 @@ def routes_over_gap(graph: ChainGraph, onward: Heading, line: Line, used: set[in
             continue
         for entries in _extended(graph, (entry,), line.look_ahead, used):
             route = _route(graph, entries, onward, line, hop=float(ahead[0]))
-            if _looks_back(route, onward, float(ahead[0])):
+            if _looks_back(route, onward, float(ahead[0]), far_side):
                 routes.append(route)
     return sorted(routes, key=lambda route: route.cost)
 
@@ -143,18 +148,20 @@ def colour_cost(graph: ChainGraph, entries: tuple[End, ...], line: Line) -> floa
     chain = max((graph.chains[number] for number, _ in entries), key=lambda c: c.length)
     if chain.length < 3.0 * line.width:
         return 0.0
-    scale = TINT_SPREAD * max(float(line.ink.max()), 0.1)
+    # the middle pixel of a thin stroke shows half to all of its ink
+    spread = TINT_SPREAD if line.width > THIN else 2.0 * TINT_SPREAD
+    scale = spread * max(float(line.ink.max()), 0.1)
     tint = float(np.max(np.abs(chain.ink - line.ink))) / scale
     width = (chain.width - line.width) / (0.5 * line.width + 1.0)
     return min(tint**2, 9.0) + min(width**2, 4.0)
 
 
-def _looks_back(route: Route, onward: Heading, hop: float) -> bool:
+def _looks_back(route: Route, onward: Heading, hop: float, far_side: float) -> bool:
     """Whether the route, followed backwards over the gap, comes out at the line's tip."""
     if route.hop <= 4.0:
         return True
     length = float(np.hypot(*np.diff(route.places, axis=0).T).sum()) if len(route.places) > 1 else 1.0
-    if length < SHORTEST_FAR_SIDE * hop:
+    if length < far_side * hop:
         return False
     back = heading(route.places[::-1])
     if back is None:

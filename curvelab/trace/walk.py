@@ -30,6 +30,8 @@ SHARPEST_TURN = -0.17
 """Cosine of the sharpest turn a line makes in a break: 100 degrees; no line runs back beside itself."""
 LONGEST_UNITED = 400.0
 """px: unseen stretch over which two guide places on either side may still join one line."""
+FAR_DASH, FAR_LINE = 0.18, 0.5
+"""Least length beyond an unseen stretch, relative to it, of a dash and of a line."""
 DASHES = 3
 """Breaks after which a line is dashed."""
 SHORT_HOP = 8.0
@@ -145,12 +147,14 @@ def _next_route(
     if chosen is None:
         chosen = _only_way(graph, end, routes, line, used)
     if chosen is None:
-        short = 2.2 * _common_break(walk.hops) if len(walk.hops) >= DASHES else SHORT_HOP * line.width
-        routes = routes_over_gap(graph, onward, line, used, short)
+        dashed = len(walk.hops) >= DASHES
+        short = 2.2 * _common_break(walk.hops) if dashed else SHORT_HOP * line.width
+        routes = routes_over_gap(graph, onward, line, used, short, FAR_DASH)
         chosen = _best(routes, wanted) or _next_dash(graph, end, onward, line, used, walk.hops)
-    if chosen is None:
-        routes = routes_over_gap(graph, onward, line, used, hop_reach(line))
-        chosen = _best(routes, wanted)
+        if chosen is None:
+            reach = min(hop_reach(line), 6.0 * _common_break(walk.hops)) if dashed else hop_reach(line)
+            routes = routes_over_gap(graph, onward, line, used, reach, FAR_DASH if dashed else FAR_LINE)
+            chosen = _best(routes, wanted)
     if chosen is not None and _rivals(chosen, routes) and not _leads(chosen, wanted):
         walk.doubts.append((float(onward.tip[0]), float(onward.tip[1])))
         if chosen.hop > SHORTEST_GAP:
