@@ -87,15 +87,15 @@ def bands_figure(
 
 def _draw_subject(axes: Axes, subject: Subject) -> None:
     colour = subject.ink.colour
-    for group in subject.groups:
-        if "fast" in group and "slow" in group:
-            for outline in between_outlines(group["fast"], group["slow"], axes.get_ylim()[0]):
+    for band in subject.bands:
+        if band.fast is not None and band.slow is not None:
+            for outline in between_outlines(band.fast, band.slow, axes.get_ylim()[0]):
                 axes.add_patch(Polygon(outline, facecolor=(colour, FILL), edgecolor="none", zorder=2))
                 if subject.ink.hatch:
                     # The hatch takes the edge's colour; without a width the edge itself is not drawn.
                     ink = (colour, HATCH)
                     axes.add_patch(Polygon(outline, fill=False, edgecolor=ink, linewidth=0, hatch=subject.ink.hatch))
-        for edge, curve in group.items():
+        for edge, curve in band.edges.items():
             _draw_edge(axes, edge, curve, colour)
 
 

@@ -91,14 +91,14 @@ def _entry(subject: Subject) -> str:
 
 def _swatch(subject: Subject) -> Artist:
     colour = subject.ink.colour
-    if not any("fast" in group and "slow" in group for group in subject.groups):
-        edge: Edge = next((edge for group in subject.groups for edge in group), "mean")
+    if not any({"fast", "slow"} <= band.edges.keys() for band in subject.bands):
+        edge: Edge = next((edge for band in subject.bands for edge in band.edges), "mean")
         return Line2D([], [], color=colour, linewidth=LINE_WIDTH[edge], linestyle=LINE_STYLE[edge])
     return Patch(facecolor=(colour, 2 * FILL), edgecolor=colour, hatch=subject.ink.hatch, linewidth=0.8)
 
 
 def _key(subjects: Sequence[Subject]) -> Iterator[tuple[Artist, str]]:
-    present = {edge for subject in subjects for group in subject.groups for edge in group}
+    present = {edge for subject in subjects for band in subject.bands for edge in band.edges}
     for edge, words in EDGE_WORDS.items():
         if edge in present:
             yield Line2D([], [], color=GRAPHITE, linewidth=LINE_WIDTH[edge], linestyle=LINE_STYLE[edge]), words

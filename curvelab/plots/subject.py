@@ -8,9 +8,9 @@ import numpy as np
 from curvelab.devices.bases import amperes
 from curvelab.errors import DeviceError
 from curvelab.plots.ink import DeviceInk, device_ink
-from curvelab.records.curve import Curve, Edge
+from curvelab.records.band import Band, bands_of
+from curvelab.records.curve import Curve
 from curvelab.records.device import DeviceRecord, Nameplate
-from curvelab.records.edges import edge_groups
 from curvelab.units import written_current
 
 KIND_WORDS = {
@@ -27,17 +27,17 @@ KIND_WORDS = {
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Subject:
-    """One device as it is drawn: its groups of edges, its ink, and its letter where there are several."""
+    """One device as it is drawn: its bands, its ink, and its letter where there are several."""
 
     plate: Nameplate
-    groups: tuple[dict[Edge, Curve], ...]
+    bands: tuple[Band, ...]
     ink: DeviceInk
     letter: str
 
     @property
     def curves(self) -> tuple[Curve, ...]:
         """Every curve drawn."""
-        return tuple(curve for group in self.groups for curve in group.values())
+        return tuple(curve for band in self.bands for curve in band.edges.values())
 
 
 def subjects_of(devices: Sequence[DeviceRecord], quantity: str) -> tuple[tuple[Subject, ...], str]:
@@ -59,7 +59,7 @@ def subjects_of(devices: Sequence[DeviceRecord], quantity: str) -> tuple[tuple[S
     subjects = tuple(
         Subject(
             plate=plate,
-            groups=edge_groups(_in_base(curve, base, plate) for curve in curves),
+            bands=bands_of(_in_base(curve, base, plate) for curve in curves),
             ink=device_ink(index),
             letter=_letter(index) if len(owned) > 1 else "",
         )
@@ -85,7 +85,7 @@ def units_per_unit(subject: Subject, base: str, drawn_base: str) -> float | None
     """Units of the base drawn in one unit of another; None where a rating or setting for it is not known."""
     if base == drawn_base:
         return 1.0
-    at = subject.curves[0].at if subject.groups else {}
+    at = subject.curves[0].at if subject.bands else {}
     try:
         return amperes(subject.plate, at, base) / amperes(subject.plate, at, drawn_base)
     except DeviceError:
@@ -94,7 +94,7 @@ def units_per_unit(subject: Subject, base: str, drawn_base: str) -> float | None
 
 def amperes_per_unit(subjects: Sequence[Subject], base: str) -> float | None:
     """Amperes of one unit of the base, where one device alone is drawn and they are known."""
-    if base == "A" or len(subjects) != 1 or not subjects[0].groups:
+    if base == "A" or len(subjects) != 1 or not subjects[0].bands:
         return None
     per_ampere = units_per_unit(subjects[0], "A", base)
     return None if per_ampere is None else 1.0 / per_ampere

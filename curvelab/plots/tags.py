@@ -17,7 +17,7 @@ SIDES: tuple[Edge, ...] = ("slow", "mean", "fast")
 def draw_tags(axes: Axes, subjects: Sequence[Subject]) -> None:
     """One letter for each device that has one, on its slowest line."""
     for index, subject in enumerate(subjects):
-        curve = next((group[edge] for edge in SIDES for group in subject.groups if edge in group), None)
+        curve = next((band.edges[edge] for edge in SIDES for band in subject.bands if edge in band.edges), None)
         if subject.letter and curve is not None:
             height = FIRST - (index * STEP) % (FIRST - LAST)
             axes.annotate(

@@ -9,8 +9,8 @@ import numpy as np
 
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, Mark
-from curvelab.records.curve import Curve, Edge, Part
-from curvelab.records.edges import edge_groups
+from curvelab.records.band import bands_of
+from curvelab.records.curve import Curve, Part
 from curvelab.records.finding import Finding
 from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.sheet import Sheet
@@ -20,7 +20,6 @@ from curvelab.records.worksheet import SheetEntry
 Json: TypeAlias = dict[str, Any]
 
 FORMAT = 1
-EDGE_ORDER: tuple[Edge, ...] = ("fast", "slow", "mean")
 PROJECTIVE = tuple(f"h{index}" for index in range(8))
 
 
@@ -153,16 +152,17 @@ def _bands(reading: Reading) -> Iterable[Json]:
         (device.nameplate.key, device.curves) for device in reading.devices
     ] or [(None, [read.curve for read in reading.curves])]
     for key, curves in owners:
-        for band in edge_groups(curves):
-            any_edge = next(iter(band.values()))
+        for band in bands_of(curves):
             yield {
                 "device": key,
-                "element": any_edge.element,
-                "base": any_edge.base,
-                "start": any_edge.conditions.start,
-                "conditions": asdict(any_edge.conditions),
-                "at": dict(sorted(any_edge.at.items())),
-                **{edge: _edge(band.get(edge)) for edge in EDGE_ORDER},
+                "element": band.element,
+                "base": band.base,
+                "start": band.conditions.start,
+                "conditions": asdict(band.conditions),
+                "at": dict(sorted(band.at.items())),
+                "fast": _edge(band.fast),
+                "slow": _edge(band.slow),
+                "mean": _edge(band.mean),
             }
 
 

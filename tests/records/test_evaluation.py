@@ -1,5 +1,7 @@
 """Curves evaluate and invert themselves: straight lines in log-log, steps by edge, intervals along the normal."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -223,6 +225,19 @@ def test_curves_gather_into_bands_and_a_band_asks_its_edges():
     inverse = first.currents("fast", np.array([0.4]))
     assert inverse is not None
     assert inverse.value[0] == 5.0
+
+
+def test_a_band_lies_between_lines_of_different_meaning_and_no_line_is_lost():
+    def of(edge, meaning):
+        return replace(curve(edge, typed_part(*STEP)), meaning=meaning)
+
+    melts, off = of("fast", "pre_arcing"), of("slow", "operating")
+    (fuse,) = bands_of([melts, off])
+    assert (fuse.fast, fuse.slow) == (melts, off)
+    early, late, melted = of("fast", "operating"), off, of("slow", "pre_arcing")
+    first, second = bands_of([melts, early, late, melted])
+    assert (first.fast, first.slow) == (melts, melted)
+    assert (second.fast, second.slow) == (early, late)
 
 
 def test_two_points_a_rounding_apart_are_one_step():
