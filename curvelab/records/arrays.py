@@ -22,6 +22,12 @@ def freeze(record: object, **fields: ArrayLike) -> None:
         object.__setattr__(record, name, frozen_floats(values))
 
 
+def distinct(values: Floats) -> Floats:
+    """The distinct values in rising order; ``np.unique`` would load all of ``numpy.ma`` for it, which a query feels."""
+    ordered = np.sort(values)
+    return ordered[np.concatenate([[True], ordered[1:] != ordered[:-1]])]
+
+
 def lock(array: NDArray[Any]) -> NDArray[Any]:
     """A read-only view of an image too large to copy."""
     view = array.view()

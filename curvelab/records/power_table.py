@@ -5,7 +5,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from curvelab.records.arrays import Floats
+from curvelab.records.arrays import Floats, distinct
 
 NUDGE = 1e-12
 """Relative distance within which an asked number counts as a tabulated one: turning currents between bases rounds."""
@@ -118,7 +118,7 @@ def with_bounds(value: PowerTable, bounds: PowerTable) -> PowerTable:
 
 def side_by_side(tables: Sequence[PowerTable]) -> PowerTable:
     """One table that answers all chains of several on their common breaks."""
-    breaks = np.unique(np.concatenate([table.breaks for table in tables]))
+    breaks = distinct(np.concatenate([table.breaks for table in tables]))
     rows = [np.append(table.breaks.searchsorted(breaks), table.breaks.size) for table in tables]
 
     def gathered(name: str) -> Floats:
