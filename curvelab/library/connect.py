@@ -10,12 +10,16 @@ from curvelab.errors import InputError, LibraryError, NotFoundError, SchemaError
 
 APPLICATION_ID = 1129665110
 """Marks a SQLite file as a library ("CURV"); the first migration sets it."""
-SCHEMA_VERSION = 1
+SCHEMA_VERSION = 2
 """The newest migration; kept in the file as ``user_version``."""
 OLDEST_SQLITE = (3, 37)
 """The first with STRICT tables."""
 BUSY_S = 10.0
 """How long to wait for another program that is writing."""
+
+
+class OlderSchemaError(SchemaError):
+    """The library has an older schema; opening it to write brings it up to date."""
 
 
 def open_to_read(path: Path) -> sqlite3.Connection:
@@ -176,8 +180,8 @@ def _older(path: Path, version: int) -> LibraryError:
         return NotFoundError(
             f"{path} is empty and holds no library", "", "Store a worksheet first, or give a library file"
         )
-    return SchemaError(
+    return OlderSchemaError(
         f"The library {path} has the older schema {version}",
         f"Schema {SCHEMA_VERSION} is needed",
-        "Store something once",
+        "Open it once with the right to write",
     )

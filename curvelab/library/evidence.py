@@ -1,35 +1,125 @@
-"""What led to a device, as rows: the worksheet, its document, the calibration, warnings and findings."""
+"""What led to a device, as rows: the worksheet, its document, the calibration, the lines read, warnings, findings."""
 
+import hashlib
 import json
 import math
-from collections.abc import Iterator
-from dataclasses import fields, is_dataclass, replace
+import sqlite3
+from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
+from dataclasses import asdict, fields, is_dataclass, replace
 from typing import Any
 
 import numpy as np
 
 from curvelab.library.rows import Row, WaitingRows
 from curvelab.records.axes import Axes
+from curvelab.records.curve import Curve
 from curvelab.records.finding import Finding
-from curvelab.records.reading import Reading
+from curvelab.records.reading import ReadCurve, Reading
+from curvelab.records.trace import Trace
 from curvelab.records.warning import ReadingWarning
 
+EVIDENCE: Mapping[str, str] = {
+    "reading_warning": "seq",
+    "finding": "seq",
+    "grid_line": "seq",
+    "grid_point": "line_seq, seq",
+    "read_curve": "seq",
+    "read_point": "curve_seq, seq",
+    "read_gap": "curve_seq, seq",
+}
+"""Table of a reading's rows -> their order."""
 
-def add_reading(rows: WaitingRows, reading: Reading, statement: bytes, sheet_id: int | None) -> int:
-    """Let a reading's rows wait; gives its id."""
+
+class ReadingRows:
+    """The rows of one reading by table, without its id: what is written, hashed, and compared by `verify`."""
+
+    def __init__(self, reading: Reading, curve_ids: Sequence[int]) -> None:
+        self.of: dict[str, list[Row]] = {table: [] for table in EVIDENCE}
+        self._add("reading_warning", _warning_rows(reading.warnings))
+        self._add("finding", _finding_rows(reading.findings))
+        for seq, line in enumerate(reading.axes.grid if reading.axes else (), start=1):
+            self._add("grid_line", [(seq, line.axis, line.value, line.sd, line.width, line.darkness)])
+            self._add("grid_point", ((seq, place, *at) for place, at in enumerate(line.points.tolist(), start=1)))
+        for seq, (read, curve_id) in enumerate(zip(reading.curves, curve_ids, strict=True), start=1):
+            self._add_curve(seq, read, curve_id)
+
+    def _add(self, table: str, rows: Iterable[Row]) -> None:
+        self.of[table].extend(rows)
+
+    def _add_curve(self, number: int, read: ReadCurve, curve_id: int) -> None:
+        trace = read.trace
+        tolerance = read.tolerance and json.dumps(asdict(read.tolerance))
+        told = (curve_id, read.label, json.dumps(read.devices), tolerance)
+        followed = _trace_values(trace) if trace else ("typed", *(None,) * 7)
+        self._add("read_curve", [(number, *told, *followed)])
+        unknown = np.full(read.current.size, np.nan)
+        places = (*trace.places.T, trace.sd) if trace else (unknown, unknown, unknown)
+        columns = (*places, read.current, read.value, read.sd_current, read.sd_value)
+        points = enumerate(zip(*(column.tolist() for column in columns), strict=True), start=1)
+        self._add("read_point", ((number, seq, *values) for seq, values in points))
+        for seq, gap in enumerate(trace.gaps if trace else (), start=1):
+            self._add("read_gap", [(number, seq, *gap.start, *gap.end)])
+
+
+def add_reading(
+    rows: WaitingRows, reading: Reading, statement: bytes, sheet_id: int | None, curve_id: Callable[[Curve], int]
+) -> tuple[int, bytes]:
+    """Let a reading's rows wait; gives its id and its hash. ``curve_id`` gives a curve's id, stored if it is new."""
     reading_id = rows.new_id("reading")
     document = reading.worksheet.document
     told = (document.title, document.issue, document.date, document.maker, document.note, reading.worksheet.text)
-    axes = reading.axes and axes_as_json(reading.axes)
-    rows.add("reading", [(reading_id, statement, sheet_id, reading.program_version, *told, axes)])
-    rows.add("reading_warning", _warning_rows(reading_id, reading.warnings))
-    rows.add("finding", _finding_rows(reading_id, reading.findings))
-    return reading_id
+    sheet = reading.sheet
+    size = (sheet.width, sheet.height, sheet.unit, sheet.pages) if sheet else (None,) * 4
+    said = (statement, sheet_id, reading.program_version, *told, reading.axes and axes_as_json(reading.axes), *size)
+    parts = ReadingRows(reading, [curve_id(read.curve) for read in reading.curves])
+    sha256 = evidence_sha256(said, parts.of)
+    rows.add("reading", [(reading_id, *said, sha256)])
+    for table, own in parts.of.items():
+        rows.add(table, ((reading_id, *row) for row in own))
+    return reading_id, sha256
+
+
+def evidence_sha256(said: Row, rows: Mapping[str, Iterable[Row]]) -> bytes:
+    """Hash of all a reading says: of its own row and of its rows in each table, in order."""
+    digest = hashlib.sha256(_hashed(said))
+    for table in EVIDENCE:
+        digest.update(table.encode("ascii"))
+        for row in rows[table]:
+            digest.update(_hashed(row))
+    return digest.digest()
+
+
+def stored_evidence_sha256(connection: sqlite3.Connection, reading_id: int) -> tuple[bytes | None, bytes]:
+    """The hash a reading was stored with, and the one its rows have now."""
+    row = connection.execute("SELECT * FROM reading WHERE reading_id = ?", (reading_id,)).fetchone()
+    rows = {
+        table: connection.execute(f"SELECT * FROM {table} WHERE reading_id = ? ORDER BY {order}", (reading_id,))
+        for table, order in EVIDENCE.items()
+    }
+    own = {table: (row[1:] for row in cursor) for table, cursor in rows.items()}
+    return row[-1], evidence_sha256(row[1:-1], own)
+
+
+def _hashed(row: Row) -> bytes:
+    """A row as SQLite gives it back: NaN as NULL, no sign of zero; every number as a double, truth too."""
+    return repr([_stored(value) for value in row]).encode("utf-8", "surrogatepass")
+
+
+def _stored(value: object) -> object:
+    if isinstance(value, int | float):
+        return None if math.isnan(value) else float(value) + 0.0
+    return value
 
 
 def axes_as_json(axes: Axes) -> str:
-    """The calibration with its covariance; the measured grid lines, which the map sums up, are left out."""
+    """The calibration with its covariance; the measured grid lines are rows of their own."""
     return json.dumps(_plain(replace(axes, grid=())), separators=(",", ":"), allow_nan=False)
+
+
+def _trace_values(trace: Trace) -> tuple[object, ...]:
+    colour = "#{:02x}{:02x}{:02x}".format(*trace.colour) if trace.colour else None
+    followed = (trace.origin, trace.confidence, trace.correlation_length, *trace.ends_at_frame)
+    return (*followed, colour, trace.width, trace.boundary)
 
 
 def _plain(value: Any) -> Any:
@@ -45,11 +135,10 @@ def _plain(value: Any) -> Any:
     return value
 
 
-def _warning_rows(reading_id: int, warnings: tuple[ReadingWarning, ...]) -> Iterator[Row]:
+def _warning_rows(warnings: tuple[ReadingWarning, ...]) -> Iterator[Row]:
     for seq, warning in enumerate(warnings, start=1):
         accepted = warning.accepted
         yield (
-            reading_id,
             seq,
             warning.code,
             warning.text,
@@ -60,10 +149,9 @@ def _warning_rows(reading_id: int, warnings: tuple[ReadingWarning, ...]) -> Iter
         )
 
 
-def _finding_rows(reading_id: int, findings: tuple[Finding, ...]) -> Iterator[Row]:
+def _finding_rows(findings: tuple[Finding, ...]) -> Iterator[Row]:
     for seq, finding in enumerate(findings, start=1):
         yield (
-            reading_id,
             seq,
             finding.device,
             finding.standard,
@@ -80,4 +168,6 @@ def _finding_rows(reading_id: int, findings: tuple[Finding, ...]) -> Iterator[Ro
             finding.current,
             finding.base,
             finding.note,
+            finding.permitted,
+            finding.time_s,
         )

@@ -9,13 +9,17 @@ from typing import Any, Self
 
 from curvelab.devices.device import Device
 from curvelab.errors import NotFoundError
-from curvelab.library.connect import named_errors, open_to_read
+from curvelab.library.connect import OlderSchemaError, named_errors, open_to_read
+from curvelab.library.evidence_load import read_evidence
 from curvelab.library.load import read_device
+from curvelab.library.log import Entry, entries
 from curvelab.library.place import data_folder, library_path
 from curvelab.library.sheet_files import read_sheet_files
 from curvelab.library.sound import refuse_unsound
-from curvelab.library.stored import Signature, Stored
+from curvelab.library.stored import Reviewed, Signature, Stored
+from curvelab.library.verify import Verdict, Watch, unwatched, verify
 from curvelab.records.device import DeviceRecord
+from curvelab.records.evidence import Evidence
 from curvelab.records.reading import Reading
 
 UNSIGNED = Signature()
@@ -54,7 +58,7 @@ class Library:
         self._writer: Any = None
 
     def open(self) -> sqlite3.Connection:
-        """The connection that reads; opened once.
+        """The connection that reads; opened once. A library of an older schema is brought up to date, after a backup.
 
         Raises
         ------
@@ -62,7 +66,11 @@ class Library:
             There is no such file, or it is not a library.
         """
         if self._reader is None:
-            self._reader = open_to_read(self.path)
+            try:
+                self._reader = open_to_read(self.path)
+            except OlderSchemaError:
+                self._open_writer()
+                self._reader = open_to_read(self.path)
         return self._reader
 
     def close(self) -> None:
@@ -117,6 +125,53 @@ class Library:
             raise NotFoundError(f"The library has no device '{key}'", "", "List what it has")
         return rows
 
+    def evidence(self, key: str, revision: int | None = None) -> Evidence:
+        """What led to a revision: who, when, why, every reading, and the sheets' bytes; arguments as for `record`.
+
+        `curvelab.reading.rerun` draws from it and reads it again.
+        """
+        with named_errors(self.path):
+            return read_evidence(self.open(), key, revision)
+
+    def log(self, key: str | None = None) -> list[Entry]:
+        """What happened to a device's revisions, or to all: oldest first."""
+        with named_errors(self.path):
+            return list(entries(self.open(), key))
+
+    def review(
+        self, key: str, revision: int | None = None, *, state: str | None = None, name: str, reason: str = ""
+    ) -> Reviewed:
+        """Change the state of a revision (draft, checked, released, withdrawn), or note something about it.
+
+        Parameters
+        ----------
+        key : str
+        revision : int, optional
+            The newest that is not withdrawn where left out.
+        state : str, optional
+            The new state; left out, ``reason`` is a note.
+        name, reason : str
+            Who reviews, and why; kept in the log.
+
+        Raises
+        ------
+        InputError
+            The state cannot follow, a reason is missing, or the person may not release what is theirs.
+        NotFoundError
+            No such device or revision.
+        """
+        from curvelab.library import review  # noqa: PLC0415 - only writing needs it
+
+        self.open()
+        with named_errors(self.path):
+            writer = self._open_writer()
+            return review.review(writer.conn, key, revision, state, Signature(author=name, reason=reason))
+
+    def verify(self, watch: Watch = unwatched) -> Verdict:
+        """Check that nothing in the library has changed since it was stored: file, references, hashes and log."""
+        with named_errors(self.path):
+            return verify(self.open(), watch)
+
     def store(
         self,
         what: Reading | DeviceRecord | Iterable[Reading | DeviceRecord],
@@ -157,19 +212,20 @@ class Library:
                 refuse_unsound(record)
         sheets = {item.sheet.sha256 for item in items if isinstance(item, Reading) and item.sheet}
         contents = read_sheet_files(sheet_files, sheets)
-        # Only storing needs the writing side with its slower imports; asking a device starts without them.
-        from curvelab.library import save  # noqa: PLC0415
+        from curvelab.library import save  # noqa: PLC0415 - only writing needs it
 
         with named_errors(self.path):
             return save.store(self._open_writer(), items, Signature(author=author, reason=reason), contents)
 
     def _open_writer(self) -> Any:
-        from curvelab.library import migrate  # noqa: PLC0415 - as above
+        # Only writing needs the library with its slower import; asking a device starts without it.
+        from curvelab.library import migrate  # noqa: PLC0415
 
         if self._writer is None:
             if self.path.parent == data_folder():
                 self.path.parent.mkdir(parents=True, exist_ok=True)
-            self._writer = migrate.open_migrated(self.path)
+            with named_errors(self.path):
+                self._writer = migrate.open_migrated(self.path)
         return self._writer
 
     def _index(self, condition: str, *values: str) -> list[dict[str, Any]]:

@@ -63,36 +63,46 @@ def read_device(connection: Connection, key: str, number: int | None) -> DeviceR
         (key,) if number is None else (key, number),
     ).fetchone()
     if row is None:
-        raise _missing(connection, key, number)
+        raise missing_device(connection, key, number)
     revision, state = row
     (revision_id,) = connection.execute(
         "SELECT revision_id FROM revision JOIN device USING (device_id) WHERE device_key = ? AND number = ?",
         (key, revision),
     ).fetchone()
-    held = read_held_curves(connection, revision_id)
-    points = _read_points(connection, revision_id)
+    return read_revision(connection, revision_id, revision, state)
+
+
+def read_revision(connection: Connection, revision_id: int, number: int, state: str) -> DeviceRecord:
+    """A revision as a record with all its points."""
     return DeviceRecord(
         nameplate=read_nameplate(connection, revision_id),
-        curves=tuple(_with_parts(item.curve, points[item.curve_id]) for item in held),
-        revision=revision,
+        curves=tuple(item.curve for item in with_points(connection, revision_id)),
+        revision=number,
         state=state,
     )
 
 
+def with_points(connection: Connection, revision_id: int) -> tuple[HeldCurve, ...]:
+    """The curves of a revision in order, with their points."""
+    held = read_held_curves(connection, revision_id)
+    points = _read_points(connection, revision_id)
+    return tuple(replace(item, curve=_with_parts(item.curve, points[item.curve_id])) for item in held)
+
+
 def read_nameplate(connection: Connection, revision_id: int) -> Nameplate:
     """The nameplate of a revision."""
-    row = _rows(
+    row = rows_of(
         connection,
         f"SELECT device_key AS key, kind, {', '.join(PLATE_COLUMNS)} FROM revision JOIN device USING (device_id)"
         " WHERE revision_id = ?",
         revision_id,
     )[0]
-    breaking = _rows(
+    breaking = rows_of(
         connection,
         "SELECT quantity, value_a, voltage_v, supply, duration_s FROM breaking WHERE revision_id = ? ORDER BY seq",
         revision_id,
     )
-    derating = _rows(
+    derating = rows_of(
         connection, "SELECT ambient_c, factor, element FROM derating WHERE revision_id = ? ORDER BY seq", revision_id
     )
     return Nameplate(
@@ -105,7 +115,7 @@ def read_nameplate(connection: Connection, revision_id: int) -> Nameplate:
 
 def read_held_curves(connection: Connection, revision_id: int) -> tuple[HeldCurve, ...]:
     """The curves of a revision in order, without their points."""
-    rows = _rows(
+    rows = rows_of(
         connection,
         """
         SELECT curve.*, revision_curve.reading_id, coalesce(reading.statement_sha256, ?) AS statement_sha256,
@@ -130,6 +140,21 @@ def read_held_curves(connection: Connection, revision_id: int) -> tuple[HeldCurv
         )
         for row in rows
     )
+
+
+def read_curve(connection: Connection, curve_id: int) -> Curve:
+    """One curve with its points, whichever revisions have it."""
+    (row,) = rows_of(
+        connection,
+        "SELECT curve.*, sheet.sha256 AS sheet_sha256, page, plot, file FROM curve LEFT JOIN sheet USING (sheet_id)"
+        " WHERE curve_id = ?",
+        curve_id,
+    )
+    points = connection.execute(
+        "SELECT part, current, value, sd_current, sd_value, sd_common FROM point WHERE curve_id = ? ORDER BY part, seq",
+        (curve_id,),
+    ).fetchall()
+    return _with_parts(_curve_without_points(row), np.array(points, dtype=np.float64))
 
 
 def _curve_without_points(row: Mapping[str, Any]) -> Curve:
@@ -187,7 +212,7 @@ def _read_settings(connection: Connection, revision_id: int) -> tuple[Setting, .
         "SELECT name, step_value FROM setting_step WHERE revision_id = ? ORDER BY name, seq", (revision_id,)
     ):
         steps.setdefault(name, []).append(value)
-    rows = _rows(
+    rows = rows_of(
         connection,
         "SELECT name, from_value, to_value, base, at_current, can_be_off FROM setting"
         " WHERE revision_id = ? ORDER BY seq",
@@ -207,13 +232,15 @@ def _read_settings(connection: Connection, revision_id: int) -> tuple[Setting, .
     )
 
 
-def _rows(connection: Connection, sql: str, *values: object) -> list[dict[str, Any]]:
+def rows_of(connection: Connection, sql: str, *values: object) -> list[dict[str, Any]]:
+    """What a statement selects, by the names of its columns."""
     cursor = connection.execute(sql, values)
     names = [column[0] for column in cursor.description]
     return [dict(zip(names, row, strict=True)) for row in cursor]
 
 
-def _missing(connection: Connection, key: str, number: int | None) -> NotFoundError:
+def missing_device(connection: Connection, key: str, number: int | None) -> NotFoundError:
+    """What is said of a key or revision that is not there."""
     numbers = [
         row[0]
         for row in connection.execute(

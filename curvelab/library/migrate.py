@@ -1,18 +1,21 @@
-"""Brings a library to the schema of this program: numbered steps, all in one transaction or none."""
+"""Brings a library to the schema of this program: numbered steps, all in one transaction or none, after a backup."""
 
 from pathlib import Path
 
 from sqlite_utils import Database
 
+from curvelab.library.backup import copy_whole
+from curvelab.library.begin_log import enter_unlogged
 from curvelab.library.connect import SCHEMA_VERSION, open_to_write, transaction
+from curvelab.library.current import refresh_missing
 from curvelab.paths import shipped
 
 
 def open_migrated(path: Path) -> Database:
-    """Open a library to write, or begin one; an older one is brought to this program's schema."""
+    """Open a library to write, or begin one; an older one is kept beside it and brought to this program's schema."""
     database = Database(open_to_write(path), strict=True)
     try:
-        migrate(database)
+        migrate(database, path)
     except BaseException:
         database.conn.close()
         raise
@@ -25,10 +28,13 @@ def migrations() -> dict[int, Path]:
     return {int(file.name[:4]): file for file in files}
 
 
-def migrate(database: Database) -> None:
+def migrate(database: Database, path: Path) -> None:
     """Apply the steps that the library lacks; a failing step leaves nothing of any."""
-    if _version(database) == SCHEMA_VERSION:
+    version = _version(database)
+    if version == SCHEMA_VERSION:
         return
+    if version:
+        copy_whole(database.conn, path.with_name(f"{path.name}.schema-{version}.backup"))
     database.enable_wal()
     with transaction(database.conn):
         version = _version(database)  # again: another program may have migrated meanwhile
@@ -36,6 +42,8 @@ def migrate(database: Database) -> None:
             if number > version:
                 database.executescript(file.read_text(encoding="utf-8"))
                 database.conn.execute(f"PRAGMA user_version = {number}")
+        enter_unlogged(database.conn)
+        refresh_missing(database.conn)
 
 
 def _version(database: Database) -> int:

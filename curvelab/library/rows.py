@@ -10,13 +10,17 @@ _COLUMNS = {
     "device": "device_id, device_key, kind",
     "sheet": "sheet_id, sha256, page, plot, file",
     "reading": (
-        "reading_id, statement_sha256, sheet_id, program_version, title, issue, date, maker, note, worksheet, axes"
+        "reading_id, statement_sha256, sheet_id, program_version, title, issue, date, maker, note, worksheet, axes, "
+        "sheet_width, sheet_height, sheet_unit, sheet_pages, evidence_sha256"
     ),
     "reading_warning": "reading_id, seq, code, text, x, y, is_accepted, accepted_reason, accepted_name",
     "finding": (
         "reading_id, seq, device_key, standard, clause, requirement, limit_value, unit, value, lower, "
-        "upper, outcome, is_advisory, source, rule, current, base, note"
+        "upper, outcome, is_advisory, source, rule, current, base, note, "
+        "permitted, time_s"
     ),
+    "grid_line": "reading_id, seq, axis, value, sd, width, darkness",
+    "grid_point": "reading_id, line_seq, seq, x, y",
     "revision": (
         "revision_id, device_id, number, content_sha256, created_at, author, reason, program_version, "
         "reading_id, characteristic, standard, standard_edition, rated_current_a, rated_residual_current_a, "
@@ -33,7 +37,14 @@ _COLUMNS = {
         "time_setting, time_setting_at"
     ),
     "point": "curve_id, part, seq, current, value, sd_current, sd_value, sd_common",
+    "read_curve": (
+        "reading_id, seq, curve_id, label, devices, tolerance, origin, confidence, correlation_length, "
+        "starts_at_frame, ends_at_frame, colour, width, is_boundary"
+    ),
+    "read_point": "reading_id, curve_seq, seq, x, y, sd, current, value, sd_current, sd_value",
+    "read_gap": "reading_id, curve_seq, seq, start_x, start_y, end_x, end_y",
     "revision_curve": "revision_id, seq, curve_id, reading_id",
+    "log": "seq, at, name, action, revision_id, state, reason, origin, sha256",
 }
 """Table -> columns of its rows, a table after those it refers to."""
 
@@ -62,10 +73,10 @@ class WaitingRows:
         self._rows[table].extend(rows)
         self._waiting += len(rows)
 
-    def write_if_many(self) -> None:
-        """Write once enough rows wait; call where all that refer to each other have been added."""
-        if self._waiting >= FLUSH_AT:
-            self.write()
+    @property
+    def are_many(self) -> bool:
+        """Whether so many wait that they should be written once all that refer to each other have been added."""
+        return self._waiting >= FLUSH_AT
 
     def write(self) -> None:
         """Write all that wait."""

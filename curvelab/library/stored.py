@@ -1,4 +1,4 @@
-"""What storing takes beside the devices, and what it answers."""
+"""What storing and reviewing take beside the devices, and what they answer."""
 
 from dataclasses import dataclass
 
@@ -18,3 +18,13 @@ class Signature:
 
     author: str = ""
     reason: str = ""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Reviewed:
+    """What a review changed."""
+
+    key: str
+    revision: int
+    before: str
+    state: str
