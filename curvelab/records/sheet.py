@@ -92,7 +92,8 @@ class Word:
 
     ``box`` is (x0, y0, x1, y1) in places; ``height`` is the font size in the sheet's unit; ``turned_deg`` is the
     reading direction, anticlockwise from rightwards; ``confidence`` is 1 where the file itself carries the text.
-    A raised exponent is written with Unicode superscripts: ``10²``, ``10⁻¹``.
+    A raised exponent is written with Unicode superscripts: ``10²``, ``10⁻¹``. ``alternatives`` are other texts that a
+    reader of pixels holds possible, likeliest first, each with its chance.
     """
 
     text: str
@@ -100,6 +101,7 @@ class Word:
     height: float
     turned_deg: float = 0.0
     confidence: float = 1.0
+    alternatives: tuple[tuple[str, float], ...] = ()
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)

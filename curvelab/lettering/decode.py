@@ -1,0 +1,131 @@
+"""From the chances of single characters to what a whole line says, with its alternatives."""
+
+from dataclasses import dataclass
+from itertools import pairwise
+
+import numpy as np
+
+from curvelab.lettering.network import CLASSES, Matrix
+from curvelab.lettering.segments import Cutting, Segment
+from curvelab.lettering.strip import CAPITAL_PX, Strip
+from curvelab.lettering.vocabulary import fitness
+
+BEAM = 8
+CHOICES = 4
+LEAST_CHANCE = -6.0
+"""At most so many characters of a segment are followed, none with a smaller log chance relative to the best."""
+
+LEAST_NONE = 0.6
+"""Chance of being no character from which ink is offered to be left out."""
+
+SPACE = 0.30 * CAPITAL_PX
+"""A gap wider than this above the line's usual gap is a printed space."""
+
+POINT_SPACE = 0.55 * CAPITAL_PX
+"""The same beside a point or comma, which stands apart from its neighbours anyway."""
+
+RAISED = str.maketrans("0123456789-+", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺")
+RAISED_BY = 0.24
+RAISED_DASH = 0.62
+"""Heights above the baseline, as shares of capitals, from which a digit's foot and a dash's middle are raised."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Character:
+    """One character of a reading and its segment; ``text`` is empty where the ink is taken for something else.
+
+    By its shape alone: ``log_chance`` that it is this one, ``none`` the chance that it is no character at all.
+    """
+
+    text: str
+    segment: Segment
+    log_chance: float
+    none: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Reading:
+    """What a line may say: its text, characters, and score as a natural logarithm."""
+
+    text: str
+    characters: tuple[Character, ...]
+    score: float
+
+
+@dataclass(frozen=True, slots=True)
+class _Path:
+    score: float
+    characters: tuple[Character, ...]
+
+
+def decode(cutting: Cutting, log_chances: Matrix) -> list[Reading]:
+    """Readings of a line, best first; scores are relative.
+
+    A segment of several atoms counts as often as it has atoms, so that ways with fewer cuts are not preferred.
+    Viterbi's search with the best few ways kept at each cut.
+    """
+    paths: list[list[_Path]] = [[] for _ in range(cutting.atoms + 1)]
+    paths[0] = [_Path(0.0, ())]
+    for segment, chances in zip(cutting.segments, log_chances, strict=True):
+        choices = _choices(segment, chances)
+        weight = segment.last - segment.first
+        paths[segment.last] += [
+            _Path(path.score + weight * choice.log_chance, (*path.characters, choice))
+            for path in _best(paths[segment.first])
+            for choice in choices
+        ]
+    found: dict[str, Reading] = {}
+    for path in sorted(paths[-1], key=lambda one: -one.score)[: 6 * BEAM]:
+        text = written(path.characters, cutting.strip)
+        score = path.score + fitness(text)
+        if text and (text not in found or found[text].score < score):
+            found[text] = Reading(text=text, characters=path.characters, score=score)
+    return sorted(found.values(), key=lambda reading: -reading.score)
+
+
+def _best(paths: list[_Path]) -> list[_Path]:
+    paths.sort(key=lambda path: -path.score)
+    del paths[BEAM:]
+    return paths
+
+
+def _choices(segment: Segment, chances: Matrix) -> list[Character]:
+    order = np.argsort(-chances[:-1])[:CHOICES]
+    best, none = float(chances[order[0]]), float(np.exp(chances[-1]))
+    found = [
+        Character(text=CLASSES[number], segment=segment, log_chance=float(chances[number]), none=none)
+        for number in order
+        if chances[number] - best >= LEAST_CHANCE
+    ]
+    if none >= LEAST_NONE:
+        found.append(Character(text="", segment=segment, log_chance=float(chances[-1]), none=none))
+    return found
+
+
+def written(characters: tuple[Character, ...], strip: Strip) -> str:
+    """The text of characters, with spaces and raised exponents."""
+    characters = tuple(one for one in characters if one.text)
+    raised = _raised(characters, strip)
+    texts = [one.text.translate(RAISED) if up else one.text for one, up in zip(characters, raised, strict=True)]
+    gaps = [right.segment.box[0] - left.segment.box[2] for left, right in pairwise(characters)]
+    usual = float(np.clip(np.median(gaps), 0.0, 0.2 * CAPITAL_PX)) if len(gaps) > 2 else 0.1 * CAPITAL_PX
+    text = texts[0] if texts else ""
+    for gap, before, piece in zip(gaps, texts, texts[1:], strict=False):
+        apart = POINT_SPACE if before in ".," or piece in ".," else SPACE
+        text += (" " if gap > usual + apart else "") + piece
+    return text
+
+
+def _raised(characters: tuple[Character, ...], strip: Strip) -> list[bool]:
+    """Which characters are raised digits, and dashes before such."""
+    raised = [False] * len(characters)
+    for number in range(len(characters) - 1, 0, -1):
+        one = characters[number]
+        x0, y0, x1, y1 = one.segment.box
+        base = strip.baseline + strip.slope * (x0 + x1) / 2
+        foot, middle = (base - y1) / CAPITAL_PX, (base - (y0 + y1) / 2) / CAPITAL_PX
+        if one.text.isdigit():
+            raised[number] = foot >= RAISED_BY
+        elif one.text in "-+" and number + 1 < len(characters):
+            raised[number] = raised[number + 1] and middle >= RAISED_DASH
+    return raised

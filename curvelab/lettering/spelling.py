@@ -1,0 +1,48 @@
+"""Words that differ from a known one by a misread letter are put right."""
+
+import re
+
+from curvelab.lettering.vocabulary import WORDS
+
+LEAST_LETTERS = 4
+"""Shorter words are too alike: ``in`` and ``Ir`` must not be taken for one another."""
+
+_LONG = tuple(sorted(word for word in WORDS if len(word) >= LEAST_LETTERS))
+_TOKEN = re.compile(r"[^\W\d_][\w'|]*(?:[-.][^\W\d_][\w'|]*)*|[0-9|][A-Za-z|]{3,}")
+
+
+def respelt(text: str) -> tuple[str, int]:
+    """The text with known words put right, and how many letters that took."""
+    changed = 0
+
+    def mend(match: re.Match[str]) -> str:
+        nonlocal changed
+        word, letters = _nearest(match[0])
+        changed += letters
+        return word
+
+    return _TOKEN.sub(mend, text), changed
+
+
+def _nearest(token: str) -> tuple[str, int]:
+    lower = token.lower()
+    if len(lower) < LEAST_LETTERS or lower in WORDS:
+        return token, 0
+    allowed = 1 if len(lower) < 8 else 2
+    distances = [
+        (distance(lower, word), word) for word in _LONG if abs(len(word) - len(lower)) <= allowed and word != lower
+    ]
+    close = sorted(one for one in distances if one[0] <= allowed)
+    if not close or (len(close) > 1 and close[1][0] == close[0][0]):
+        return token, 0
+    return close[0][1], close[0][0]
+
+
+def distance(one: str, other: str) -> int:
+    """Fewest letters changed, added or left out between two words (Levenshtein)."""
+    row = list(range(len(other) + 1))
+    for number, letter in enumerate(one, start=1):
+        before, row[0] = row[0], number
+        for place, also in enumerate(other, start=1):
+            before, row[place] = row[place], min(row[place] + 1, row[place - 1] + 1, before + (letter != also))
+    return row[-1]
