@@ -18,7 +18,7 @@ RUN = 16
 
 PAPER = (-5, -4, 4, 5)
 INK = (-1, 0, 1)
-LEAST_CONTRAST = 4.0
+LEAST_CONTRAST = 2.0
 AT_LINE = 4.0
 """Pixels within which the plot's end is taken to be the line found there."""
 
@@ -42,11 +42,12 @@ def covered_range(look: Look, plane: PlaneMap, scaled: Floats, others: Floats, s
     usual = np.array(
         [np.median(row[within]) if within.any() else 0.0 for row, within in zip(dark, inside, strict=True)]
     )
-    there = dark > np.maximum(0.5 * usual, LEAST_CONTRAST)[:, None]
+    # Means, not extremes: noise then cancels where there is no line.
+    strength = np.clip(dark / np.maximum(usual, LEAST_CONTRAST)[:, None], -1.0, 1.5)
     step = abs(float(np.median(np.diff(other, axis=1))))
     lowest = float(other.min())
     bins = np.floor((other - lowest) / step).astype(np.int64).ravel()
-    share = np.bincount(bins, there.ravel()) / np.maximum(np.bincount(bins), 1)
+    share = np.bincount(bins, strength.ravel()) / np.maximum(np.bincount(bins), 1)
     first, last = (int(np.clip((value - lowest) / step, 0, len(share) - 1)) for value in (min(seed), max(seed)))
     ends = _ends(share, first, last)
     found = [lowest + (ends[0] + 0.5) * step, lowest + (ends[1] + 0.5) * step]
@@ -77,7 +78,7 @@ def _followed(look: Look, plane: PlaneMap, scaled: Floats) -> tuple[Floats, Floa
         look.image[rows[None, :, None], np.clip(columns[..., None] + np.array(part), 0, width - 1)].astype(np.float64)
         for part in (INK, PAPER)
     )
-    dark = np.sort(paper, axis=-1)[..., 1:].mean(axis=-1) - ink.min(axis=-1)
+    dark = paper.mean(axis=-1) - ink.mean(axis=-1)
     dark[(columns < 0) | (columns >= width)] = 0.0
     return dark, other.reshape(paths.shape)
 

@@ -11,6 +11,9 @@ from curvelab.units import unit_factor
 
 Range: TypeAlias = tuple[float, float]
 
+DECADES = np.array([1.0])
+"""Mantissa of the coarsest log paper."""
+
 MAIN = np.arange(1.0, 10.0)
 """Mantissas that log paper carries as a rule."""
 
@@ -37,7 +40,7 @@ def log_lines(axis: Axis, covered: Range, mantissas: Floats) -> Floats:
 
 def log_patterns(axis: Axis, covered: Range) -> list[Floats]:
     """Lines within ``covered`` of each usual log paper, coarsest first."""
-    papers = (np.array([1.0]), np.array([1.0, 2.0, 5.0]), MAIN, np.union1d(MAIN, HALVES))
+    papers = (DECADES, np.array([1.0, 2.0, 5.0]), MAIN, np.union1d(MAIN, HALVES))
     return [log_lines(axis, covered, paper) for paper in papers] + [finer_lines(axis, covered)]
 
 

@@ -27,7 +27,7 @@ STEPS = 4
 """Gauss-Newton steps between two estimates of the variances."""
 
 ROUNDS = 4
-SETTLED = 1e-12
+SETTLED = 1e-9
 """Parameter step, in scaled units, below which the fit stands still."""
 
 QUADRATIC = ((2, 0), (1, 1), (0, 2))

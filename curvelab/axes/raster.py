@@ -6,7 +6,7 @@ import cv2
 import numpy as np
 
 from curvelab.axes.comb import Alignment
-from curvelab.axes.extent import covered_range
+from curvelab.axes.extent import AT_LINE, covered_range
 from curvelab.axes.grid import AXIS_NAMES, Grid, aligned_marks, disagrees, rough_rows
 from curvelab.axes.marks import FEWEST_LINES, mark_values, with_marks
 from curvelab.axes.measure import Measured, measure_lines
@@ -15,6 +15,7 @@ from curvelab.axes.pattern import MAIN, Range, finer_lines, linear_lines, log_li
 from curvelab.axes.planefit import RICHER, Line, Model, Scatter, affine_map, fit_plane
 from curvelab.axes.search import search_lines
 from curvelab.axes.strips import STRIP, Profile, Strips, profile_along, shared_slopes, strips_of
+from curvelab.axes.unlike import without_curves
 from curvelab.records.arrays import Bytes, Floats
 from curvelab.records.axes import Axis, GridLine, PlaneMap
 from curvelab.records.sheet import Pixels
@@ -48,6 +49,10 @@ class _State:
     plane: PlaneMap
     lines: tuple[Floats, Floats]
     covered: tuple[Range, Range]
+
+    def around(self, axis: int) -> tuple[Floats, Floats, Range]:
+        """Lines of an axis, those that cross them, and the range over which they run."""
+        return self.lines[axis], self.lines[1 - axis], self.covered[1 - axis]
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -87,12 +92,11 @@ def raster_grid(pixels: Pixels, axes: tuple[Axis, Axis]) -> Grid:
         ]
         part = _Round(strips=_inside(state, views), reach=reach, models=RICHER)
         state = _searched(state, views, (candidates[0], candidates[1]), part)
-    grid = [
-        _grid_line(pixels, view, line)
-        for k, view in enumerate(views)
-        for line in measure_lines(view.look, state.plane, state.lines[k], state.lines[1 - k], state.covered[1 - k])
-    ]
-    return Grid(lines=tuple(grid), covered=state.covered, disagrees=astray)
+    measured = [measure_lines(view.look, state.plane, *state.around(k)) for k, view in enumerate(views)]
+    covered = (_to_lines(state, measured[0], 0), _to_lines(state, measured[1], 1))
+    measured = [without_curves(axis, lines, part) for axis, lines, part in zip(axes, measured, covered, strict=True)]
+    grid = [_grid_line(pixels, view, line) for view, lines in zip(views, measured, strict=True) for line in lines]
+    return Grid(lines=tuple(grid), covered=covered, disagrees=astray)
 
 
 def _views(pixels: Pixels, axes: tuple[Axis, Axis]) -> tuple[_View, _View]:
@@ -169,11 +173,25 @@ def _candidates(axis: Axis, alignment: Alignment, covered: Range, *, finest: boo
     """Lines that may be there: the main ones or those of the finest paper; on a linear axis the steps found."""
     if not alignment.agrees:
         return np.zeros(0)
-    margin = 2.0 / abs(alignment.ruler.per_scaled)
+    margin = AT_LINE / abs(alignment.ruler.per_scaled)
     wide = (covered[0] - margin, covered[1] + margin)
     if axis.scale == "log":
         return finer_lines(axis, wide) if finest else log_lines(axis, wide, MAIN)
     return linear_lines(axis, wide, alignment.step)
+
+
+def _to_lines(state: _State, measured: list[Measured], axis: int) -> Range:
+    """The covered range, its ends moved onto the outermost lines next to them."""
+    low, high = state.covered[axis]
+    scaled = np.array([line.scaled for line in measured])
+    if not len(scaled):
+        return low, high
+    rate = np.abs(state.plane.jacobian(state.plane.centre)[0, axis]).max()
+    ends = [
+        float(scaled[np.argmin(np.abs(scaled - end))]) if np.abs(scaled - end).min() <= AT_LINE * rate else end
+        for end in (low, high)
+    ]
+    return ends[0], ends[1]
 
 
 def _inside(state: _State, views: tuple[_View, _View]) -> list[Strips]:

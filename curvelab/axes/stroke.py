@@ -150,8 +150,7 @@ def _common_step(residual: Floats, common: Floats, turn: Floats, damping: float)
     free = np.stack([_without(column, turn).ravel() for column in common])
     normal = free @ free.T
     damped = normal + np.diag(damping * np.diag(normal) + 1e-12)
-    step: Floats = np.linalg.solve(damped, free @ residual.ravel())
-    return step
+    return np.linalg.solve(damped, free @ residual.ravel()).astype(np.float64)
 
 
 def _normal(z: Floats) -> Floats:
