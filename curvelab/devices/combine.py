@@ -70,9 +70,10 @@ def _with_status(elements: Sequence[ElementFound], edge: str) -> Found:
         least[row] = np.where(known_below, found.value, np.where(found.code == NEVER, np.inf, 0.0))
         most[row] = np.where(known_above, found.value, np.inf)
     # A sheet draws only the element that trips first: a line that ended later than another covers is overtaken by it.
-    first_known = most.min(axis=0)
+    covered = [np.where(each.found.code == VALUE, each.found.value, np.inf) for each in elements]
+    first_known = np.min(covered, axis=0)
     for row, element in enumerate(elements):
-        overtaken = element.ended_at >= first_known
+        overtaken = np.isfinite(first_known) & (element.ended_at >= first_known)
         least[row][overtaken] = np.inf
         most[row][overtaken & (element.found.code == AT_MOST)] = np.inf
     return _between(elements, least, most, edge)

@@ -68,8 +68,9 @@ def extent_of(record: DeviceRecord) -> Extent | None:
     last = [_end_a(curve, plate, -1) for own in slow.values() for curve in own]
     return Extent(
         holds_surely=np.minimum(np.min([surely for surely, _ in holds], axis=0), limit_a),
-        holds_perhaps=np.min([perhaps for _, perhaps in holds], axis=0),
-        trips_surely=np.min([surely for surely, _ in trips], axis=0),
+        # An element overtaken by another says nothing any more, and an answer has the interval of the one it is from.
+        holds_perhaps=np.max([perhaps for _, perhaps in holds], axis=0),
+        trips_surely=np.max([surely for surely, _ in trips], axis=0),
         trips_perhaps=np.min([perhaps for _, perhaps in trips], axis=0),
         holds_from_a=max(ends, default=0.0),
         trips_to_a=min(last, default=0.0) if capacity_a is None else capacity_a,

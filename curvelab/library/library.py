@@ -9,11 +9,13 @@ from typing import Any, Self
 
 from curvelab.devices.device import Device
 from curvelab.errors import NotFoundError
+from curvelab.library.bands import EVERY, BandQuery, BandsFound, find_bands
 from curvelab.library.connect import OlderSchemaError, named_errors, open_to_read
 from curvelab.library.evidence_load import read_evidence
 from curvelab.library.load import read_device
 from curvelab.library.log import Entry, entries
 from curvelab.library.place import data_folder, library_path
+from curvelab.library.search import FIRST_PAGE, Found, Page, Wanted, find
 from curvelab.library.sheet_files import read_sheet_files
 from curvelab.library.sound import refuse_unsound
 from curvelab.library.stored import Reviewed, Signature, Stored
@@ -124,6 +126,16 @@ class Library:
         if not rows:
             raise NotFoundError(f"The library has no device '{key}'", "", "List what it has")
         return rows
+
+    def find(self, wanted: Wanted = EVERY, page: Page = FIRST_PAGE) -> Found:
+        """Devices by words and nameplate, their current revisions, one page of them."""
+        with named_errors(self.path):
+            return find(self.open(), wanted, page)
+
+    def find_bands(self, query: BandQuery, wanted: Wanted = EVERY, page: Page = FIRST_PAGE) -> BandsFound:
+        """Devices that surely hold at a current for a time, trip within a time at another, or both."""
+        with named_errors(self.path):
+            return find_bands(self.open(), query, wanted, page)
 
     def evidence(self, key: str, revision: int | None = None) -> Evidence:
         """What led to a revision: who, when, why, every reading, and the sheets' bytes; arguments as for `record`.

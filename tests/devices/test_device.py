@@ -205,3 +205,12 @@ def test_what_it_is_asked_is_what_it_is():
     assert (asked.key, asked.nameplate.kind, asked.revision, asked.state) == ("riverside-b32", "mcb", None, None)
     assert [band.element for band in asked.bands] == ["whole"]
     assert asked.bands[0].slow is asked.record.curves[1]
+
+
+def test_beyond_the_lines_of_all_elements_the_earliest_last_time_bounds_the_device():
+    overload = line("slow", [(1.5, 1000.0), (8.0, 5.0)], element="overload")
+    instantaneous = line("slow", [(5.0, 0.05), (20.0, 0.01)], element="instantaneous")
+    made = device(overload, instantaneous, rated_current_a=10.0, breaking=(Breaking(quantity="Icn", value_a=6000.0),))
+    answer = made.trip_time([100.0, 1000.0, 7000.0]).slow
+    assert list(answer.status) == ["value", "at_most", "above_breaking"]
+    assert answer.value[1] == 0.01
