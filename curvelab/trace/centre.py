@@ -32,10 +32,13 @@ STEADY = 0.5
 """px: a centre this far from the line through its neighbours counts a quarter."""
 STRAY = 0.3
 """px: beyond this and three standard deviations a centre is another stroke's."""
-LEAST_SD = 0.02
+LEAST_SD = 0.04
 """px: what renderers that count few sub-pixels leave even without noise."""
 COVERED_SD = 0.1
 """px: error at a node where other ink covers half of what tells the centre."""
+REJECTED_IN_NOISE = 0.25
+REJECTED_SD = 3.0
+"""px per share of a node's pixels that other ink covers, beyond what noise alone has rejected."""
 MOST_FITTED = 400
 """Nodes the width and blur are fitted on."""
 LARGEST_STEP = 0.7
@@ -214,7 +217,9 @@ def _fit(window: _Window, profile: StrokeProfile, noise: float, floor: float) ->
     clear = np.clip(dd / total, 1e-3, 1.0)
     misfit = np.sqrt((weight * residual**2).sum(axis=1) / np.maximum(weight.sum(axis=1), 1e-6)) / max(scale, floor)
     sd = scale * np.sqrt(aa / determinant) * np.maximum(1.0, misfit)
-    sd = np.sqrt(sd**2 + (COVERED_SD * (1.0 - clear) / clear) ** 2 + LEAST_SD**2)
+    rejected = 1.0 - weight.sum(axis=1) / np.maximum(trusted.sum(axis=1), 1e-9)
+    foreign = REJECTED_SD * np.maximum(rejected - REJECTED_IN_NOISE, 0.0)
+    sd = np.sqrt(sd**2 + (COVERED_SD * (1.0 - clear) / clear) ** 2 + foreign**2 + LEAST_SD**2)
     return _Fit(offset=offset, amplitude=_ink_there(window, profile, offset), sd=sd, misfit=misfit, noise=scale)
 
 

@@ -17,6 +17,8 @@ WORST_SD = 0.8
 """px: a centre less sure than this is no place of the line."""
 SHORTEST_GAP = 8.0
 """px without a place that count as a gap, where kinks and crossings are not the reason."""
+SHORTEST_PIECE = 15.0
+"""px of line between gaps."""
 DASH_COUNT = 4
 LONGEST_LAG = 40
 
@@ -48,15 +50,40 @@ def keep_seen(centres: Centres, inside: NDArray[np.bool_]) -> Measured | None:
     if kept.sum() < 3:
         return None
     spread, correlation = _spread(centres, kept)
-    index = np.flatnonzero(kept)
     unseen = np.cumsum(~seen * np.gradient(course.arc))
-    gaps = [(k, k + 1) for k, (a, b) in enumerate(pairwise(index)) if unseen[b] - unseen[a] > SHORTEST_GAP]
+    index, gaps = _index_and_gaps(kept, unseen, course.arc)
+    scraps = _scraps(index, gaps, course.arc)
+    if scraps.any():
+        kept[index[scraps]] = False
+        index, gaps = _index_and_gaps(kept, unseen, course.arc)
+    if index.size < 3:
+        return None
     return Measured(
         places=course.places(centres.across)[index],
         sd=(centres.sd * spread)[index],
         correlation_length=correlation,
-        gaps=tuple(_without_dashes(gaps, course.arc[index])),
+        gaps=tuple(gaps),
     )
+
+
+def _index_and_gaps(
+    kept: NDArray[np.bool_], unseen: Floats, arc: Floats
+) -> tuple[NDArray[np.intp], list[tuple[int, int]]]:
+    """Kept nodes, and pairs of neighbours among them between which the line is not seen."""
+    index = np.flatnonzero(kept)
+    pairs = pairwise(index.tolist())
+    gaps = [(k, k + 1) for k, (a, b) in enumerate(pairs) if unseen[b] - unseen[a] > SHORTEST_GAP]
+    return index, _without_dashes(gaps, arc[index])
+
+
+def _scraps(index: NDArray[np.intp], gaps: list[tuple[int, int]], arc: Floats) -> NDArray[np.bool_]:
+    """Places between gaps, or a gap and an end, on too little ink to be the line: pieces of a label in its way."""
+    scraps = np.zeros(index.size, dtype=bool)
+    starts = [0, *(b for _, b in gaps)]
+    ends = [*(a for a, _ in gaps), index.size - 1]
+    for start, end in zip(starts, ends, strict=True):
+        scraps[start : end + 1] = bool(gaps) and arc[index[end]] - arc[index[start]] < SHORTEST_PIECE
+    return scraps
 
 
 def _at_free_end(centres: Centres, seen: NDArray[np.bool_], inside: NDArray[np.bool_]) -> NDArray[np.bool_]:

@@ -71,7 +71,7 @@ def _walk(raster: Raster, graph: ChainGraph, pixels: Floats, guide: Guide, wante
         walk = walk_both_ways(graph, start, targets)
         distance, far = _missed(walk, pixels)
         if distance > REACH:
-            beyond = walk_both_ways(graph, near[far][0][1], targets)
+            beyond = walk_both_ways(graph, near[far][0][1], targets, frozenset(walk.chains))
             walk = united(walk, beyond, graph.chains[start].width) or walk
             distance, far = _missed(walk, pixels)
         if distance <= REACH:

@@ -22,6 +22,8 @@ from curvelab.trace.routes import (
 
 ACCEPT = 7.0
 """Largest cost of a route that continues the line smoothly."""
+SOLE = 12.0
+"""The same for the only line beyond an unseen stretch."""
 MARGIN = 1.0
 """A second route this near in cost makes the choice a doubt."""
 APART = 3.0
@@ -60,7 +62,7 @@ class Walk:
         return np.concatenate(self.places)
 
 
-def walk_both_ways(graph: ChainGraph, start: int, wanted: frozenset[int]) -> Walk:
+def walk_both_ways(graph: ChainGraph, start: int, wanted: frozenset[int], taken: frozenset[int] = frozenset()) -> Walk:
     """Follow the line that a chain belongs to from end to end.
 
     Parameters
@@ -70,16 +72,18 @@ def walk_both_ways(graph: ChainGraph, start: int, wanted: frozenset[int]) -> Wal
         Number of the chain.
     wanted : frozenset of int
         Chains the line is said to pass: routes over them are preferred.
+    taken : frozenset of int
+        Chains that are no part of it.
     """
     chain = graph.chains[start]
     line = Line(ink=chain.ink, width=max(chain.width, 1.0))
     hops: list[float] = []
     while True:
-        used = {start}
+        used = {start, *taken}
         forward = _walk(graph, (start, 1), line, used, wanted, hops)
         backward = _walk(graph, (start, 0), line, used, wanted, forward.hops)
         if len(forward.hops) >= DASHES or len(backward.hops) < DASHES:
-            return _joined(backward, chain.points, forward, used)
+            return _joined(backward, chain.points, forward, used - taken)
         # the way back told that the line is dashed: the way forward may pass a kink in a break
         hops = backward.hops
 
@@ -154,7 +158,7 @@ def _next_route(
         if chosen is None:
             reach = min(hop_reach(line), 6.0 * _common_break(walk.hops)) if dashed else hop_reach(line)
             routes = routes_over_gap(graph, onward, line, used, reach, FAR_DASH if dashed else FAR_LINE)
-            chosen = _best(routes, wanted)
+            chosen = _best(routes, wanted) or (routes[0] if len(routes) == 1 and routes[0].cost <= SOLE else None)
     if chosen is not None and _rivals(chosen, routes) and not _leads(chosen, wanted):
         walk.doubts.append((float(onward.tip[0]), float(onward.tip[1])))
         if chosen.hop > SHORTEST_GAP:

@@ -78,7 +78,9 @@ def test_crossing_lines_are_not_exchanged(angle: float) -> None:
         start = tuple(line[0] + 0.2 * (line[1] - line[0]))
         trace, _ = trace_of(sheet, start)
         away = away_from(trace.places, line)
-        assert away.max() < 1.2
+        # an exchanged line would end 30 px away; where both print as one, a stroke's width is what can be told
+        assert away.max() < 3.0
+        assert np.median(away) < 0.05
         assert np.hypot(*(trace.places - line[1]).T).min() < 4.0
 
 

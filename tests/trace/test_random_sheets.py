@@ -8,7 +8,7 @@ from curvelab.trace.prepare import prepare
 from tests.drawn import random_sheet
 from tests.trace.truthful import TraceScore, axes_of, guides_of, score_trace, sheet_of
 
-SEEDS = (1, 3, 4)
+SEEDS = (3, 4, 6)
 
 
 def traced(seed: int, quality: str) -> list[TraceScore]:
