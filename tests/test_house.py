@@ -1,4 +1,4 @@
-"""The rules of the house that can be read from the source: which way imports run, and which library stays in which room."""
+"""The rules of the house: which way imports run, and which library stays in which room."""
 
 import ast
 from collections.abc import Iterator

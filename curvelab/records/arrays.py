@@ -24,8 +24,9 @@ def freeze(record: object, **fields: ArrayLike) -> None:
 
 def distinct(values: Floats) -> Floats:
     """The distinct values in rising order; ``np.unique`` would load all of ``numpy.ma`` for it, which a query feels."""
-    ordered = np.sort(values)
-    return ordered[np.concatenate([[True], ordered[1:] != ordered[:-1]])]
+    ordered: Floats = np.sort(values)
+    first: Floats = ordered[np.concatenate([[True], ordered[1:] != ordered[:-1]])]
+    return first
 
 
 def lock(array: NDArray[Any]) -> NDArray[Any]:
