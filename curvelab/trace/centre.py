@@ -39,7 +39,7 @@ COVERED_SD = 0.1
 REJECTED_IN_NOISE = 0.25
 REJECTED_SD = 3.0
 """px per share of a node's pixels that other ink covers, beyond what noise alone has rejected."""
-MOST_FITTED = 400
+MOST_FITTED = 200
 """Nodes the width and blur are fitted on."""
 LARGEST_STEP = 0.7
 WORST_USED = 0.5

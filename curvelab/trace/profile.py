@@ -12,9 +12,9 @@ from scipy.ndimage import gaussian_filter1d
 
 from curvelab.records.arrays import Floats
 
-STEP = 0.02
+STEP = 0.04
 """px between tabulated distances."""
-ANGLES = 13
+ANGLES = 10
 """Tabulated angles from 0 to 45 degrees."""
 LEAST_BLUR = 0.05
 
