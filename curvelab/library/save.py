@@ -106,7 +106,7 @@ class _Batch:
                 sha256=sha256,
                 reading_id=reading_id,
                 statement=evidence.statement,
-                curve=replace(curve, parts=()),
+                curve=curve,
             )
             for sha256, curve in zip(hashes, given.curves, strict=True)
         )
@@ -190,4 +190,4 @@ def _sheet_key(reading: Reading) -> SheetKey | None:
     sheet, entry = reading.sheet, reading.worksheet.sheet
     if sheet is None:
         return None
-    return SheetKey(sha256=sheet.sha256, page=sheet.page, plot=entry.plot if entry else 1, file=sheet.file)
+    return SheetKey(sha256=sheet.sha256, page=sheet.page, plot=(entry.plot if entry else None) or 1, file=sheet.file)

@@ -51,7 +51,7 @@ def _sheet(sheet: Sheet, entry: SheetEntry | None) -> Json:
         "file": sheet.file,
         "sha256": sheet.sha256,
         "page": sheet.page,
-        "plot": entry.plot if entry else 1,
+        "plot": (entry.plot if entry else None) or 1,
         "width": sheet.width,
         "height": sheet.height,
         "unit": sheet.unit,
@@ -185,6 +185,7 @@ def finding_json(finding: Finding) -> Json:
         "rule": finding.rule,
         "note": finding.note,
         "permitted": finding.permitted,
+        "margin": finding.margin,
         "time_s": finding.time_s,
     }
 

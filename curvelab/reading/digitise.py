@@ -1,6 +1,7 @@
 """The way of a reading: a worksheet or a bare sheet in, axes, curves, devices and findings out."""
 
 import os
+from dataclasses import replace
 from pathlib import Path
 
 from curvelab import __version__
@@ -19,7 +20,7 @@ from curvelab.records.sheet import Sheet
 from curvelab.records.warning import ReadingWarning
 from curvelab.records.worksheet import AxisEntry, SheetEntry, Worksheet
 from curvelab.sheets.open import open_sheet
-from curvelab.standards.check import check
+from curvelab.standards.review import review
 from curvelab.worksheets.read import read_worksheet
 
 
@@ -44,7 +45,7 @@ def digitise(
     """
     path = Path(source)
     if path.suffix.lower() != ".toml":
-        entry = SheetEntry(file=path.name, page=page or 1, plot=plot or 1)
+        entry = SheetEntry(file=path.name, page=page or 1, plot=plot)
         return read(Worksheet(sheet=entry), path.parent, watch)
     if page is not None or plot is not None:
         raise InputError(
@@ -58,22 +59,25 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Readin
     sheet: Sheet | None = None
     axes: Axes | None = None
     warnings: tuple[ReadingWarning, ...] = ()
-    quantity = worksheet.value.quantity if worksheet.value else "time"
     entries = [owned(worksheet, entry, number) for number, entry in enumerate(worksheet.curves, start=1)]
-    curves: tuple[ReadCurve, ...] = typed_curves([entry for entry in entries if entry.points], quantity)
+    quantity = worksheet.value.quantity if worksheet.value else "time"
+    followed_curves: tuple[ReadCurve, ...] = ()
     if worksheet.sheet is not None:
         watch("Opening the sheet", 0.0)
-        sheet = _open(worksheet.sheet, folder)
+        page = worksheet.sheet
+        sheet = _open(page, folder)
         watch("Calibrating the axes", 0.0)
-        axes, doubts = calibrate(
-            sheet, worksheet.current or AxisEntry(quantity="current"), worksheet.value or AxisEntry(quantity="time")
-        )
+        current = worksheet.current or AxisEntry(quantity="current")
+        axes, doubts = calibrate(sheet, current, worksheet.value, page.plot)
+        worksheet = replace(worksheet, sheet=replace(page, plot=axes.plot))
+        quantity = axes.value.quantity
         guided = tuple(entry for entry in entries if entry.through)
         followed, more_doubts = follow_curves(sheet, axes, guided, watch)
-        key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=worksheet.sheet.plot, file=worksheet.sheet.file)
+        key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=axes.plot, file=page.file)
         watch("Fitting the bands", 0.0)
-        curves = fitted_curves(followed, axes, key) + curves
+        followed_curves = fitted_curves(followed, axes, key)
         warnings = doubts + more_doubts
+    curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     devices, device_doubts = assemble(worksheet, curves)
     watch("Checking", 0.0)
     return Reading(
@@ -82,7 +86,7 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Readin
         axes=axes,
         curves=curves,
         devices=devices,
-        findings=tuple(finding for record in devices for finding in check(Device(record))),
+        findings=review([Device(record) for record in devices]),
         warnings=accept(warnings + device_doubts, worksheet.accepted),
         program_version=__version__,
     )

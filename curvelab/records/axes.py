@@ -204,6 +204,8 @@ class Axes:
         Every grid line measured.
     automatic : bool
         True where no mark was given.
+    plot : int
+        Which of the page's plots this is, from 1.
     """
 
     current: Axis
@@ -214,6 +216,7 @@ class Axes:
     grid_residual_rms: float | None = None
     grid: tuple["GridLine", ...] = ()
     automatic: bool = False
+    plot: int = 1
 
     def values(self, places: ArrayLike) -> tuple[Floats, Floats]:
         """Currents and values in base units of places, shape (n, 2)."""

@@ -26,11 +26,14 @@ class Document:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class SheetEntry:
-    """Which plot of which page; ``file`` is relative to the worksheet."""
+    """Which plot of which page; ``file`` is relative to the worksheet.
+
+    ``plot`` is None where it is not said: the largest of the page.
+    """
 
     file: str
     page: int = 1
-    plot: int = 1
+    plot: int | None = None
     sha256: str | None = None
 
 

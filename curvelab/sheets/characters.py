@@ -21,6 +21,9 @@ SAME_LINE = 0.7
 GAP = 0.6
 """A gap along the line wider than this share of the size starts a new run, a printed space apart."""
 
+DIGIT_ADVANCE = 0.68
+"""From the start of one digit to that of the next is less than this share of the size; more is another number."""
+
 TURN_DEG = 2.0
 
 
@@ -67,6 +70,8 @@ def _continues(run: list[Character], character: Character) -> bool:
     if turn > TURN_DEG or (last.text.isspace() and character.text.isspace()):
         return False
     along, up = _along_up(last, character.origin)
+    if last.text.isdecimal() and character.text.isdecimal() and along > DIGIT_ADVANCE * size:
+        return False
     x0, y0, x1, y1 = last.box
     ends = max(_along_up(last, corner)[0] for corner in ((x0, y0), (x0, y1), (x1, y0), (x1, y1)))
     reach = GAP * max(size, character.size)

@@ -139,7 +139,7 @@ def _sheet(top: Table, name: str) -> SheetEntry | None:
     return SheetEntry(
         file=file.replace("\\", "/"),
         page=table.count("page") or 1,
-        plot=table.count("plot") or 1,
+        plot=table.count("plot"),
         sha256=sha256.lower() if sha256 else None,
     )
 

@@ -35,7 +35,12 @@ def _curve(name: str, line: Line, **words: object) -> CurveDesign:
 
 def _current_axis(unit: str, low: float, high: float, rng: np.random.Generator) -> AxisDesign:
     labelled = ((1,), (1, 2, 5), (1, 3))[rng.integers(3)]
-    words = {"A": "Current in A", "mA": "Residual current in mA"}.get(unit, "Multiple of the setting")
+    words = {
+        "A": "Current in A",
+        "mA": "Residual current in mA",
+        "xIn": "Multiple of rated current In",
+        "xIr": "Multiple of setting current Ir",
+    }[unit]
     ticks = str(rng.choice(["plain", "thousands"])) if unit == "A" else "plain"
     return AxisDesign(quantity="current", unit=unit, low=low, high=high, label=words, labelled=labelled, ticks=ticks)
 

@@ -1,0 +1,95 @@
+"""What the axes are looked for on: the straight pieces of a page, from its strokes or from its pixels."""
+
+from dataclasses import dataclass, replace
+
+import cv2
+import numpy as np
+
+from curvelab.axes.marks import pixel_size
+from curvelab.axes.segments import Segments, straight_segments
+from curvelab.axes.strips import STRIP, strips_of
+from curvelab.axes.tracks import track_lines
+from curvelab.records.arrays import Bytes, Floats
+from curvelab.records.sheet import Pixels, Sheet, Word
+
+IMAGE_SD = 0.6
+"""Pixels by which a line is off its place in the search, on images that are turned or noisy too."""
+
+VECTOR_SD = 0.1
+"""The same of exact strokes, in pixels of the page as it is seen."""
+
+IMAGE_NEAR = 2.2 * STRIP
+"""Pixels by which ends that meet may seem apart: ends are known to about a strip."""
+
+VECTOR_NEAR = 4.0
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Page:
+    """Straight pieces told apart by x and by y, in pixels of an image or places of a vector page.
+
+    ``near`` is how far ends that meet may be apart, ``sd`` how well places across are known.
+    """
+
+    upright: Segments
+    level: Segments
+    size: tuple[float, float]
+    near: float
+    sd: float
+    pixels: Pixels | None
+
+    def places(self, points: Floats) -> Floats:
+        """Places of the sheet, shape (n, 2), of points of this page."""
+        return self.pixels.places(points) if self.pixels else points
+
+    def points(self, places: Floats) -> Floats:
+        """Points of this page, shape (n, 2), of places of the sheet."""
+        return self.pixels.columns_rows(places) if self.pixels else places
+
+    def word(self, word: Word) -> Word:
+        """A word with its box and height in this page's unit."""
+        if self.pixels is None:
+            return word
+        x0, y0, x1, y1 = word.box
+        corners = self.points(np.array([[x0, y0], [x1, y0], [x0, y1], [x1, y1]]))
+        low, high = corners.min(axis=0), corners.max(axis=0)
+        box = (float(low[0]), float(low[1]), float(high[0]), float(high[1]))
+        return replace(word, box=box, height=word.height / self.pixels.size_in_places)
+
+    def area(self, box: tuple[float, float, float, float]) -> tuple[float, float, float, float]:
+        """A box of this page in places of the sheet."""
+        x0, y0, x1, y1 = box
+        corners = self.places(np.array([[x0, y0], [x1, y0], [x0, y1], [x1, y1]]))
+        low, high = corners.min(axis=0), corners.max(axis=0)
+        return float(low[0]), float(low[1]), float(high[0]), float(high[1])
+
+    @property
+    def swapped(self) -> bool:
+        """Whether x of this page runs along y of the sheet."""
+        return self.pixels is not None and abs(self.pixels.to_place[0, 0]) < abs(self.pixels.to_place[1, 0])
+
+
+def page_of(sheet: Sheet) -> Page:
+    """The straight pieces of a sheet."""
+    if sheet.pixels is None:
+        upright, level = straight_segments(sheet.strokes)
+        pixel = pixel_size(sheet)
+        return Page(
+            upright=upright,
+            level=level,
+            size=(sheet.width, sheet.height),
+            near=VECTOR_NEAR * pixel,
+            sd=VECTOR_SD * pixel,
+            pixels=None,
+        )
+    grey = sheet.pixels.grey
+    turned: Bytes = np.ascontiguousarray(cv2.transpose(grey))
+    upright, level = (track_lines(strips_of(image, (0, image.shape[0]))) for image in (grey, turned))
+    return Page(
+        upright=upright,
+        level=level,
+        size=(float(grey.shape[1]), float(grey.shape[0])),
+        near=IMAGE_NEAR,
+        sd=IMAGE_SD,
+        pixels=sheet.pixels,
+    )
