@@ -86,6 +86,22 @@ def written_current(value: float, base: str, figures: int = FIGURES) -> str:
     return f"{_rounded(value, figures)} A"
 
 
+def written_let_through(energy_a2s: float, figures: int = FIGURES) -> str:
+    """A let-through energy as engineers write it, three figures: ``'300 A2s'``, ``'27 x 10^3 A2s'``."""
+    if abs(energy_a2s) >= 1e4:
+        return f"{_rounded(energy_a2s / 1e3, figures)} x 10^3 A2s"
+    return f"{_rounded(energy_a2s, figures)} A2s"
+
+
+def written(value: float, unit: str, figures: int = FIGURES) -> str:
+    """A quantity with its unit, by what it is: a time (``s``), an energy (``A2s``), a ratio, or a current."""
+    if unit == "ratio":
+        return _rounded(value, figures)
+    if unit == "A2s":
+        return written_let_through(value, figures)
+    return written_time(value, figures) if unit == "s" else written_current(value, unit, figures)
+
+
 def written_time(time_s: float, figures: int = FIGURES) -> str:
     """A time as engineers write it, three figures: ``'12.3 ms'``, ``'0.4 s'``, ``'2.5 min'``, ``'1 h'``."""
     if 0 < time_s < 0.1:

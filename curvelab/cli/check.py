@@ -6,31 +6,54 @@ from pathlib import Path
 import click
 
 import curvelab
+from curvelab.cli.many import ManyValues, Settings
 from curvelab.cli.output import json_option, library_option, table, write_json
 from curvelab.devices.device import Device
+from curvelab.errors import InputError
 from curvelab.library.key import split_key
+from curvelab.library.place import library_path
 from curvelab.reading.as_json import finding_json
 from curvelab.records.device import DeviceRecord
 from curvelab.records.finding import Finding
-from curvelab.standards.check import check
-from curvelab.units import written_current, written_time
+from curvelab.standards.review import review
+from curvelab.standards.rules import rules_beside
+from curvelab.standards.scope import unchecked
+from curvelab.units import interval_figures, written
 
 
-@click.command()
+@click.command(cls=ManyValues)
 @click.argument("subject", metavar="KEY|WORKSHEET")
+@click.option(
+    "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
+)
+@click.option(
+    "--picture",
+    "picture_file",
+    type=click.Path(dir_okay=False),
+    help="Draw the band, its limits and the table on one page (PDF, PNG or SVG).",
+)
 @library_option
 @json_option
-def command(subject: str, library_file: str | None, json_file: str | None) -> int:
+def command(
+    subject: str,
+    settings: tuple[tuple[str, float | str], ...],
+    picture_file: str | None,
+    library_file: str | None,
+    json_file: str | None,
+) -> int:
     """Check a stored device, or every device of a worksheet, against its standard.
 
-    Advisory rules are marked; they never decide the exit status.
+    Advisory rules are marked; they never decide the exit status. Rule files in a folder `standards` beside the library
+    are checked too. An adjustable device is checked at the settings its curves are drawn for, unless --set says others.
     """
-    records = _records(subject, library_file)
-    findings = [finding for record in records for finding in check(Device(record))]
+    devices = [Device(record, dict(settings)) for record in _records(subject, library_file)]
+    findings = review(devices, rules_beside(library_path(library_file)))
+    if picture_file:
+        _draw(devices, findings, picture_file)
     if json_file:
         write_json([finding_json(each) for each in findings], json_file)
     if json_file != "-":
-        click.echo(findings_table(findings) if findings else f"No rule table applies to '{subject}'.")
+        click.echo(check_text(devices, findings))
     return 1 if any(each.outcome in {"fails", "undecided"} and not each.advisory for each in findings) else 0
 
 
@@ -41,27 +64,55 @@ def _records(subject: str, library_file: str | None) -> tuple[DeviceRecord, ...]
         return (library.record(*split_key(subject)),)
 
 
+def _draw(devices: Sequence[Device], findings: Sequence[Finding], picture_file: str) -> None:
+    if len(devices) != 1:
+        keys = ", ".join(device.key for device in devices)
+        raise InputError(
+            f"--picture draws one device, the worksheet has {keys}", "", "Store them and check one by its key"
+        )
+    # A picture needs the plotting library; the check alone starts without it.
+    from curvelab.plots.check_page import draw_check_page  # noqa: PLC0415
+
+    draw_check_page(devices[0].record, findings, picture_file)
+
+
+def check_text(devices: Sequence[Device], findings: Sequence[Finding]) -> str:
+    """What a person reads: the table of findings, and a sentence on each device that no rule covers."""
+    checked = {finding.device for finding in findings}
+    lines = [findings_table(findings)] if findings else []
+    lines += [unchecked(device.nameplate) for device in devices if device.key not in checked]
+    return "\n".join(lines)
+
+
 def findings_table(findings: Sequence[Finding]) -> str:
-    """Findings as a plain table: requirement, value read with its interval, outcome, what would settle it."""
+    """Findings as a plain table: requirement, value read with its interval, margin, outcome, what would settle it."""
     several = len({each.device for each in findings}) > 1
-    heads = [*(["device"] if several else []), "clause", "requirement", "read (95 %)", "outcome", "note"]
+    heads = ["standard", "clause", "requirement", "read (95 %)", "margin", "outcome", "note"]
     rows = [
-        [*([each.device] if several else []), each.clause, each.requirement, _read(each), _outcome(each), each.note]
+        [each.standard, each.clause, each.requirement, _read(each), written_margin(each), _outcome(each), each.note]
         for each in findings
     ]
-    return f"{', '.join(sorted({each.standard for each in findings}))}\n{table(heads, rows)}"
+    if several:
+        heads.insert(0, "device")
+        rows = [[each.device, *row] for each, row in zip(findings, rows, strict=True)]
+    return table(heads, rows)
 
 
 def _outcome(finding: Finding) -> str:
     return f"{finding.outcome} (advisory)" if finding.advisory else finding.outcome
 
 
+def written_margin(finding: Finding) -> str:
+    """How far inside the limit, in percent; negative outside."""
+    return "-" if finding.margin is None else f"{100 * finding.margin:+.3g} %"
+
+
 def _read(finding: Finding) -> str:
     if finding.value is None:
         return "-"
-
-    def written(value: float) -> str:
-        return written_time(value) if finding.unit == "s" else written_current(value, finding.unit)
-
-    interval = f" ({written(finding.interval[0])} to {written(finding.interval[1])})" if finding.interval else ""
-    return written(finding.value) + interval
+    if finding.interval is None:
+        return written(finding.value, finding.unit)
+    lower, upper = finding.interval
+    figures = interval_figures(finding.value, lower, upper)
+    value, low, high = (written(each, finding.unit, figures) for each in (finding.value, lower, upper))
+    return f"{value} ({low} to {high})"

@@ -17,6 +17,19 @@ SETTING_OF_ELEMENT: Mapping[str, str] = MappingProxyType(
 """Element -> the setting of its pick-up; set to ``off`` the element does not act."""
 
 
+def checked_base(base: str) -> str:
+    """The base, when currents can be counted in it.
+
+    Raises
+    ------
+    DeviceError
+        It is not known.
+    """
+    if base not in BASES:
+        raise DeviceError(f"'{base}' is not a base of currents", f"Expected one of: {', '.join(BASES)}")
+    return base
+
+
 def amperes(plate: Nameplate, settings: Given, base: str) -> float:
     """Amperes of one unit of a base, for a device at its settings.
 
@@ -29,9 +42,7 @@ def amperes(plate: Nameplate, settings: Given, base: str) -> float:
 
 
 def _amperes(plate: Nameplate, settings: Given, base: str, above: tuple[str, ...]) -> float:
-    if base not in BASES:
-        raise DeviceError(f"'{base}' is not a base of currents", f"Expected one of: {', '.join(BASES)}")
-    if base == "A":
+    if checked_base(base) == "A":
         return 1.0
     if base == "xIn":
         return _rating(plate, base, "rated_current_a", plate.rated_current_a)

@@ -7,7 +7,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from curvelab.devices.ask import edge_currents, edge_times
-from curvelab.devices.bases import amperes
+from curvelab.devices.bases import amperes, checked_base
 from curvelab.devices.breaking import breaking_capacity_a
 from curvelab.devices.element import pick_up
 from curvelab.devices.found import Found, shown
@@ -132,15 +132,14 @@ class Device:
         """
         asked = _positive(current, "current")
         question = Question(path=path, meaning=meaning, conditions=conditions)
-        way = path_of(question, self.nameplate, base)
+        way = path_of(question, self.nameplate, checked_base(base))
         self._refuse_unset()
-        unit = amperes(self.nameplate, self._settings, base)
         capacity_a = breaking_capacity_a(self.nameplate, question, way)
-        limited = np.ravel(asked), None if capacity_a is None else capacity_a / unit
+        limited = np.ravel(asked), None if capacity_a is None else capacity_a * self._units_per_unit("A", base)
         answers: dict[str, EdgeAnswer | None] = {}
         for edge in _EDGES:
             lines = self._lines(edge, question, way)
-            found = None if lines is None else edge_times(lines, edge, self._units(lines, unit), limited, own=own)
+            found = None if lines is None else edge_times(lines, edge, self._units(lines, base), limited, own=own)
             answers[edge] = _shown(found, lines, asked.shape)
         return TripTimes(current=_as_given(asked), base=base, **answers)
 
@@ -171,13 +170,12 @@ class Device:
         """
         asked = _positive(time_s, "time")
         question = Question(path=path, meaning=meaning, conditions=conditions)
-        way = path_of(question, self.nameplate, base)
+        way = path_of(question, self.nameplate, checked_base(base))
         self._refuse_unset()
-        unit = amperes(self.nameplate, self._settings, base)
         answers: list[EdgeAnswer | None] = []
         for edge in _EDGES:
             lines = self._lines(edge, question, way)
-            found = None if lines is None else edge_currents(lines, edge, self._units(lines, unit), np.ravel(asked))
+            found = None if lines is None else edge_currents(lines, edge, self._units(lines, base), np.ravel(asked))
             answers.append(_shown(found, lines, asked.shape))
         holds, trips, mean = answers
         return TripCurrents(time_s=_as_given(asked), base=base, trips=trips, holds=holds, mean=mean)
@@ -212,10 +210,17 @@ class Device:
     def _lines(self, edge: Edge, question: Question, way: Path) -> tuple[Lines, ...] | None:
         return lines_of_edge(self._times, edge, self.nameplate, self._settings, question, way)
 
-    def _units(self, elements: tuple[Lines, ...] | None, of_unit: float) -> dict[str, float]:
-        """What one unit of each base the lines are drawn in is, in units of ``of_unit`` amperes."""
+    def _units(self, elements: tuple[Lines, ...] | None, base: str) -> dict[str, float]:
+        """What one unit of each base the lines are drawn in is in the base asked."""
         bases = {line.curve.base for each in elements or () for line in each.lines}
-        return {base: amperes(self.nameplate, self._settings, base) / of_unit for base in sorted(bases)}
+        return {drawn: self._units_per_unit(drawn, base) for drawn in sorted(bases)}
+
+    def _units_per_unit(self, base: str, asked: str) -> float:
+        """Units of the base asked in one unit of another; in the very base a curve is drawn in no rating is needed."""
+        if base == asked:
+            return 1.0
+        plate, settings = self.nameplate, self._settings
+        return amperes(plate, settings, base) / amperes(plate, settings, asked)
 
 
 def _shown(found: Found | None, elements: tuple[Lines, ...] | None, shape: tuple[int, ...]) -> EdgeAnswer | None:

@@ -26,6 +26,7 @@ _CHARACTERISTICS = {
             "IEC short-time inverse",
         ),
         *("IEEE moderately inverse", "IEEE very inverse", "IEEE extremely inverse", "definite time"),
+        *("class 5", "class 10A", "class 10", "class 20", "class 30"),
     ),
 }
 """Kind -> the characteristics the program knows; other kinds carry none that a check depends on."""

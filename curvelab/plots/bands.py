@@ -62,9 +62,9 @@ def draw_bands(
 
 
 def bands_figure(
-    devices: Sequence[DeviceRecord], *, findings: Sequence[Finding] = (), quantity: str = "time"
+    devices: Sequence[DeviceRecord], *, findings: Sequence[Finding] = (), quantity: str = "time", foot: float = 0.0
 ) -> Figure:
-    """The figure of `draw_bands`, for a report to place among others."""
+    """The figure of `draw_bands`, for a report to place among others; ``foot`` of the page is left free beneath it."""
     subjects, base = subjects_of(devices, quantity)
     limits = placed_limits(findings, subjects, base) if quantity == "time" else ()
     amperes = amperes_per_unit(subjects, base)
@@ -75,7 +75,7 @@ def bands_figure(
     with rc_context(STYLE):
         figure = Figure(figsize=A4_INCHES, dpi=DPI, facecolor=PAPER)
         top = header_height(subjects) + (TOP_SCALE if amperes is not None else 0.0)
-        axes = draw_paper(figure, (LEFT, BOTTOM, 1 - LEFT - RIGHT, 1 - BOTTOM - top), paper)
+        axes = draw_paper(figure, (LEFT, BOTTOM + foot, 1 - LEFT - RIGHT, 1 - BOTTOM - foot - top), paper)
         for subject in subjects:
             _draw_subject(axes, subject)
         draw_tags(axes, subjects)

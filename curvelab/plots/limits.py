@@ -9,7 +9,7 @@ from matplotlib.path import Path
 from curvelab.plots.ink import GRAPHITE, PAPER, WARM
 from curvelab.plots.subject import Subject, units_per_unit
 from curvelab.records.finding import Finding
-from curvelab.units import BASES, written_current
+from curvelab.units import BASES, written, written_current
 
 LEG = 0.55
 SIZE = 13.0
@@ -54,15 +54,18 @@ def placed_limits(findings: Iterable[Finding], subjects: Sequence[Subject], base
 
 
 def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
-    of_current = finding.unit in BASES
-    current, own_base = (finding.limit, finding.unit) if of_current else (finding.current, finding.base)
+    # The limit of an energy at a time is one of the current there.
+    of_current = finding.unit == "A2s" or finding.unit in BASES
+    current, own_base = (finding.limit, finding.unit) if finding.unit in BASES else (finding.current, finding.base)
     time_s = finding.time_s if of_current else finding.limit
     if finding.permitted is None or current is None or own_base is None or time_s is None:
         return None
     scale = units_per_unit(subject, own_base, base)
-    if scale is None or finding.unit not in ("s", *BASES):
+    if scale is None:
         return None
     words = written_current(current, "A") if own_base == "A" else f"{current:g} {MULTIPLE_OF[own_base]}"
+    if finding.unit == "A2s":
+        words = written(finding.limit, "A2s").replace("A2s", r"$\mathrm{A^2s}$")
     if finding.outcome not in SETTLED:
         words = f"{words}, {finding.outcome}"
     return Limit(finding=finding, of_current=of_current, current=current * scale, time_s=time_s, words=words)

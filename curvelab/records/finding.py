@@ -10,11 +10,12 @@ Outcome = Literal["meets", "fails", "undecided", "at limit", "not covered"]
 class Finding:
     """One requirement, the limit, what the curve says and how that compares.
 
-    ``limit`` and ``value`` are in ``unit`` (``s``, ``A``, ``A2s`` or a base); ``value`` and ``interval`` are None
-    where the curve does not reach. ``advisory`` marks a rule that is not published in what was seen of the standard.
-    ``permitted`` is the side of the limit on which the value meets it. The limit's place on the plot is (``current``,
-    ``limit``) for a time, and (``limit``, ``time_s``) for a current.
-    ``note`` says in one sentence what would settle an undecided finding, or which bound was used.
+    ``limit`` and ``value`` are in ``unit`` (``s``, ``A``, ``A2s``, ``ratio`` or a base); ``value`` and ``interval`` are
+    None where the curve does not reach. ``advisory`` marks what is shown and is no verdict: a rule that was not seen
+    published, or a matter of plausibility. ``permitted`` is the side of the limit on which the value meets it. The
+    limit's place on the plot is (``current``, ``limit``) for a time, (``limit``, ``time_s``) for a current and
+    (``current``, ``time_s``) for an energy. ``note`` says in one sentence what would settle an undecided finding, or
+    which bound was used.
     """
 
     device: str
@@ -34,3 +35,11 @@ class Finding:
     note: str = ""
     permitted: Literal["at_least", "at_most"] | None = None
     time_s: float | None = None
+
+    @property
+    def margin(self) -> float | None:
+        """How far the value lies inside the limit, relative to it; negative outside, None where nothing is known."""
+        if self.value is None or self.permitted is None:
+            return None
+        above = self.value / self.limit - 1
+        return above if self.permitted == "at_least" else -above

@@ -1,0 +1,105 @@
+"""One page of a check: the band with its limits, and beneath it what was required and read."""
+
+from collections.abc import Sequence
+from pathlib import Path
+
+from matplotlib import rc_context
+from matplotlib.figure import Figure
+from matplotlib.lines import Line2D
+
+from curvelab.plots.bands import bands_figure
+from curvelab.plots.ink import GRAPHITE, MINOR, QUIET, STYLE, WARM
+from curvelab.plots.limits import SETTLED
+from curvelab.plots.save import picture_format, save_figure
+from curvelab.records.device import DeviceRecord
+from curvelab.records.finding import Finding
+from curvelab.units import written
+
+LEFT, RIGHT, BOTTOM = 0.055, 0.055, 0.03
+ROW, GAP = 0.0148, 0.03
+"""Heights of a row and of what separates the table from the plot, as fractions of the page."""
+TALLEST = 0.5
+"""Of the page, for the table: rows grow smaller rather than the band."""
+COLUMNS = (
+    ("Requirement", 0.0),
+    ("Read (95 %)", 0.475),
+    ("Margin", 0.71),
+    ("Outcome", 0.78),
+    ("Clause", 0.895),
+)
+"""Heading and left end of each column, as fractions of the table's width."""
+LETTERS = 78
+"""Of a requirement that fit into its column."""
+
+
+def draw_check_page(device: DeviceRecord, findings: Sequence[Finding], path: str | Path) -> None:
+    """Band, limits and the table of findings on one A4 page, as PDF, PNG or SVG by the file's ending.
+
+    Raises
+    ------
+    DeviceError
+        The device has no time-current curve to draw.
+    InputError
+        The picture cannot be written under that name.
+    """
+    picture_format(path)
+    height = min(TALLEST, ROW * (len(findings) + 2) + GAP)
+    with rc_context(STYLE):
+        figure = bands_figure([device], findings=findings, foot=height)
+        _draw_table(figure, findings, height - GAP)
+    save_figure(figure, path)
+
+
+def _draw_table(figure: Figure, findings: Sequence[Finding], height: float) -> None:
+    row = height / (len(findings) + 2)
+    size = min(6.6, 6.6 * row / ROW)
+    top = BOTTOM + height - row
+    for words, at in COLUMNS:
+        figure.text(_x(at), top, words, fontsize=size, fontweight="bold", color=GRAPHITE, va="bottom")
+    for index, finding in enumerate(findings, start=1):
+        y = top - index * row
+        figure.add_artist(_rule(y + row * 0.93))
+        for (_, at), words in zip(COLUMNS, _cells(finding), strict=True):
+            figure.text(_x(at), y, words, fontsize=size, color=_colour(finding), va="bottom")
+    if findings:
+        standards = ", ".join(dict.fromkeys(finding.standard for finding in findings))
+        figure.text(_x(0), top - (len(findings) + 1) * row, _foot(standards), fontsize=size, color=QUIET, va="bottom")
+
+
+def _foot(standards: str) -> str:
+    return f"{standards}. A margin is counted from the limit to the permitted side; * advisory, never a verdict."
+
+
+def _rule(y: float) -> Line2D:
+    return Line2D((LEFT, 1 - RIGHT), (y, y), color=MINOR, linewidth=0.5)
+
+
+def _cells(finding: Finding) -> tuple[str, ...]:
+    words = finding.requirement
+    margin = "" if finding.margin is None else f"{100 * finding.margin:+.3g} %"
+    return (
+        words if len(words) <= LETTERS else words[: LETTERS - 1] + "…",
+        _read(finding),
+        margin,
+        finding.outcome + (" *" if finding.advisory else ""),
+        finding.clause.removeprefix("as "),
+    )
+
+
+def _read(finding: Finding) -> str:
+    if finding.value is None:
+        return ""
+    if finding.interval is None:
+        return written(finding.value, finding.unit)
+    low, high = (written(each, finding.unit) for each in finding.interval)
+    return f"{written(finding.value, finding.unit)} ({low} to {high})"
+
+
+def _colour(finding: Finding) -> str:
+    if finding.outcome not in SETTLED:
+        return QUIET if finding.advisory else WARM
+    return GRAPHITE if finding.outcome == "meets" else QUIET
+
+
+def _x(fraction: float) -> float:
+    return LEFT + fraction * (1 - LEFT - RIGHT)
