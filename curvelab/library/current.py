@@ -9,7 +9,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from curvelab.library.extent import STEP_TIMES_S, Extent, extent_of, is_adjustable
+from curvelab.library.extent import STEP_TIMES_S, Extent, extents_of, is_adjustable
 from curvelab.library.load import read_revision
 from curvelab.library.rows import Row
 from curvelab.records.device import DeviceRecord
@@ -52,7 +52,7 @@ def refresh(
     device_ids = list(device_ids)
     _forget(connection, device_ids)
     found = [one for device_id in device_ids if (one := _current(connection, device_id, known))]
-    extents = [(one, extent_of(one.record)) for one in found]
+    extents = list(zip(found, extents_of([one.record for one in found]), strict=True))
     connection.executemany(
         f"INSERT INTO current_device VALUES ({', '.join('?' * 16)})",
         [(*one.row, *((extent.holds_from_a, extent.trips_to_a) if extent else (0.0, 0.0))) for one, extent in extents],

@@ -5,10 +5,12 @@ what the device would answer with its 95 % interval, ``holds_perhaps`` and ``tri
 only a device between the two need be asked.
 """
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
+from numpy.typing import NDArray
 
 from curvelab.devices.breaking import breaking_capacity_a
 from curvelab.devices.meaning import TOTAL, meaning_of
@@ -19,6 +21,10 @@ from curvelab.records.device import DeviceRecord, Nameplate
 
 STEP_TIMES_S = 10.0 ** np.arange(-3.0, 4.01, 0.25)
 """The fixed times: a quarter of a decade apart, so that few devices lie between two of them."""
+
+_TIMES = STEP_TIMES_S[:, None]
+_NOTHING = np.zeros(STEP_TIMES_S.size)
+_NEVER = np.full(STEP_TIMES_S.size, np.inf)
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -33,8 +39,7 @@ class Extent:
     trips_to_a: float
 
 
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class _Bounds:
+class _Bounds(NamedTuple):
     """One curve's points moved by its interval towards smaller and towards larger currents and times."""
 
     low_a: Floats
@@ -50,102 +55,132 @@ def is_adjustable(record: DeviceRecord) -> bool:
     return bool(record.nameplate.settings) or any(_unit_a(curve.base, record.nameplate) is None for curve in times)
 
 
-def extent_of(record: DeviceRecord) -> Extent | None:
-    """The extent of a device's band; None where it has no time curve or needs settings."""
+def extents_of(records: Sequence[DeviceRecord]) -> list[Extent | None]:
+    """The extent of each device's band; None where it has no time curve or needs settings."""
+    acting = [() if is_adjustable(record) else _acting(record) for record in records]
+    bounds = iter(_bounds([curve for curves in acting for curve in curves]))
+    return [
+        _extent(record.nameplate, [(curve, next(bounds)) for curve in curves]) if curves else None
+        for record, curves in zip(records, acting, strict=True)
+    ]
+
+
+def _acting(record: DeviceRecord) -> tuple[tuple[Curve, float], ...]:
+    """The curves that see a current when nothing else is said, and the amperes of one unit of their base."""
     plate = record.nameplate
     way = path_of(Question(), plate, "A")
-    curves = [curve for curve in record.curves if curve.quantity == "time" and sees(curve.element, way)]
-    if not curves or is_adjustable(record):
-        return None
-    elements = _by_element(curves)
-    fast = {name: [curve for curve in own if curve.edge == "fast"] for name, own in elements.items()}
-    slow = {name: [curve for curve in own if curve.edge == "slow"] for name, own in elements.items()}
-    holds = [_holds([_bounds(curve, plate) for curve in own]) for own in fast.values()]
-    trips = [_trips([(_bounds(curve, plate), _is_total(curve, plate)) for curve in own]) for own in slow.values()]
-    capacity_a = breaking_capacity_a(plate, Question(), way)
-    limit_a = np.inf if capacity_a is None else capacity_a
-    ends = [_end_a(curve, plate, 0) for own in fast.values() for curve in own if not curve.leaves_top]
-    last = [_end_a(curve, plate, -1) for own in slow.values() for curve in own]
-    return Extent(
-        holds_surely=np.minimum(np.min([surely for surely, _ in holds], axis=0), limit_a),
-        # An element overtaken by another says nothing any more, and an answer has the interval of the one it is from.
-        holds_perhaps=np.max([perhaps for _, perhaps in holds], axis=0),
-        trips_surely=np.max([surely for surely, _ in trips], axis=0),
-        trips_perhaps=np.min([perhaps for _, perhaps in trips], axis=0),
-        holds_from_a=max(ends, default=0.0),
-        trips_to_a=min(last, default=0.0) if capacity_a is None else capacity_a,
+    return tuple(
+        (curve, _unit_a(curve.base, plate) or np.nan)
+        for curve in record.curves
+        if curve.quantity == "time" and sees(curve.element, way)
     )
 
 
-def _by_element(curves: Iterable[Curve]) -> Mapping[str, list[Curve]]:
-    elements: dict[str, list[Curve]] = {}
-    for curve in curves:
-        elements.setdefault(curve.element, []).append(curve)
-    return elements
+def _extent(plate: Nameplate, curves: Sequence[tuple[tuple[Curve, float], _Bounds]]) -> Extent:
+    capacity_a = breaking_capacity_a(plate, Question(), path_of(Question(), plate, "A"))
+    elements = dict.fromkeys(curve.element for (curve, _), _ in curves)
+    own = [[one for one in curves if one[0][0].element == element] for element in elements]
+    holds = [_holds([bounds for (curve, _), bounds in each if curve.edge == "fast"]) for each in own]
+    trips = [
+        _trips(
+            [(bounds, meaning_of(curve, plate.kind) in TOTAL) for (curve, _), bounds in each if curve.edge == "slow"]
+        )
+        for each in own
+    ]
+    starts = [_end_a(curve, 0) for curve, _ in curves if curve[0].edge == "fast" and not curve[0].leaves_top]
+    ends = [_end_a(curve, -1) for curve, _ in curves if curve[0].edge == "slow"]
+    surely = _least([one for one, _ in holds])
+    # An element overtaken by another says nothing any more, and an answer has the interval of the one it is from.
+    return Extent(
+        holds_surely=_known(surely if capacity_a is None else np.minimum(surely, capacity_a), 0.0),
+        holds_perhaps=_known(_greatest([other for _, other in holds]), np.inf),
+        trips_surely=_known(_greatest([one for one, _ in trips]), np.inf),
+        trips_perhaps=_known(_least([other for _, other in trips]), 0.0),
+        holds_from_a=max(starts, default=0.0),
+        trips_to_a=min(ends, default=0.0) if capacity_a is None else capacity_a,
+    )
+
+
+def _known(currents: Floats, otherwise: float) -> Floats:
+    """Currents with the side that leaves the device to be asked where numbers are too large to be told."""
+    return np.where(np.isnan(currents), otherwise, currents)
 
 
 def _unit_a(base: str, plate: Nameplate) -> float | None:
     return {"A": 1.0, "xIn": plate.rated_current_a, "xIdn": plate.rated_residual_current_a}.get(base)
 
 
-def _end_a(curve: Curve, plate: Nameplate, index: int) -> float:
-    return float(curve.parts[index].current[index]) * (_unit_a(curve.base, plate) or np.nan)
+def _end_a(curve: tuple[Curve, float], index: int) -> float:
+    line, unit_a = curve
+    return float(line.parts[index].current[index]) * unit_a
 
 
-def _is_total(curve: Curve, plate: Nameplate) -> bool:
-    return meaning_of(curve, plate.kind) in TOTAL
-
-
-def _bounds(curve: Curve, plate: Nameplate) -> _Bounds:
-    """A displacement along the normal moves neither coordinate further than its length."""
-    current = np.concatenate([part.current for part in curve.parts]) * (_unit_a(curve.base, plate) or np.nan)
-    value = np.concatenate([part.value for part in curve.parts])
-    by_current = np.concatenate([part.sd_current for part in curve.parts])
-    by_value = np.concatenate([part.sd_value for part in curve.parts])
-    with np.errstate(divide="ignore"):
-        weight = np.nan_to_num(by_current**-2.0, nan=0.0) + np.nan_to_num(by_value**-2.0, nan=0.0)
-        moved = np.where(weight > 0, np.exp(COVERAGE_FACTOR / np.sqrt(weight)), 1.0)
-    return _Bounds(
-        low_a=current / moved,
-        low_s=value / moved,
-        high_a=current * moved,
-        high_s=value * moved,
-        whole=len(curve.parts) == 1 and curve.conditions.time_kind != "virtual",
-    )
-
-
-def _holds(curves: list[_Bounds]) -> tuple[Floats, Floats]:
-    """Up to which current an element holds for each time: surely by all its curves, perhaps by any."""
-    nothing = np.zeros(STEP_TIMES_S.size)
+def _bounds(curves: Sequence[tuple[Curve, float]]) -> list[_Bounds]:
+    """A displacement along the normal moves neither coordinate further than its length. All curves in one go."""
     if not curves:
-        return nothing, nothing
-    time = STEP_TIMES_S[:, None]
-    surely = [np.where(each.low_s >= time, each.low_a, 0.0).max(axis=1) if each.whole else nothing for each in curves]
-    perhaps = [_where_first(each.high_s < time, each.high_a, float(each.high_a.max())) for each in curves]
-    return np.min(surely, axis=0), np.max(perhaps, axis=0)
+        return []
+    counts = [sum(part.current.size for part in curve.parts) for curve, _ in curves]
+    parts = [part for curve, _ in curves for part in curve.parts]
+    current = np.concatenate([part.current for part in parts])
+    value = np.concatenate([part.value for part in parts])
+    by_current = np.concatenate([part.sd_current for part in parts])
+    by_value = np.concatenate([part.sd_value for part in parts])
+    with np.errstate(all="ignore"):
+        current = current * np.repeat([unit_a for _, unit_a in curves], counts)
+        # An unknown uncertainty has no weight; where none is known the curve is taken as it is.
+        weight = np.where(by_current >= 0, by_current**-2.0, 0.0) + np.where(by_value >= 0, by_value**-2.0, 0.0)
+        moved = np.where(weight > 0, np.exp(COVERAGE_FACTOR / np.sqrt(weight)), 1.0)
+        columns = np.stack([current / moved, value / moved, current * moved, value * moved])
+    stops = np.cumsum(counts)
+    return [
+        _Bounds(*columns[:, stop - count : stop].copy(), _is_plain(curve))  # type: ignore[call-arg]
+        for (curve, _), count, stop in zip(curves, counts, stops, strict=True)
+    ]
 
 
-def _trips(curves: list[tuple[_Bounds, bool]]) -> tuple[Floats, Floats]:
-    """From which current an element trips within each time: surely by all its curves, perhaps by any."""
-    never = np.full(STEP_TIMES_S.size, np.inf)
-    if not any(total for _, total in curves):
-        return never, never
-    time = STEP_TIMES_S[:, None]
+def _is_plain(curve: Curve) -> bool:
+    """Whether the device's answer lies within these bounds all along: no gap, real times."""
+    return len(curve.parts) == 1 and curve.conditions.time_kind != "virtual"
+
+
+def _holds(curves: Sequence[_Bounds]) -> tuple[Floats, Floats]:
+    """Up to which current an element holds for each time: surely by all its curves, perhaps by any."""
+    if not curves:
+        return _NOTHING, _NOTHING
     surely = [
-        np.where(each.high_s <= time, each.high_a, np.inf).min(axis=1) if each.whole and total else never
+        np.where(each.low_s >= _TIMES, each.low_a, 0.0).max(axis=1) if each.whole else _NOTHING for each in curves
+    ]
+    perhaps = [_where_first(each.high_s < _TIMES, each.high_a, each.high_a.max()) for each in curves]
+    return _least(surely), _greatest(perhaps)
+
+
+def _trips(curves: Sequence[tuple[_Bounds, bool]]) -> tuple[Floats, Floats]:
+    """From which current an element trips within each time: surely by all its curves, perhaps by any."""
+    if not any(total for _, total in curves):
+        return _NEVER, _NEVER
+    surely = [
+        np.where(each.high_s <= _TIMES, each.high_a, np.inf).min(axis=1) if each.whole and total else _NEVER
         for each, total in curves
     ]
-    perhaps = [_above(each.low_s > time, each.low_a) for each, total in curves if total]
-    return np.max(surely, axis=0), np.min(perhaps, axis=0)
+    perhaps = [_above(each.low_s > _TIMES, each.low_a) for each, total in curves if total]
+    return _greatest(surely), _least(perhaps)
 
 
-def _where_first(chosen: np.ndarray[tuple[int, int], np.dtype[np.bool_]], values: Floats, other: float) -> Floats:
+def _least(rows: Sequence[Floats]) -> Floats:
+    return rows[0] if len(rows) == 1 else np.asarray(np.min(rows, axis=0))
+
+
+def _greatest(rows: Sequence[Floats]) -> Floats:
+    return rows[0] if len(rows) == 1 else np.asarray(np.max(rows, axis=0))
+
+
+def _where_first(chosen: NDArray[np.bool_], values: Floats, other: float) -> Floats:
     """The least value of those chosen in each row, or the other where none is."""
     least = np.where(chosen, values, np.inf).min(axis=1)
     return np.where(np.isinf(least), other, least)
 
 
-def _above(chosen: np.ndarray[tuple[int, int], np.dtype[np.bool_]], values: Floats) -> Floats:
+def _above(chosen: NDArray[np.bool_], values: Floats) -> Floats:
     """The greatest value of those chosen in each row; the least of all where none is, infinite where all are."""
     greatest = np.where(chosen, values, -np.inf).max(axis=1)
     greatest = np.where(np.isneginf(greatest), values.min(), greatest)

@@ -8,6 +8,7 @@ import hashlib
 import json
 from collections.abc import Iterable, Mapping
 from dataclasses import fields, is_dataclass
+from functools import cache
 from typing import Any
 
 import numpy as np
@@ -22,13 +23,12 @@ NO_STATEMENT = hashlib.sha256(b"").digest()
 
 def curve_sha256(curve: Curve) -> bytes:
     """Hash of all a curve says; of its sheet the file's bytes, page and plot count, not the file's name."""
-    head = {field.name: getattr(curve, field.name) for field in fields(curve) if field.name not in ("parts", "sheet")}
+    head = {name: getattr(curve, name) for name in _names(Curve) if name not in ("parts", "sheet")}
     sheet = curve.sheet and [curve.sheet.sha256, curve.sheet.page, curve.sheet.plot]
     digest = hashlib.sha256(_text({**head, "sheet": sheet}))
     for part in curve.parts:
         digest.update(len(part.current).to_bytes(8, "little"))
-        for values in (part.current, part.value, part.sd_current, part.sd_value, part.sd_common):
-            digest.update(_bytes(values))
+        digest.update(_bytes(np.stack((part.current, part.value, part.sd_current, part.sd_value, part.sd_common))))
     return digest.digest()
 
 
@@ -51,24 +51,30 @@ def _text(value: object) -> bytes:
 
 def _plain(value: object) -> Any:
     """Nested plain values: numbers as floats, records as mappings without what is None, False or empty."""
-    if value is None or isinstance(value, str | bool):
+    if value is None or isinstance(value, (str, bool)):
         return value
-    if isinstance(value, int | float):
+    if isinstance(value, (int, float)):
         return float(value) + 0.0
-    if isinstance(value, tuple | list):
+    if isinstance(value, (tuple, list)):
         return [_plain(item) for item in value]
+    said: Iterable[tuple[str, Any]]
     if isinstance(value, Mapping):
-        said = {name: _plain(item) for name, item in value.items()}
+        said = value.items()
     elif is_dataclass(value):
-        said = {field.name: _plain(getattr(value, field.name)) for field in fields(value)}
+        said = ((name, getattr(value, name)) for name in _names(type(value)))  # type: ignore[arg-type]
     else:
         raise TypeError(f"{type(value).__name__} has no canonical form")
-    return {name: item for name, item in said.items() if not _is_nothing(item)}
+    return {name: plain for name, item in said if item is not None and not _is_nothing(plain := _plain(item))}
+
+
+@cache
+def _names(record: type[Any]) -> tuple[str, ...]:
+    return tuple(field.name for field in fields(record))
 
 
 def _is_nothing(plain: object) -> bool:
     """None, False or empty; zero is something."""
-    return plain is None or plain is False or (isinstance(plain, str | list | dict) and not plain)
+    return plain is None or plain is False or (not plain and isinstance(plain, (str, list, dict)))
 
 
 def _bytes(values: Floats) -> bytes:

@@ -40,7 +40,7 @@ Connection = sqlite3.Connection
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class HeldCurve:
-    """A curve as a revision holds it: ``curve`` without its points, and the hashes of it and of its statement."""
+    """A curve as a revision holds it, and the hashes of it and of its statement; ``curve`` may lack its points."""
 
     curve_id: int
     sha256: bytes

@@ -4,7 +4,7 @@ import hashlib
 import json
 import sqlite3
 from collections.abc import Iterator
-from dataclasses import asdict, dataclass
+from dataclasses import dataclass
 from datetime import UTC, datetime
 from typing import Any
 
@@ -121,5 +121,5 @@ def _entry(row: tuple[Any, ...]) -> Entry:
 
 
 def _sha256(previous: bytes, entry: Entry) -> bytes:
-    text = json.dumps(asdict(entry), sort_keys=True, separators=(",", ":"))
+    text = json.dumps({name: getattr(entry, name) for name in Entry.__slots__}, sort_keys=True, separators=(",", ":"))
     return hashlib.sha256(previous + text.encode("ascii")).digest()

@@ -57,21 +57,23 @@ def _refuse_part(name: str, part: Part, falling: bool) -> None:
     if part.current.ndim != 1 or part.current.size == 0 or any(array.shape != part.current.shape for array in arrays):
         raise DeviceError(f"{name}: its columns differ in length or are empty")
     for quantity, values in (("current", part.current), ("value", part.value)):
+        if values.min() > 0 and values.max() < np.inf:
+            continue
         wrong = np.flatnonzero(~(np.isfinite(values) & (values > 0)))
-        if wrong.size:
-            raise DeviceError(
-                f"{name}, point {wrong[0] + 1}: the {quantity} {values[wrong[0]]:g} is not above zero and finite"
-            )
-    if any(np.any(values < 0) or np.any(np.isinf(values)) for values in arrays[2:]):
+        raise DeviceError(
+            f"{name}, point {wrong[0] + 1}: the {quantity} {values[wrong[0]]:g} is not above zero and finite"
+        )
+    uncertainties = np.stack(arrays[2:])
+    if (uncertainties < 0).any() or np.isinf(uncertainties).any():
         raise DeviceError(f"{name}: an uncertainty is negative or infinite", "Unknown uncertainty is NaN")
-    _refuse_disorder(name, "current", "falls", np.diff(part.current) < 0)
+    _refuse_disorder(name, "current", "falls", part.current[1:] < part.current[:-1])
     if falling:
-        _refuse_disorder(name, "time", "rises", np.diff(part.value) > 0)
+        _refuse_disorder(name, "time", "rises", part.value[1:] > part.value[:-1])
 
 
 def _refuse_disorder(name: str, quantity: str, verb: str, wrong: np.ndarray[tuple[int], np.dtype[np.bool_]]) -> None:
-    places = np.flatnonzero(wrong)
-    if places.size:
+    if wrong.any():
+        places = np.flatnonzero(wrong)
         raise DeviceError(
             f"{name}: the {quantity} {verb} between points {places[0] + 1} and {places[0] + 2}",
             "Along a part the current never falls and the time never rises",

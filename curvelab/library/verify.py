@@ -8,7 +8,7 @@ from dataclasses import dataclass
 
 from curvelab.library.current import CURRENT, extent_rows
 from curvelab.library.evidence import stored_evidence_sha256
-from curvelab.library.extent import extent_of
+from curvelab.library.extent import extents_of
 from curvelab.library.identity import NO_STATEMENT, curve_sha256, revision_sha256
 from curvelab.library.load import HeldCurve, read_nameplate, with_points
 from curvelab.library.log import broken_entries, head
@@ -139,7 +139,7 @@ def _extent_agrees(connection: sqlite3.Connection, device_id: int, record: Devic
     found = connection.execute(
         "SELECT * FROM band_extent WHERE device_id = ? AND step >= 0 ORDER BY step", (device_id,)
     ).fetchall()
-    extent = extent_of(record)
+    (extent,) = extents_of([record])
     return found == (list(extent_rows(device_id, extent)) if extent else [])
 
 
