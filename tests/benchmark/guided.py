@@ -96,12 +96,12 @@ def _coverage(truth: CurveTruth, curve: Curve, samples: int = 400) -> tuple[floa
         at = np.linspace(0.0, travelled[-1], samples)
         here = np.stack([np.interp(at, travelled, points[:, k]) for k in (0, 1)], axis=1)
         sd_here = np.interp(at, travelled, sd)
-        inside.append(_distance(here, line) <= COVERAGE_FACTOR * sd_here)
+        inside.append(distance_to_line(here, line) <= COVERAGE_FACTOR * sd_here)
         stated.append(sd_here)
     return float(np.mean(np.concatenate(inside))), float(np.median(np.concatenate(stated)) * np.log(10.0))
 
 
-def _distance(points: Floats, line: Floats) -> Floats:
+def distance_to_line(points: Floats, line: Floats) -> Floats:
     """Distance of each point to the infinitely thin polyline, its end segments prolonged."""
     best = np.full(len(points), np.inf)
     segments = len(line) - 1
