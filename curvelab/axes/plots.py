@@ -10,9 +10,6 @@ from scipy.sparse.csgraph import connected_components
 from curvelab.axes.segments import Segments
 from curvelab.records.arrays import Floats
 
-MEETING = 2.2
-"""Strips by which the ends of two lines that meet may be apart, as ends are only known to about a strip."""
-
 SMALLEST = 0.12
 """Share of the page's larger side that a plot covers at least along either direction."""
 
@@ -21,6 +18,9 @@ LONG = 0.25
 
 FEWEST_LINES = 3
 """Lines of a grid along each direction, at least; a table and a border have fewer that reach across."""
+
+PROLONGED = 3.0
+"""Times what ends that meet may be apart, by which lettering may prolong lines beyond the frame."""
 
 MOST_SEGMENTS = 4000
 """Beyond as many, short pieces are left out first."""
@@ -120,12 +120,16 @@ def _plot(upright: Segments, level: Segments, near: float) -> Plot | None:
 def _ends(along: Segments, across: Segments, near: float) -> tuple[float, float]:
     """Where lines begin and end, as most of the long ones do; an outermost line across that is near says it better.
 
-    Lettering that stands in line with a line may seem to prolong it.
+    Lettering that stands in line with lines may seem to prolong them.
     """
     long = along.length >= 0.5 * along.length.max()
     ends = (float(np.median(along.first[long])), float(np.median(along.last[long])))
     lines = across.across[across.length >= 0.5 * across.length.max()]
-    close = [lines[np.abs(lines - end) <= near] for end in ends]
+    room = PROLONGED * near
+    close = (
+        lines[(lines >= ends[0] - near) & (lines <= ends[0] + room)],
+        lines[(lines >= ends[1] - room) & (lines <= ends[1] + near)],
+    )
     return (
         float(close[0].min()) if close[0].size else ends[0],
         float(close[1].max()) if close[1].size else ends[1],
