@@ -113,6 +113,21 @@ def written_time(time_s: float, figures: int = FIGURES) -> str:
     return f"{_rounded(time_s / 3600, figures)} h"
 
 
+def written_between(value: float, interval: tuple[float, float] | None, unit: str) -> str:
+    """A quantity with its 95 % interval, in as many figures as show it: ``48.81 s (48.78 s to 48.84 s)``."""
+    if interval is None:
+        return written(value, unit)
+    figures = interval_figures(value, *interval)
+    read, low, high = (written(each, unit, figures) for each in (value, *interval))
+    return f"{read} ({low} to {high})"
+
+
+def written_percent(share: float) -> str:
+    """A signed share in percent, three figures: ``'+18.6 %'``."""
+    percent = 100 * share
+    return f"{'+' if percent >= 0 else ''}{_rounded(percent, FIGURES) if abs(percent) >= 1e-3 else '0'} %"
+
+
 def interval_figures(value: float, lower: float, upper: float) -> int:
     """As many figures as show the interval about a value: its half-width in two of them, three to six in all."""
     half = max(abs(upper - value), abs(value - lower))

@@ -18,7 +18,7 @@ from curvelab.records.finding import Finding
 from curvelab.standards.review import review
 from curvelab.standards.rules import rules_beside
 from curvelab.standards.scope import unchecked
-from curvelab.units import interval_figures, written
+from curvelab.units import written_between, written_percent
 
 
 @click.command(cls=ManyValues)
@@ -89,7 +89,7 @@ def findings_table(findings: Sequence[Finding]) -> str:
     several = len({each.device for each in findings}) > 1
     heads = ["standard", "clause", "requirement", "read (95 %)", "margin", "outcome", "note"]
     rows = [
-        [each.standard, each.clause, each.requirement, _read(each), written_margin(each), _outcome(each), each.note]
+        [each.standard, each.clause, each.requirement, _read(each), _margin(each), _outcome(each), each.note]
         for each in findings
     ]
     if several:
@@ -102,17 +102,9 @@ def _outcome(finding: Finding) -> str:
     return f"{finding.outcome} (advisory)" if finding.advisory else finding.outcome
 
 
-def written_margin(finding: Finding) -> str:
-    """How far inside the limit, in percent; negative outside."""
-    return "-" if finding.margin is None else f"{100 * finding.margin:+.3g} %"
+def _margin(finding: Finding) -> str:
+    return "-" if finding.margin is None else written_percent(finding.margin)
 
 
 def _read(finding: Finding) -> str:
-    if finding.value is None:
-        return "-"
-    if finding.interval is None:
-        return written(finding.value, finding.unit)
-    lower, upper = finding.interval
-    figures = interval_figures(finding.value, lower, upper)
-    value, low, high = (written(each, finding.unit, figures) for each in (finding.value, lower, upper))
-    return f"{value} ({low} to {high})"
+    return "-" if finding.value is None else written_between(finding.value, finding.interval, finding.unit)

@@ -13,7 +13,7 @@ from curvelab.plots.limits import SETTLED
 from curvelab.plots.save import picture_format, save_figure
 from curvelab.records.device import DeviceRecord
 from curvelab.records.finding import Finding
-from curvelab.units import written
+from curvelab.units import written_between, written_percent
 
 LEFT, RIGHT, BOTTOM = 0.055, 0.055, 0.03
 ROW, GAP = 0.0148, 0.03
@@ -22,13 +22,13 @@ TALLEST = 0.5
 """Of the page, for the table: rows grow smaller rather than the band."""
 COLUMNS = (
     ("Requirement", 0.0),
-    ("Read (95 %)", 0.475),
-    ("Margin", 0.71),
-    ("Outcome", 0.78),
-    ("Clause", 0.895),
+    ("Read (95 %)", 0.43),
+    ("Margin", 0.665),
+    ("Outcome", 0.735),
+    ("Clause", 0.835),
 )
 """Heading and left end of each column, as fractions of the table's width."""
-LETTERS = 78
+LETTERS = 74
 """Of a requirement that fit into its column."""
 
 
@@ -76,23 +76,13 @@ def _rule(y: float) -> Line2D:
 
 def _cells(finding: Finding) -> tuple[str, ...]:
     words = finding.requirement
-    margin = "" if finding.margin is None else f"{100 * finding.margin:+.3g} %"
     return (
         words if len(words) <= LETTERS else words[: LETTERS - 1] + "…",
-        _read(finding),
-        margin,
+        "" if finding.value is None else written_between(finding.value, finding.interval, finding.unit),
+        "" if finding.margin is None else written_percent(finding.margin),
         finding.outcome + (" *" if finding.advisory else ""),
-        finding.clause.removeprefix("as "),
+        finding.clause,
     )
-
-
-def _read(finding: Finding) -> str:
-    if finding.value is None:
-        return ""
-    if finding.interval is None:
-        return written(finding.value, finding.unit)
-    low, high = (written(each, finding.unit) for each in finding.interval)
-    return f"{written(finding.value, finding.unit)} ({low} to {high})"
 
 
 def _colour(finding: Finding) -> str:

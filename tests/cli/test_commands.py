@@ -109,6 +109,39 @@ def test_checks_are_a_table_and_json(site: Path, capsys: pytest.CaptureFixture[s
     assert {each["outcome"] for each in findings} <= {"meets", "fails", "undecided", "at limit", "not covered"}
 
 
+def test_the_check_says_what_was_required_read_and_by_how_much(capsys: pytest.CaptureFixture[str], site: Path) -> None:
+    picture = site / "check.pdf"
+    run(["check", "hall-b32", "--picture", str(picture)])
+    shown = capsys.readouterr().out
+    assert all(
+        heading in shown for heading in ("standard", "clause", "requirement", "read (95 %)", "margin", "outcome")
+    )
+    assert "\x1b" not in shown
+    assert picture.read_bytes().startswith(b"%PDF")
+    _, findings = printed_json(capsys, "check", "hall-b32")
+    assert {"limit", "value", "interval", "margin", "permitted", "outcome", "advisory", "source"} <= findings[0].keys()
+
+
+def test_a_firm_rule_beside_the_library_is_checked(site: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    folder = site / "standards"
+    folder.mkdir()
+    table = (ROOT / "database" / "standards" / "README.md").read_text(encoding="utf-8")
+    own = table.split("```toml\n")[1].split("```")[0]
+    (folder / "works.toml").write_text(own, encoding="utf-8")
+    run(["check", "hall-b32"])
+    assert "Works standard 12" in capsys.readouterr().out
+    (folder / "works.toml").write_text(own.replace("limit_s", "limit"), encoding="utf-8")
+    assert run(["check", "hall-b32"]) == 2
+    assert "works.toml" in capsys.readouterr().err
+
+
+def test_a_switch_is_said_to_protect_nothing(site: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    text = 'format = 1\n[[devices]]\nkey = "hall-isolator"\nkind = "switch"\nrated_current_a = 63\n'
+    (site / "isolator.toml").write_text(text, encoding="utf-8")
+    assert run(["check", str(site / "isolator.toml")]) == 0
+    assert "not a protective device" in capsys.readouterr().out
+
+
 def test_storing_again_changes_nothing(site: Path, capsys: pytest.CaptureFixture[str]) -> None:
     assert run(["store", str(site / "b32.toml")]) == 0
     assert "hall-b32: revision 1, as it was" in capsys.readouterr().out
