@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass
 from itertools import pairwise
+from statistics import median
 
 import numpy as np
 
@@ -17,6 +18,12 @@ LEAST_CHANCE = -6.0
 
 LEAST_NONE = 0.6
 """Chance of being no character from which ink is offered to be left out."""
+
+NONE_LOSS = -1.0
+"""Log of how much rarer other ink is within a line than its shape alone says."""
+
+SURELY_NONE = float(np.log(0.9))
+"""Where every segment is more surely no character than this, the line is no lettering."""
 
 SPACE = 0.30 * CAPITAL_PX
 """A gap wider than this above the line's usual gap is a printed space."""
@@ -34,13 +41,16 @@ RAISED_DASH = 0.62
 class Character:
     """One character of a reading and its segment; ``text`` is empty where the ink is taken for something else.
 
-    By its shape alone: ``log_chance`` that it is this one, ``none`` the chance that it is no character at all.
+    By its shape alone: ``log_chance`` that it is this one, ``none`` the chance that it is no character at all. ``high``
+    where a digit stands so high that it is raised, ``dash_high`` where a dash does.
     """
 
     text: str
     segment: Segment
     log_chance: float
     none: float
+    high: bool
+    dash_high: bool
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -64,10 +74,12 @@ def decode(cutting: Cutting, log_chances: Matrix) -> list[Reading]:
     A segment of several atoms counts as often as it has atoms, so that ways with fewer cuts are not preferred.
     Viterbi's search with the best few ways kept at each cut.
     """
+    if not len(log_chances) or log_chances[:, -1].min() > SURELY_NONE:
+        return []
     paths: list[list[_Path]] = [[] for _ in range(cutting.atoms + 1)]
     paths[0] = [_Path(0.0, ())]
     for segment, chances in zip(cutting.segments, log_chances, strict=True):
-        choices = _choices(segment, chances)
+        choices = _choices(segment, chances, cutting.strip)
         weight = segment.last - segment.first
         paths[segment.last] += [
             _Path(path.score + weight * choice.log_chance, (*path.characters, choice))
@@ -76,7 +88,7 @@ def decode(cutting: Cutting, log_chances: Matrix) -> list[Reading]:
         ]
     found: dict[str, Reading] = {}
     for path in sorted(paths[-1], key=lambda one: -one.score)[: 6 * BEAM]:
-        text = written(path.characters, cutting.strip)
+        text = written(path.characters)
         score = path.score + fitness(text)
         if text and (text not in found or found[text].score < score):
             found[text] = Reading(text=text, characters=path.characters, score=score)
@@ -89,26 +101,29 @@ def _best(paths: list[_Path]) -> list[_Path]:
     return paths
 
 
-def _choices(segment: Segment, chances: Matrix) -> list[Character]:
+def _choices(segment: Segment, chances: Matrix, strip: Strip) -> list[Character]:
+    x0, y0, x1, y1 = segment.box
+    base = strip.baseline + strip.slope * (x0 + x1) / 2
+    high = base - y1 >= RAISED_BY * CAPITAL_PX
+    dash_high = base - (y0 + y1) / 2 >= RAISED_DASH * CAPITAL_PX
     order = np.argsort(-chances[:-1])[:CHOICES]
     best, none = float(chances[order[0]]), float(np.exp(chances[-1]))
-    found = [
-        Character(text=CLASSES[number], segment=segment, log_chance=float(chances[number]), none=none)
-        for number in order
-        if chances[number] - best >= LEAST_CHANCE
-    ]
+    told = [(CLASSES[number], float(chances[number])) for number in order if chances[number] - best >= LEAST_CHANCE]
     if none >= LEAST_NONE:
-        found.append(Character(text="", segment=segment, log_chance=float(chances[-1]), none=none))
-    return found
+        told.append(("", float(chances[-1]) + NONE_LOSS))
+    return [
+        Character(text=text, segment=segment, log_chance=chance, none=none, high=high, dash_high=dash_high)
+        for text, chance in told
+    ]
 
 
-def written(characters: tuple[Character, ...], strip: Strip) -> str:
+def written(characters: tuple[Character, ...]) -> str:
     """The text of characters, with spaces and raised exponents."""
     characters = tuple(one for one in characters if one.text)
-    raised = _raised(characters, strip)
+    raised = _raised(characters)
     texts = [one.text.translate(RAISED) if up else one.text for one, up in zip(characters, raised, strict=True)]
     gaps = [right.segment.box[0] - left.segment.box[2] for left, right in pairwise(characters)]
-    usual = float(np.clip(np.median(gaps), 0.0, 0.2 * CAPITAL_PX)) if len(gaps) > 2 else 0.1 * CAPITAL_PX
+    usual = min(max(median(gaps), 0.0), 0.2 * CAPITAL_PX) if len(gaps) > 2 else 0.1 * CAPITAL_PX
     text = texts[0] if texts else ""
     for gap, before, piece in zip(gaps, texts, texts[1:], strict=False):
         apart = POINT_SPACE if before in ".," or piece in ".," else SPACE
@@ -116,16 +131,13 @@ def written(characters: tuple[Character, ...], strip: Strip) -> str:
     return text
 
 
-def _raised(characters: tuple[Character, ...], strip: Strip) -> list[bool]:
+def _raised(characters: tuple[Character, ...]) -> list[bool]:
     """Which characters are raised digits, and dashes before such."""
     raised = [False] * len(characters)
     for number in range(len(characters) - 1, 0, -1):
         one = characters[number]
-        x0, y0, x1, y1 = one.segment.box
-        base = strip.baseline + strip.slope * (x0 + x1) / 2
-        foot, middle = (base - y1) / CAPITAL_PX, (base - (y0 + y1) / 2) / CAPITAL_PX
         if one.text.isdigit():
-            raised[number] = foot >= RAISED_BY
+            raised[number] = one.high
         elif one.text in "-+" and number + 1 < len(characters):
-            raised[number] = raised[number + 1] and middle >= RAISED_DASH
+            raised[number] = raised[number + 1] and one.dash_high
     return raised

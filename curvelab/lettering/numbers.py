@@ -17,16 +17,18 @@ GROUPED, DECIMAL = 0.75, 0.25
 """Weights of 1,000 and 1.000 being a thousand or one."""
 
 _UNITS = {
-    "a": "A", "amp": "A", "amps": "A", "amperes": "A", "ka": "kA", "ma": "mA", "s": "s", "sec": "s", "secs": "s", "sek": "s",
-    "second": "s", "seconds": "s", "sekunden": "s", "secondes": "s", "ms": "ms", "msec": "ms", "min": "min", "mins": "min",
+    "a": "A", "amp": "A", "amps": "A", "amperes": "A", "ka": "kA", "ma": "mA", "s": "s", "sec": "s", "secs":
+    "s", "sek": "s",
+    "second": "s", "seconds": "s", "sekunden": "s", "secondes": "s", "ms": "ms", "msec": "ms", "min": "min",
+    "mins": "min",
     "minute": "min", "minutes": "min", "minuten": "min", "h": "h", "hr": "h", "hrs": "h", "hour": "h", "hours": "h",
     "std": "h", "a2s": "A2s", "ka2s": "kA2s", "in": "xIn", "ir": "xIr", "isd": "xIsd", "ii": "xIi", "ig": "xIg",
     "iδn": "xIdn", "idn": "xIdn", "iδ": "xIdn",
 }  # fmt: skip
 
-_SPACED = r"\d{1,3}(?: \d{3})+"
-_POINTED = r"\d{1,3}(?:\.\d{3})+"
-_COMMAED = r"\d{1,3}(?:,\d{3})+"
+_SPACED = r"\d{1,3}(?: \d{3})+(?!\d)"
+_POINTED = r"\d{1,3}(?:\.\d{3})+(?!\d)"
+_COMMAED = r"\d{1,3}(?:,\d{3})+(?!\d)"
 _PLAIN = r"\d+(?:[.,]\d+)?|[.,]\d+"
 _MANTISSA = rf"{_SPACED}|{_POINTED}|{_COMMAED}|{_PLAIN}"
 _RAISED = "[⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+"

@@ -41,7 +41,7 @@ def _within(word: Word, area: Box) -> bool:
 
 def _parts(pixels: Pixels, areas: tuple[Box, ...] | None) -> Iterator[list[Word]]:
     rows, columns = pixels.grey.shape
-    for area in areas if areas is not None else (None,):
+    for area in (None,) if areas is None else areas:
         left, top, right, bottom = (0, 0, columns, rows) if area is None else _pixel_area(pixels, area)
         if right - left < 3 or bottom - top < 3:
             continue
@@ -62,7 +62,7 @@ def _pixel_area(pixels: Pixels, area: Box) -> tuple[int, int, int, int]:
 def _placed(word: Word, pixels: Pixels, left: int, top: int) -> Word:
     """A word in pixels of a part (edges whole) in places of the sheet (pixel centres whole)."""
     x0, y0, x1, y1 = word.box
-    corners = np.array([[x0, y0], [x1, y0], [x0, y1], [x1, y1]]) + (left - 0.5, top - 0.5)
+    corners = np.array([[x0, y0], [x1, y0], [x0, y1], [x1, y1]]) + np.array([left - 0.5, top - 0.5])
     places = pixels.places(corners)
     low, high = places.min(axis=0), places.max(axis=0)
     box = (float(low[0]), float(low[1]), float(high[0]), float(high[1]))

@@ -1,6 +1,7 @@
 """A strip cut into atoms, and the runs of atoms that may be one character each."""
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 import cv2
 import numpy as np
@@ -8,18 +9,23 @@ from numpy.typing import NDArray
 
 from curvelab.lettering.strip import CAPITAL_PX, Strip
 
-INK = 0.5
+INK = 0.46
 LEAST_AREA = 5
 WIDE = 0.62 * CAPITAL_PX
 """Pieces wider than this may be touching characters and are offered for cutting."""
 
-CUT_APART = 0.22 * CAPITAL_PX
-MOST_ATOMS = 5
+CUT_APART = 0.16 * CAPITAL_PX
+THINNER = 0.2
+LOWER = 0.07 * CAPITAL_PX
+NEAR = round(0.5 * CAPITAL_PX)
+"""Characters may touch where a column has less ink (share of the mean) or its ink is less high (px) than near by."""
+
+MOST_ATOMS = 6
 """A character is never cut into more."""
 
 BROKEN_GAP = 0.14 * CAPITAL_PX
-WIDEST = 1.35 * CAPITAL_PX
-JOINED_WIDEST = 0.95 * CAPITAL_PX
+WIDEST = 1.5 * CAPITAL_PX
+JOINED_WIDEST = 1.25 * CAPITAL_PX
 """Parts of one broken character lie closer than BROKEN_GAP and are no wider than this together."""
 
 RASTER = 20
@@ -60,10 +66,8 @@ def cut(strip: Strip) -> Cutting:
     rows: list[NDArray[np.float32]] = []
     for first in range(len(atoms)):
         for last in range(first + 1, min(first + MOST_ATOMS, len(atoms)) + 1):
-            if not _may_be_one(atoms, boxes, first, last):
+            if not _may_be_one(atoms, first, last):
                 break
-            if _is_partial(atoms, first, last):
-                continue
             found = _character(strip, units, atoms[first:last])
             if found is not None:
                 segments.append(Segment(first=first, last=last, box=found[0]))
@@ -101,43 +105,44 @@ def _above(box: tuple[int, int, int, int], span: tuple[int, int]) -> bool:
 def _atoms(
     contrast: NDArray[np.float32], units: NDArray[np.int32], unit: int, box: tuple[int, int, int, int]
 ) -> list[_Atom]:
-    """A unit cut at the thinnest columns, where it is wide enough for two characters."""
+    """A unit cut where its ink is thin or notched, if it is wide enough for two characters."""
     x0, y0, x1, y1 = box
     if x1 - x0 <= WIDE:
         return [_Atom(unit=unit, x0=x0, x1=x1)]
-    own = np.where(units[y0:y1, x0:x1] == unit, contrast[y0:y1, x0:x1], 0.0)
-    profile = np.convolve(own.sum(axis=0), np.ones(3) / 3, mode="same")
-    limit = 0.75 * float(profile.mean())
+    mine = units[y0:y1, x0:x1] == unit
+    ink = np.where(mine, contrast[y0:y1, x0:x1], 0.0).sum(axis=0)
+    extent = y1 - y0 - np.argmax(mine, axis=0) - np.argmax(mine[::-1], axis=0)
+    thin = _minima(ink, THINNER * float(ink.mean()))
+    low = _minima(extent.astype(np.float64), LOWER)
     cuts: list[int] = []
-    for column in np.argsort(profile, kind="stable"):
-        if profile[column] > limit:
-            break
+    for column, _ in sorted(thin + low, key=lambda one: -one[1]):
         if all(abs(column - other) >= CUT_APART for other in (*cuts, 0, x1 - x0)):
-            cuts.append(int(column))
+            cuts.append(column)
     edges = [x0, *(x0 + column for column in sorted(cuts)), x1]
-    return [_Atom(unit=unit, x0=start, x1=end) for start, end in zip(edges, edges[1:], strict=False)]
+    return [_Atom(unit=unit, x0=start, x1=end) for start, end in pairwise(edges)]
 
 
-def _may_be_one(atoms: list[_Atom], boxes: list[tuple[int, int, int, int]], first: int, last: int) -> bool:
-    """Whether the atoms may still be one character."""
+def _minima(profile: NDArray[np.float64], least: float) -> list[tuple[int, float]]:
+    """Columns where a profile is lower than somewhere near on both sides, and by how many times the least depth."""
+    smooth = np.convolve(np.pad(profile, 1, mode="edge"), np.ones(3) / 3, mode="valid")
+    found = []
+    for column in np.flatnonzero((smooth[1:-1] <= smooth[:-2]) & (smooth[1:-1] <= smooth[2:])) + 1:
+        left = smooth[max(0, column - NEAR) : column].max()
+        right = smooth[column + 1 : column + 1 + NEAR].max()
+        depth = float((min(left, right) - smooth[column]) / least)
+        if depth >= 1.0:
+            found.append((int(column), depth))
+    return found
+
+
+def _may_be_one(atoms: list[_Atom], first: int, last: int) -> bool:
+    """Whether the atoms may be one character: of one unit, or parts of a broken one close together."""
     if last - first == 1:
         return True
-    one, other, start = atoms[last - 2], atoms[last - 1], atoms[first]
-    width = other.x1 - start.x0
-    if one.unit == other.unit:
-        return width <= WIDEST or start.unit == other.unit and _is_whole(atoms, first, last)
-    return other.x0 - one.x1 < BROKEN_GAP and boxes[other.unit][2] - boxes[start.unit][0] <= JOINED_WIDEST
-
-
-def _is_whole(atoms: list[_Atom], first: int, last: int) -> bool:
-    starts = first == 0 or atoms[first - 1].unit != atoms[first].unit
-    ends = last == len(atoms) or atoms[last].unit != atoms[last - 1].unit
-    return starts and ends
-
-
-def _is_partial(atoms: list[_Atom], first: int, last: int) -> bool:
-    """A part of one unit together with another unit is no character."""
-    return atoms[first].unit != atoms[last - 1].unit and not _is_whole(atoms, first, last)
+    width = atoms[last - 1].x1 - atoms[first].x0
+    if atoms[first].unit == atoms[last - 1].unit:
+        return width <= WIDEST
+    return atoms[last - 1].x0 - atoms[last - 2].x1 < BROKEN_GAP and width <= JOINED_WIDEST
 
 
 def _character(

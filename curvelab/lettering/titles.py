@@ -12,13 +12,14 @@ from curvelab.units import CURRENT_UNITS, VALUE_UNITS
 Quantity = Literal["current", "time", "let_through", "peak"]
 
 _WORDS: dict[Quantity, str] = {
-    "time": r"time|zeit|temps|tiempo|tempo|duration|durée|dauer|seconds?|minutes?|hours?|sekunden|secondes|minuten|stunden"
-    r"|\w*zeit|t(?=\s*(?:in\b|[/(\[,]|$))",
     "let_through": r"let-?\s?through|i2t|joule|durchlass\w*|energ\w+|i²t|a2s|ka2s",
     "peak": r"peak|cut-?\s?off|crest|crête|stoßstrom|scheitelwert|ip(?=\s*[/(\[])|îd?",
-    "current": r"currents?|\w*strom|\w*stroms|courant|corriente|corrente|amp[eè]res?|amps?|i(?=\s*(?:in\b|[/(\[,]|$))|ip",
+    "time": r"time|\w*zeit|temps|tiempo|tempo|duration|durée|dauer"
+    r"|seconds?|minutes?|hours?|sekunden|secondes|minuten|stunden|t(?=\s*(?:in\b|[/(\[,]|$))",
+    "current": r"currents?|\w*stroms?|courant|corriente|corrente|amp[eè]res?|amps?|i(?=\s*(?:in\b|[/(\[,]|$))|ip",
 }
-"""Printed words of each quantity in English, German, French, Spanish and Italian."""
+"""Printed words of each quantity in English, German, French, Spanish and Italian. Let-through and peak stand first:
+their titles say "current" or "time" too."""
 
 _BASES = (
     (r"rated residual|residual operating|i\s?δ\s?n|idn", "xIdn"),
@@ -26,7 +27,8 @@ _BASES = (
     (r"(?:short[- ]time|short[- ]delay).*(?:setting|pick-?up)|\bisd\b", "xIsd"),
     (r"(?:ground|earth)[- ]?(?:fault)?.*(?:setting|pick-?up)|\big\b", "xIg"),
     (
-        r"rated current|nennstrom\w*|bemessungsstrom\w*|courant (?:nominal|assigné|assigne)|nominal current|\bin\b(?!\s+[am]|\s+k)",
+        r"(?:rated|nominal) current|nennstrom\w*|bemessungsstrom\w*|courant (?:nominal|assigné|assigne)"
+        r"|\bin\b(?!\s+[amk])",
         "xIn",
     ),
     (r"(?:long[- ]time|overload|thermal).*(?:setting|pick-?up)|setting current|\bir\b", "xIr"),
@@ -42,13 +44,19 @@ _UNIT = re.compile(
 )
 _FACTOR = re.compile(r"[x×]\s*(?P<number>10(?:\^?[+-]?\d|[⁻]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+)|1\s?0{1,4}|10{1,4}|1\s000)(?=$|[\s)\]a-z])")
 _SPELT = {
-    "amp": "A", "amps": "A", "ampere": "A", "amperes": "A", "ampère": "A", "ampères": "A", "kiloamp": "kA", "kiloamps": "kA",
-    "kiloampere": "kA", "kiloamperes": "kA", "milliamp": "mA", "milliamps": "mA", "milliampere": "mA", "milliamperes": "mA",
-    "millisecond": "ms", "milliseconds": "ms", "seconde": "s", "stunden": "h", "heure": "h", "heures": "h", "a²s": "A2s", "ka²s": "kA2s",
+    "amp": "A", "amps": "A", "ampere": "A", "amperes": "A", "ampère": "A", "ampères": "A", "kiloamp": "kA",
+    "kiloamps": "kA",
+    "kiloampere": "kA", "kiloamperes": "kA", "milliamp": "mA", "milliamps": "mA", "milliampere": "mA",
+    "milliamperes": "mA",
+    "millisecond": "ms", "milliseconds": "ms", "seconde": "s", "stunden": "h", "heure": "h", "heures": "h",
+    "a²s": "A2s", "ka²s": "kA2s",
 }  # fmt: skip
 
-BY_UNIT_ALONE = 0.6
-"""Confidence where only the unit tells the quantity: ``s`` or ``A`` beside an axis."""
+BY_UNIT: tuple[Quantity, ...] = ("current", "time", "let_through")
+"""What an axis shows where a unit stands beside it and nothing else."""
+
+SURE, SEVERAL_UNITS, BY_UNIT_ALONE = 0.95, 0.5, 0.6
+"""Confidence where words and unit agree, where several units are named, and where the unit alone tells the quantity."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -81,7 +89,7 @@ def title_of(text: str) -> AxisTitle | None:
         return None
     base = _base(rest, plain)
     if base is not None:
-        title = AxisTitle(quantity="current", unit=base, base=base, factor=factor, confidence=0.95)
+        title = AxisTitle(quantity="current", unit=base, base=base, factor=factor, confidence=SURE)
     else:
         found = _measured(rest, factor)
         if found is None:
@@ -127,34 +135,19 @@ def _measured(words: str, factor: float) -> AxisTitle | None:
     if _MULTIPLE.search(words):
         return None
     units = _units(words)
-    named = [quantity for quantity in ("let_through", "peak", "time", "current") if _has_word(words, quantity)]
-    fitting = [
-        (quantity, unit)
-        for quantity in named
-        for unit in units
-        if unit in _units_of(quantity) and _agrees(quantity, named)
-    ]
-    if fitting:
-        quantity, unit = fitting[0]
-        kinds = {one for _, one in fitting if _}
-        confidence = 0.95 if len(kinds) == 1 else 0.5
-        return AxisTitle(
-            quantity=quantity,
-            unit=unit,
-            base="A" if quantity == "current" else None,
-            factor=factor,
-            confidence=confidence,
-        )
-    if named or len(set(units)) != 1:
+    named = next((quantity for quantity in _WORDS if _has_word(words, quantity)), None)
+    quantity = named or next((one for one in BY_UNIT if units and units[0] in _units_of(one)), None)
+    fitting = [unit for unit in units if quantity is not None and unit in _units_of(quantity)]
+    if quantity is None or not fitting or (named is None and len(set(units)) != 1):
         return None
-    quantity = next(one for one in ("current", "time", "let_through") if units[0] in _units_of(one))
-    base = "A" if quantity == "current" else None
-    return AxisTitle(quantity=quantity, unit=units[0], base=base, factor=factor, confidence=BY_UNIT_ALONE)
-
-
-def _agrees(quantity: Quantity, named: list[Quantity]) -> bool:
-    """Let-through and peak are said with "current" or "time" too; then they are what is meant."""
-    return quantity == named[0]
+    sure = SURE if len(set(fitting)) == 1 else SEVERAL_UNITS
+    return AxisTitle(
+        quantity=quantity,
+        unit=fitting[0],
+        base="A" if quantity == "current" else None,
+        factor=factor,
+        confidence=sure if named else BY_UNIT_ALONE,
+    )
 
 
 def _has_word(words: str, quantity: Quantity) -> bool:
@@ -170,7 +163,7 @@ def _units_of(quantity: Quantity) -> frozenset[str]:
 
 
 def _units(words: str) -> list[str]:
-    """Units in a title, the one in brackets or after "in" or "/" before others; a title's last word before its first."""
+    """Units in a title: one in brackets or after "in" or "/" before others, a later before an earlier."""
     found = []
     text = words.translate(SUPERSCRIPTS)
     for match in _UNIT.finditer(text):

@@ -13,11 +13,11 @@ WORDS = frozenset(
     sekunden minuten stunden ampère courant temps présumé presume multiple nominal assigné assigne du de fusion
     fonctionnement déclenchement declenchement différentiel differentiel coupure secondes corrente tempo corriente
     tiempo sheet trial scale log cold hot fuse breaker curve characteristic relay
-    """.split()
+    """.split()  # noqa: SIM905
 )
 
 UNITS = frozenset(
-    "A kA mA s ms min h sec A²s kA²s A2s kA2s I t In Ir Isd Ii Ig IΔn Idn x xIn xIr xIsd xIi xIg xIΔn I²t".split()
+    "A kA mA s ms min h sec A²s kA²s A2s kA2s I t In Ir Isd Ii Ig IΔn Idn x xIn xIr xIsd xIi xIg xIΔn I²t".split()  # noqa: SIM905
 )
 
 _NUMBER = re.compile(r"\(?[+-]?(\d+([.,]\d+)*|[.,]\d+)\)?(k|M|[⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺]+)?")

@@ -46,14 +46,14 @@ class Part:
 def words_of_readings(strip: Strip, readings: list[Reading], coefficients: NDArray[np.float64]) -> list[Word]:
     """The words of a line: boxes in pixels of the page, edges whole."""
     words = []
-    for part in parts_of(strip, readings):
+    for part in parts_of(readings):
         confidence = part.whole * _sigmoid(float(coefficients @ evidence(part, strip)))
         if confidence >= LEAST_CONFIDENCE:
             words.append(_word(strip, part, confidence))
     return words
 
 
-def parts_of(strip: Strip, readings: list[Reading]) -> Iterator[Part]:
+def parts_of(readings: list[Reading]) -> Iterator[Part]:
     """Words of the best reading, each with what other readings say in its place."""
     chances = _chances(readings)
     for low, high in _spans(readings[0].characters):
@@ -62,9 +62,9 @@ def parts_of(strip: Strip, readings: list[Reading]) -> Iterator[Part]:
             continue
         texts: dict[str, float] = {}
         for reading, chance in zip(readings, chances, strict=True):
-            text = written(_within(reading.characters, low, high), strip)
+            text = written(_within(reading.characters, low, high))
             texts[text] = texts.get(text, 0.0) + chance
-        yield Part(characters=best, text=written(best, strip), texts=texts, whole=_whole(best, readings[0].characters))
+        yield Part(characters=best, text=written(best), texts=texts, whole=_whole(best, readings[0].characters))
 
 
 def evidence(part: Part, strip: Strip) -> NDArray[np.float64]:
@@ -106,7 +106,7 @@ def _spans(characters: tuple[Character, ...]) -> list[tuple[float, float]]:
         if numeric and gap > NUMBERS_APART and not (gap <= GROUPS_APART and _is_group(characters[number:])):
             edges.append((left.segment.box[2] + right.segment.box[0]) / 2)
     edges.append(math.inf)
-    return list(zip(edges, edges[1:], strict=False))
+    return list(pairwise(edges))
 
 
 def _is_group(characters: tuple[Character, ...]) -> bool:

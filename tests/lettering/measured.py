@@ -99,9 +99,8 @@ def main() -> None:
             for dpi in options.dpi:
                 _list_wrong(quality, dpi, seeds)
         return
-    print(
-        f"{'quality':8} {'dpi':>4} {'n':>5} {'right':>8} {'possible':>8} {'sure':>8} {'sure, no':>8} {'titles':>8} {'s/page':>6}"
-    )
+    heads = " ".join(f"{head:>8}" for head in ("right", "possible", "sure", "sure, no", "titles"))
+    print(f"{'quality':8} {'dpi':>4} {'n':>5} {heads} {'s/page':>6}")
     for quality in options.quality:
         for dpi in options.dpi:
             print(table_row(quality, dpi, seeds), flush=True)

@@ -25,10 +25,14 @@ RENDERERS = ("agg", "resvg", "pdfium")
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Truth:
-    """A printed word: its text, the middle of its letters in places, and whether it names an axis."""
+    """A printed word: its text, the middle of its letters in places, and whether it names an axis.
+
+    ``half`` is half its length and the font size, in points.
+    """
 
     text: str
     middle: tuple[float, float]
+    half: tuple[float, float]
     turned_deg: float
     title: bool
 
@@ -88,7 +92,8 @@ def _axis_truth(plot: PlotDesign, font: str) -> list[Truth]:
         width = text_width(ink.text, font, ink.bold, ink.size_pt)
         if ink.size_pt < 0.9 * plot.tick_size_pt:  # the exponent of the number before it
             base = truth[-1]
-            truth[-1] = replace(base, text=base.text + ink.text.translate(RAISED))
+            reach = (base.half[0] + width, base.half[1])
+            truth[-1] = replace(base, text=base.text + ink.text.translate(RAISED), half=reach)
         else:
             truth.append(_word(ink, width, title=ink.anchor == "middle"))
     return truth
@@ -100,4 +105,10 @@ def _word(ink: Words, width: float, *, title: bool) -> Truth:
     up = 0.36 * ink.size_pt
     turn = math.radians(ink.rotation)
     middle = (x + along * math.cos(turn) - up * math.sin(turn), y - along * math.sin(turn) - up * math.cos(turn))
-    return Truth(text=ink.text.replace("−", "-"), middle=middle, turned_deg=ink.rotation, title=title)
+    return Truth(
+        text=ink.text.replace("−", "-"),
+        middle=middle,
+        half=(width / 2, ink.size_pt),
+        turned_deg=ink.rotation,
+        title=title,
+    )

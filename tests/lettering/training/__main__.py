@@ -14,8 +14,8 @@ from tests.lettering.training.samples import samples
 
 def main() -> None:
     parser = argparse.ArgumentParser(description=__doc__)
-    parser.add_argument("--pages", type=int, default=420, help="drawn pages of samples")
-    parser.add_argument("--passes", type=int, default=14, help="passes over the samples")
+    parser.add_argument("--pages", type=int, default=300, help="drawn pages of samples")
+    parser.add_argument("--passes", type=int, default=12, help="passes over the samples")
     parser.add_argument("--output", type=Path, default=WEIGHTS)
     parser.add_argument("--samples", type=Path, help="keep the samples in this file, or take them from it")
     options = parser.parse_args()

@@ -43,7 +43,7 @@ def confidence_coefficients(network: Network, faces: list[Path], pages: int, see
             if len(ways) != 1 or not (readings := decode(ways[0], network.log_chances(ways[0].features))):
                 continue
             strip = ways[0].strip
-            for part in parts_of(strip, readings):
+            for part in parts_of(readings):
                 rows.append(evidence(part, strip))
                 label = label_at(drawn, strip.page_box(box_of(part.characters)))
                 right.append(label is not None and same_text(label.text, part.text))

@@ -42,6 +42,14 @@ def _face(path: Path, size: int) -> ImageFont.FreeTypeFont:
     return ImageFont.truetype(str(path), size)
 
 
+@lru_cache(maxsize=8192)
+def _ink_box(path: Path, size: int, char: str) -> tuple[int, int, int, int]:
+    """The box of a character's ink relative to where it is written; its advance does not count."""
+    mask, (across, down) = _face(path, size).getmask2(char, mode="L")
+    left, upper, right, lower = mask.getbbox() or (0, 0, 0, 0)
+    return left + across, upper + down, right + across, lower + down
+
+
 def page(rng: np.random.Generator, face: Path, *, sensible: bool = False) -> Page:
     """A page of labels of one size; every other one has lines and strokes that are not lettering."""
     capital = float(np.exp(rng.uniform(np.log(7.5), np.log(45.0))))
@@ -95,7 +103,7 @@ def _write(
         face = _face(path, points)
         shown = {"-": dash, "x": times if "10" in text or "In" in text else "x"}.get(char, char)
         if not char.isspace():
-            left, upper, right, lower = face.getbbox(shown)
+            left, upper, right, lower = _ink_box(path, points, shown)
             if right > left and lower > upper:
                 pen.text((x, top), shown, fill=ink, font=face)
                 plain = {"²": "2", "³": "3", "°": ""}.get(char, char)

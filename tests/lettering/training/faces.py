@@ -15,9 +15,12 @@ FOLDERS = (Path("/usr/share/fonts"), Path("/usr/share/texmf/fonts"))
 SUFFIXES = {".ttf", ".otf"}
 
 TRAINED = (
-    "Liberation", "FreeSans", "FreeSerif", "FreeMono", "Arimo", "Tinos", "Cousine", "OpenSans", "Roboto-", "RobotoCondensed",
-    "RobotoSlab", "Lato-Regular", "Lato-Bold", "Lato-Light", "Lato-Medium", "Caladea", "LinLibertine", "LinBiolinum", "osifont",
-    "Cabin", "Karla-", "Go-", "AnonymousPro", "Oxygen", "Nimbus", "URWGothic", "C059", "P052", "texgyre", "GentiumPlus-", "mplus-1",
+    "Liberation", "FreeSans", "FreeSerif", "FreeMono", "Arimo", "Tinos", "Cousine", "OpenSans", "Roboto-",
+    "RobotoCondensed",
+    "RobotoSlab", "Lato-Regular", "Lato-Bold", "Lato-Light", "Lato-Medium", "Caladea", "LinLibertine",
+    "LinBiolinum", "osifont",
+    "Cabin", "Karla-", "Go-", "AnonymousPro", "Oxygen", "Nimbus", "URWGothic", "C059", "P052", "texgyre",
+    "GentiumPlus-", "mplus-1",
 )  # fmt: skip
 CALIBRATED = ("Carlito", "Cantarell", "Play-", "Hack-", "Dosis-", "Junction", "mplus-2m")
 UNSEEN = ("DejaVuSans", "DejaVuSerif", "DejaVuSansMono", "DejaVuSans-Bold", "STIXGeneral", "STIXGeneralBol")

@@ -5,12 +5,18 @@ import numpy as np
 from curvelab.lettering.network import CLASSES
 
 TITLES = (
-    "Current in A", "Prospective current kA", "Pre-arcing time in s", "Multiple of rated current", "x In", "I/In", "I / Ir",
-    "Time (s)", "t [s]", "I²t in A²s", "Residual current in mA", "Strom in A", "Zeit in s", "Courant présumé (A)", "Temps (s)",
-    "Tripping time t / s", "Operating time / s", "Current / A x 10", "I / IΔn", "Multiple of IΔn", "x Ir", "Prospective current (r.m.s.) / A",
-    "Let-through I²t / A²s", "Clearing time / s", "Break time / ms", "Vielfaches des Nennstroms", "Auslösezeit", "I²t (kA²s)",
-    "Peak cut-off current kA", "Current in amperes", "Time in seconds", "minutes", "hours", "Virtual time [s]", "x10 A", "RMS symmetrical",
-    "Cold start, 20 °C", "B16", "C 32", "gG 100 A", "Sheet No. 12", "Schmelzzeit in s", "Durée de fusion", "Temps de déclenchement",
+    "Current in A", "Prospective current kA", "Pre-arcing time in s", "Multiple of rated current", "x In",
+    "I/In", "I / Ir",
+    "Time (s)", "t [s]", "I²t in A²s", "Residual current in mA", "Strom in A", "Zeit in s",
+    "Courant présumé (A)", "Temps (s)",
+    "Tripping time t / s", "Operating time / s", "Current / A x 10", "I / IΔn", "Multiple of IΔn", "x Ir",
+    "Prospective current (r.m.s.) / A",
+    "Let-through I²t / A²s", "Clearing time / s", "Break time / ms", "Vielfaches des Nennstroms", "Auslösezeit",
+    "I²t (kA²s)",
+    "Peak cut-off current kA", "Current in amperes", "Time in seconds", "minutes", "hours", "Virtual time [s]",
+    "x10 A", "RMS symmetrical",
+    "Cold start, 20 °C", "B16", "C 32", "gG 100 A", "Sheet No. 12", "Schmelzzeit in s", "Durée de fusion",
+    "Temps de déclenchement",
 )  # fmt: skip
 UNITS = ("s", "ms", "min", "h", "A", "kA", "mA", "x In", "xIn", "x Ir", "%", "k")
 

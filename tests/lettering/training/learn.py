@@ -1,5 +1,7 @@
 """Training of the network: stochastic descent with adapted steps (Adam; Kingma and Ba, 2015) in NumPy."""
 
+from itertools import pairwise
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -20,7 +22,7 @@ def trained_layers(
     rng = np.random.default_rng(seed)
     layers: Layers = [
         [rng.normal(0, np.sqrt(2 / a), (a, b)).astype(np.float32), np.zeros(b, dtype=np.float32)]
-        for a, b in zip(size, size[1:], strict=False)
+        for a, b in pairwise(size)
     ]
     flat = [array for layer in layers for array in layer]
     first, second = [np.zeros_like(a) for a in flat], [np.zeros_like(a) for a in flat]
@@ -35,10 +37,11 @@ def trained_layers(
             slopes = _slopes(layers, inputs, classes[rows])
             step += 1
             rate = 1.5e-3 * 0.5 * (1 + np.cos(np.pi * step / (steps + 1)))
-            for array, slope, m, v in zip(flat, slopes, first, second, strict=True):
-                m += 0.1 * (slope - m)
-                v += 0.001 * (slope * slope - v)
-                array -= rate * ((m / (1 - 0.9**step)) / (np.sqrt(v / (1 - 0.999**step)) + 1e-8) + 1e-3 * array)
+            for number, slope in enumerate(slopes):
+                first[number] += 0.1 * (slope - first[number])
+                second[number] += 0.001 * (slope * slope - second[number])
+                mean, spread = first[number] / (1 - 0.9**step), np.sqrt(second[number] / (1 - 0.999**step))
+                flat[number] -= rate * (mean / (spread + 1e-8) + 1e-3 * flat[number])
     return layers
 
 

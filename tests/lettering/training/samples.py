@@ -76,5 +76,5 @@ def _class_of(
     if covered.sum() >= 2:
         return NONE
     parts = np.flatnonzero(touching)
-    share = across[parts] / np.maximum(width[parts], 1.0)
-    return NONE if share.max() < 0.6 or off[parts].min() > 2.5 * slack else UNSURE
+    share = (across / np.maximum(width, 1.0))[parts]
+    return NONE if share.max() < 0.7 or off[parts].min() > 2.0 * slack else UNSURE
