@@ -16,6 +16,9 @@ THERE = 0.4
 RUN = 16
 """Pixels over which darkness is averaged: more than a dash and the frame, less than a tick label."""
 
+CROSSING = 3
+"""Pixels over which a crossing line hides that the others go on."""
+
 PAPER = (-5, -4, 4, 5)
 INK = (-1, 0, 1)
 LEAST_CONTRAST = 2.0
@@ -89,14 +92,19 @@ def _ends(share: Floats, first: int, last: int) -> tuple[int, int]:
     least = THERE * usual
 
     def stop(start: int, step: int) -> int:
-        # The mean of the run that lies ahead tells whether the lines go on; then pixel by pixel to the very end.
+        # The mean of the run that lies ahead tells whether the lines go on; then pixel by pixel to the very end, over
+        # the width of a line that crosses there.
         k = start
         while 0 <= k + step < len(share) and _ahead(share, k, step) >= least:
             k += step
         while 0 <= k - step < len(share) and share[k] < least:
             k -= step
-        while 0 <= k + step < len(share) and share[k + step] >= least:
-            k += step
+        for _ in range(RUN):
+            ahead = [j for j in range(k + step, k + step * (CROSSING + 2), step) if 0 <= j < len(share)]
+            more = [j for j in ahead if share[j] >= least]
+            if not more:
+                break
+            k = more[0]
         return k
 
     return stop(first, -1), stop(last, 1)

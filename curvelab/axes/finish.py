@@ -15,10 +15,9 @@ from curvelab.records.axes import Axes, Axis, GridLine, PlaneMap
 from curvelab.records.sheet import Sheet
 from curvelab.records.warning import ReadingWarning
 
-LEAST_LINE_SD = 0.005
-"""Pixels that a line of an image is off at least: what the stroke model leaves on drawings without noise."""
-
 LEAST_PLACE_SD = 0.01
+"""Pixels that a place of a line is off at least."""
+
 VECTOR_SD = 1e-5
 """The same for exact strokes, in their unit."""
 
@@ -27,7 +26,7 @@ def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Ax
     """Fit the final map in places of the sheet and say what is doubtful."""
     snapping = find_snapping(sheet.pixels, axes, grid.lines) if sheet.pixels else None
     plane = snapped_map(sheet.pixels, axes, snapping) if sheet.pixels and snapping else None
-    plane = plane or _fitted(sheet, axes, grid)
+    plane = plane or _with_common(_fitted(sheet, axes, grid), grid.common_sd)
     used = (_enough(grid, 0), _enough(grid, 1))
     marked = (_with_residuals(axes[0], 0, plane), _with_residuals(axes[1], 1, plane))
     residuals = np.array([mark.residual for axis in marked for mark in axis.marks])
@@ -56,8 +55,16 @@ def _fitted(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> PlaneMap:
     if sheet.pixels is None:
         # Strokes lie where an affine map put them; pixels may have been bent on the way.
         return fit_plane(start, lines, Scatter(lines=(VECTOR_SD, VECTOR_SD), place=VECTOR_SD), tilts, ()).map
-    line_sd = LEAST_LINE_SD * pixel
-    return fit_plane(start, lines, Scatter(lines=(line_sd, line_sd), place=LEAST_PLACE_SD * pixel), tilts).map
+    return fit_plane(start, lines, Scatter(lines=grid.line_sd, place=LEAST_PLACE_SD * pixel), tilts).map
+
+
+def _with_common(plane: PlaneMap, common_sd: tuple[float, float]) -> PlaneMap:
+    """The map with an error added that all lines of an axis share: in the constants alone."""
+    covariance = np.array(plane.covariance)
+    steepness = np.linalg.norm(plane.jacobian(plane.centre)[0], axis=1)
+    for axis in (0, 1):
+        covariance[3 * axis, 3 * axis] += (common_sd[axis] * steepness[axis]) ** 2
+    return replace(plane, covariance=covariance)
 
 
 def _grid_rms(axes: tuple[Axis, Axis], grid: Grid, plane: PlaneMap) -> float:

@@ -22,12 +22,16 @@ MARK_WORTH = 2.0
 class Grid:
     """Lines measured, in places of the sheet, and the scaled ranges of both axes that the plot covers.
 
-    ``disagrees`` says for each axis that lines are there but not where the marks have them.
+    ``disagrees`` says for each axis that lines are there but not where the marks have them. ``line_sd`` and
+    ``common_sd`` are, for each axis and in the sheet's unit, what a line is off at least and what all lines may be off
+    together (standard deviations across).
     """
 
     lines: tuple[GridLine, ...]
     covered: tuple[Range, Range]
     disagrees: tuple[bool, bool]
+    line_sd: tuple[float, float] = (0.0, 0.0)
+    common_sd: tuple[float, float] = (0.0, 0.0)
 
 
 def aligned_marks(axis: Axis, across: Floats, profile: Profile) -> Alignment:

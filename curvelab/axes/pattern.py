@@ -44,9 +44,14 @@ def log_patterns(axis: Axis, covered: Range) -> list[Floats]:
     return [log_lines(axis, covered, paper) for paper in papers] + [finer_lines(axis, covered)]
 
 
-def finer_lines(axis: Axis, covered: Range) -> Floats:
-    """Every line that the finest log paper may carry, rising."""
-    return log_lines(axis, covered, np.union1d(np.union1d(MAIN, FINE), HALVES))
+def finer_lines(axis: Axis, covered: Range, room: float = 0.0) -> Floats:
+    """Every line that the finest log paper may carry, rising; a finer one only ``room`` away from coarser ones."""
+    kept = np.zeros(0)
+    for mantissas in (DECADES, MAIN, HALVES, FINE):
+        lines = log_lines(axis, covered, mantissas)
+        free = np.abs(lines[:, None] - kept).min(axis=1, initial=np.inf) >= max(room, 1e-9)
+        kept = np.sort(np.concatenate([kept, lines[free]]))
+    return kept
 
 
 def linear_lines(axis: Axis, covered: Range, step: float) -> Floats:

@@ -16,6 +16,7 @@ from curvelab.axes.planefit import RICHER, Line, Model, Scatter, affine_map, fit
 from curvelab.axes.search import search_lines
 from curvelab.axes.strips import STRIP, Profile, Strips, profile_along, shared_slopes, strips_of
 from curvelab.axes.unlike import without_curves
+from curvelab.axes.widths import FEWEST, SHARP
 from curvelab.records.arrays import Bytes, Floats
 from curvelab.records.axes import Axis, GridLine, PlaneMap
 from curvelab.records.sheet import Pixels
@@ -23,6 +24,15 @@ from curvelab.records.sheet import Pixels
 SEARCH_SCATTER = Scatter(lines=(0.05, 0.05), place=0.2)
 
 LEAST_STRIPS = 12
+
+LEAST_LINE_SD = 0.005
+"""Pixels that the stroke model leaves on drawings without noise; this and the next two from drawings of many widths."""
+
+UNSETTLED_SD = 0.05
+SHARP_SD = 0.01
+
+ROOM = 3.0
+"""Pixels that a finer line has on both sides: no two lines of the pattern may claim the same printed one."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -96,7 +106,15 @@ def raster_grid(pixels: Pixels, axes: tuple[Axis, Axis]) -> Grid:
     covered = (_to_lines(state, measured[0], 0), _to_lines(state, measured[1], 1))
     measured = [without_curves(axis, lines, part) for axis, lines, part in zip(axes, measured, covered, strict=True)]
     grid = [_grid_line(pixels, view, line) for view, lines in zip(views, measured, strict=True) for line in lines]
-    return Grid(lines=tuple(grid), covered=covered, disagrees=astray)
+    line_sd = [_line_sd(lines) * pixels.size_in_places for lines in measured]
+    common_sd = [_common_sd(lines) * pixels.size_in_places for lines in measured]
+    return Grid(
+        lines=tuple(grid),
+        covered=covered,
+        disagrees=astray,
+        line_sd=(line_sd[0], line_sd[1]),
+        common_sd=(common_sd[0], common_sd[1]),
+    )
 
 
 def _views(pixels: Pixels, axes: tuple[Axis, Axis]) -> tuple[_View, _View]:
@@ -173,10 +191,11 @@ def _candidates(axis: Axis, alignment: Alignment, covered: Range, *, finest: boo
     """Lines that may be there: the main ones or those of the finest paper; on a linear axis the steps found."""
     if not alignment.agrees:
         return np.zeros(0)
-    margin = AT_LINE / abs(alignment.ruler.per_scaled)
+    pixel = 1.0 / abs(alignment.ruler.per_scaled)
+    margin = AT_LINE * pixel
     wide = (covered[0] - margin, covered[1] + margin)
     if axis.scale == "log":
-        return finer_lines(axis, wide) if finest else log_lines(axis, wide, MAIN)
+        return finer_lines(axis, wide, ROOM * pixel) if finest else log_lines(axis, wide, MAIN)
     return linear_lines(axis, wide, alignment.step)
 
 
@@ -192,6 +211,20 @@ def _to_lines(state: _State, measured: list[Measured], axis: int) -> Range:
         for end in (low, high)
     ]
     return ends[0], ends[1]
+
+
+def _sharp(lines: list[Measured]) -> bool:
+    return bool(lines) and float(np.median([line.blur for line in lines])) < SHARP
+
+
+def _line_sd(lines: list[Measured]) -> float:
+    """Pixels that each line is off at least: sharp strokes too few to settle their width by where they lie."""
+    return UNSETTLED_SD if _sharp(lines) and len(lines) < FEWEST else LEAST_LINE_SD
+
+
+def _common_sd(lines: list[Measured]) -> float:
+    """Pixels by which all lines of an axis may be off together: sharp strokes whose width is not quite known."""
+    return SHARP_SD if _sharp(lines) else 0.0
 
 
 def _inside(state: _State, views: tuple[_View, _View]) -> list[Strips]:

@@ -2,7 +2,8 @@
 
 import numpy as np
 
-from curvelab.axes.measure import CLASS_RATIO, Measured
+from curvelab.axes.classes import CLASS_RATIO
+from curvelab.axes.measure import Measured
 from curvelab.axes.pattern import DECADES, Range, log_lines
 from curvelab.records.axes import Axis
 

@@ -71,7 +71,7 @@ class Page:
         return np.clip(np.rint(grey), 0, 255).astype(np.uint8)
 
     def _stroke(self, start: Floats, end: Floats) -> Floats:
-        """Coverage of pixels by a stroke: exact for upright and level ones, by 1/8 pixel sampling for others."""
+        """Coverage of pixels by a stroke: exact for upright and level ones, by 1/4 pixel sampling for others."""
         along = int(np.argmax(np.abs(end - start)))
         across = 1 - along
         sizes = (640, 520)
@@ -81,7 +81,7 @@ class Page:
         if self.snap:
             middle = np.floor(middle + 0.5)
         columns = np.rint(middle)[:, None].astype(int) + np.arange(-9, 10)
-        sub = (np.arange(8) - 3.5) / 8 if slope else np.zeros(1)
+        sub = (np.arange(4) - 1.5) / 4 if slope else np.zeros(1)
         offset = columns[None] - middle[None, :, None] - slope * sub[:, None, None]
         bars = _bar(offset, self.width, self.blur).mean(axis=0)
         low, high = sorted((start[along], end[along]))
@@ -154,7 +154,7 @@ def _bar(offset: Floats, width: float, blur: float) -> Floats:
     """Share of a pixel at ``offset`` that a bar covers, blurred by a Gaussian sampled on a fine grid."""
     if blur == 0:
         return np.clip(np.minimum(offset + 0.5, width / 2) - np.maximum(offset - 0.5, -width / 2), 0.0, 1.0)
-    shifts = np.linspace(-4 * blur, 4 * blur, 33)
+    shifts = np.linspace(-3.5 * blur, 3.5 * blur, 15)
     weights = np.exp(-0.5 * (shifts / blur) ** 2)
     weights /= weights.sum()
     return sum(w * _bar(offset - s, width, 0.0) for w, s in zip(weights, shifts, strict=True))

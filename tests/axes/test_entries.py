@@ -5,7 +5,6 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from curvelab.axes.calibrate import calibrate
 from curvelab.axes.entries import checked_axes
 from curvelab.errors import AxesError
 from curvelab.records.axes import Mark
@@ -45,7 +44,7 @@ def marks(*pairs: tuple[float, float, float]) -> tuple[Mark, ...]:
 )
 def test_what_cannot_be_used_is_refused(current: AxisEntry, words: tuple[str, ...]) -> None:
     with pytest.raises(AxesError) as caught:
-        calibrate(BLANK, current, replace(TIME, direction="y"))
+        checked_axes(BLANK, current, replace(TIME, direction="y"))
     text = str(caught.value)
     assert "\n" not in text
     for word in words:

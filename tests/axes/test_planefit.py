@@ -93,13 +93,13 @@ def test_errors_shared_along_lines_are_counted_per_line() -> None:
     truth = turned(0.01)
     where = CENTRE + np.array([[-300.0, -200], [0, 0], [250, 200], [-200, 300]])
     ratios = []
-    for seed in range(150):
+    for seed in range(60):
         fitted = fit_plane(START, lines_of(truth, 0.3, 0.1, np.random.default_rng(seed)), SCATTER, models=())
         off = fitted.map.scaled(where) - truth.scaled(where)
         stated = fitted.map.covariance_at(where)
         ratios.append(off[:, 0] ** 2 / stated[:, 0, 0])
         ratios.append(off[:, 1] ** 2 / stated[:, 1, 1])
-    assert 0.8 < np.mean(ratios) < 1.25
+    assert 0.75 < np.mean(ratios) < 1.35
 
 
 def test_a_line_of_another_pattern_is_left_out() -> None:
