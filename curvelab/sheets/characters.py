@@ -70,7 +70,8 @@ def _continues(run: list[Character], character: Character) -> bool:
     if turn > TURN_DEG or (last.text.isspace() and character.text.isspace()):
         return False
     along, up = _along_up(last, character.origin)
-    if last.text.isdecimal() and character.text.isdecimal() and along > DIGIT_ADVANCE * size:
+    level = abs(up) <= RAISED_BY * size
+    if level and last.text.isdecimal() and character.text.isdecimal() and along > DIGIT_ADVANCE * size:
         return False
     x0, y0, x1, y1 = last.box
     ends = max(_along_up(last, corner)[0] for corner in ((x0, y0), (x0, y1), (x1, y0), (x1, y1)))
