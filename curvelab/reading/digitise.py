@@ -23,6 +23,11 @@ from curvelab.sheets.open import open_sheet
 from curvelab.standards.review import review
 from curvelab.worksheets.read import read_worksheet
 
+NO_CURVES = ReadingWarning(
+    code="no-curves",
+    text="No curve was asked for, so none was read: give each line an entry in [[curves]] with a place it passes.",
+)
+
 
 def digitise(
     source: str | os.PathLike[str], *, page: int | None = None, plot: int | None = None, watch: Watch = unwatched
@@ -76,7 +81,7 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Readin
         key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=axes.plot, file=page.file)
         watch("Fitting the bands", 0.0)
         followed_curves = fitted_curves(followed, axes, key)
-        warnings = doubts + more_doubts
+        warnings = doubts + more_doubts + (() if worksheet.curves else (NO_CURVES,))
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     devices, device_doubts = assemble(worksheet, curves)
     watch("Checking", 0.0)
