@@ -27,7 +27,10 @@ AGREEING = 1.3
 MOST_LABELS = 8
 """Labels whose pairs are tried as rulers; the surest."""
 
-MOST_PAIRS = 8
+MOST_PAIRS = 6
+LINEAR_SHARE = 0.5
+"""Share of the labels that must lie on one linear ruler for the scale to be linear at all."""
+
 TRIED_DECADES = 4
 LOG_LIKELIER = 2.0
 """Nats by which a log scale is likelier on a time-current sheet before anything is seen."""
@@ -219,6 +222,9 @@ def _paired(seen: Seen, readings: _Readings, *, log: bool) -> list[Laid]:
         through = Ruler(origin=float(at[i] - per_scaled * scaled[i]), per_scaled=per_scaled)
         members = np.flatnonzero(np.abs(at - through.across(scaled)) <= AGREEING * half)
         sets.setdefault(tuple(int(k) for k in members), through)
+    most = max((len(set(readings.owner[list(members)])) for members in sets), default=0)
+    if not log and most < LINEAR_SHARE * len(readings.labels):
+        return []
     ranked = sorted(sets.items(), key=lambda item: (-len(item[0]), item[0]))[:MOST_PAIRS]
     rulers = [_through(at, scaled, members) or ruler for members, ruler in ranked]
     laid = _laid_logs if log else _laid_linears
