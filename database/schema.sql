@@ -45,6 +45,7 @@ CREATE TABLE reading (
     sheet_pages INTEGER CHECK (sheet_pages >= 1),
     evidence_sha256 BLOB CHECK (length(evidence_sha256) = 32)
 ) STRICT;
+CREATE INDEX reading_by_evidence ON reading (evidence_sha256);
 
 CREATE TABLE reading_warning (
     reading_id INTEGER NOT NULL REFERENCES reading,

@@ -38,9 +38,8 @@ def plate_values(plate: Nameplate) -> tuple[object, ...]:
     return tuple(getattr(plate, name) for name in PLATE_COLUMNS)
 
 
-def add_curve(rows: WaitingRows, curve: Curve, sha256: bytes, sheet_id: int | None) -> int:
-    """Let a curve's rows wait; gives its id."""
-    curve_id = rows.new_id("curve")
+def add_curve(rows: WaitingRows, curve_id: int, curve: Curve, sha256: bytes, sheet_id: int | None) -> None:
+    """Let a curve's rows wait."""
     row = (
         curve_id,
         sha256,
@@ -60,7 +59,6 @@ def add_curve(rows: WaitingRows, curve: Curve, sha256: bytes, sheet_id: int | No
     )
     rows.add("curve", [row])
     rows.add("point", _point_rows(curve_id, curve))
-    return curve_id
 
 
 def _point_rows(curve_id: int, curve: Curve) -> Iterator[Row]:

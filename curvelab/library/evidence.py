@@ -10,6 +10,7 @@ from typing import Any
 
 import numpy as np
 
+from curvelab.library.identity import curve_sha256
 from curvelab.library.rows import Row, WaitingRows
 from curvelab.records.axes import Axes
 from curvelab.records.curve import Curve
@@ -17,6 +18,8 @@ from curvelab.records.finding import Finding
 from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.trace import Trace
 from curvelab.records.warning import ReadingWarning
+
+SheetName = tuple[str, int, int] | None
 
 EVIDENCE: Mapping[str, str] = {
     "reading_warning": "seq",
@@ -62,42 +65,75 @@ class ReadingRows:
 
 
 def add_reading(
-    rows: WaitingRows, reading: Reading, statement: bytes, sheet_id: int | None, curve_id: Callable[[Curve], int]
+    rows: WaitingRows,
+    reading: Reading,
+    statement: bytes,
+    sheet: tuple[int | None, SheetName],
+    curve_id: Callable[[Curve, bytes], int],
 ) -> tuple[int, bytes]:
-    """Let a reading's rows wait; gives its id and its hash. ``curve_id`` gives a curve's id, stored if it is new."""
+    """Let a reading's rows wait; gives its id and its hash.
+
+    Parameters
+    ----------
+    statement : bytes
+        Hash of what people said, see `curvelab.library.identity`.
+    sheet : tuple
+        Id of the sheet, and its (SHA-256, page, plot); None for typed points.
+    curve_id : callable
+        Gives the id of a curve with its hash, stored if it is new.
+    """
     reading_id = rows.new_id("reading")
+    sheet_id, sheet_name = sheet
     document = reading.worksheet.document
     told = (document.title, document.issue, document.date, document.maker, document.note, reading.worksheet.text)
-    sheet = reading.sheet
-    size = (sheet.width, sheet.height, sheet.unit, sheet.pages) if sheet else (None,) * 4
-    said = (statement, sheet_id, reading.program_version, *told, reading.axes and axes_as_json(reading.axes), *size)
-    parts = ReadingRows(reading, [curve_id(read.curve) for read in reading.curves])
-    sha256 = evidence_sha256(said, parts.of)
-    rows.add("reading", [(reading_id, *said, sha256)])
+    page = reading.sheet
+    size = (page.width, page.height, page.unit, page.pages) if page else (None,) * 4
+    said = (reading.program_version, *told, reading.axes and axes_as_json(reading.axes), *size)
+    hashes = [curve_sha256(read.curve) for read in reading.curves]
+    ids = [curve_id(read.curve, sha256) for read, sha256 in zip(reading.curves, hashes, strict=True)]
+    parts = ReadingRows(reading, ids)
+    sha256 = evidence_sha256((statement, *(sheet_name or ()), *said), parts.of, dict(zip(ids, hashes, strict=True)))
+    rows.add("reading", [(reading_id, statement, sheet_id, *said, sha256)])
     for table, own in parts.of.items():
         rows.add(table, ((reading_id, *row) for row in own))
     return reading_id, sha256
 
 
-def evidence_sha256(said: Row, rows: Mapping[str, Iterable[Row]]) -> bytes:
-    """Hash of all a reading says: of its own row and of its rows in each table, in order."""
+def evidence_sha256(said: Row, rows: Mapping[str, Iterable[Row]], curves: Mapping[int, bytes]) -> bytes:
+    """Hash of all a reading says, the same in every library.
+
+    Parameters
+    ----------
+    said : sequence
+        Its own row, the sheet by its name.
+    rows : mapping
+        Its rows in each table of `EVIDENCE`, without its id.
+    curves : mapping
+        Curve id -> content hash.
+    """
     digest = hashlib.sha256(_hashed(said))
     for table in EVIDENCE:
         digest.update(table.encode("ascii"))
         for row in rows[table]:
-            digest.update(_hashed(row))
+            known = (row[0], curves[row[1]], *row[2:]) if table == "read_curve" else row  # type: ignore[index]
+            digest.update(_hashed(known))
     return digest.digest()
 
 
 def stored_evidence_sha256(connection: sqlite3.Connection, reading_id: int) -> tuple[bytes | None, bytes]:
     """The hash a reading was stored with, and the one its rows have now."""
     row = connection.execute("SELECT * FROM reading WHERE reading_id = ?", (reading_id,)).fetchone()
+    sheet = connection.execute("SELECT sha256, page, plot FROM sheet WHERE sheet_id = ?", (row[2],)).fetchone()
     rows = {
         table: connection.execute(f"SELECT * FROM {table} WHERE reading_id = ? ORDER BY {order}", (reading_id,))
         for table, order in EVIDENCE.items()
     }
+    curves = connection.execute(
+        "SELECT curve_id, content_sha256 FROM read_curve JOIN curve USING (curve_id) WHERE reading_id = ?",
+        (reading_id,),
+    )
     own = {table: (row[1:] for row in cursor) for table, cursor in rows.items()}
-    return row[-1], evidence_sha256(row[1:-1], own)
+    return row[-1], evidence_sha256((row[1], *(sheet or ()), *row[3:-1]), own, dict(curves.fetchall()))
 
 
 def _hashed(row: Row) -> bytes:

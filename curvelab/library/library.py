@@ -2,7 +2,7 @@
 
 import os
 import sqlite3
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
 from pathlib import Path
 from types import TracebackType
 from typing import Any, Self
@@ -18,7 +18,7 @@ from curvelab.library.place import data_folder, library_path
 from curvelab.library.search import FIRST_PAGE, Found, Page, Wanted, find
 from curvelab.library.sheet_files import read_sheet_files
 from curvelab.library.sound import refuse_unsound
-from curvelab.library.stored import Reviewed, Signature, Stored
+from curvelab.library.stored import Reviewed, Signature, Stored, United
 from curvelab.library.verify import Verdict, Watch, unwatched, verify
 from curvelab.records.device import DeviceRecord
 from curvelab.records.evidence import Evidence
@@ -178,6 +178,43 @@ class Library:
         with named_errors(self.path):
             writer = self._open_writer()
             return review.review(writer.conn, key, revision, state, Signature(author=name, reason=reason))
+
+    def exported(self, keys: Iterable[str] | None = None) -> Iterator[str]:
+        """The lines of the library's open form, see `curvelab.library.exchange`: of some devices, or of all.
+
+        Raises
+        ------
+        NotFoundError
+            No device has one of the keys.
+        """
+        from curvelab.library import exchange  # noqa: PLC0415 - asking a device starts without it
+
+        with named_errors(self.path):
+            for line in exchange.exported(self.open(), keys):
+                yield exchange.text_of(line)
+
+    def unite(self, lines: Iterable[str], *, file: str, name: str = "", reason: str = "") -> United:
+        """Take what another library exported: revisions of both are kept, what contradicts is told.
+
+        Parameters
+        ----------
+        lines : iterable of str
+            As `exported` gives them.
+        file : str
+            What messages call them.
+        name, reason : str
+            Who imports, and why.
+
+        Raises
+        ------
+        InputError
+            A line is not what it must be, or its content not what its hash says. Nothing is taken.
+        """
+        from curvelab.library import exchange_read, united  # noqa: PLC0415 - only writing needs them
+
+        signature = Signature(author=name, reason=reason)
+        with named_errors(self.path):
+            return united.unite(self._open_writer(), exchange_read.parsed(lines, file), signature, file)
 
     def verify(self, watch: Watch = unwatched) -> Verdict:
         """Check that nothing in the library has changed since it was stored: file, references, hashes and log."""

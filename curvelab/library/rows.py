@@ -6,7 +6,7 @@ from collections.abc import Iterable, Sequence
 FLUSH_AT = 50_000
 """Waiting rows that are written before more are gathered: bounds memory, and is far past where batching gains."""
 
-_COLUMNS = {
+COLUMNS = {
     "device": "device_id, device_key, kind",
     "sheet": "sheet_id, sha256, page, plot, file",
     "reading": (
@@ -25,7 +25,7 @@ _COLUMNS = {
         "revision_id, device_id, number, content_sha256, created_at, author, reason, program_version, "
         "reading_id, characteristic, standard, standard_edition, rated_current_a, rated_residual_current_a, "
         "residual_waveform, residual_delay, rated_voltage_v, poles, frequency_hz, ambient_reference_c, "
-        "utilisation_category, maker, series, catalogue"
+        "utilisation_category, maker, series, catalogue, state"
     ),
     "breaking": "revision_id, seq, quantity, value_a, voltage_v, supply, duration_s",
     "setting": "revision_id, name, seq, base, from_value, to_value, at_current, can_be_off",
@@ -58,7 +58,7 @@ class WaitingRows:
 
     def __init__(self, connection: sqlite3.Connection) -> None:
         self._connection = connection
-        self._rows: dict[str, list[Row]] = {table: [] for table in _COLUMNS}
+        self._rows: dict[str, list[Row]] = {table: [] for table in COLUMNS}
         self._waiting = 0
         self._last = {table: self._last_id(table) for table in _NUMBERED}
 
@@ -80,7 +80,7 @@ class WaitingRows:
 
     def write(self) -> None:
         """Write all that wait."""
-        for table, columns in _COLUMNS.items():
+        for table, columns in COLUMNS.items():
             marks = ", ".join("?" for _ in columns.split(","))
             self._connection.executemany(
                 f"INSERT INTO {table} ({columns}) VALUES ({marks})",

@@ -102,7 +102,7 @@ class _Batch:
         reading_id, evidence_sha256 = evidence.reading()
         new = tuple(
             HeldCurve(
-                curve_id=self._curve_id(sha256, curve),
+                curve_id=self.curve_id(curve, sha256),
                 sha256=sha256,
                 reading_id=reading_id,
                 statement=evidence.statement,
@@ -132,7 +132,7 @@ class _Batch:
         known_by = (revision_id, device_id, revision.number, revision.sha256)
         author, reason = self._signature.author, self._signature.reason
         signed = (self._at, author, reason, curvelab.__version__)
-        self.rows.add("revision", [(*known_by, *signed, reading_id, *plate_values(plate))])
+        self.rows.add("revision", [(*known_by, *signed, reading_id, *plate_values(plate), "draft")])
         self._new[device_id] = revision_id
         self.rows.add("log", [self._log_row(revision_id, revision, evidence_sha256)])
         add_nameplate_lists(self.rows, revision_id, plate)
@@ -154,18 +154,15 @@ class _Batch:
             reason=self._signature.reason,
         )
 
-    def curve_id(self, curve: Curve) -> int:
+    def curve_id(self, curve: Curve, sha256: bytes) -> int:
         """The id of the curve with this content; stored now if it is new."""
-        return self._curve_id(curve_sha256(curve), curve)
-
-    def _curve_id(self, sha256: bytes, curve: Curve) -> int:
         if sha256 not in self._curves:
             found = self._connection.execute(
                 "SELECT curve_id FROM curve WHERE content_sha256 = ?", (sha256,)
             ).fetchone()
-            self._curves[sha256] = (
-                found[0] if found else add_curve(self.rows, curve, sha256, self.sheet_id(curve.sheet))
-            )
+            self._curves[sha256] = found[0] if found else self.rows.new_id("curve")
+            if not found:
+                add_curve(self.rows, self._curves[sha256], curve, sha256, self.sheet_id(curve.sheet))
         return self._curves[sha256]
 
 
@@ -181,8 +178,9 @@ class _Evidence:
     def reading(self) -> tuple[int | None, bytes | None]:
         """The id of the stored reading and its hash, None where there is none."""
         if self._stored[0] is None and self._reading is not None:
-            sheet_id = self._batch.sheet_id(_sheet_key(self._reading))
-            self._stored = add_reading(self._batch.rows, self._reading, self.statement, sheet_id, self._batch.curve_id)
+            key = _sheet_key(self._reading)
+            sheet = self._batch.sheet_id(key), (key.sha256, key.page, key.plot) if key else None
+            self._stored = add_reading(self._batch.rows, self._reading, self.statement, sheet, self._batch.curve_id)
         return self._stored
 
 

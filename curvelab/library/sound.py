@@ -1,6 +1,7 @@
 """Refuses a device that could not be trusted once stored, before any file is touched."""
 
 import re
+from collections.abc import Iterable
 
 import numpy as np
 
@@ -26,20 +27,26 @@ def refuse_unsound(record: DeviceRecord) -> None:
             f"'{plate.key}' is no device key", "A key is 1 to 64 of letters, digits, '-', '_'", "Give another key"
         )
     _refuse_unknown(f"{plate.key}: kind", plate.kind, KINDS)
-    seen: set[object] = set()
+    refuse_twice(plate.key, record.curves)
     for curve in record.curves:
-        name = f"{plate.key}, {curve.element} {curve.edge}"
+        refuse_unsound_curve(f"{plate.key}, {curve.element} {curve.edge}", curve)
+
+
+def refuse_twice(key: str, curves: Iterable[Curve]) -> None:
+    """Refuse two curves that claim one place."""
+    seen: set[object] = set()
+    for curve in curves:
         if (curve.identity, curve.meaning) in seen:
             raise DeviceError(
-                f"{name}: two curves of the same element, edge, meaning and conditions",
+                f"{key}, {curve.element} {curve.edge}: two curves of the same element, edge, meaning and conditions",
                 "Each line is stored once",
                 "Remove one, or state how their conditions differ",
             )
         seen.add((curve.identity, curve.meaning))
-        _refuse_curve(name, curve)
 
 
-def _refuse_curve(name: str, curve: Curve) -> None:
+def refuse_unsound_curve(name: str, curve: Curve) -> None:
+    """Refuse a curve with an unknown word, or with points out of order or not positive."""
     _refuse_unknown(f"{name}: element", curve.element, ELEMENTS)
     _refuse_unknown(f"{name}: edge", curve.edge, EDGES)
     _refuse_unknown(f"{name}: quantity", curve.quantity, QUANTITIES)

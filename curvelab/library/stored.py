@@ -1,4 +1,4 @@
-"""What storing and reviewing take beside the devices, and what they answer."""
+"""What storing, reviewing and importing take beside the devices, and what they answer."""
 
 from dataclasses import dataclass
 
@@ -28,3 +28,12 @@ class Reviewed:
     revision: int
     before: str
     state: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class United:
+    """What an import did: how many revisions were new and already there, and every contradiction as one sentence."""
+
+    new: int
+    known: int
+    conflicts: tuple[str, ...]

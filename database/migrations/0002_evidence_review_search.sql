@@ -7,6 +7,7 @@ ALTER TABLE reading ADD COLUMN sheet_unit TEXT CHECK (sheet_unit IN ('px', 'pt')
 ALTER TABLE reading ADD COLUMN sheet_pages INTEGER CHECK (sheet_pages >= 1);
 -- Hash of all rows of the reading; NULL for what was stored before there was one.
 ALTER TABLE reading ADD COLUMN evidence_sha256 BLOB CHECK (length(evidence_sha256) = 32);
+CREATE INDEX reading_by_evidence ON reading (evidence_sha256);
 ALTER TABLE finding ADD COLUMN permitted TEXT CHECK (permitted IN ('at_least', 'at_most'));
 ALTER TABLE finding ADD COLUMN time_s REAL CHECK (time_s > 0);
 

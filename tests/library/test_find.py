@@ -143,10 +143,10 @@ def device(rng: np.random.Generator, number: int) -> DeviceRecord:
 @pytest.mark.parametrize("seed", range(3))
 def test_the_search_over_bands_agrees_with_asking_every_device(library: Library, seed: int) -> None:
     rng = np.random.default_rng(seed)
-    library.store([device(rng, number) for number in range(60)])
+    library.store([device(rng, number) for number in range(40)])
     devices = [library.device(row["device_key"]) for row in library.index()]
     found_any = 0
-    for _ in range(25):
+    for _ in range(8):
         one, other = (
             Point(current_a=float(10.0 ** rng.uniform(0.5, 4)), time_s=float(10.0 ** rng.uniform(-3.5, 4.5)))
             for _ in range(2)
@@ -162,7 +162,7 @@ def test_the_search_over_bands_agrees_with_asking_every_device(library: Library,
             assert [row["device_key"] for row in found.rows] == expected
             assert found.surely <= len(expected) <= found.at_most
             found_any += len(expected)
-    assert found_any > 200
+    assert found_any > 20
 
 
 def test_what_the_search_over_bands_leaves_out(library: Library) -> None:
