@@ -22,6 +22,9 @@ PAPER_REACH = 25
 STEEPEST = 0.105
 """Largest slope searched, 6 degrees."""
 
+MUCH_SHARPER = 1.15
+"""Ratio of energies from which on a direction's own slope is taken."""
+
 COARSE = 3
 """Strips joined, and pixels across joined, in the coarse search for the slope."""
 
@@ -101,15 +104,20 @@ def shared_slopes(first: Strips, second: Strips) -> tuple[float, float]:
     """Slopes (across by along) of the lines of both directions.
 
     A turned page gives both directions opposite slopes: that joins their evidence. Each is then refined by itself,
-    as paper and scanners also shear a little.
+    as paper and scanners also shear a little; where pixels are not square, a direction's own slope is much sharper
+    and is taken.
     """
     length = max(np.ptp(first.along), np.ptp(second.along), 1.0)
     steps = int(np.ceil(STEEPEST * length / 3.0))
     slopes = np.arange(-steps, steps + 1) * STEEPEST / max(steps, 1)
     energies = [_energies(_coarse(first), slopes, COARSE), _energies(_coarse(second), -slopes, COARSE)]
     joint = sum(energy / max(energy.max(), 1e-12) for energy in energies)
-    best = float(slopes[int(np.argmax(joint))])
-    return _refined(first, best), _refined(second, -best)
+    best = int(np.argmax(joint))
+    turned = (slopes, -slopes)
+    found = [
+        _sharpest(strips, turned[k][[best, int(np.argmax(energies[k]))]]) for k, strips in enumerate((first, second))
+    ]
+    return found[0], found[1]
 
 
 def profile_along(strips: Strips, slope: float) -> Profile:
@@ -141,7 +149,17 @@ def _energies(strips: Strips, slopes: Floats, pixel: int) -> Floats:
     return np.array([float(np.sum(total**2)) for total in sums])
 
 
-def _refined(strips: Strips, slope: float) -> float:
+def _sharpest(strips: Strips, slopes: Floats) -> float:
+    """The first slope refined, or the second where it is much sharper."""
+    shared, shared_energy = _refined(strips, float(slopes[0]))
+    if slopes[0] == slopes[1]:
+        return shared
+    own, own_energy = _refined(strips, float(slopes[1]))
+    return own if own_energy > MUCH_SHARPER * shared_energy else shared
+
+
+def _refined(strips: Strips, slope: float) -> tuple[float, float]:
+    """The sharpest slope near one, and its energy."""
     half = float(np.ptp(strips.along)) / 2 + 1.0
     step = 0.5 / half
     slopes = slope + step * np.arange(-8.0, 9.0, dtype=np.float64)
@@ -149,7 +167,7 @@ def _refined(strips: Strips, slope: float) -> float:
     k = int(np.clip(np.argmax(energy), 1, len(slopes) - 2))
     below, top, above = energy[k - 1 : k + 2]
     bend = below - 2 * top + above
-    return float(slopes[k] + (step * 0.5 * (below - above) / bend if bend < 0 else 0.0))
+    return float(slopes[k] + (step * 0.5 * (below - above) / bend if bend < 0 else 0.0)), float(top)
 
 
 def _moved(dark: NDArray[np.float32], shifts: Floats) -> NDArray[np.float32]:

@@ -258,3 +258,21 @@ def test_a_scan_in_a_page_is_given_in_places_of_the_page() -> None:
     places = page.places(np.array([2.0, 30.0]), np.array([0.5, 70.0]))
     assert axes.map.scaled(scale * places + shift) == pytest.approx(expected.map.scaled(places), abs=1e-5)
     assert axes.grid[0].width == pytest.approx(scale * expected.grid[0].width)
+
+
+def test_pixels_need_not_be_square() -> None:
+    """A turned page scanned with different resolutions across and down: the two directions lean differently."""
+    page = phased(6, skew=0.02, blur=0.8, noise=4.0, width=2.0)
+    tall = np.repeat(page.image(), 2, axis=0)
+
+    def stretched(entry: AxisEntry) -> AxisEntry:
+        marks = (replace(mark, at=(mark.at[0], 2 * mark.at[1] + 0.5)) for mark in entry.marks)
+        return replace(entry, marks=tuple(marks))
+
+    current, time = page.marks(*ENDS)
+    axes, warnings = calibrate(image_sheet(tall), stretched(current), stretched(time))
+    assert warnings == ()
+    places = page.places(np.array([2.0, 30.0]), np.array([0.5, 70.0])) * [1, 2] + [0, 0.5]
+    currents, times = axes.values(places)
+    assert currents == pytest.approx([2.0, 30.0], rel=5e-4)
+    assert times == pytest.approx([0.5, 70.0], rel=5e-4)
