@@ -1,16 +1,17 @@
 """Sheets with known truth, drawn at random from a seed, and how far a reading of them is from it."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 import numpy as np
 from numpy.typing import NDArray
 from scipy.spatial import cKDTree
 
-from demo_curves.drawing.degrade import Scan, bilevel, scanned
+from demo_curves.drawing.degrade import Scan, bilevel, scanned, seen_through
 from demo_curves.drawing.files import image_file
 from demo_curves.drawing.geometry import Points, at_length, densified, lengths
 from demo_curves.drawing.layout import lay_out
+from demo_curves.drawing.placemap import Photo, keystone
 from demo_curves.drawing.render import VECTOR, grey, raster
 from demo_curves.drawing.truth import PlotTruth, SheetTruth
 from demo_curves.drawing.worksheet import Clicks, WorksheetHead, worksheet_text
@@ -22,6 +23,7 @@ QUALITIES = {
     "snapped": ("agg-snapped",),
     "grey": ("agg", "resvg", "pdfium"),
     "bilevel": ("agg", "resvg", "pdfium"),
+    "photo": ("agg", "resvg", "pdfium"),
     "vector": ("matplotlib-pdf", "reportlab-pdf"),
 }
 """Classes of sheet, each with the renderers it is drawn by."""
@@ -72,12 +74,29 @@ def _drawn(
         truth = truth.to_pixels()
         pixels = raster(drawn, page, renderer)
         name, data = f"{stem}.png", image_file(pixels if seed % 3 else grey(pixels), "png", page.dpi)
+    elif quality == "photo":
+        shot = replace(_random_scan(rng, renderer, "grey"), light=float(rng.uniform(0.1, 0.35)))
+        pixels, truth = seen_through(drawn, page, _random_photo(rng, (page.width_px, page.height_px)), shot)
+        jpeg = image_file(pixels, "jpg", page.dpi, quality=int(rng.integers(80, 95)))
+        name, data = f"{stem}.jpg", jpeg
     else:
         pixels, truth = scanned(drawn, page, _random_scan(rng, renderer, quality))
         name, data = _scan_file(stem, pixels, quality, page.dpi, rng)
     head = WorksheetHead(file=name, document={"title": subject.title, "maker": "Trial"}, devices=subject.devices)
     clicks = Clicks(seed=seed + 1, marks=int(rng.integers(2, 5)), guides=2)
     return DrawnSheet(name=name, data=data, truth=truth, worksheet=worksheet_text(truth, head, clicks))
+
+
+def _random_photo(rng: np.random.Generator, size_px: tuple[int, int]) -> Photo:
+    """A hand-held camera: turned up to 2 degrees, scale falling by up to 4 % to the edges, curl up to 0.4 %."""
+    return Photo(
+        matrix=keystone(
+            size_px, float(rng.uniform(-2, 2)), (float(rng.uniform(-0.04, 0.04)), float(rng.uniform(-0.04, 0.04)))
+        ),
+        curl=(float(rng.uniform(-0.004, 0.004)) * size_px[1], float(rng.uniform(-0.004, 0.004)) * size_px[0]),
+        phase=(float(rng.uniform(0, np.pi)), float(rng.uniform(0, np.pi))),
+        size_px=size_px,
+    )
 
 
 def _random_scan(rng: np.random.Generator, renderer: str, quality: str) -> Scan:

@@ -30,7 +30,11 @@ class Scan:
 
 def scanned(drawn: DrawnPage, page: Page, scan: Scan) -> tuple[Pixels, SheetTruth]:
     """Grey pixels (height, width) of the scanned page, and the truth in their places."""
-    place_map = scan_skew((page.width_px, page.height_px), scan.angle_deg, scan.stretch)
+    return seen_through(drawn, page, scan_skew((page.width_px, page.height_px), scan.angle_deg, scan.stretch), scan)
+
+
+def seen_through(drawn: DrawnPage, page: Page, place_map: PlaceMap, scan: Scan) -> tuple[Pixels, SheetTruth]:
+    """The page moved by any map, with the light, noise and blur of a scan, and the truth in its places."""
     flat = scanner_image(drawn, page, place_map, scan)
     truth = drawn.truth.to_pixels(page.dpi).mapped(place_map, page.width_px, page.height_px, page.dpi)
     return _exposed(flat, scan), truth
