@@ -145,8 +145,8 @@ def _energies(strips: Strips, slopes: Floats, pixel: int) -> Floats:
     """How sharply the strips add up when moved along each slope."""
     offset = strips.along - strips.along.mean()
     capped = np.clip(strips.dark, 0.0, max(float(np.quantile(strips.dark, 0.98)), LEAST_DARK))
-    sums = (_moved(capped, slope * offset / pixel).mean(axis=0) for slope in slopes)
-    return np.array([float(np.sum(total**2)) for total in sums])
+    sums = (_summed(capped, slope * offset / pixel) / len(capped) for slope in slopes)
+    return np.array([float(total @ total) for total in sums])
 
 
 def _sharpest(strips: Strips, slopes: Floats) -> float:
@@ -168,6 +168,17 @@ def _refined(strips: Strips, slope: float) -> tuple[float, float]:
     below, top, above = energy[k - 1 : k + 2]
     bend = below - 2 * top + above
     return float(slopes[k] + (step * 0.5 * (below - above) / bend if bend < 0 else 0.0)), float(top)
+
+
+def _summed(dark: NDArray[np.float32], shifts: Floats) -> NDArray[np.float32]:
+    """Sum of the rows moved left by whole pixels, slice by slice: much faster than moving them all first."""
+    width = dark.shape[1]
+    total = np.zeros(width, dtype=np.float32)
+    for row, shift in zip(dark, np.rint(shifts).astype(int).tolist(), strict=True):
+        first, last = max(0, -shift), min(width, width - shift)
+        if first < last:
+            total[first:last] += row[first + shift : last + shift]
+    return total
 
 
 def _moved(dark: NDArray[np.float32], shifts: Floats) -> NDArray[np.float32]:
