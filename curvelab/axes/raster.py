@@ -8,7 +8,7 @@ import numpy as np
 from curvelab.axes.comb import Alignment
 from curvelab.axes.extent import AT_LINE, covered_range
 from curvelab.axes.grid import AXIS_NAMES, Grid, aligned_marks, disagrees, rough_rows
-from curvelab.axes.marks import FEWEST_LINES, mark_values, with_marks
+from curvelab.axes.marks import mark_values, with_marks
 from curvelab.axes.measure import Measured, measure_lines
 from curvelab.axes.paths import Look
 from curvelab.axes.pattern import MAIN, Range, finer_lines, linear_lines, log_lines
@@ -33,6 +33,9 @@ SHARP_SD = 0.01
 
 ROOM = 3.0
 """Pixels that a finer line has on both sides: no two lines of the pattern may claim the same printed one."""
+
+LONGEST_TICK = 24.0
+"""Pixels by which ticks may stand out of a frame."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -180,7 +183,7 @@ def _extended(state: _State, views: tuple[_View, _View]) -> _State:
     """How far the plot reaches; an axis whose crossing lines are not known reaches as far as its marks."""
     covered = list(state.covered)
     for k, view in enumerate(views):
-        if len(state.lines[k]) >= FEWEST_LINES:
+        if len(state.lines[k]):
             covered[1 - k] = covered_range(
                 view.look, state.plane, state.lines[k], state.lines[1 - k], state.covered[1 - k]
             )
@@ -200,17 +203,17 @@ def _candidates(axis: Axis, alignment: Alignment, covered: Range, *, finest: boo
 
 
 def _to_lines(state: _State, measured: list[Measured], axis: int) -> Range:
-    """The covered range, its ends moved onto the outermost lines next to them."""
+    """The covered range, its ends moved onto the outermost lines next to them: ticks outside a frame prolong lines."""
     low, high = state.covered[axis]
     scaled = np.array([line.scaled for line in measured])
     if not len(scaled):
         return low, high
     rate = np.abs(state.plane.jacobian(state.plane.centre)[0, axis]).max()
-    ends = [
-        float(scaled[np.argmin(np.abs(scaled - end))]) if np.abs(scaled - end).min() <= AT_LINE * rate else end
-        for end in (low, high)
-    ]
-    return ends[0], ends[1]
+    first, last = float(scaled.min()), float(scaled.max())
+    return (
+        first if -AT_LINE * rate <= first - low <= LONGEST_TICK * rate else low,
+        last if -AT_LINE * rate <= high - last <= LONGEST_TICK * rate else high,
+    )
 
 
 def _sharp(lines: list[Measured]) -> bool:
