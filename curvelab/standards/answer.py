@@ -4,10 +4,12 @@ Pre-arcing ends before operation: a pre-arcing time is at least reached by the o
 bounds the pre-arcing time from above. A start that differs bounds as `curvelab.devices.conditions` says.
 """
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, replace
 from math import nan
-from typing import Literal
+from typing import Any, Literal
+
+import numpy as np
 
 from curvelab.devices.device import Device
 from curvelab.errors import DeviceError
@@ -17,17 +19,22 @@ from curvelab.standards.point import Point
 
 Bound = Literal["at_least", "at_most"]
 
+REACH, PROBES = 30.0, 200
+"""How far to either side of a gap an edge is looked for, as a ratio of currents, and at how many."""
+
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Answer:
     """What an edge says at a point: the time at its current, and the current for its time; None without such an edge.
 
-    ``mean`` says that a mean line passes there; ``refusal`` why the device cannot be asked at all.
+    ``mean`` says that a mean line passes there; ``in_gap`` that the edge is drawn on both sides of it only;
+    ``refusal`` why the device cannot be asked at all.
     """
 
     time: EdgeAnswer | None
     current: EdgeAnswer | None
     mean: bool = False
+    in_gap: bool = False
     refusal: str = ""
 
     def reaches(self, point: Point) -> bool:
@@ -73,10 +80,11 @@ def _ways(point: Point) -> Iterator[_Way]:
 
 
 def _answer(device: Device, point: Point, way: _Way) -> Answer:
-    words = {"base": point.base, "path": point.rule.asked.path, "meaning": way.meaning, "conditions": way.conditions}
+    words: dict[str, Any] = {"base": point.base, "path": point.rule.asked.path}
+    words |= {"meaning": way.meaning, "conditions": way.conditions}
     try:
-        times = device.trip_time(point.current, **words)  # type: ignore[arg-type]
-        currents = device.trip_current(point.limit_s, **words)  # type: ignore[arg-type]
+        times = device.trip_time(point.current, **words)
+        currents = device.trip_current(point.limit_s, **words)
     except DeviceError as error:
         return Answer(time=None, current=None, refusal=error.problem)
     time, current = _of_edge(point.rule.edge, times, currents)
@@ -84,7 +92,22 @@ def _answer(device: Device, point: Point, way: _Way) -> Answer:
         time=_bounding(time, way.bound),
         current=_bounding(current, way.bound),
         mean=times.mean is not None and times.mean.status == "value",
+        in_gap=time is not None and time.status == "not_covered" and _is_in_gap(device, point, words),
     )
+
+
+def _is_in_gap(device: Device, point: Point, words: Mapping[str, Any]) -> bool:
+    """Whether the edge is drawn somewhere below and somewhere above the point's current."""
+    either = (
+        np.geomspace(point.current / REACH, point.current, PROBES),
+        np.geomspace(1, REACH, PROBES) * point.current,
+    )
+    for currents in either:
+        times = device.trip_time(currents, **words)
+        edge = {"fast": times.fast, "slow": times.slow, "mean": times.mean}[point.rule.edge]
+        if edge is None or not np.any(np.asarray(edge.status) == "value"):
+            return False
+    return True
 
 
 def _of_edge(edge: Edge, times: TripTimes, currents: TripCurrents) -> tuple[EdgeAnswer | None, EdgeAnswer | None]:

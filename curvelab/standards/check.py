@@ -94,7 +94,7 @@ def _judged_at(device: Device, point: Point) -> Judgement:
         return _without_edge(answer)
     if point.rule.let_through_a2s is not None:
         return judge_energy(point, answer.current)
-    judgement = judge(point, answer.time, answer.current)
+    judgement = judge(point, answer.time, answer.current, in_gap=answer.in_gap)
     if (
         judgement.outcome == "not covered"
         and point.rule.asked.start == "hot"

@@ -1,7 +1,7 @@
 """One answer of a device against one limit: meets, fails, undecided, at limit or not covered."""
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from curvelab.records.answer import EdgeAnswer
 from curvelab.records.finding import Outcome
@@ -67,15 +67,17 @@ class Limit:
         return f"It lies {100 * (value / self.number - 1):+.2g} % from the limit."
 
 
-def judge(point: Point, time: EdgeAnswer, current: EdgeAnswer | None) -> Judgement:
+def judge(point: Point, time: EdgeAnswer, current: EdgeAnswer | None, *, in_gap: bool = False) -> Judgement:
     """The outcome at a point from the time at its current and the current for its time.
 
-    Both say the same of a band; the second measures the margin where the edge is steep.
+    Both say the same of a band; the second measures the margin where the edge is steep, and bounds it in a gap.
     """
     limit = Limit(number=point.limit_s, from_below=point.is_hold, strict=point.rule.strict)
     if time.status == "never":
         return Judgement(outcome="meets" if point.is_hold else "fails", note="It never trips there.")
     judgement = judge_number(limit, time)
+    if judgement.outcome == "not covered" and current is not None:
+        return _beside_the_line(point, current, in_gap) or judgement
     if judgement.outcome == "undecided" and time.status == "value" and current is not None:
         return _in_current(point, current) or judgement
     return judgement if judgement.outcome != "fails" else _on_the_step(point, time, current) or judgement
@@ -131,6 +133,19 @@ def _in_current(point: Point, current: EdgeAnswer) -> Judgement | None:
     return Judgement(
         outcome="at limit", value=value, interval=_interval(current), in_current=True, note=limit.margin(value)
     )
+
+
+def _beside_the_line(point: Point, current: EdgeAnswer, in_gap: bool) -> Judgement | None:
+    """What a line that is not drawn at the current says there: times never rise with current.
+
+    It fails where a fast edge drops below the time before the current is reached, or a slow edge only after it. It
+    meets where the line is drawn on both sides of a gap; beyond its ends the absence of a line meets nothing.
+    """
+    limit = Limit(number=point.current, from_below=point.is_hold, strict=point.rule.strict)
+    if current.status != "value":
+        return None
+    judgement = judge_number(limit, current)
+    return None if judgement.outcome == "meets" and not in_gap else replace(judgement, in_current=True)
 
 
 def _on_the_step(point: Point, time: EdgeAnswer, current: EdgeAnswer | None) -> Judgement | None:

@@ -1,5 +1,7 @@
 """A device checked: each rule with a band that just meets, just fails and straddles, and what bounds may decide."""
 
+from dataclasses import replace
+
 import pytest
 
 from curvelab.records.curve import Conditions
@@ -231,3 +233,27 @@ def test_a_finding_says_what_was_required_and_by_whom():
     assert (finding.device, finding.standard, finding.clause) == ("riverside-b32", "IEC 60898-1", "Table 7, test b")
     assert "IEC 60898-1" in finding.source
     assert Nameplate(key="x", kind="mcb").standard is None
+
+
+def test_a_line_that_ends_before_the_current_fails_where_times_never_rise():
+    # The fast edge drops out of the plot at 4.2 In: at 5 In it is no longer than there.
+    fast = line("fast", [(1.2, 5000), (4.2, 3), (4.2, 0.001)], sd=0.002)
+    finding = by_rule(device(fast, characteristic="C", rated_current_a=16.0), "d-hold-C")
+    assert (finding.outcome, finding.limit, finding.unit) == ("fails", 5.0, "xIn")
+    assert finding.value == pytest.approx(4.2)
+    # The slow edge is drawn from 3 In on and is below 60 s only at 4 In: at 2.55 In it is no shorter.
+    slow = line("slow", [(3, 100), (5, 20)], sd=0.002)
+    assert by_rule(device(slow, characteristic="C", rated_current_a=16.0), "c-upper-le32").outcome == "fails"
+    # A slow edge that ends before the current is never taken to go on.
+    short = line("slow", [(1.5, 3000), (2.0, 30)], sd=0.002)
+    assert by_rule(device(short, characteristic="C", rated_current_a=16.0), "c-upper-le32").outcome == "not covered"
+
+
+def test_in_a_gap_the_line_on_both_sides_decides():
+    stepped = line("slow", [(2, 100), (4.7, 20), (4.7, 0.05)], sd=0.001)
+    tail = line("slow", [(5.2, 0.045), (50, 0.02)], sd=0.001)
+    slow = replace(stepped, parts=stepped.parts + tail.parts)
+    finding = by_rule(device(slow, characteristic="B", rated_current_a=16.0), "e-B")
+    assert (finding.outcome, finding.unit) == ("meets", "xIn")
+    assert finding.value == pytest.approx(4.7)
+    assert by_rule(device(stepped, characteristic="B", rated_current_a=16.0), "e-B").outcome == "not covered"
