@@ -8,6 +8,10 @@ from curvelab.axes.plots import Plot
 from curvelab.lettering.titles import AxisTitle, title_of
 from curvelab.records.sheet import Word
 
+LEGIBLE = 0.4
+"""Chance of the texts with one meaning from which on they count as read; a text that means anything is no accident."""
+
+LEAST_LEGIBLE = 0.35
 UNIT_WITH_NUMBER = 0.6
 """Confidence that a unit printed with a number is that of the whole axis."""
 
@@ -48,9 +52,10 @@ def namings(words: Iterable[Word], plot: Plot) -> list[Naming]:
     found = []
     for word in words:
         placed = _side(word, plot)
-        title = title_of(word.text) if placed else None
-        if placed is None or title is None:
+        meant = _meant(word) if placed else None
+        if placed is None or meant is None:
             continue
+        title, confidence = meant
         side, apart = placed
         upright = 45 < word.turned_deg % 180 < 135
         if upright and side in ("above", "below"):
@@ -63,11 +68,33 @@ def namings(words: Iterable[Word], plot: Plot) -> list[Naming]:
                 text=word.text,
                 side=side,
                 fitness=(fitness[0] * share, fitness[1] * share),
-                confidence=title.confidence * word.confidence,
+                confidence=confidence,
                 box=word.box,
             )
         )
     return found
+
+
+def _meant(word: Word) -> tuple[AxisTitle, float] | None:
+    """The title that most of what a word may say means, and the confidence that it does.
+
+    Letters misread leave the meaning the same as long as the words are still known; what counts against it are texts
+    that mean another title, as ``ms`` where the word may also say ``s``.
+    """
+    chances: dict[tuple[str, str, float], float] = {}
+    titles: dict[tuple[str, str, float], AxisTitle] = {}
+    for text, chance in ((word.text, word.confidence), *word.alternatives):
+        title = title_of(text)
+        if title is not None:
+            key = (title.quantity, title.unit, title.factor)
+            chances[key] = chances.get(key, 0.0) + chance
+            titles.setdefault(key, title)
+    if not chances:
+        return None
+    best = max(chances, key=lambda key: chances[key])
+    share = chances[best] / sum(chances.values())
+    legible = LEAST_LEGIBLE + (1.0 - LEAST_LEGIBLE) * min(chances[best] / LEGIBLE, 1.0)
+    return titles[best], titles[best].confidence * share * legible
 
 
 def with_units(labels: tuple[list[Label], list[Label]]) -> list[Naming]:
@@ -85,7 +112,11 @@ def with_units(labels: tuple[list[Label], list[Label]]) -> list[Naming]:
                         text=label.text,
                         side=label.side,
                         fitness=fitness,
-                        confidence=UNIT_WITH_NUMBER * surest.chance,
+                        confidence=LEGIBLE = 0.4
+"""Chance of the texts with one meaning from which on they count as read; a text that means anything is no accident."""
+
+LEAST_LEGIBLE = 0.35
+UNIT_WITH_NUMBER * surest.chance,
                         box=label.box,
                     )
                 )

@@ -128,7 +128,7 @@ def test_a_linear_axis() -> None:
     steps = tuple(float(value) for value in range(1, 11))
     labels = {value: f"{value:g}" for value in steps}
     linear = PrintedAxis(
-        low=1, high=10, start=80.0, stop=380.0, lines=steps, labels=labels, title="Multiple of rated current In", linear=True
+        low=1, high=10, start=80.0, stop=380.0, lines=steps, labels=labels, title="Multiple of In", linear=True
     )  # fmt: skip
     plot = PrintedPlot(across=linear)
     axes, _ = read(printed(plot))
@@ -144,7 +144,7 @@ def test_one_wrong_label_is_outvoted() -> None:
 
 def test_labels_that_contradict_are_refused() -> None:
     wrong = replace(CURRENT, labels={10: "10", 100: "1000", 1000: "3", 10000: "70"})
-    with pytest.raises(AxesError, match="not sure|could not be read"):
+    with pytest.raises(AxesError, match=r"not sure|could not be read"):
         read(printed(PrintedPlot(across=wrong)))
 
 
