@@ -112,11 +112,7 @@ def with_units(labels: tuple[list[Label], list[Label]]) -> list[Naming]:
                         text=label.text,
                         side=label.side,
                         fitness=fitness,
-                        confidence=LEGIBLE = 0.4
-"""Chance of the texts with one meaning from which on they count as read; a text that means anything is no accident."""
-
-LEAST_LEGIBLE = 0.35
-UNIT_WITH_NUMBER * surest.chance,
+                        confidence=UNIT_WITH_NUMBER * surest.chance,
                         box=label.box,
                     )
                 )
