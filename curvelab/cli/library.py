@@ -1,77 +1,47 @@
-"""``curvelab library``: what is stored."""
+"""``curvelab library``: what is stored, found, reviewed, exchanged and kept."""
 
-from typing import Any
+from importlib import import_module
 
 import click
 
-import curvelab
-from curvelab.cli.output import json_option, library_option, named, table, write_json
-from curvelab.library.key import split_key
-from curvelab.records.curve import Curve
-from curvelab.units import written_current, written_time
+COMMANDS = {
+    "list": ("library_show", "List the current revision of every device."),
+    "show": ("library_show", "Show a device: its ratings, curves and revisions."),
+    "find": ("library_find", "Find devices by words, ratings or what their bands do."),
+    "review": ("library_review", "Set the state of a revision, or note something about it."),
+    "log": ("library_review", "Show who did what, when and why."),
+    "evidence": ("library_evidence", "Write out what led to a device, and read it again."),
+    "export": ("library_exchange", "Write devices to an open file (JSON lines), or points to a table (CSV)."),
+    "import": ("library_exchange", "Take another library, an exported file or a table of points."),
+    "verify": ("library_keep", "Check that nothing has changed since it was stored."),
+    "backup": ("library_keep", "Copy the library to one file while others use it."),
+    "restore": ("library_keep", "Put a backup back."),
+    "compact": ("library_keep", "Give unused space back to the disk."),
+}
+"""Command -> the module it is in, and what it does; each is the function ``<name>_command`` there."""
 
 
-@click.group()
+class LibraryTable(click.Group):
+    """Loads a command's module only when it is called."""
+
+    def list_commands(self, ctx: click.Context) -> list[str]:  # noqa: ARG002 - the library's signature
+        """Names in the order of the work."""
+        return list(COMMANDS)
+
+    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:  # noqa: ARG002
+        """The command, or None for an unknown word."""
+        if cmd_name not in COMMANDS:
+            return None
+        module, _ = COMMANDS[cmd_name]
+        found: click.Command = getattr(import_module(f"curvelab.cli.{module}"), f"{cmd_name}_command")
+        return found
+
+    def format_commands(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:  # noqa: ARG002
+        """List the commands without loading them."""
+        with formatter.section("Commands"):
+            formatter.write_dl([(name, told) for name, (_, told) in COMMANDS.items()])
+
+
+@click.group(cls=LibraryTable)
 def command() -> None:
-    """List and show what the library holds."""
-
-
-@command.command("list")
-@library_option
-@json_option
-def list_devices(library_file: str | None, json_file: str | None) -> int:
-    """List the current revision of every device."""
-    with curvelab.open_library(library_file, create=False) as library:
-        rows = library.index()
-    if json_file:
-        write_json(rows, json_file)
-    if json_file != "-":
-        heads = ["device_key", "kind", "characteristic", "rated_current_a", "standard", "revision", "state"]
-        click.echo(
-            table([head.replace("_", " ") for head in heads], [[_cell(row[head]) for head in heads] for row in rows])
-        )
-        click.echo(f"{len(rows)} devices")
-    return 0
-
-
-@command.command("show")
-@click.argument("key")
-@library_option
-def show(key: str, library_file: str | None) -> int:
-    """Show a device: its ratings, curves and revisions. KEY@3 shows revision 3."""
-    device_key, revision = split_key(key)
-    with curvelab.open_library(library_file, create=False) as library:
-        record = library.record(device_key, revision)
-        history = library.history(device_key)
-    click.echo(f"{named(record.nameplate)}, revision {record.revision} ({record.state})")
-    if record.curves:
-        heads = ["element", "edge", "meaning", "quantity", "from - to", "points", "from sheet"]
-        click.echo(table(heads, [_curve_row(curve) for curve in record.curves]))
-    else:
-        click.echo("No curve: this device has no trip characteristic in the library.")
-    click.echo(f"Revisions: {', '.join(str(row['revision']) + ' ' + str(row['state']) for row in history)}")
-    return 0
-
-
-def _curve_row(curve: Curve) -> list[str]:
-    first, last = curve.parts[0], curve.parts[-1]
-    written = written_time if curve.quantity == "time" else (lambda value: f"{value:.3g}")
-    start = f"{written_current(float(first.current[0]), curve.base)}, {written(float(first.value[0]))}"
-    end = f"{written_current(float(last.current[-1]), curve.base)}, {written(float(last.value[-1]))}"
-    points = sum(part.current.size for part in curve.parts)
-    source = curve.sheet.file if curve.sheet else curve.source
-    return [
-        curve.element,
-        curve.edge,
-        curve.meaning or "-",
-        curve.quantity,
-        f"{start} - {end}",
-        str(points),
-        source or "-",
-    ]
-
-
-def _cell(value: Any) -> str:
-    if value is None:
-        return "-"
-    return f"{value:g}" if isinstance(value, float) else str(value)
+    """List, show, find, review, exchange and keep what the library holds."""

@@ -15,7 +15,7 @@ COMMANDS = {
     "check": "Check a device against its standard.",
     "query": "Trip times at currents, or currents for times.",
     "compare": "Set two or more devices side by side.",
-    "library": "List, show and check what is stored.",
+    "library": "List, find, review, exchange and keep what is stored.",
     "demo": "Run the whole chain on the shipped sheets.",
 }
 """Command -> what it does; each is the function ``command`` of the module of its name."""

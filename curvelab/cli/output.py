@@ -2,7 +2,8 @@
 
 import json
 import os
-from collections.abc import Sequence
+from collections.abc import Iterable, Mapping, Sequence
+from contextlib import suppress
 from pathlib import Path
 from typing import Any
 
@@ -24,6 +25,9 @@ json_option = click.option(
     help="Write JSON to FILE; - is standard output.",
 )
 
+name_option = click.option("--name", default="", help="Who does it; kept in the library.")
+reason_option = click.option("--reason", default="", metavar="TEXT", help="Why; kept in the library.")
+
 
 def table(headings: Sequence[str], rows: Sequence[Sequence[str]]) -> str:
     """Left-aligned columns two spaces apart; plain text, so that it pipes well."""
@@ -34,6 +38,18 @@ def table(headings: Sequence[str], rows: Sequence[Sequence[str]]) -> str:
     )
 
 
+def device_table(rows: Sequence[Mapping[str, Any]]) -> str:
+    """Devices of the library, a row each."""
+    heads = ["device_key", "kind", "characteristic", "rated_current_a", "standard", "revision", "state"]
+    return table([head.replace("_", " ") for head in heads], [[_cell(row[head]) for head in heads] for row in rows])
+
+
+def _cell(value: Any) -> str:
+    if value is None:
+        return "-"
+    return f"{value:g}" if isinstance(value, float) else str(value)
+
+
 def write_json(content: Any, target: str) -> None:
     """JSON to a file, or to standard output for ``-``."""
     write_text(json.dumps(content, indent=1, allow_nan=False, ensure_ascii=False) + "\n", target)
@@ -41,19 +57,28 @@ def write_json(content: Any, target: str) -> None:
 
 def write_text(text: str, target: str) -> None:
     """Text to a file, whole or not at all, or to standard output for ``-``."""
+    write_lines([text], target)
+
+
+def write_lines(lines: Iterable[str], target: str) -> None:
+    """Lines, each with its end, to a file, whole or not at all, or to standard output for ``-``."""
     if target == "-":
-        click.echo(text, nl=False)
+        for line in lines:
+            click.echo(line, nl=False)
         return
     path = Path(target)
     part = path.with_name(path.name + ".part")
     try:
-        part.write_text(text, encoding="utf-8")
+        with part.open("w", encoding="utf-8", newline="\n") as file:
+            file.writelines(lines)
         os.replace(part, path)
     except OSError as error:
-        part.unlink(missing_ok=True)
         raise InputError(
             f"Cannot write '{target}': {error.strerror}", "", "Choose a place that can be written"
         ) from None
+    finally:
+        with suppress(OSError):
+            part.unlink(missing_ok=True)
 
 
 def named(nameplate: Nameplate) -> str:

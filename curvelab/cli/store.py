@@ -6,13 +6,15 @@ import click
 
 import curvelab
 from curvelab.cli.digitise import open_warnings
-from curvelab.cli.output import library_option
+from curvelab.cli.output import library_option, name_option, reason_option
 
 
 @click.command()
 @click.argument("worksheets", nargs=-1, required=True, type=click.Path(dir_okay=False))
+@name_option
+@reason_option
 @library_option
-def command(worksheets: tuple[str, ...], library_file: str | None) -> int:
+def command(worksheets: tuple[str, ...], name: str, reason: str, library_file: str | None) -> int:
     """Read each WORKSHEET and store its devices; all of them, or none.
 
     Storing what the library already holds makes no new revision.
@@ -24,7 +26,7 @@ def command(worksheets: tuple[str, ...], library_file: str | None) -> int:
         if reading.worksheet.sheet
     ]
     with curvelab.open_library(library_file) as library:
-        stored = library.store(readings, sheet_files=files)
+        stored = library.store(readings, author=name, reason=reason, sheet_files=files)
         click.echo(f"Library {library.path}")
     for each in stored:
         click.echo(f"{each.key}: revision {each.revision}{'' if each.changed else ', as it was'}")

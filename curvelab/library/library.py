@@ -1,20 +1,19 @@
 """The library's face: open it, store readings and devices, ask for devices."""
 
 import os
-import sqlite3
 from collections.abc import Iterable, Iterator
 from pathlib import Path
-from types import TracebackType
-from typing import Any, Self
+from typing import Any
 
 from curvelab.devices.device import Device
 from curvelab.errors import NotFoundError
 from curvelab.library.bands import EVERY, BandQuery, BandsFound, find_bands
-from curvelab.library.connect import OlderSchemaError, named_errors, open_to_read
+from curvelab.library.connect import named_errors
 from curvelab.library.evidence_load import read_evidence
 from curvelab.library.load import read_device
 from curvelab.library.log import Entry, entries
-from curvelab.library.place import data_folder, library_path
+from curvelab.library.opened import OpenedLibrary
+from curvelab.library.place import library_path
 from curvelab.library.search import FIRST_PAGE, Found, Page, Wanted, find
 from curvelab.library.sheet_files import read_sheet_files
 from curvelab.library.sound import refuse_unsound
@@ -51,44 +50,8 @@ def open_library(path: str | os.PathLike[str] | None = None, *, create: bool = T
     return library
 
 
-class Library:
+class Library(OpenedLibrary):
     """One library file. Use it as a context manager, or close it."""
-
-    def __init__(self, path: Path) -> None:
-        self.path = path
-        self._reader: sqlite3.Connection | None = None
-        self._writer: Any = None
-
-    def open(self) -> sqlite3.Connection:
-        """The connection that reads; opened once. A library of an older schema is brought up to date, after a backup.
-
-        Raises
-        ------
-        LibraryError
-            There is no such file, or it is not a library.
-        """
-        if self._reader is None:
-            try:
-                self._reader = open_to_read(self.path)
-            except OlderSchemaError:
-                self._open_writer()
-                self._reader = open_to_read(self.path)
-        return self._reader
-
-    def close(self) -> None:
-        """Close the file; it opens again when next used."""
-        for connection in (self._reader, self._writer and self._writer.conn):
-            if connection is not None:
-                connection.close()
-        self._reader = self._writer = None
-
-    def __enter__(self) -> Self:
-        return self
-
-    def __exit__(
-        self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None
-    ) -> None:
-        self.close()
 
     def record(self, key: str, revision: int | None = None) -> DeviceRecord:
         """A stored device as a record: the current revision, or the one of that number.
@@ -176,7 +139,7 @@ class Library:
 
         self.open()
         with named_errors(self.path):
-            writer = self._open_writer()
+            writer = self.open_writer()
             return review.review(writer.conn, key, revision, state, Signature(author=name, reason=reason))
 
     def exported(self, keys: Iterable[str] | None = None) -> Iterator[str]:
@@ -214,7 +177,27 @@ class Library:
 
         signature = Signature(author=name, reason=reason)
         with named_errors(self.path):
-            return united.unite(self._open_writer(), exchange_read.parsed(lines, file), signature, file)
+            return united.unite(self.open_writer(), exchange_read.parsed(lines, file), signature, file)
+
+    def backup(self, target: Path) -> None:
+        """Copy the library to a file while others use it: whole, checked, one file.
+
+        Raises
+        ------
+        LibraryError
+            The copy cannot be written, or the library is damaged.
+        """
+        from curvelab.library import backup  # noqa: PLC0415 - asking a device starts without it
+
+        backup.copy_whole(self.open(), target.absolute())
+
+    def compact(self) -> None:
+        """Give space that is no longer used back to the disk; others must not be writing."""
+        from curvelab.library import backup  # noqa: PLC0415
+
+        self.open()
+        with named_errors(self.path):
+            backup.compact(self.open_writer().conn)
 
     def verify(self, watch: Watch = unwatched) -> Verdict:
         """Check that nothing in the library has changed since it was stored: file, references, hashes and log."""
@@ -264,18 +247,7 @@ class Library:
         from curvelab.library import save  # noqa: PLC0415 - only writing needs it
 
         with named_errors(self.path):
-            return save.store(self._open_writer(), items, Signature(author=author, reason=reason), contents)
-
-    def _open_writer(self) -> Any:
-        # Only writing needs the library with its slower import; asking a device starts without it.
-        from curvelab.library import migrate  # noqa: PLC0415
-
-        if self._writer is None:
-            if self.path.parent == data_folder():
-                self.path.parent.mkdir(parents=True, exist_ok=True)
-            with named_errors(self.path):
-                self._writer = migrate.open_migrated(self.path)
-        return self._writer
+            return save.store(self.open_writer(), items, Signature(author=author, reason=reason), contents)
 
     def _index(self, condition: str, *values: str) -> list[dict[str, Any]]:
         with named_errors(self.path):

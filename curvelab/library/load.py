@@ -10,8 +10,8 @@ from typing import Any
 
 import numpy as np
 
-from curvelab.errors import NotFoundError
-from curvelab.library.identity import NO_STATEMENT
+from curvelab.errors import LibraryError, NotFoundError
+from curvelab.library.identity import NO_STATEMENT, curve_sha256, revision_sha256
 from curvelab.records.arrays import Floats
 from curvelab.records.curve import Conditions, Curve, Part, SheetKey
 from curvelab.records.device import Breaking, Derating, DeviceRecord, Nameplate, Setting
@@ -56,6 +56,8 @@ def read_device(connection: Connection, key: str, number: int | None) -> DeviceR
     ------
     NotFoundError
         No such key or revision, or every revision is withdrawn.
+    LibraryError
+        What is there is not what was stored: its content and its hash differ.
     """
     chosen = "is_current = 1" if number is None else "revision = ?"
     row = connection.execute(
@@ -65,11 +67,40 @@ def read_device(connection: Connection, key: str, number: int | None) -> DeviceR
     if row is None:
         raise missing_device(connection, key, number)
     revision, state = row
-    (revision_id,) = connection.execute(
-        "SELECT revision_id FROM revision JOIN device USING (device_id) WHERE device_key = ? AND number = ?",
+    revision_id, sha256 = connection.execute(
+        "SELECT revision_id, content_sha256 FROM revision JOIN device USING (device_id)"
+        " WHERE device_key = ? AND number = ?",
         (key, revision),
     ).fetchone()
-    return read_revision(connection, revision_id, revision, state)
+    record, found = read_hashed(connection, revision_id, revision, state)
+    if found != sha256:
+        raise LibraryError(
+            f"{key}@{revision} is not what was stored: a number of it was changed or damaged",
+            "",
+            "Verify the library and restore it from a backup",
+        )
+    return record
+
+
+def read_hashed(connection: Connection, revision_id: int, number: int, state: str) -> tuple[DeviceRecord, bytes]:
+    """A revision, and the hash that its content has now."""
+    held = with_points(connection, revision_id)
+    record = DeviceRecord(
+        nameplate=read_nameplate(connection, revision_id),
+        curves=tuple(item.curve for item in held),
+        revision=number,
+        state=state,
+    )
+    said = [(curve_sha256(item.curve), item.statement) for item in held]
+    return record, revision_sha256(record.nameplate, said or [(b"", _statement(connection, revision_id))])
+
+
+def _statement(connection: Connection, revision_id: int) -> bytes:
+    """The hash of what was said of a device without curves."""
+    row = connection.execute(
+        "SELECT statement_sha256 FROM revision JOIN reading USING (reading_id) WHERE revision_id = ?", (revision_id,)
+    ).fetchone()
+    return row[0] if row else NO_STATEMENT
 
 
 def read_revision(connection: Connection, revision_id: int, number: int, state: str) -> DeviceRecord:

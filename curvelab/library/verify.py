@@ -9,8 +9,7 @@ from dataclasses import dataclass
 from curvelab.library.current import CURRENT, extent_rows
 from curvelab.library.evidence import stored_evidence_sha256
 from curvelab.library.extent import extents_of
-from curvelab.library.identity import NO_STATEMENT, curve_sha256, revision_sha256
-from curvelab.library.load import HeldCurve, read_nameplate, with_points
+from curvelab.library.load import read_hashed
 from curvelab.library.log import broken_entries, head
 from curvelab.paths import shipped
 from curvelab.records.device import DeviceRecord
@@ -97,19 +96,18 @@ def _revisions(connection: sqlite3.Connection, watch: Watch) -> Problems:
     rows = connection.execute(
         """
         SELECT revision.revision_id, coalesce(device.device_key, '?'), revision.number, revision.state,
-            revision.content_sha256, reading.statement_sha256, current_device.device_id
+            revision.content_sha256, current_device.device_id
         FROM revision
         LEFT JOIN device ON device.device_id = revision.device_id
-        LEFT JOIN reading ON reading.reading_id = revision.reading_id
         LEFT JOIN current_device ON current_device.revision_id = revision.revision_id
         ORDER BY revision.revision_id
         """
     ).fetchall()
-    for done, (revision_id, key, number, state, sha256, statement, device_id) in enumerate(rows):
+    for done, (revision_id, key, number, state, sha256, device_id) in enumerate(rows):
         if done % REPORTED_EVERY == 0:
             watch("Verifying", done / len(rows))
         try:
-            record, content = _content(connection, revision_id, number, state, statement or NO_STATEMENT)
+            record, content = read_hashed(connection, revision_id, number, state)
         except (ValueError, TypeError, KeyError, IndexError) as error:
             yield f"{key}@{number} cannot be read: {error}"
             continue
@@ -117,22 +115,6 @@ def _revisions(connection: sqlite3.Connection, watch: Watch) -> Problems:
             yield f"{key}@{number} is not what was stored: its content and its hash differ"
         elif device_id is not None and not _extent_agrees(connection, device_id, record):
             yield f"{key}@{number}: what the search over bands knows of it is not what its curves say"
-
-
-def _content(
-    connection: sqlite3.Connection, revision_id: int, number: int, state: str, statement: bytes
-) -> tuple[DeviceRecord, bytes]:
-    """A revision and the hash its content has now; a curve's changed points change it too."""
-    held = with_points(connection, revision_id)
-    nameplate = read_nameplate(connection, revision_id)
-    record = DeviceRecord(nameplate=nameplate, curves=tuple(item.curve for item in held), revision=number, state=state)
-    return record, content_sha256(record, held, statement)
-
-
-def content_sha256(record: DeviceRecord, held: tuple[HeldCurve, ...], statement: bytes) -> bytes:
-    """The content hash of a revision from what is there; ``statement`` counts where it has no curve."""
-    said = [(curve_sha256(item.curve), item.statement) for item in held]
-    return revision_sha256(record.nameplate, said or [(b"", statement)])
 
 
 def _extent_agrees(connection: sqlite3.Connection, device_id: int, record: DeviceRecord) -> bool:

@@ -1,0 +1,78 @@
+"""``curvelab library evidence``: what led to a device, written out and read again."""
+
+import tempfile
+from pathlib import Path
+
+import click
+
+import curvelab
+from curvelab.cli.output import library_option, write_text
+from curvelab.errors import InputError
+from curvelab.library.key import split_key
+from curvelab.reading.rerun import differences, rerun, restored
+from curvelab.records.evidence import StoredReading
+
+
+@click.command("evidence")
+@click.argument("key")
+@click.option(
+    "--output", type=click.Path(file_okay=False), help="Write sheets, worksheets and overlays to this folder."
+)
+@click.option("--rerun", "again", is_flag=True, help="Read again with this version and list what differs.")
+@library_option
+def evidence_command(key: str, output: str | None, again: bool, library_file: str | None) -> int:
+    """Show what led to a device: who, when, why, and each reading; KEY@3 of its third revision.
+
+    With --rerun the exit status is 1 where this version finds other numbers.
+    """
+    with curvelab.open_library(library_file, create=False) as library:
+        evidence = library.evidence(*split_key(key))
+    click.echo(
+        f"{evidence.key}@{evidence.revision} ({evidence.state}), {evidence.at}, curvelab {evidence.program_version}"
+    )
+    click.echo(f"by {evidence.author or 'nobody named'}: {evidence.reason or 'no reason given'}")
+    differs = False
+    for number, stored in enumerate(evidence.readings, start=1):
+        click.echo(f"Reading {number}: {_told(stored)}")
+        if output:
+            _write(stored, Path(output) / f"{evidence.key}-{evidence.revision}-reading-{number}")
+        if again:
+            differs |= _differs(stored)
+    return 1 if differs else 0
+
+
+def _told(stored: StoredReading) -> str:
+    reading = stored.reading
+    sheet = reading.worksheet.sheet
+    source = f"{sheet.file}, page {sheet.page}, plot {sheet.plot}" if sheet else "typed points"
+    kept = "" if stored.source or not sheet else ", its bytes were not kept"
+    counts = f"{len(reading.curves)} curves, {len(reading.findings)} findings, {len(reading.warnings)} warnings"
+    return f"{source}{kept}, {counts}"
+
+
+def _write(stored: StoredReading, folder: Path) -> None:
+    """The sheet's file and worksheet as they were, and the overlay."""
+    # A picture needs the plotting library; the rest starts without it.
+    from curvelab.plots.overlay import draw_overlay  # noqa: PLC0415
+
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+    except OSError as error:
+        raise InputError(
+            f"Cannot make folder '{folder}': {error.strerror}", "", "Choose another with --output"
+        ) from None
+    if stored.reading.worksheet.text:
+        write_text(stored.reading.worksheet.text, str(folder / "worksheet.toml"))
+    if stored.source is not None:
+        draw_overlay(restored(stored, folder), folder / "overlay.png")
+    click.echo(f"  written to {folder}")
+
+
+def _differs(stored: StoredReading) -> bool:
+    with tempfile.TemporaryDirectory() as folder:
+        found = differences(stored.reading, rerun(stored, Path(folder)))
+    for difference in found:
+        click.echo(f"  {difference}")
+    if not found:
+        click.echo("  read again: the same")
+    return any(difference.of != "program version" for difference in found)
