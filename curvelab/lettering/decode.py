@@ -6,7 +6,7 @@ from statistics import median
 
 import numpy as np
 
-from curvelab.lettering.network import CLASSES, Matrix
+from curvelab.lettering.network import CLASSES, LOOK_ALIKES, Matrix
 from curvelab.lettering.segments import Cutting, Segment
 from curvelab.lettering.strip import CAPITAL_PX, Strip
 from curvelab.lettering.vocabulary import fitness
@@ -41,13 +41,14 @@ RAISED_DASH = 0.62
 class Character:
     """One character of a reading and its segment; ``text`` is empty where the ink is taken for something else.
 
-    By its shape alone: ``log_chance`` that it is this one, ``none`` the chance that it is no character at all. ``high``
-    where a digit stands so high that it is raised, ``dash_high`` where a dash does.
+    By its shape alone: ``log_chance`` that it is this one, ``log_alike`` this one or one that looks like it,
+    ``none`` the chance that it is no character at all. ``high`` where a digit stands so high that it is raised, ``dash_high`` where a dash does.
     """
 
     text: str
     segment: Segment
     log_chance: float
+    log_alike: float
     none: float
     high: bool
     dash_high: bool
@@ -111,8 +112,17 @@ def _choices(segment: Segment, chances: Matrix, strip: Strip) -> list[Character]
     told = [(CLASSES[number], float(chances[number])) for number in order if chances[number] - best >= LEAST_CHANCE]
     if none >= LEAST_NONE:
         told.append(("", float(chances[-1]) + NONE_LOSS))
+    every = np.exp(chances)
     return [
-        Character(text=text, segment=segment, log_chance=chance, none=none, high=high, dash_high=dash_high)
+        Character(
+            text=text,
+            segment=segment,
+            log_chance=chance,
+            log_alike=float(np.log(every[LOOK_ALIKES[text]].sum())) if text else chance,
+            none=none,
+            high=high,
+            dash_high=dash_high,
+        )
         for text, chance in told
     ]
 

@@ -10,6 +10,14 @@ from numpy.typing import NDArray
 CLASSES = "0123456789ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz.,-+/()[]%Δ=:äöüéè'"
 """Characters told apart; all dashes are ``-`` and the multiplication sign is ``x``. After them: no character."""
 
+_ALIKE = ("1Il[]/", "0Oo", "cC", "kK", "pP", "sS", "uU", "vV", "wW", "xX", "zZ", ".,", "5S", "8B")
+
+LOOK_ALIKES = {
+    char: sorted({CLASSES.index(other) for group in _ALIKE if char in group for other in group} | {number})
+    for number, char in enumerate(CLASSES)
+}
+"""Classes that only their neighbours tell from each character, itself among them."""
+
 WEIGHTS = Path(__file__).with_name("weights.npz")
 
 Matrix = NDArray[np.float32]

@@ -46,7 +46,7 @@ def _token_fitness(token: str) -> float:
     bare = token.strip(_BRACKETS)
     if not bare:
         return ODD_LOSS * len(token) * 0.5
-    if _NUMBER.fullmatch(token) or _NUMBER.fullmatch(bare):
+    if _NUMBER.fullmatch(token):
         return NUMBER_GAIN * len(token) - _leading_zeros(bare)
     parts = [part for part in bare.split("/") if part]
     if bare in UNITS or all(part in UNITS or _is_word(part) for part in parts):

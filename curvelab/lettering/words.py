@@ -71,7 +71,7 @@ def evidence(part: Part, strip: Strip) -> NDArray[np.float64]:
     """What a word's confidence is estimated from: a constant, odds among readings, shapes, and size."""
     clear = math.prod(1.0 - one.none for one in part.characters)
     raw = min(max(part.texts[part.text] * clear, 1e-6), 1.0 - 1e-4)
-    logs = [max(one.log_chance, -8.0) for one in part.characters]
+    logs = [max(one.log_alike, -8.0) for one in part.characters]
     size = math.log(min(CAPITAL_PX / strip.scale, 24.0) / 24.0)
     return np.array([1.0, math.log(raw / (1.0 - raw)), sum(logs), min(logs), size])
 

@@ -44,10 +44,19 @@ def confidence_coefficients(network: Network, faces: list[Path], pages: int, see
                 continue
             strip = ways[0].strip
             for part in parts_of(readings):
+                box = strip.page_box(box_of(part.characters))
+                if _at_edge(box, drawn.grey.shape):
+                    continue
                 rows.append(evidence(part, strip))
-                label = label_at(drawn, strip.page_box(box_of(part.characters)))
+                label = label_at(drawn, box)
                 right.append(label is not None and same_text(label.text, part.text))
     return _logistic(np.array(rows), np.array(right, dtype=float))
+
+
+def _at_edge(box: tuple[float, float, float, float], shape: tuple[int, ...]) -> bool:
+    """Whether a word may be cut off by the page's edge."""
+    near = 12.0
+    return box[0] < near or box[1] < near or box[2] > shape[1] - near or box[3] > shape[0] - near
 
 
 def _logistic(rows: NDArray[np.float64], right: NDArray[np.float64]) -> NDArray[np.float64]:

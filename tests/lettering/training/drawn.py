@@ -51,13 +51,17 @@ def _ink_box(path: Path, size: int, char: str) -> tuple[int, int, int, int]:
 
 
 def page(rng: np.random.Generator, face: Path, *, sensible: bool = False) -> Page:
-    """A page of labels of one size; every other one has lines and strokes that are not lettering."""
+    """A page of labels of one size.
+
+    Every other one has lines and strokes that are not lettering, one in ten of the sensible ones, which stand for the
+    margins of a plot.
+    """
     capital = float(np.exp(rng.uniform(np.log(7.5), np.log(45.0))))
     size = max(6, round(FINE * capital / 0.72))
     rows, columns = SHAPE
     image = Image.new("L", (columns * FINE, rows * FINE), 255)
     pen = ImageDraw.Draw(image)
-    if rng.random() < 0.5:
+    if rng.random() < (0.1 if sensible else 0.5):
         _strokes(pen, rng, image.size)
     printed = []
     y = 0.6 * size
