@@ -1,17 +1,20 @@
 """Limits of a standard on a picture: a short bracket whose open side is permitted, its multiple beside it."""
 
+import math
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from matplotlib.axes import Axes
 from matplotlib.path import Path
 
-from curvelab.plots.ink import GRAPHITE, PAPER, WARM
+from curvelab.plots.ink import GRAPHITE, PAPER, QUIET, WARM
 from curvelab.plots.subject import Subject, units_per_unit
 from curvelab.records.finding import Finding
 from curvelab.units import BASES, written, written_current
 
 LEG = 0.55
+CLOSE, LINE = 0.25, 9.0
+"""Limits closer than this in log current and log time write their words on lines of their own, so many points apart."""
 SIZE = 13.0
 """Of the bracket, in points."""
 SETTLED = ("meets", "not covered")
@@ -37,20 +40,42 @@ OPENINGS = {
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Limit:
-    """A limit as it is drawn: its place on the plot, and what is written beside it."""
+    """A limit as it is drawn: its place on the plot, and what is written beside it, ``lines`` away from it."""
 
     finding: Finding
     of_current: bool
     current: float
     time_s: float
     words: str
+    lines: int = 0
+
+    @property
+    def opening(self) -> tuple[bool, str]:
+        """Which bracket it is."""
+        return self.of_current, self.finding.permitted or "at_most"
 
 
 def placed_limits(findings: Iterable[Finding], subjects: Sequence[Subject], base: str) -> tuple[Limit, ...]:
     """The findings of the devices drawn that have a place on a time-current plot counted in ``base``."""
     by_key = {subject.plate.key: subject for subject in subjects}
     limits = (_limit(each, by_key[each.device], base) for each in findings if each.device in by_key)
-    return tuple(limit for limit in limits if limit is not None)
+    return _spread(sorted((each for each in limits if each is not None), key=lambda each: each.current))
+
+
+def _spread(limits: Sequence[Limit]) -> tuple[Limit, ...]:
+    """The words of limits that stand close together, a line further out each."""
+    placed: list[Limit] = []
+    for limit in limits:
+        beside = [
+            each.lines
+            for each in placed
+            if each.opening == limit.opening
+            and abs(math.log(each.time_s / limit.time_s)) < CLOSE
+            and abs(math.log(each.current / limit.current)) < CLOSE
+        ]
+        free = next(line for line in range(len(beside) + 1) if line not in beside)
+        placed.append(replace(limit, lines=free))
+    return tuple(placed)
 
 
 def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
@@ -67,14 +92,15 @@ def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
     if finding.unit == "A2s":
         words = written(finding.limit, "A2s").replace("A2s", r"$\mathrm{A^2s}$")
     if finding.outcome not in SETTLED:
-        words = f"{words}, {finding.outcome}"
+        words = f"{words}, {finding.outcome}{' (advisory)' if finding.advisory else ''}"
     return Limit(finding=finding, of_current=of_current, current=current * scale, time_s=time_s, words=words)
 
 
 def draw_limit(axes: Axes, limit: Limit) -> None:
     """One bracket, with its words on its closed side."""
-    corners, offset, across, along = OPENINGS[limit.of_current, limit.finding.permitted or "at_most"]
-    colour = GRAPHITE if limit.finding.outcome in SETTLED else WARM
+    corners, (right, up), across, along = OPENINGS[limit.opening]
+    away = (1 if up >= 0 else -1) * limit.lines * LINE
+    colour = GRAPHITE if limit.finding.outcome in SETTLED else QUIET if limit.finding.advisory else WARM
     axes.plot(
         [limit.current],
         [limit.time_s],
@@ -90,7 +116,7 @@ def draw_limit(axes: Axes, limit: Limit) -> None:
     axes.annotate(
         limit.words,
         (limit.current, limit.time_s),
-        xytext=offset,
+        xytext=(right, up + away),
         textcoords="offset points",
         ha=across,
         va=along,
