@@ -8,7 +8,7 @@ import pytest
 from curvelab.devices.device import Device
 from curvelab.reading.digitise import digitise
 from demo_curves.drawing.design import AxisDesign, CurveDesign
-from demo_curves.drawing.formulas import inverse_piece, relay_line, with_vertices
+from demo_curves.drawing.formulas import inverse_piece, relay_line, smooth_through, with_vertices
 from tests.drawing.shapes import Subject
 from tests.drawn import sheet_of
 
@@ -37,6 +37,21 @@ def breaker_b32() -> Subject:
             CurveDesign(name="slow", current=slow[0], value=slow[1], edge="slow", width_pt=1.1, **words),
         ),
         devices=({"key": "trial-b32", "kind": "mcb", "characteristic": "B", "rated_current_a": 32},),
+    )
+
+
+def fuse_bs88_32() -> Subject:
+    """An operating band whose slow edge is at exactly 220 A in 0.4 s."""
+    slow = smooth_through([(52.0, 1e4), (75.0, 100.0), (125.0, 5.0), (220.0, 0.4), (430.0, 0.03), (1100.0, 0.004)])
+    words = {"meaning": "operating", "element": "whole"}
+    return Subject(
+        title="Operating times",
+        current=axis("current", "A", 10.0, 1000.0, "Current in A"),
+        time=axis("time", "s", 0.01, 1000.0, "Time in s"),
+        curves=(CurveDesign(name="slow", current=slow[0], value=slow[1], edge="slow", width_pt=1.1, **words),),
+        devices=(
+            {"key": "trial-fuse", "kind": "fuse", "characteristic": "gG", "standard": "BS 88-2", "rated_current_a": 32},
+        ),
     )
 
 
@@ -77,6 +92,21 @@ def test_the_loop_impedance_of_b32_lies_inside_the_interval(quality: str, seed: 
     loop_ohm = 0.95 * 230.0 / (5 * 32)
     assert 0.95 * 230.0 / trips.upper <= loop_ohm <= 0.95 * 230.0 / trips.lower
     assert (trips.upper - trips.lower) / trips.value < 0.01
+
+
+@pytest.mark.parametrize(("quality", "seed"), [("clean", 61), ("vector", 62), ("grey", 63)])
+def test_the_loop_impedance_of_a_fuse_lies_inside_the_interval(quality: str, seed: int, tmp_path: Path) -> None:
+    reading = digitise(sheet_of(fuse_bs88_32(), seed, quality).written(tmp_path))
+    trips = Device(reading.devices[0]).trip_current(0.4, meaning="operating").trips
+    assert trips is not None
+    # 0.95 x 230 V / 220 A = 0.9932 ohm, printed as 0.99 in BS 7671:2018 Table 41.2, BS 88-2 32 A, 0.4 s
+    loop_ohm = 0.95 * 230.0 / 220.0
+    # The drawn line is straight between its vertices, and up to 2e-4 off the smooth one.
+    assert 0.95 * 230.0 / trips.upper * (1 - 2e-4) <= loop_ohm <= 0.95 * 230.0 / trips.lower * (1 + 2e-4)
+    assert (trips.upper - trips.lower) / trips.value < 0.01
+    # At the limit the printed impedance implies: never failed.
+    outcomes = {finding.rule: finding.outcome for finding in reading.findings}
+    assert outcomes["disconnects-0.4s-32"] in ("at limit", "undecided")
 
 
 @pytest.mark.parametrize(("quality", "seed"), [("clean", 51), ("vector", 52), ("grey", 53)])
