@@ -5,6 +5,7 @@ from dataclasses import dataclass, replace
 import cv2
 import numpy as np
 
+from curvelab.axes.flatten import Flattening, flattening
 from curvelab.axes.marks import pixel_size
 from curvelab.axes.segments import Segments, straight_segments
 from curvelab.axes.strips import STRIP, strips_of
@@ -14,6 +15,9 @@ from curvelab.records.sheet import Pixels, Sheet, Word
 
 IMAGE_SD = 0.6
 """Pixels by which a line is off its place in the search, on images that are turned or noisy too."""
+
+BENT_SD = 1.2
+"""The same on pages seen at an angle, which as a rule are curled too."""
 
 VECTOR_SD = 0.1
 """The same of exact strokes, in pixels of the page as it is seen."""
@@ -26,7 +30,7 @@ VECTOR_NEAR = 4.0
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Page:
-    """Straight pieces told apart by x and by y, in pixels of an image or places of a vector page.
+    """Straight pieces told apart by x and by y, in pixels of an image made flat or places of a vector page.
 
     ``near`` is how far ends that meet may be apart, ``sd`` how well places across are known.
     """
@@ -37,14 +41,16 @@ class Page:
     near: float
     sd: float
     pixels: Pixels | None
+    flattening: Flattening
 
     def places(self, points: Floats) -> Floats:
         """Places of the sheet, shape (n, 2), of points of this page."""
+        points = self.flattening.seen(points)
         return self.pixels.places(points) if self.pixels else points
 
     def points(self, places: Floats) -> Floats:
         """Points of this page, shape (n, 2), of places of the sheet."""
-        return self.pixels.columns_rows(places) if self.pixels else places
+        return self.flattening.flat(self.pixels.columns_rows(places) if self.pixels else places)
 
     def word(self, word: Word) -> Word:
         """A word with its box and height in this page's unit."""
@@ -81,15 +87,19 @@ def page_of(sheet: Sheet) -> Page:
             near=VECTOR_NEAR * pixel,
             sd=VECTOR_SD * pixel,
             pixels=None,
+            flattening=Flattening(centre=np.zeros(2), far=np.zeros(2)),
         )
     grey = sheet.pixels.grey
     turned: Bytes = np.ascontiguousarray(cv2.transpose(grey))
     upright, level = (track_lines(strips_of(image, (0, image.shape[0]))) for image in (grey, turned))
+    size = (float(grey.shape[1]), float(grey.shape[0]))
+    flat = flattening(upright, level, size)
     return Page(
-        upright=upright,
-        level=level,
-        size=(float(grey.shape[1]), float(grey.shape[0])),
+        upright=flat.segments(upright, 0),
+        level=flat.segments(level, 1),
+        size=size,
         near=IMAGE_NEAR,
-        sd=IMAGE_SD,
+        sd=IMAGE_SD if flat.is_straight else BENT_SD,
         pixels=sheet.pixels,
+        flattening=flat,
     )

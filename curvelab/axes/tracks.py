@@ -32,7 +32,7 @@ LEAST_STRIPS = 4
 """Shorter pieces are lettering, as a rule."""
 
 OFF, UNEVEN = 0.8, 2.0
-"""Pixels off a piece's straight line, and the factor from its usual darkness, beyond which a strip is not its end."""
+"""Pixels off a piece's own parabola, and the factor from its usual darkness, beyond which a strip is not its end."""
 
 SETTLED = 4
 """Strips after which a piece's slope is known."""
@@ -147,7 +147,7 @@ def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: 
         lean = np.bincount(number, run * (place - across[number])) / np.where(spread > 0, spread, 1.0)
     darkness = np.bincount(number, dark) / np.maximum(count, 1)
     # Lettering that stands in line with a line seems to prolong it, but not as exactly nor as darkly.
-    off = np.abs(place - across[number] - lean[number] * run)
+    off = np.abs(_off_parabola(number, run, place - across[number] - lean[number] * run))
     share = dark / darkness[number]
     own = (off <= OFF) & (share >= 1.0 / UNEVEN) & (share <= UNEVEN)
     first = np.full(len(count), np.inf)
@@ -166,3 +166,14 @@ def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: 
         width=np.ones(len(count)),
         darkness=np.clip(darkness / 255.0, 0.0, 1.0),
     ).where(kept)
+
+
+def _off_parabola(number: Ints, run: Floats, off: Floats) -> Floats:
+    """What is left of distances from straight lines once each piece may bend a little."""
+    count = np.maximum(np.bincount(number), 1)
+    second, third = np.bincount(number, run**2) / count, np.bincount(number, run**3) / count
+    bow = run**2 - second[number] - (third / np.maximum(second, 1e-9))[number] * run
+    spread = np.bincount(number, bow**2)
+    bend = np.bincount(number, bow * off) / np.maximum(spread, 1e-9)
+    left: Floats = off - bend[number] * bow
+    return left
