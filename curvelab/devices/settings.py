@@ -49,14 +49,15 @@ def checked_settings(plate: Nameplate, given: Given) -> Given:
     for name, value in given.items():
         if name not in known:
             raise DeviceError(f"'{plate.key}' has no setting '{name}'", f"Its settings: {written_ranges(plate)}")
-        if not _possible(known[name], value):
+        if not is_possible(known[name], value):
             raise DeviceError(
                 f"'{plate.key}' cannot be set to {name} = {value}", f"Expected {written_range(known[name])}"
             )
     return MappingProxyType({name: value if value == OFF else float(value) for name, value in given.items()})
 
 
-def _possible(setting: Setting, value: float | str) -> bool:
+def is_possible(setting: Setting, value: float | str) -> bool:
+    """Whether a setting can take a value."""
     if isinstance(value, str):
         return value == OFF and setting.can_be_off
     if isinstance(value, bool) or not math.isfinite(value) or value <= 0:

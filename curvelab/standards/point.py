@@ -1,11 +1,12 @@
 """A rule at one device's settings: the current and the time it is tested at."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, replace
 
 from curvelab.devices.bases import PICK_UP_SETTING
 from curvelab.devices.device import Device
-from curvelab.devices.settings import OFF
+from curvelab.devices.settings import OFF, is_possible
+from curvelab.records.curve import Curve
 from curvelab.records.device import Nameplate, Setting
 from curvelab.standards.rule import Rule
 
@@ -69,15 +70,18 @@ def at_drawn_settings(device: Device) -> tuple[Device, ...]:
     if device.is_set:
         return (device,)
     declared = {setting.name: setting for setting in device.nameplate.settings}
+    drawn = [_possible_settings(curve, declared) for curve in device.record.curves if curve.quantity == "time"]
     usual = {name: value for name, setting in declared.items() if (value := _widest(setting)) is not None}
-    for curve in reversed(device.record.curves):
-        usual |= {name: value for name, value in curve.at.items() if name in declared}
-    drawn = dict.fromkeys(
-        tuple(sorted({**usual, **{name: v for name, v in curve.at.items() if name in declared}}.items()))
-        for curve in device.record.curves
-        if curve.quantity == "time"
-    )
-    return tuple(device.at(**dict(settings)) for settings in drawn)
+    for settings in reversed(drawn):
+        usual |= settings
+    combinations = dict.fromkeys(tuple(sorted({**usual, **settings}.items())) for settings in drawn)
+    return tuple(device.at(**dict(settings)) for settings in combinations)
+
+
+def _possible_settings(curve: Curve, declared: Mapping[str, Setting]) -> dict[str, float]:
+    """What a curve is drawn for, of the settings the device has and can take."""
+    at = curve.at.items()
+    return {name: value for name, value in at if name in declared and is_possible(declared[name], value)}
 
 
 def _widest(setting: Setting) -> float | None:

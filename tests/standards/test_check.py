@@ -5,7 +5,7 @@ from dataclasses import replace
 import pytest
 
 from curvelab.records.curve import Conditions
-from curvelab.records.device import Nameplate
+from curvelab.records.device import Nameplate, Setting
 from curvelab.standards.check import check
 from curvelab.standards.rules import load_rules
 from curvelab.standards.scope import unchecked
@@ -257,3 +257,20 @@ def test_in_a_gap_the_line_on_both_sides_decides():
     assert (finding.outcome, finding.unit) == ("meets", "xIn")
     assert finding.value == pytest.approx(4.7)
     assert by_rule(device(stepped, characteristic="B", rated_current_a=16.0), "e-B").outcome == "not covered"
+
+
+def test_each_combination_of_settings_that_is_drawn_is_checked_and_an_impossible_one_is_not():
+    def drawn(tms):
+        points = [(1.5, 27.0 * tms), (2, 13.5 * tms), (5, 3.375 * tms), (20, 0.71 * tms)]
+        words = {"meaning": "relay_output", "base": "xIr", "at": {"tms": tms}}
+        return line("mean", points, sd=0.001, time_setting="tms", time_setting_at=tms, **words)
+
+    settings = (Setting(name="tms", from_value=0.05, to_value=1.0),)
+    plate = {"kind": "relay", "characteristic": "IEC very inverse", "settings": settings}
+    both = [finding for finding in check(device(drawn(0.1), drawn(1.0), **plate)) if "mean" in finding.rule]
+    asked = {(finding.requirement.rsplit("(", 1)[1], finding.rule) for finding in both}
+    assert len(asked) == len(both) == 2 * 8
+    at_two = [finding for finding in both if finding.rule.endswith(("lower-2", "lower-5"))]
+    assert {finding.outcome for finding in at_two} == {"meets"}
+    beyond = check(device(drawn(3.0), **plate))
+    assert all("set to tms = 1" in finding.requirement for finding in beyond)
