@@ -1,6 +1,7 @@
 """``curvelab check``: a device against the rules of its standard."""
 
 from collections.abc import Sequence
+from dataclasses import replace
 from pathlib import Path
 
 import click
@@ -11,10 +12,13 @@ from curvelab.cli.output import json_option, library_option, table, write_json
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
 from curvelab.library.key import split_key
+from curvelab.library.library import Library
 from curvelab.library.place import library_path
+from curvelab.library.search import Page, Wanted
 from curvelab.reading.as_json import finding_json
-from curvelab.records.device import DeviceRecord
+from curvelab.records.device import DeviceRecord, Nameplate
 from curvelab.records.finding import Finding
+from curvelab.standards.family import doubts_about_family
 from curvelab.standards.review import review
 from curvelab.standards.rules import rules_beside
 from curvelab.standards.scope import unchecked
@@ -46,8 +50,11 @@ def command(
     Advisory rules are marked; they never decide the exit status. Rule files in a folder `standards` beside the library
     are checked too. An adjustable device is checked at the settings its curves are drawn for, unless --set says others.
     """
-    devices = [Device(record, dict(settings)) for record in _records(subject, library_file)]
+    records, neighbours = _records(subject, library_file)
+    devices = [Device(record, dict(settings)) for record in records]
     findings = review(devices, rules_beside(library_path(library_file)))
+    if neighbours:
+        findings += doubts_about_family([*map(Device, neighbours), *devices])
     if picture_file:
         _draw(devices, findings, picture_file)
     if json_file:
@@ -57,11 +64,24 @@ def command(
     return 1 if any(each.outcome in {"fails", "undecided"} and not each.advisory for each in findings) else 0
 
 
-def _records(subject: str, library_file: str | None) -> tuple[DeviceRecord, ...]:
+def _records(subject: str, library_file: str | None) -> tuple[tuple[DeviceRecord, ...], tuple[DeviceRecord, ...]]:
+    """The devices to check, and of a stored one the next smaller and next larger of its series."""
     if Path(subject).suffix.lower() == ".toml":
-        return tuple(curvelab.digitise(subject).devices)
+        return tuple(curvelab.digitise(subject).devices), ()
     with curvelab.open_library(library_file, create=False) as library:
-        return (library.record(*split_key(subject)),)
+        record = library.record(*split_key(subject))
+        return (record,), tuple(library.record(key) for key in _beside(library, record.nameplate))
+
+
+def _beside(library: Library, plate: Nameplate) -> list[str]:
+    rating = plate.rated_current_a
+    if plate.series is None or rating is None:
+        return []
+    series = Wanted(kind=plate.kind, characteristic=plate.characteristic, maker=plate.maker, series=plate.series)
+    below, above = replace(series, rated_to_a=rating * (1 - 1e-9)), replace(series, rated_from_a=rating * (1 + 1e-9))
+    nearest = Page(sort="rated_current_a", falling=True, count=1), Page(sort="rated_current_a", count=1)
+    found = (library.find(wanted, page) for wanted, page in zip((below, above), nearest, strict=True))
+    return [row["device_key"] for each in found for row in each.rows]
 
 
 def _draw(devices: Sequence[Device], findings: Sequence[Finding], picture_file: str) -> None:

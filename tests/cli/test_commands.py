@@ -142,6 +142,22 @@ def test_a_switch_is_said_to_protect_nothing(site: Path, capsys: pytest.CaptureF
     assert "not a protective device" in capsys.readouterr().out
 
 
+def test_a_stored_device_is_compared_with_its_neighbours_in_the_series(
+    site: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    for rating, factor in ((80, 0.8), (100, 1.0), (125, 0.9)):
+        points = [[round(current * factor), time] for current, time in ([300, 100], [1000, 0.1], [3000, 0.0012])]
+        text = FUSE.replace("[[300, 100], [1000, 0.1], [3000, 0.0012]]", str(points))
+        text = text.replace("hall-gg100", f"quay-gg{rating}").replace("= 100\n", f'= {rating}\nseries = "quay"\n')
+        (site / f"{rating}.toml").write_text(text, encoding="utf-8")
+        assert run(["store", str(site / f"{rating}.toml")]) == 0
+    capsys.readouterr()
+    _, findings = printed_json(capsys, "check", "quay-gg100")
+    order = {each["device"]: each["outcome"] for each in findings if each["clause"] == "rating order"}
+    # 125 A is drawn below 100 A on purpose.
+    assert order == {"quay-gg100": "meets", "quay-gg125": "fails"}
+
+
 def test_storing_again_changes_nothing(site: Path, capsys: pytest.CaptureFixture[str]) -> None:
     assert run(["store", str(site / "b32.toml")]) == 0
     assert "hall-b32: revision 1, as it was" in capsys.readouterr().out
