@@ -28,8 +28,8 @@ COLUMNS = (
     ("Clause", 0.835),
 )
 """Heading and left end of each column, as fractions of the table's width."""
-LETTERS = 74
-"""Of a requirement that fit into its column."""
+LETTERS, CLAUSE_LETTERS = 74, 26
+"""Of a requirement and of a clause that fit into their columns."""
 
 
 def draw_check_page(device: DeviceRecord, findings: Sequence[Finding], path: str | Path) -> None:
@@ -75,14 +75,17 @@ def _rule(y: float) -> Line2D:
 
 
 def _cells(finding: Finding) -> tuple[str, ...]:
-    words = finding.requirement
     return (
-        words if len(words) <= LETTERS else words[: LETTERS - 1] + "…",
+        _cut(finding.requirement, LETTERS),
         "" if finding.value is None else written_between(finding.value, finding.interval, finding.unit),
         "" if finding.margin is None else written_percent(finding.margin),
         finding.outcome + (" *" if finding.advisory else ""),
-        finding.clause,
+        _cut(finding.clause, CLAUSE_LETTERS),
     )
+
+
+def _cut(words: str, letters: int) -> str:
+    return words if len(words) <= letters else words[: letters - 1] + "…"
 
 
 def _colour(finding: Finding) -> str:

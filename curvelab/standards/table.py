@@ -24,7 +24,7 @@ _DEVICE_KEYS = {
 }
 _ASKED_KEYS = {"start", "supply", "path", "meaning", "edge", "waveform"}
 _RULE_KEYS = {
-    *("id", "clause", "requirement", "strict", "times_settings", "source", "confidence", "advisory", "note"),
+    *("id", "clause", "edition", "requirement", "strict", "times_settings", "source", "confidence", "advisory", "note"),
     *LIMIT_KEYS,
     *_DEVICE_KEYS,
     *_ASKED_KEYS,
@@ -105,7 +105,7 @@ class _Reader:
         common: dict[str, Any] = {
             "group": group,
             "standard": self._standard,
-            "clause": text(entry, "clause", place),
+            "clause": _clause(entry, place),
             "asked": _asked(entry, place),
             "requirement": choice(entry, "requirement", REQUIREMENTS, place),
             "strict": flag(entry, "strict", place),
@@ -165,6 +165,12 @@ def _rule(limit: StatedLimit, devices: Devices, common: Mapping[str, Any]) -> Ru
         let_through_a2s=limit.let_through_a2s,
         **common,
     )
+
+
+def _clause(entry: Mapping[str, Any], place: str) -> str:
+    """The clause, with the edition where it matters."""
+    clause = text(entry, "clause", place)
+    return f"{clause} ({text(entry, 'edition', place)})" if "edition" in entry else clause
 
 
 def _asked(entry: Mapping[str, Any], place: str) -> Asked:
