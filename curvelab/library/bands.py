@@ -86,6 +86,9 @@ def find_bands(
         rows.append({name: row[name] for name in COLUMNS})
         if len(rows) == page.count:
             break
+    else:
+        # Every candidate was asked: the number is exact.
+        surely, perhaps = skipped + len(rows), 0
     condition, values = conditions(wanted)
     (adjustable,) = connection.execute(
         f"SELECT count(*) FROM current_device WHERE {condition} AND is_adjustable = 1", values

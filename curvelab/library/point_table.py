@@ -20,14 +20,17 @@ from curvelab.library.load import CONDITION_COLUMNS, PLATE_COLUMNS
 from curvelab.records.curve import Conditions, Curve, Part
 from curvelab.records.device import DeviceRecord, Nameplate
 
-CURVE_COLUMNS = ("element", "edge", "meaning", "quantity", "base", *CONDITION_COLUMNS, "settings", "leaves_top")
+CURVE_COLUMNS = ("element", "edge", "meaning", "quantity", "base", *CONDITION_COLUMNS, "leaves_top", "settings")
 POINT_COLUMNS = ("part", "current", "value", "sd_current", "sd_value", "sd_common")
 _PLATE = MappingProxyType({"frequency_hz": "rated_frequency_hz"})
 PLATE = MappingProxyType({name: _PLATE.get(name, name) for name in PLATE_COLUMNS})
 """Field of the nameplate -> its column; the frequency a curve is drawn for has the field's name."""
 
-COLUMNS = ("device_key", "revision", "state", "kind", *CURVE_COLUMNS, *POINT_COLUMNS, *PLATE.values(), "source")
-"""In the order in which they are written; free text stands last."""
+COLUMNS = (
+    *("device_key", "revision", "state", "kind", *CURVE_COLUMNS[:-1], *POINT_COLUMNS),
+    *(*PLATE.values(), "source", "settings"),
+)
+"""In the order in which they are written; what may hold a comma stands last."""
 
 NEEDED = ("device_key", "kind", "edge", "current", "value")
 _TOLD = ("revision", "state")

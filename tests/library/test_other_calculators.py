@@ -1,14 +1,20 @@
 """What other programs see: the examples of database/README.md run as printed; the views say what the records say."""
 
+import csv
 import math
+import os
 import re
+import shutil
 import sqlite3
+import subprocess
 from dataclasses import replace
 from pathlib import Path
 
+import formulas
 import numpy as np
 import pytest
 
+from curvelab.cli.main import run
 from curvelab.library.library import open_library
 from curvelab.paths import shipped
 from curvelab.records.curve import Conditions, Part, SheetKey
@@ -91,6 +97,49 @@ def test_the_python_example_never_crosses_a_gap(tmp_path: Path) -> None:
     exec(example("python"), names)
     assert names["slow_time_s"](path, "gap", 30.0) is None
     assert names["slow_time_s"](path, "gap", 40.0) == 9.0
+
+
+TABLE_S = 10.0
+"""At 160 A, half-way in log-log between 80 A, 100 s and 320 A, 1 s."""
+
+
+def exported_points(firm: Path, folder: Path) -> Path:
+    target = folder / "points.csv"
+    assert run(["library", "export", str(target), "riverside-b32", "--library", str(firm)]) == 0
+    return target
+
+
+def test_the_spreadsheet_example_gives_the_time(firm: Path, tmp_path: Path) -> None:
+    """Computed by an independent implementation of spreadsheet formulas (the library ``formulas``)."""
+    with exported_points(firm, tmp_path).open(encoding="utf-8", newline="") as file:
+        rows = [row for row in csv.DictReader(file) if row["edge"] == "slow" and row["quantity"] == "time"]
+    cells = dict(line.split(": ", 1) for line in example("excel").splitlines())
+    empty = [[np.nan]] * (98 - len(rows))
+    currents = np.array([[float(row["current"])] for row in rows] + empty, dtype=object)
+    times = np.array([[float(row["value"])] for row in rows] + empty, dtype=object)
+    currents[len(rows) :], times[len(rows) :] = "", ""
+    given = {"A2:A99": currents, "B2:B99": times, "D1": 5.0}
+    for cell in ("E1", "F1"):
+        formula = formulas.Parser().ast(cells[cell])[1].compile()
+        given[cell] = float(np.ravel(formula(*(given[name] for name in formula.inputs)))[0])
+    assert given["F1"] == pytest.approx(TABLE_S, rel=1e-9)
+
+
+@pytest.mark.skipif(shutil.which("awk") is None, reason="no awk on this system")
+@pytest.mark.parametrize(("asked", "answers"), [("5", [TABLE_S]), ("10", [1.0]), ("2.4", []), ("21", [])])
+def test_the_awk_example_gives_the_time(firm: Path, tmp_path: Path, asked: str, answers: list[float]) -> None:
+    script = tmp_path / "slow.awk"
+    script.write_text(example("awk"), encoding="utf-8")
+    points = exported_points(firm, tmp_path)
+    done = subprocess.run(
+        ["awk", "-v", "edge=slow", "-v", f"asked={asked}", "-f", str(script), str(points)],
+        capture_output=True,
+        text=True,
+        check=True,
+        env={"LC_ALL": "C", "PATH": os.environ["PATH"]},
+    )
+    assert [float(line) for line in done.stdout.split()] == answers
+    assert done.stderr == ""
 
 
 def rows_of(path: Path, view: str, wanted: str) -> list[tuple[object, ...]]:
