@@ -63,19 +63,21 @@ def placed_limits(findings: Iterable[Finding], subjects: Sequence[Subject], base
 
 
 def _spread(limits: Sequence[Limit]) -> tuple[Limit, ...]:
-    """The words of limits that stand close together, a line further out each."""
+    """The words of limits that stand close together, a line further out each; the same words stand there once."""
     placed: list[Limit] = []
     for limit in limits:
-        beside = [
-            each.lines
-            for each in placed
-            if each.opening == limit.opening
-            and abs(math.log(each.time_s / limit.time_s)) < CLOSE
-            and abs(math.log(each.current / limit.current)) < CLOSE
-        ]
-        free = next(line for line in range(len(beside) + 1) if line not in beside)
-        placed.append(replace(limit, lines=free))
+        beside = [each for each in placed if _are_close(each, limit)]
+        if any(each.words == limit.words for each in beside):
+            placed.append(replace(limit, words=""))
+            continue
+        taken = {each.lines for each in beside if each.words}
+        placed.append(replace(limit, lines=next(line for line in range(len(taken) + 1) if line not in taken)))
     return tuple(placed)
+
+
+def _are_close(one: Limit, other: Limit) -> bool:
+    apart = abs(math.log(one.time_s / other.time_s)), abs(math.log(one.current / other.current))
+    return one.opening == other.opening and max(apart) < CLOSE
 
 
 def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
@@ -113,6 +115,8 @@ def draw_limit(axes: Axes, limit: Limit) -> None:
         clip_on=False,
         zorder=5,
     )
+    if not limit.words:
+        return
     axes.annotate(
         limit.words,
         (limit.current, limit.time_s),

@@ -49,6 +49,8 @@ def test_words_of_limits_that_stand_close_are_on_lines_of_their_own():
     apart = [finding(4.0, 5.0, "at_most"), finding(4.3, 5.0, "at_least"), finding(9.0, 5.0, "at_most")]
     assert {each.lines for each in placed(apart, mcb())} == {0}
     assert LINE > 6.5
+    twice = placed([finding(4.0, 5.0, "at_most"), finding(4.0, 5.2, "at_most")], mcb())
+    assert [bool(each.words) for each in twice] == [True, False]
 
 
 def test_the_limit_of_an_energy_stands_at_its_current_and_time():
