@@ -62,7 +62,7 @@ def answer_of(device: Device, point: Point) -> Answer:
 
 
 def cold_answer(device: Device, point: Point) -> Answer:
-    """What the cold line says where a rule starts hot: it decides nothing, and yet is there."""
+    """What the cold line says where a rule starts hot."""
     asked = point.rule.asked
     return _answer(device, point, _Way(meaning=asked.meaning, conditions=Conditions(start="cold", supply=asked.supply)))
 

@@ -95,14 +95,18 @@ def _judged_at(device: Device, point: Point) -> Judgement:
     if point.rule.let_through_a2s is not None:
         return judge_energy(point, answer.current)
     judgement = judge(point, answer.time, answer.current, in_gap=answer.in_gap)
-    if (
-        judgement.outcome == "not covered"
-        and point.rule.asked.start == "hot"
-        and cold_answer(device, point).reaches(point)
-    ):
+    if judgement.outcome == "not covered" and point.rule.asked.start == "hot" and _is_open_from_cold(device, point):
         note = "The curve is drawn from cold, and longer there; one drawn from the hot start would settle it."
         return Judgement(outcome="undecided", note=note)
     return judgement
+
+
+def _is_open_from_cold(device: Device, point: Point) -> bool:
+    """Whether the cold line says anything at a point that starts hot: it decides nothing, and yet is there."""
+    cold = cold_answer(device, point)
+    if cold.time is None or cold.current is None:
+        return False
+    return judge(point, cold.time, cold.current, in_gap=cold.in_gap).outcome != "not covered"
 
 
 def _without_edge(answer: Answer) -> Judgement:

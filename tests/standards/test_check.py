@@ -213,6 +213,8 @@ def test_a_fuse_that_is_off_has_melted_and_one_that_melted_is_not_yet_off():
 def test_a_hot_test_on_a_cold_line_that_leaves_the_top_is_undecided_not_silent():
     slow = line("slow", [(1.6, 10_000), (5, 8)], sd=0.01, leaves_top=True)
     assert outcomes_of(device(slow, characteristic="B", rated_current_a=16.0))["b-le63"] == "undecided"
+    short = line("slow", [(1.6, 8_000), (5, 8)], sd=0.01)
+    assert outcomes_of(device(short, characteristic="B", rated_current_a=16.0))["b-le63"] == "undecided"
     hot = line("slow", [(1.6, 10_000), (5, 8)], sd=0.01, leaves_top=True, conditions=HOT)
     assert outcomes_of(device(hot, characteristic="B", rated_current_a=16.0))["b-le63"] == "fails"
 
