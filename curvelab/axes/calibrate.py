@@ -2,6 +2,7 @@
 
 from dataclasses import replace
 
+from curvelab.axes.bending import bending_doubts
 from curvelab.axes.choose import checked_plot
 from curvelab.axes.entries import checked_axes
 from curvelab.axes.find import FoundAxes, Words, find_axes, is_open
@@ -46,7 +47,8 @@ def calibrate(
     grid = raster_grid(sheet.pixels, axes) if sheet.pixels else vector_grid(sheet, axes)
     calibrated, doubts = finished_axes(sheet, axes, grid)
     automatic = not current.marks and not (value and value.marks)
-    return replace(calibrated, automatic=automatic, plot=found.plot), (*found.warnings, *warnings, *doubts)
+    bent = bending_doubts(calibrated, sheet.pixels.size_in_places) if sheet.pixels else ()
+    return replace(calibrated, automatic=automatic, plot=found.plot), (*found.warnings, *warnings, *doubts, *bent)
 
 
 def _found(sheet: Sheet, current: AxisEntry, value: AxisEntry | None, plot: int | None, words: Words) -> FoundAxes:

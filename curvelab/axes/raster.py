@@ -5,6 +5,7 @@ from dataclasses import dataclass, replace
 import cv2
 import numpy as np
 
+from curvelab.axes.bent import Sighted, bent_plane
 from curvelab.axes.comb import Alignment
 from curvelab.axes.extent import AT_LINE, covered_range
 from curvelab.axes.grid import AXIS_NAMES, Grid, aligned_marks, disagrees, rough_rows
@@ -87,6 +88,9 @@ def raster_grid(pixels: Pixels, axes: tuple[Axis, Axis]) -> Grid:
         Current and second axis, with at least two marks each.
     """
     views = _views(pixels, axes)
+    bent = _bent(views)
+    if bent is not None:
+        return _measured(pixels, views, *bent, astray=(False, False))
     slopes = shared_slopes(views[0].seed, views[1].seed)
     profiles = [profile_along(view.seed, slope) for view, slope in zip(views, slopes, strict=True)]
     laid = [_laid(view, slope, profile) for view, slope, profile in zip(views, slopes, profiles, strict=True)]
@@ -97,6 +101,25 @@ def raster_grid(pixels: Pixels, axes: tuple[Axis, Axis]) -> Grid:
     main = tuple(alignment.lines if alignment.agrees else np.zeros(0) for alignment in laid)
     state = _State(plane=_first_plane(views, laid, slopes), lines=(main[0], main[1]), covered=seeds)
     state = _searched(state, views, state.lines, _Round(strips=[view.seed for view in views], reach=3.0, models=()))
+    return _measured(pixels, views, laid, state, astray=astray)
+
+
+def _bent(views: tuple[_View, _View]) -> tuple[list[Alignment], _State] | None:
+    """The start on a page seen at an angle, whose lines have no slope in common; None on others."""
+    sighted = tuple(Sighted(axis=view.axis, look=view.look, marks=view.marks, strips=view.whole) for view in views)
+    laid = [Alignment(ruler=each.ruler, lines=each.lines, agrees=True, score=0.0, step=each.step) for each in sighted]
+    plane = bent_plane(_first_plane(views, laid, (0.0, 0.0)), (sighted[0], sighted[1]))
+    if plane is None:
+        return None
+    seeds = (views[0].seed_range, views[1].seed_range)
+    return laid, _State(plane=plane, lines=(laid[0].lines, laid[1].lines), covered=seeds)
+
+
+def _measured(
+    pixels: Pixels, views: tuple[_View, _View], laid: list[Alignment], state: _State, *, astray: tuple[bool, bool]
+) -> Grid:
+    """The grid from a first map of it: how far it reaches, every line it has, each measured."""
+    axes = (views[0].axis, views[1].axis)
     state = _extended(state, views)
     for finest, reach in ((False, 3.0), (True, 1.5)):
         candidates = [

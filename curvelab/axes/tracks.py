@@ -80,6 +80,15 @@ def track_lines(strips: Strips) -> Segments:
     return _segments(strips, strip, place, dark, number)
 
 
+def track_places(strips: Strips, least: int) -> list[Floats]:
+    """Places (across, along), shape (n, 2), of each piece seen in at least so many strips."""
+    strip, place, _ = _peaks(strips)
+    number = _linked(strip, place, len(strips.along))
+    order = np.argsort(number, kind="stable")
+    parts = np.split(order, np.flatnonzero(np.diff(number[order])) + 1) if len(order) else []
+    return [np.stack([place[part], strips.along[strip[part]]], axis=1) for part in parts if len(part) >= least]
+
+
 def _peaks(strips: Strips) -> tuple[Ints, Floats, Floats]:
     """Strip, place and darkness of every local maximum, in order of strips and places."""
     dark = strips.dark
