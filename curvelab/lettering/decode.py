@@ -19,13 +19,13 @@ LEAST_CHANCE = -6.0
 LEAST_NONE = 0.6
 """Chance of being no character from which ink is offered to be left out."""
 
-NONE_LOSS = -1.0
+NONE_LOSS = -3.5
 """Log of how much rarer other ink is within a line than its shape alone says."""
 
 SURELY_NONE = float(np.log(0.9))
 """Where every segment is more surely no character than this, the line is no lettering."""
 
-SPACE = 0.30 * CAPITAL_PX
+SPACE = 0.22 * CAPITAL_PX
 """A gap wider than this above the line's usual gap is a printed space."""
 
 POINT_SPACE = 0.55 * CAPITAL_PX
@@ -41,8 +41,9 @@ RAISED_DASH = 0.62
 class Character:
     """One character of a reading and its segment; ``text`` is empty where the ink is taken for something else.
 
-    By its shape alone: ``log_chance`` that it is this one, ``log_alike`` this one or one that looks like it,
-    ``none`` the chance that it is no character at all. ``high`` where a digit stands so high that it is raised, ``dash_high`` where a dash does.
+    By its shape alone: ``log_chance`` that it is this one, ``log_alike`` this one or one that looks like it, ``none``
+    the chance that it is no character at all. ``high`` where a digit stands so high that it is raised, ``dash_high``
+    where a dash does.
     """
 
     text: str
@@ -110,7 +111,7 @@ def _choices(segment: Segment, chances: Matrix, strip: Strip) -> list[Character]
     order = np.argsort(-chances[:-1])[:CHOICES]
     best, none = float(chances[order[0]]), float(np.exp(chances[-1]))
     told = [(CLASSES[number], float(chances[number])) for number in order if chances[number] - best >= LEAST_CHANCE]
-    if none >= LEAST_NONE:
+    if none >= LEAST_NONE and segment.last - segment.first == 1:
         told.append(("", float(chances[-1]) + NONE_LOSS))
     every = np.exp(chances)
     return [

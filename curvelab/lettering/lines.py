@@ -11,7 +11,7 @@ from curvelab.records.arrays import Bytes
 CHARACTER_PX = 5
 """Pieces that are smaller in both directions are dots: they join a line but never start one."""
 
-WORD_GAP = 1.3
+WORD_GAP = 1.45
 """Gap between neighbours of one line, as a share of the taller one's height: a printed space is less, even in faces
 whose characters are all of one width."""
 
@@ -100,6 +100,8 @@ def _links(boxes: Boxes, barriers: Bytes) -> tuple[Ints, NDArray[np.float64]]:
     near = (
         (gap <= WORD_GAP * tall) & (x1[right] - x0[left] >= 0) & (shared >= 0.4 * lower) & (low >= LEAST_RATIO * tall)
     )
+    within = (x1[right] <= x1[left]) & (y0[right] >= y0[left]) & (y1[right] <= y1[left])
+    near &= ~within  # the dot in a zero is part of it
     left, right, relative = left[near], right[near], gap[near] / tall[near]
     free = _free(boxes[order], left, right, relative, barriers)
     left, right, relative = left[free], right[free], relative[free]

@@ -1,8 +1,9 @@
 """Words that differ from a known one by a misread letter are put right."""
 
 import re
+from functools import lru_cache
 
-from curvelab.lettering.vocabulary import WORDS
+from curvelab.lettering.vocabulary import UNITS, WORDS
 
 LEAST_LETTERS = 4
 """Shorter words are too alike: ``in`` and ``Ir`` must not be taken for one another."""
@@ -17,11 +18,39 @@ def respelt(text: str) -> tuple[str, int]:
 
     def mend(match: re.Match[str]) -> str:
         nonlocal changed
+        apart = spaced(match[0])
+        if apart is not None:
+            return apart
         word, letters = _nearest(match[0])
         changed += letters
         return word
 
     return _TOKEN.sub(mend, text), changed
+
+
+@lru_cache(maxsize=512)
+def spaced(token: str) -> str | None:
+    """A token of several known words whose spaces were lost, with the fewest spaces; None where it is none such.
+
+    ``Timeins`` is ``Time in s``; a unit may only stand last, after ``in``.
+    """
+    if len(token) < LEAST_LETTERS or token.lower() in WORDS:
+        return None
+    best: list[list[str] | None] = [[], *[None] * len(token)]
+    for end in range(2, len(token) + 1):
+        for start in range(end - 1):
+            before = best[start]
+            if before is None or token[start:end].lower() not in WORDS:
+                continue
+            reached = best[end]
+            if reached is None or len(before) + 1 < len(reached):
+                best[end] = [*before, token[start:end]]
+    whole = best[-1]
+    for unit in sorted(UNITS, key=len, reverse=True):
+        words = best[len(token) - len(unit)] if token.endswith(unit) and len(unit) < len(token) else None
+        if whole is None and words and words[-1].lower() == "in":
+            whole = [*words, unit]
+    return " ".join(whole) if whole else None
 
 
 def _nearest(token: str) -> tuple[str, int]:

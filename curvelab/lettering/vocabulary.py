@@ -24,7 +24,6 @@ _NUMBER = re.compile(r"\(?[+-]?(\d+([.,]\d+)*|[.,]\d+)\)?(k|M|[⁰¹²³⁴⁵�
 _QUANTITY = re.compile(r"[+-]?(\d+([.,]\d+)?|[.,]\d+)(A|kA|mA|ms|s|min|h|x|xIn|%)")
 _PLAIN_WORD = re.compile(r"[A-ZÄÖÜ]?[a-zäöüéèß]+[.,:]?|[A-Z]+")
 _GROUPS = re.compile(r"(?<=\d) (?=\d{3}(?!\d))")
-_BRACKETS = "()[],:;"
 
 NUMBER_GAIN = 1.0
 WORD_GAIN = 1.2
@@ -43,9 +42,10 @@ def fitness(text: str) -> float:
 
 
 def _token_fitness(token: str) -> float:
-    bare = token.strip(_BRACKETS)
-    if not bare:
-        return ODD_LOSS * len(token) * 0.5
+    bare = token.rstrip(".,:;")
+    bare = bare[bare[:1] in "([" : len(bare) - (bare[-1:] in ")]")]
+    if not bare or any(bracket in bare for bracket in "()[]"):
+        return ODD_LOSS * len(token)
     if _NUMBER.fullmatch(token):
         return NUMBER_GAIN * len(token) - _leading_zeros(bare)
     parts = [part for part in bare.split("/") if part]

@@ -27,6 +27,9 @@ GROUPS_APART = 1.2 * CAPITAL_PX
 TOUCHING = 0.6 * CAPITAL_PX
 """Ink nearer than this might be a further character of the word."""
 
+ENOUGH_PX = 13.0
+"""Capitals of this height are read as surely as larger ones."""
+
 CAPITAL_PER_SIZE = 0.72
 """Height of capitals as a share of the font size, typical of Latin faces."""
 
@@ -72,7 +75,7 @@ def evidence(part: Part, strip: Strip) -> NDArray[np.float64]:
     clear = math.prod(1.0 - one.none for one in part.characters)
     raw = min(max(part.texts[part.text] * clear, 1e-6), 1.0 - 1e-4)
     logs = [max(one.log_alike, -8.0) for one in part.characters]
-    size = math.log(min(CAPITAL_PX / strip.scale, 24.0) / 24.0)
+    size = math.log(min(CAPITAL_PX / strip.scale, ENOUGH_PX) / ENOUGH_PX)
     return np.array([1.0, math.log(raw / (1.0 - raw)), sum(logs), min(logs), size])
 
 

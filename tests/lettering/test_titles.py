@@ -70,3 +70,13 @@ def test_a_unit_alone_is_a_weak_title() -> None:
     assert title is not None
     assert (title.quantity, title.unit) == ("current", "kA")
     assert title.confidence < 0.7
+
+
+@pytest.mark.parametrize(
+    ("text", "unit"),
+    [("Timeins", "s"), ("Multipleofratedcurrent", "xIn"), ("Currentin kA", "kA"), ("Breaktimeinms", "ms")],
+)
+def test_lost_spaces_are_put_back(text: str, unit: str) -> None:
+    title = title_of(text)
+    assert title is not None
+    assert title.unit == unit
