@@ -5,7 +5,7 @@ from collections.abc import Iterable, Iterator
 from curvelab.devices.device import Device
 from curvelab.records.finding import Finding
 from curvelab.standards.answer import Answer, answer_of, cold_answer
-from curvelab.standards.elements import undrawn_element
+from curvelab.standards.elements import of_element, undrawn_element
 from curvelab.standards.judge import Judgement, judge, judge_energy
 from curvelab.standards.point import Point, at_drawn_settings, at_other_end, point_of, written_settings
 from curvelab.standards.rule import Rule
@@ -40,7 +40,7 @@ def _findings(device: Device, rules: Iterable[Rule]) -> Iterator[Finding]:
     for rule in rules:
         point = point_of(rule, device)
         if point is not None:
-            yield _finding(device.key, point, _judged(device, point), settings)
+            yield _finding(device.key, point, _judged(of_element(rule, device), point), settings)
 
 
 def _finding(key: str, point: Point, judgement: Judgement, settings: str) -> Finding:

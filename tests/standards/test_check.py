@@ -276,3 +276,30 @@ def test_each_combination_of_settings_that_is_drawn_is_checked_and_an_impossible
     assert {finding.outcome for finding in at_two} == {"meets"}
     beyond = check(device(drawn(3.0), **plate))
     assert all("set to tms = 1" in finding.requirement for finding in beyond)
+
+
+def test_an_overcurrent_curve_of_an_rcbo_says_nothing_of_its_residual_element():
+    slow = line("slow", [(1.4, 3000), (2.55, 50), (7, 5), (7, 0.05), (100, 0.02)], sd=0.01)
+    plate = {"kind": "rcbo", "characteristic": "C", "rated_current_a": 16.0, "rated_residual_current_a": 0.03}
+    outcomes = outcomes_of(device(slow, **plate))
+    assert outcomes["e-C"] == "meets"
+    assert {outcomes[rule] for rule in ("general-1", "general-2", "general-quarter")} == {"not covered"}
+
+
+def test_a_short_time_element_may_trip_before_the_instantaneous_one_is_due():
+    settings = (
+        Setting(name="isd", from_value=2.0, to_value=10.0, base="xIn"),
+        Setting(name="tsd", from_value=0.1, to_value=0.4),
+        Setting(name="ii", from_value=2.0, to_value=12.0, base="xIn"),
+    )
+    delayed = [
+        line(edge, [(1.0, 9), (1.0, time), (3, time)], base="xIsd", element="delayed", at={"tsd": 0.1}, sd=0.001)
+        for edge, time in (("fast", 0.08), ("slow", 0.15))
+    ]
+    fast = line("fast", [(0.9, 5), (0.9, 0.01), (3, 0.01)], base="xIi", element="instantaneous", sd=0.001)
+    made = device(*delayed, fast, kind="mccb", rated_current_a=100.0, settings=settings).at(isd=4, tsd=0.1, ii=10)
+    outcomes = outcomes_of(made)
+    # At 8 In the short-time element is off after 0.15 s, and the instantaneous one still holds below 9 In.
+    assert outcomes["instantaneous-hold"] == "meets"
+    assert outcomes["short-time-trip"] == "meets"
+    assert outcomes["overload-hold-gt63"] == "not covered"
