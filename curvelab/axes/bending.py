@@ -1,8 +1,7 @@
-"""Pages that were bent, on which too few lines show how."""
+"""Pages that were bent or seen at an angle: the map follows their lines, as far as these show how."""
 
 import numpy as np
 
-from curvelab.axes.planefit import RICHER
 from curvelab.records.axes import Axes
 from curvelab.records.warning import ReadingWarning
 
@@ -11,7 +10,7 @@ BENT = 3.0
 
 
 def bending_doubts(axes: Axes, pixel: float) -> tuple[ReadingWarning, ...]:
-    """A warning where a page is bent and an axis has fewer lines than it takes to follow that.
+    """A warning where a page is bent.
 
     Parameters
     ----------
@@ -19,15 +18,14 @@ def bending_doubts(axes: Axes, pixel: float) -> tuple[ReadingWarning, ...]:
     pixel : float
         One pixel in the sheet's unit.
     """
-    enough = max(model.lines for model in RICHER)
-    counts = {name: len({line.value for line in axes.grid if line.axis == name}) for name in ("current", "value")}
-    few = [name for name, count in counts.items() if count < enough]
-    if not few or bend(axes) < BENT * pixel:
+    off = bend(axes)
+    if off < BENT * pixel:
         return ()
+    lines = min(len({line.value for line in axes.grid if line.axis == name}) for name in ("current", "value"))
     x0, y0, x1, y1 = axes.frame
     text = (
-        f"The page is bent or was seen at an angle, and only {min(counts.values())} lines of one direction show how: "
-        "values may be off by more than the interval says; give a flat scan, or marks all over the plot."
+        f"The page is bent or was seen at an angle, by {off / pixel:.0f} pixels at a corner; {lines} lines of one "
+        "direction show how, and between them values may be off by more than the interval says: give a flat scan."
     )
     return (ReadingWarning(code="page-bent", text=text, at=(0.5 * (x0 + x1), 0.5 * (y0 + y1))),)
 

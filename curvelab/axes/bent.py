@@ -15,7 +15,7 @@ from curvelab.errors import AxesError
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axis, PlaneMap
 
-FANNED = (Model(projective=True, powers=(), lines=5),)
+FANNED = (Model(projective=True, powers=(), lines=4),)
 MARK_SCATTER = Scatter(lines=(CLICK_SD, CLICK_SD), place=CLICK_SD)
 PIECE_SCATTER = Scatter(lines=(0.1, 0.1), place=0.3)
 

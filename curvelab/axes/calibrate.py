@@ -4,9 +4,11 @@ from dataclasses import replace
 
 from curvelab.axes.bending import bending_doubts
 from curvelab.axes.choose import checked_plot
+from curvelab.axes.decide import check_read_marks
 from curvelab.axes.entries import checked_axes
 from curvelab.axes.find import FoundAxes, Words, find_axes, is_open
 from curvelab.axes.finish import finished_axes
+from curvelab.axes.marks import pixel_size
 from curvelab.axes.raster import raster_grid
 from curvelab.axes.vector import vector_grid
 from curvelab.lettering.read import read_words
@@ -47,6 +49,8 @@ def calibrate(
     grid = raster_grid(sheet.pixels, axes) if sheet.pixels else vector_grid(sheet, axes)
     calibrated, doubts = finished_axes(sheet, axes, grid)
     automatic = not current.marks and not (value and value.marks)
+    if automatic:
+        check_read_marks(calibrated, pixel_size(sheet))
     bent = bending_doubts(calibrated, sheet.pixels.size_in_places) if sheet.pixels else ()
     return replace(calibrated, automatic=automatic, plot=found.plot), (*found.warnings, *warnings, *doubts, *bent)
 

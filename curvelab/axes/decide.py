@@ -3,9 +3,10 @@
 from dataclasses import dataclass
 
 from curvelab.axes.consensus import Ruling
-from curvelab.axes.entries import table_name
+from curvelab.axes.entries import mark_text, table_name
 from curvelab.axes.naming import Naming
 from curvelab.errors import AxesError
+from curvelab.records.axes import Axes
 from curvelab.records.warning import ReadingWarning
 from curvelab.units import CURRENT_UNITS, VALUE_UNITS
 
@@ -23,6 +24,9 @@ EXPLAINED = 0.6
 
 LEAST_TITLE, SURE_TITLE = 0.3, 0.55
 """Confidence in a title, to be taken at all and without a warning."""
+
+FURTHEST = 3.0
+"""Pixels by which a mark that was read may lie off the map: it stood on a line that was seen."""
 
 MARKS_FIX = "marks = [{ at = [x, y], value = ... }, ...]"
 
@@ -95,6 +99,27 @@ def decided_ruling(quantity: str, direction: str, best: Ruling | None) -> tuple[
     if len(best.laid.lines) >= LEAST_VALUES and best.laid.explained < EXPLAINED:
         doubts.append(_doubtful_grid(quantity, best))
     return best, tuple(doubts)
+
+
+def check_read_marks(axes: Axes, pixel: float) -> None:
+    """Refuse axes whose lines were read but do not fit one map.
+
+    Raises
+    ------
+    AxesError
+        A mark that was read lies off where the map has its value.
+    """
+    off, axis, mark = max(
+        ((abs(mark.residual or 0.0), axis, mark) for axis in (axes.current, axes.value) for mark in axis.marks),
+        key=lambda each: each[0],
+    )
+    if off > FURTHEST * pixel:
+        raise AxesError(
+            f"The lines read along {table_name(axis.quantity)} do not fit one smooth map: "
+            f"{mark_text(mark)} lies {off:.3g} off",
+            f"Every line within {FURTHEST * pixel:.3g}",
+            f"Give a flat scan, or marks in {table_name('current')} and {table_name(axes.value.quantity)}",
+        )
 
 
 def _doubtful_unit(quantity: str, naming: Naming) -> ReadingWarning:
