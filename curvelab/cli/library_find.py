@@ -8,7 +8,7 @@ import click
 import curvelab
 from curvelab.cli.output import device_table, json_option, library_option, write_json
 from curvelab.library.bands import BandQuery, BandsFound, Point
-from curvelab.library.search import COLUMNS, PAGE, Found, Page, Wanted
+from curvelab.library.search import COLUMNS, MOST_COUNTED, PAGE, Found, Page, Wanted
 
 point = click.Tuple([float, float])
 
@@ -59,9 +59,9 @@ def find_command(words: tuple[str, ...], library_file: str | None, json_file: st
 def _counted(found: Found | BandsFound, page: Page) -> str:
     shown = f"{len(found.rows)} shown from {page.first}" if page.first else f"{len(found.rows)} shown"
     if isinstance(found, Found):
-        return f"{found.total} devices, {shown}"
+        return f"Devices: {found.total}{' or more' if found.total == MOST_COUNTED else ''}, {shown}"
     more = "" if found.surely == found.at_most else f" to {found.at_most}"
-    told = f"{found.surely}{more} devices, {shown}"
-    if not found.adjustable:
-        return told
-    return f"{told}; {found.adjustable} adjustable devices left out: query each at its settings"
+    left_out = (
+        f"; adjustable devices left out: {found.adjustable}, query each at its settings" if found.adjustable else ""
+    )
+    return f"Devices: {found.surely}{more}, {shown}{left_out}"

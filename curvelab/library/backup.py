@@ -59,7 +59,6 @@ def restore(backup: Path, target: Path) -> Path | None:
 def compact(connection: sqlite3.Connection) -> None:
     """Write the file anew without the space that is no longer used, and empty the log beside it."""
     connection.execute("VACUUM")
-    connection.execute("PRAGMA optimize")
     connection.execute("PRAGMA wal_checkpoint(TRUNCATE)")
 
 

@@ -15,10 +15,8 @@ from curvelab.devices.device import Device
 from curvelab.errors import DeviceError, InputError
 from curvelab.library.extent import STEP_TIMES_S
 from curvelab.library.load import read_revision
-from curvelab.library.search import COLUMNS, FIRST_PAGE, Page, Wanted, conditions
+from curvelab.library.search import COLUMNS, EVERY, FIRST_PAGE, Page, Wanted, conditions
 from curvelab.records.answer import EdgeAnswer
-
-EVERY = Wanted()
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

@@ -19,8 +19,8 @@ from curvelab.records.arrays import Floats
 from curvelab.records.curve import COVERAGE_FACTOR, Curve
 from curvelab.records.device import DeviceRecord, Nameplate
 
-STEP_TIMES_S = 10.0 ** np.arange(-3.0, 4.01, 0.25)
-"""The fixed times: a quarter of a decade apart, so that few devices lie between two of them."""
+STEP_TIMES_S = 10.0 ** np.arange(-3.0, 4.01, 0.5)
+"""The fixed times: half a decade apart, so that few devices lie between two of them."""
 
 _TIMES = STEP_TIMES_S[:, None]
 _NOTHING = np.zeros(STEP_TIMES_S.size)

@@ -8,31 +8,42 @@ import hashlib
 import json
 from collections.abc import Iterable, Mapping
 from dataclasses import fields, is_dataclass
-from functools import cache
-from typing import Any
+from functools import cache, lru_cache
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
 from curvelab.records.arrays import Floats
 from curvelab.records.curve import Curve
 from curvelab.records.device import Nameplate
-from curvelab.records.reading import Reading
+
+if TYPE_CHECKING:
+    from curvelab.records.reading import Reading
+
+_HEAD = tuple(field.name for field in fields(Curve) if field.name not in ("parts", "at", "sheet"))
 
 NO_STATEMENT = hashlib.sha256(b"").digest()
 
 
 def curve_sha256(curve: Curve) -> bytes:
     """Hash of all a curve says; of its sheet the file's bytes, page and plot count, not the file's name."""
-    head = {name: getattr(curve, name) for name in _names(Curve) if name not in ("parts", "sheet")}
-    sheet = curve.sheet and [curve.sheet.sha256, curve.sheet.page, curve.sheet.plot]
-    digest = hashlib.sha256(_text({**head, "sheet": sheet}))
+    values = (getattr(curve, name) for name in _HEAD)
+    digest = hashlib.sha256(_head((*values, tuple(sorted(curve.at.items())), curve.sheet)))
     for part in curve.parts:
         digest.update(len(part.current).to_bytes(8, "little"))
         digest.update(_bytes(np.stack((part.current, part.value, part.sd_current, part.sd_value, part.sd_common))))
     return digest.digest()
 
 
-def statement_sha256(reading: Reading) -> bytes:
+@lru_cache(maxsize=4096)
+def _head(values: tuple[Any, ...]) -> bytes:
+    """What a curve says beside its points; curves of a series say the same, so that it is written once."""
+    *said, at, sheet = values
+    name = sheet and [sheet.sha256, sheet.page, sheet.plot]
+    return _text({**dict(zip(_HEAD, said, strict=True)), "at": dict(at), "sheet": name})
+
+
+def statement_sha256(reading: "Reading") -> bytes:
     """Hash of what people said beside the numbers: the document, and the warnings with who accepted them."""
     return hashlib.sha256(_text([reading.worksheet.document, reading.warnings])).digest()
 

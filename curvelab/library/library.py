@@ -3,27 +3,26 @@
 import os
 from collections.abc import Iterable, Iterator
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from curvelab.devices.device import Device
 from curvelab.errors import NotFoundError
-from curvelab.library.bands import EVERY, BandQuery, BandsFound, find_bands
 from curvelab.library.connect import named_errors
-from curvelab.library.evidence_load import read_evidence
 from curvelab.library.load import read_device
-from curvelab.library.log import Entry, entries
 from curvelab.library.opened import OpenedLibrary
 from curvelab.library.place import library_path
-from curvelab.library.search import FIRST_PAGE, Found, Page, Wanted, find
-from curvelab.library.sheet_files import read_sheet_files
-from curvelab.library.sound import refuse_unsound
+from curvelab.library.search import EVERY, FIRST_PAGE, Found, Page, Wanted, find
 from curvelab.library.stored import Reviewed, Signature, Stored, United
-from curvelab.library.verify import Verdict, Watch, unwatched, verify
+from curvelab.library.watch import Watch, unwatched
 from curvelab.records.device import DeviceRecord
-from curvelab.records.evidence import Evidence
-from curvelab.records.reading import Reading
 
-UNSIGNED = Signature()
+if TYPE_CHECKING:
+    # Asking a device starts without what only storing, reviewing and searching need.
+    from curvelab.library.bands import BandQuery, BandsFound
+    from curvelab.library.log import Entry
+    from curvelab.library.verify import Verdict
+    from curvelab.records.evidence import Evidence
+    from curvelab.records.reading import Reading
 
 
 def open_library(path: str | os.PathLike[str] | None = None, *, create: bool = True) -> "Library":
@@ -95,21 +94,27 @@ class Library(OpenedLibrary):
         with named_errors(self.path):
             return find(self.open(), wanted, page)
 
-    def find_bands(self, query: BandQuery, wanted: Wanted = EVERY, page: Page = FIRST_PAGE) -> BandsFound:
+    def find_bands(self, query: "BandQuery", wanted: Wanted = EVERY, page: Page = FIRST_PAGE) -> "BandsFound":
         """Devices that surely hold at a current for a time, trip within a time at another, or both."""
+        from curvelab.library.bands import find_bands  # noqa: PLC0415
+
         with named_errors(self.path):
             return find_bands(self.open(), query, wanted, page)
 
-    def evidence(self, key: str, revision: int | None = None) -> Evidence:
+    def evidence(self, key: str, revision: int | None = None) -> "Evidence":
         """What led to a revision: who, when, why, every reading, and the sheets' bytes; arguments as for `record`.
 
         `curvelab.reading.rerun` draws from it and reads it again.
         """
+        from curvelab.library.evidence_load import read_evidence  # noqa: PLC0415
+
         with named_errors(self.path):
             return read_evidence(self.open(), key, revision)
 
-    def log(self, key: str | None = None) -> list[Entry]:
+    def log(self, key: str | None = None) -> "list[Entry]":
         """What happened to a device's revisions, or to all: oldest first."""
+        from curvelab.library.log import entries  # noqa: PLC0415
+
         with named_errors(self.path):
             return list(entries(self.open(), key))
 
@@ -199,14 +204,16 @@ class Library(OpenedLibrary):
         with named_errors(self.path):
             backup.compact(self.open_writer().conn)
 
-    def verify(self, watch: Watch = unwatched) -> Verdict:
+    def verify(self, watch: Watch = unwatched) -> "Verdict":
         """Check that nothing in the library has changed since it was stored: file, references, hashes and log."""
+        from curvelab.library.verify import verify  # noqa: PLC0415
+
         with named_errors(self.path):
             return verify(self.open(), watch)
 
     def store(
         self,
-        what: Reading | DeviceRecord | Iterable[Reading | DeviceRecord],
+        what: "Reading | DeviceRecord | Iterable[Reading | DeviceRecord]",
         *,
         author: str = "",
         reason: str = "",
@@ -238,13 +245,17 @@ class Library(OpenedLibrary):
         LibraryError
             The file cannot be written.
         """
+        from curvelab.library import save  # noqa: PLC0415
+        from curvelab.library import sheet_files as files  # noqa: PLC0415
+        from curvelab.library.sound import refuse_unsound  # noqa: PLC0415
+        from curvelab.records.reading import Reading  # noqa: PLC0415
+
         items = [what] if isinstance(what, Reading | DeviceRecord) else [*what]
         for item in items:
             for record in item.devices if isinstance(item, Reading) else (item,):
                 refuse_unsound(record)
         sheets = {item.sheet.sha256 for item in items if isinstance(item, Reading) and item.sheet}
-        contents = read_sheet_files(sheet_files, sheets)
-        from curvelab.library import save  # noqa: PLC0415 - only writing needs it
+        contents = files.read_sheet_files(sheet_files, sheets)
 
         with named_errors(self.path):
             return save.store(self.open_writer(), items, Signature(author=author, reason=reason), contents)

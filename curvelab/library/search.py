@@ -21,6 +21,11 @@ COLUMNS = (
 )
 """What is told of each device found, and what can be sorted by."""
 
+_WORDS = "device_id IN (SELECT rowid FROM device_text WHERE device_text MATCH :words)"
+
+MOST_COUNTED = 1_000
+"""A total beyond it is not worth the wait."""
+
 PAGE = 50
 LARGEST_PAGE = 10_000
 
@@ -60,8 +65,9 @@ class Page:
 
     @property
     def order(self) -> str:
-        """The sorting in SQL; equals are sorted by key."""
-        return f"ORDER BY {self.sort} {'DESC' if self.falling else 'ASC'}, device_key"
+        """The sorting in SQL; equals are sorted by key, the same way, as the indexes are."""
+        way = "DESC" if self.falling else "ASC"
+        return f"ORDER BY {self.sort} {way}, device_key {way}"
 
     @property
     def limit(self) -> str:
@@ -71,33 +77,49 @@ class Page:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Found:
-    """One page of the devices found, as rows by the names of `COLUMNS`, and how many there are in all."""
+    """One page of the devices found.
+
+    ``rows`` go by the names of `COLUMNS`; ``total`` is how many there are in all, counted up to `MOST_COUNTED`.
+    """
 
     rows: tuple[dict[str, Any], ...]
     total: int
 
 
+EVERY = Wanted()
 FIRST_PAGE = Page()
 
 
 def find(connection: sqlite3.Connection, wanted: Wanted, page: Page = FIRST_PAGE) -> Found:
     """Devices that are all that is wanted."""
     condition, values = conditions(wanted)
-    where = f"FROM current_device WHERE {condition}"
-    rows = connection.execute(f"SELECT {', '.join(COLUMNS)} {where} {page.order} {page.limit}", values)
-    (total,) = connection.execute(f"SELECT count(*) {where}", values).fetchone()
+    total = _count(connection, condition, values)
+    rows = connection.execute(
+        f"SELECT {', '.join(COLUMNS)} FROM current_device WHERE {condition} {page.order} {page.limit}", values
+    )
     return Found(rows=tuple(dict(zip(COLUMNS, row, strict=True)) for row in rows), total=total)
+
+
+def _count(connection: sqlite3.Connection, condition: str, values: dict[str, object]) -> int:
+    """How many there are, counted up to `MOST_COUNTED`."""
+    few = f"SELECT 1 FROM current_device WHERE {condition} LIMIT {MOST_COUNTED}"
+    if condition == _WORDS:
+        # Words alone are counted where they stand, so that the count can end early.
+        few = f"SELECT 1 FROM device_text WHERE device_text MATCH :words LIMIT {MOST_COUNTED}"
+    (total,) = connection.execute(f"SELECT count(*) FROM ({few})", values).fetchone()
+    return int(total)
 
 
 def conditions(wanted: Wanted) -> tuple[str, dict[str, object]]:
     """The condition on ``current_device`` in SQL, and the values it names."""
     equal = ("kind", "characteristic", "standard", "state", "maker", "series")
     said = {name: f"{name} = :{name}" for name in equal}
-    said |= {"rated_from_a": "rated_current_a >= :rated_from_a", "rated_to_a": "rated_current_a <= :rated_to_a"}
+    said["rated_from_a"] = "rated_current_a >= :rated_from_a"
+    said["rated_to_a"] = "rated_current_a <= :rated_to_a"
     values = {name: value for name in said if (value := getattr(wanted, name)) is not None}
     chosen = [said[name] for name in values]
     if wanted.words.strip():
-        chosen.append("device_id IN (SELECT rowid FROM device_text WHERE device_text MATCH :words)")
+        chosen.append(_WORDS)
         values["words"] = _match(wanted.words)
     return " AND ".join(chosen) or "1", values
 

@@ -3,7 +3,7 @@
 import hashlib
 import re
 import sqlite3
-from collections.abc import Callable, Iterator
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 from curvelab.library.current import CURRENT, extent_rows
@@ -11,10 +11,10 @@ from curvelab.library.evidence import stored_evidence_sha256
 from curvelab.library.extent import extents_of
 from curvelab.library.load import read_hashed
 from curvelab.library.log import broken_entries, head
+from curvelab.library.watch import Watch
 from curvelab.paths import shipped
 from curvelab.records.device import DeviceRecord
 
-Watch = Callable[[str, float], None]
 Problems = Iterator[str]
 
 REPORTED_EVERY = 500
@@ -34,10 +34,6 @@ class Verdict:
     def is_sound(self) -> bool:
         """Whether no problem was found."""
         return not self.problems
-
-
-def unwatched(_stage: str, _fraction: float) -> None:
-    """Nobody is told how far it is."""
 
 
 def verify(connection: sqlite3.Connection, watch: Watch) -> Verdict:
