@@ -73,8 +73,10 @@ def _fit(near: Floats) -> tuple[Heading, float]:
     aside = (near - near[0]) @ normal
     base = float(ahead[0] - ahead[-1])
     degree = 2 if base >= 30 else 1
-    coefficients = np.polynomial.polynomial.polyfit(ahead, aside, degree)
-    rms = float(np.sqrt(np.mean((np.polynomial.polynomial.polyval(ahead, coefficients) - aside) ** 2)))
+    powers = (ahead / max(base, 1.0))[:, None] ** np.arange(degree + 1)
+    coefficients = np.linalg.lstsq(powers, aside, rcond=None)[0]
+    rms = float(np.sqrt(np.mean((powers @ coefficients - aside) ** 2)))
+    coefficients /= max(base, 1.0) ** np.arange(degree + 1)
     direction = forward + coefficients[1] * normal
     scale = float(np.hypot(*direction))
     bend = float(coefficients[2]) if degree == 2 else 0.0

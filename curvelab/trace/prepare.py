@@ -8,6 +8,7 @@ from curvelab.records.sheet import Pixels, Sheet
 from curvelab.trace.gridmodel import predict_grid
 from curvelab.trace.ink import read_ink
 from curvelab.trace.prepared import Prepared, Raster
+from curvelab.trace.sense import Sense
 from curvelab.trace.strokes import curve_ink, plot_area, stroke_graph
 from curvelab.trace.window import plot_window
 
@@ -41,7 +42,16 @@ def _raster(pixels: Pixels, axes: Axes) -> Raster:
     grid = predict_grid(ink, pixels, axes.grid)
     corners = pixels.columns_rows(plot_window(axes).corners()) - np.array(ink.origin)
     inside = plot_area(ink.dark.shape, corners)
-    skeleton, fill, widths, graph = stroke_graph(curve_ink(ink, grid), inside, ink.noise)
+    sense = Sense(axes=axes, pixels=pixels, origin=ink.origin)
+    skeleton, fill, widths, graph = stroke_graph(curve_ink(ink, grid), inside, ink.noise, sense.progress)
     return Raster(
-        pixels=pixels, ink=ink, grid=grid, skeleton=skeleton, fill=fill, inside=inside, widths=widths, graph=graph
+        pixels=pixels,
+        ink=ink,
+        grid=grid,
+        sense=sense,
+        skeleton=skeleton,
+        fill=fill,
+        inside=inside,
+        widths=widths,
+        graph=graph,
     )

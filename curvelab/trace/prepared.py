@@ -7,6 +7,7 @@ from curvelab.records.sheet import Pixels, Stroke
 from curvelab.trace.chains import ChainGraph
 from curvelab.trace.gridmodel import GridInk
 from curvelab.trace.ink import Image, Ink
+from curvelab.trace.sense import Sense
 from curvelab.trace.thinning import Mask
 
 
@@ -20,6 +21,8 @@ class Raster:
     ink : Ink
     grid : GridInk
         Predicted ink of the grid.
+    sense : Sense
+        Which way lines run on this plot.
     skeleton : array, shape (height, width), bool
         Middle lines of the strokes.
     fill : array, shape (height, width), bool
@@ -34,6 +37,7 @@ class Raster:
     pixels: Pixels
     ink: Ink
     grid: GridInk
+    sense: Sense
     skeleton: Mask
     fill: Mask
     inside: Mask

@@ -12,12 +12,11 @@ from curvelab.trace.course import course_of
 from curvelab.trace.guide import Guide
 from curvelab.trace.outcome import Measured, gap_records, keep_seen
 from curvelab.trace.prepared import Prepared, Raster
-from curvelab.trace.select import REACH, chains_near, ink_of_colour, nearest_line, written
+from curvelab.trace.select import chains_near, ink_of_colour, nearest_line, written
 from curvelab.trace.strokes import curve_ink
-from curvelab.trace.walk import Walk, united, walk_both_ways
+from curvelab.trace.walk import Walk, path_between, walk_on
 from curvelab.trace.window import PlotWindow, plot_window
 
-MOST_STARTS = 4
 AT_FRAME = 4.0
 """px: a line that ends this near the frame leaves the plot."""
 
@@ -54,7 +53,8 @@ def _graph(raster: Raster, guide: Guide) -> ChainGraph:
         low = np.clip(np.floor(corners.min(axis=0)).astype(int), 0, None)
         high = np.clip(np.ceil(corners.max(axis=0)).astype(int) + 1, 0, None)
         skeleton[low[1] : high[1], low[0] : high[0]] = False
-    return build_graph(skeleton, curve_ink(raster.ink, raster.grid), raster.widths, raster.inside)
+    ink = curve_ink(raster.ink, raster.grid)
+    return build_graph(skeleton, ink, raster.widths, raster.inside, raster.sense.progress)
 
 
 def _walk(raster: Raster, graph: ChainGraph, pixels: Floats, guide: Guide, wanted: Floats | None) -> Walk:
@@ -63,34 +63,17 @@ def _walk(raster: Raster, graph: ChainGraph, pixels: Floats, guide: Guide, wante
     for place, pixel, found in zip(guide.through, pixels, near, strict=True):
         if not found:
             raise _nothing_there(raster, graph, place, pixel, wanted, guide.colour)
-    targets = frozenset(found[0][1] for found in near)
-    # the guide on the longest plain stretch of line says most about it
-    first = max(range(len(near)), key=lambda k: graph.chains[near[k][0][1]].length)
-    missed: tuple[float, int] | None = None
-    for _, start in near[first][:MOST_STARTS]:
-        walk = walk_both_ways(graph, start, targets)
-        distance, far = _missed(walk, pixels)
-        if distance > REACH:
-            beyond = walk_both_ways(graph, near[far][0][1], targets, frozenset(walk.chains))
-            walk = united(walk, beyond, graph.chains[start].width) or walk
-            distance, far = _missed(walk, pixels)
-        if distance <= REACH:
-            return walk
-        missed = missed or (distance, far)
-    assert missed is not None
-    distance, far = missed
-    raise TraceError(
-        f"Guide places {written(guide.through[first])} and {written(guide.through[far])} lie on different lines",
-        f"The line through the first passes {distance * raster.pixels.size_in_places:.1f} from the other",
-        "Move one of them, or add a place between them",
-    )
-
-
-def _missed(walk: Walk, pixels: Floats) -> tuple[float, int]:
-    """Distance in px from the walked line to the guide it misses most, and which one that is."""
-    distances = [float(np.hypot(*(walk.line - pixel).T).min()) for pixel in pixels]
-    far = int(np.argmax(distances))
-    return distances[far], far
+    progress = raster.sense.progress(pixels)
+    order = np.argsort(progress.sum(axis=1), kind="stable").tolist()
+    path = path_between(graph, [near[k] for k in order], progress[order])
+    if isinstance(path, int):
+        first, second = guide.through[order[path - 1]], guide.through[order[path]]
+        raise TraceError(
+            f"Guide places {written(first)} and {written(second)} lie on different lines",
+            "One line through both is expected, which turns back along neither axis",
+            "Move one of them, or add a place between them",
+        )
+    return walk_on(graph, *path)
 
 
 def _nothing_there(
@@ -169,7 +152,7 @@ def _warnings(raster: Raster, walk: Walk) -> tuple[ReadingWarning, ...]:
     return tuple(
         ReadingWarning(
             code="trace-doubt",
-            text="The line could go on two ways here; add a guide place beyond this place",
+            text="The line could go on two ways here; add a guide place beyond it",
             at=(float(place[0]), float(place[1])),
         )
         for place in (raster.pixels.places(np.array([doubt]) + np.array(raster.ink.origin))[0] for doubt in walk.doubts)

@@ -1,5 +1,7 @@
 """Strokes of the plot as a mask: ink beyond the grid's, thinned to middle lines; filled areas apart."""
 
+from collections.abc import Callable
+
 import cv2
 import numpy as np
 
@@ -64,7 +66,9 @@ def plot_area(shape: tuple[int, ...], corners: Floats) -> Mask:
     return cv2.erode(area, np.ones((FRAME_STROKE, FRAME_STROKE), dtype=np.uint8)).astype(bool)
 
 
-def stroke_graph(excess: Image, inside: Mask, noise: float) -> tuple[Mask, Mask, Image, ChainGraph]:
+def stroke_graph(
+    excess: Image, inside: Mask, noise: float, progress_of: Callable[[Floats], Floats]
+) -> tuple[Mask, Mask, Image, ChainGraph]:
     """Middle lines, filled areas, widths and chains of the ink beyond the grid's."""
     mask = stroke_mask(excess, noise) & inside
     fill = filled_areas(mask)
@@ -73,4 +77,4 @@ def stroke_graph(excess: Image, inside: Mask, noise: float) -> tuple[Mask, Mask,
     distance = cv2.distanceTransform(strokes.astype(np.uint8), cv2.DIST_L2, 5)
     widths = (2.0 * distance - 1.0).astype(np.float32)
     skeleton = thin(strokes)
-    return skeleton, fill, widths, build_graph(skeleton, excess, widths, inside)
+    return skeleton, fill, widths, build_graph(skeleton, excess, widths, inside, progress_of)
