@@ -90,6 +90,9 @@ def main() -> int:
     parser.add_argument("--first", type=int, default=70_000, help="first seed")
     parser.add_argument("--devices", default=",".join(MAKERS), help="comma-separated devices")
     options = parser.parse_args()
+    unknown = set(options.devices.split(",")) - MAKERS.keys()
+    if unknown:
+        parser.error(f"unknown devices {', '.join(unknown)}; known: {', '.join(MAKERS)}")
     print(COLUMNS.format(*HEADINGS))
     right = True
     with tempfile.TemporaryDirectory() as folder:

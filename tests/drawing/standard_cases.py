@@ -171,7 +171,7 @@ FUSE = ((1.42, 1e4), (1.62, 1e3), (2.1, 1e2), (3.1, 10.0), (5.1, 1.0), (8.6, 0.1
 
 
 def _fuse(rating: float, quick: float) -> Subject:
-    """A pre-arcing band of 3 % in current either side; ``quick`` scales the currents from 10 s down, at 100 s a little."""
+    """A pre-arcing band of 3 % in current either side; ``quick`` scales the currents from 10 s down."""
     line = smooth_through([(rating * m * (quick if t <= 10 else quick**0.4 if t <= 100 else 1.0), t) for m, t in FUSE])
     return Subject(
         title="Pre-arcing times",
