@@ -28,8 +28,10 @@ SURELY_NONE = float(np.log(0.9))
 SPACE = 0.22 * CAPITAL_PX
 """A gap wider than this above the line's usual gap is a printed space."""
 
-POINT_SPACE = 0.55 * CAPITAL_PX
-"""The same beside a point or comma, which stands apart from its neighbours anyway."""
+NUMBER_SPACE = 0.5 * CAPITAL_PX
+"""The same within a number: faces of one width set digits apart, points and commas more so."""
+
+_NUMERIC = "0123456789.,"
 
 RAISED = str.maketrans("0123456789-+", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺")
 RAISED_BY = 0.24
@@ -137,7 +139,7 @@ def written(characters: tuple[Character, ...]) -> str:
     usual = min(max(median(gaps), 0.0), 0.2 * CAPITAL_PX) if len(gaps) > 2 else 0.1 * CAPITAL_PX
     text = texts[0] if texts else ""
     for gap, before, piece in zip(gaps, texts, texts[1:], strict=False):
-        apart = POINT_SPACE if before in ".," or piece in ".," else SPACE
+        apart = NUMBER_SPACE if before in _NUMERIC and piece in _NUMERIC else SPACE
         text += (" " if gap > usual + apart else "") + piece
     return text
 

@@ -57,14 +57,15 @@ def text_lines(ink: Ink) -> list[TextLine]:
     swapped = characters[:, [1, 0, 3, 2]]
     level, gaps_level = _links(characters, ink.upright_lines)
     upright, gaps_upright = _links(swapped, ink.level_lines.T)
-    turned = _is_upright(len(characters), level, upright, gaps_level < gaps_upright, gaps_upright < gaps_level)
+    votes = _is_upright(len(characters), level, upright, gaps_level < gaps_upright, gaps_upright < gaps_level)
     lines = []
     for is_upright, links in ((False, level), (True, upright)):
-        members = turned == is_upright
+        members = votes == is_upright
         kept = links[members[links].all(axis=1)]
         lines += [
-            TextLine(boxes=_with_dots(characters[group], dots, is_upright), upright=is_upright)
+            TextLine(boxes=_with_dots(characters[group], dots, turned), upright=turned)
             for group in _groups(members, kept)
+            for turned in [is_upright and len(group) > 1]  # a piece alone is read level
         ]
     return sorted(_outermost(lines), key=lambda line: (line.box[1], line.box[0]))
 

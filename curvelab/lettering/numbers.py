@@ -55,7 +55,7 @@ def number_of(text: str) -> tuple[ParsedNumber, ...]:
     ``500 ms``, ``5 x In``, ``5xIr``. The weights of all readings add up to at most 1; what is missing is doubt
     about the form.
     """
-    plain = plain_text(text).strip("()[]").strip()
+    plain = plain_text(text).strip("()[] ").rstrip(".,:; ")
     found: dict[tuple[float, str | None], float] = {}
     for value, unit, weight in (*_regular(plain), *_flattened(plain)):
         if value > 0:

@@ -6,11 +6,14 @@ from dataclasses import replace
 import numpy as np
 
 from curvelab.lettering.exact import plain_word
-from curvelab.lettering.ink import find_ink
+from curvelab.lettering.ink import GLYPH_PX, find_ink
 from curvelab.lettering.page import words_of_ink
 from curvelab.records.sheet import Pixels, Sheet, Word
 
 Box = tuple[float, float, float, float]
+
+AROUND_PX = GLYPH_PX + 10
+"""Pixels around an area that are looked at too: lines that cross it must be seen to be longer than a character."""
 
 
 def read_words(sheet: Sheet, areas: tuple[Box, ...] | None = None) -> tuple[Word, ...]:
@@ -20,7 +23,7 @@ def read_words(sheet: Sheet, areas: tuple[Box, ...] | None = None) -> tuple[Word
     ----------
     sheet : Sheet
     areas : tuple of (x0, y0, x1, y1), optional
-        Rectangles in places; words that the file itself carries belong to an area by their middle.
+        Rectangles in places; a word belongs to an area by its middle.
 
     Returns
     -------
@@ -43,10 +46,13 @@ def _parts(pixels: Pixels, areas: tuple[Box, ...] | None) -> Iterator[list[Word]
     rows, columns = pixels.grey.shape
     for area in (None,) if areas is None else areas:
         left, top, right, bottom = (0, 0, columns, rows) if area is None else _pixel_area(pixels, area)
-        if right - left < 3 or bottom - top < 3:
+        if right <= left or bottom <= top:
             continue
+        left, top, right, bottom = left - AROUND_PX, top - AROUND_PX, right + AROUND_PX, bottom + AROUND_PX
+        left, top, right, bottom = max(0, left), max(0, top), min(columns, right), min(rows, bottom)
         found = words_of_ink(find_ink(pixels.grey[top:bottom, left:right]))
-        yield [_placed(word, pixels, left, top) for word in found]
+        placed = [_placed(word, pixels, left, top) for word in found]
+        yield [word for word in placed if area is None or _within(word, area)]
 
 
 def _pixel_area(pixels: Pixels, area: Box) -> tuple[int, int, int, int]:
