@@ -86,7 +86,7 @@ def test_taking_the_same_again_changes_nothing(here: Library, there: Library, tm
     assert there.log() == log
 
 
-@settings(max_examples=25, deadline=None, suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large])
+@settings(max_examples=12, deadline=None, suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large])
 @given(record=records)
 def test_any_device_goes_there_and_back_bit_for_bit(tmp_path_factory: pytest.TempPathFactory, record: object) -> None:
     folder = tmp_path_factory.mktemp("exchange")
@@ -194,7 +194,7 @@ hostile = st.recursive(
 )
 
 
-@settings(max_examples=150, deadline=None, suppress_health_check=list(HealthCheck))
+@settings(max_examples=80, deadline=None, suppress_health_check=list(HealthCheck))
 @given(data=st.data())
 def test_hostile_lines_are_refused_or_harmless(tmp_path_factory: pytest.TempPathFactory, data: st.DataObject) -> None:
     """One value anywhere in a good file is replaced by something else."""
