@@ -19,8 +19,8 @@ LONG = 0.25
 FEWEST_LINES = 3
 """Lines of a grid along each direction, at least; a table and a border have fewer that reach across."""
 
-PROLONGED = 3.0
-"""Times what ends that meet may be apart, by which lettering may prolong lines beyond the frame."""
+REACHED = 0.5
+"""Share of the lines that must reach a line across for it to be in the plot."""
 
 MOST_SEGMENTS = 4000
 """Beyond as many, short pieces are left out first."""
@@ -118,22 +118,21 @@ def _plot(upright: Segments, level: Segments, near: float) -> Plot | None:
 
 
 def _ends(along: Segments, across: Segments, near: float) -> tuple[float, float]:
-    """Where lines begin and end, as most of the long ones do; an outermost line across that is near says it better.
+    """Where lines begin and end: at the outermost long lines across that most of them reach from within.
 
-    Lettering that stands in line with lines may seem to prolong them.
+    Where there are none across, as most of the long ones do. Lettering that stands in line with lines may seem to
+    prolong some, and a hatched ground to break them.
     """
     long = along.length >= 0.5 * along.length.max()
     ends = (float(np.median(along.first[long])), float(np.median(along.last[long])))
     lines = across.across[across.length >= 0.5 * across.length.max()]
-    room = PROLONGED * near
-    close = (
-        lines[(lines >= ends[0] - near) & (lines <= ends[0] + room)],
-        lines[(lines >= ends[1] - room) & (lines <= ends[1] + near)],
-    )
-    return (
-        float(close[0].min()) if close[0].size else ends[0],
-        float(close[1].max()) if close[1].size else ends[1],
-    )
+    middle = 0.5 * (ends[0] + ends[1])
+    # From within means from a little nearer to the middle; ends are only known to about half of ``near``.
+    low, high = lines + np.where(lines < middle, 0.6, -2.0) * near, lines + np.where(lines < middle, 2.0, -0.6) * near
+    covering = (along.first[:, None] <= low) & (along.last[:, None] >= high)
+    reached = lines[covering.sum(axis=0) >= REACHED * len(np.unique(np.round(along.across[long] / near)))]
+    before, after = reached[reached < middle], reached[reached > middle]
+    return float(before.min()) if before.size else ends[0], float(after.max()) if after.size else ends[1]
 
 
 def _distinct(segments: Segments, span: float, near: float) -> int:

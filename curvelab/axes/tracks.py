@@ -31,8 +31,11 @@ GAP_STRIPS = 3
 LEAST_STRIPS = 4
 """Shorter pieces are lettering, as a rule."""
 
-OFF, UNEVEN = 0.8, 2.0
-"""Pixels off a piece's own parabola, and the factor from its usual darkness, beyond which a strip is not its end."""
+OFF, FADED, DARKER = 0.8, 0.2, 2.0
+"""Pixels off a piece's own parabola, and shares of its usual darkness, beyond which a strip is not its end.
+
+On a tinted or hatched ground a line is fainter than elsewhere; lettering is darker.
+"""
 
 SETTLED = 4
 """Strips after which a piece's slope is known."""
@@ -158,7 +161,7 @@ def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: 
     # Lettering that stands in line with a line seems to prolong it, but not as exactly nor as darkly.
     off = np.abs(_off_parabola(number, run, place - across[number] - lean[number] * run))
     share = dark / darkness[number]
-    own = (off <= OFF) & (share >= 1.0 / UNEVEN) & (share <= UNEVEN)
+    own = (off <= OFF) & (share >= FADED) & (share <= DARKER)
     first = np.full(len(count), np.inf)
     last = np.full(len(count), -np.inf)
     np.minimum.at(first, number[own], along[own])
