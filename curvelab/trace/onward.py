@@ -31,6 +31,8 @@ MARGIN = 1.0
 """A second step this near in cost is almost as good."""
 CAP = 30.0
 """Largest cost of one place, so that a far end decides no more than the rest."""
+THINNER = 0.5
+"""Share of its width below which a stroke is not the same line as another."""
 CLAIMED = 20.0
 """Cost of turning onto a chain that another line continues."""
 PATTERN = 6.0
@@ -39,14 +41,16 @@ UNBROKEN, SHORTEST_UNBROKEN = 2.5, 30.0
 """Dash lengths, and px, from which a line is unbroken."""
 SHARED = 0.1
 """Cost of a chain that does not tell where the line runs."""
-HOP_STROKES = 40.0
+HOP_STROKES = 80.0
 LONGEST_HOP = 160.0
-"""px: an unseen stretch is bridged up to 40 stroke widths, at most this; between two guide places further."""
+"""px: an unseen stretch is bridged up to 80 stroke widths, at most this; between two guide places further."""
 LONGEST_GUIDED = 400.0
 FAR_DASH, FAR_LINE = 0.18, 0.5
 """Least length beyond an unseen stretch, relative to it, of a dash and of a line."""
 DASHES = 3
 """Breaks after which a line is dashed."""
+PER_PX = 0.15
+"""Cost of a px between a line and the dash after a kink: the nearest comes first."""
 HIDDEN = 60.0
 """px: on the way to a guide place a kink may hide in so long a stretch under another line."""
 SHORT_HOP = 8.0
@@ -164,7 +168,10 @@ def _claimed(graph: ChainGraph, entry: End, others: Iterable[End], line: Line) -
     back = heading(oriented(graph, entry)[::-1])
     if back is None:
         return False
+    chain = graph.chains[entry[0]]
     for rival in others:
+        if graph.chains[rival[0]].width < THINNER * chain.width:
+            continue
         ahead, aside = back.frame(oriented(graph, rival)[: int(line.look_ahead)])
         if np.mean(np.minimum((aside / back.spread(ahead)) ** 2, CAP)) < ACCEPT and ahead[-1] > 0:
             return True
@@ -237,10 +244,7 @@ def _next_dash(graph: ChainGraph, onward: Heading, track: Track, way: Way, passe
     dashes = []
     for distance, entry in nearest if guided else nearest[:1]:
         smooth = _smooth(graph, onward, entry, track, distance)
-        cost = (
-            max(ACCEPT, min(smooth.cost, SOLE))
-            + PATTERN * (smooth.cost > SOLE)
-            + CLAIMED * _claimed(graph, entry, meeting(graph, entry), track.line)
-        )
+        cost = max(ACCEPT, min(smooth.cost, SOLE)) + PER_PX * distance
+        cost += CLAIMED * _claimed(graph, entry, meeting(graph, entry), track.line)
         dashes.append(replace(smooth, cost=cost, kink=smooth.cost > ACCEPT))
     return dashes
