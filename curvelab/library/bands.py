@@ -13,10 +13,11 @@ import numpy as np
 
 from curvelab.devices.device import Device
 from curvelab.errors import DeviceError, InputError
-from curvelab.library.extent import STEP_TIMES_S
+from curvelab.library.extent import STEP_TIMES_S, extents_of
 from curvelab.library.load import read_revision
 from curvelab.library.search import COLUMNS, EVERY, FIRST_PAGE, Page, Wanted, conditions
 from curvelab.records.answer import EdgeAnswer
+from curvelab.records.device import DeviceRecord
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -156,14 +157,36 @@ def _steps(time_s: float) -> tuple[int | None, int | None]:
 
 
 def _does(connection: sqlite3.Connection, row: dict[str, Any], query: BandQuery) -> bool:
-    """Ask the device itself; one that cannot be asked does not surely do anything."""
-    device = Device(read_revision(connection, row["revision_id"], row["revision"], row["state"]))
+    """Look at its extent at the very times and, where that does not tell, ask the device itself."""
+    record = read_revision(connection, row["revision_id"], row["revision"], row["state"])
+    told = _told(record, query)
+    if told is not None:
+        return told
+    device = Device(record)
     try:
         return (query.holds is None or holds(device, query.holds)) and (
             query.trips is None or trips(device, query.trips)
         )
     except DeviceError:
         return False
+
+
+def _told(record: DeviceRecord, query: BandQuery) -> bool | None:
+    """Whether a device surely does what is asked, or surely not so; None where its extent does not tell."""
+    points = [point for point in (query.holds, query.trips) if point]
+    (extent,) = extents_of([record], np.array([point.time_s for point in points]))
+    if extent is None:
+        return False
+    surely = perhaps = True
+    if query.holds:
+        current_a = query.holds.current_a
+        surely &= bool(extent.holds_from_a <= current_a <= extent.holds_surely[0])
+        perhaps &= bool(current_a <= extent.holds_perhaps[0])
+    if query.trips:
+        current_a = query.trips.current_a
+        surely &= bool(extent.trips_surely[-1] <= current_a <= extent.trips_to_a)
+        perhaps &= bool(current_a >= extent.trips_perhaps[-1])
+    return surely if surely or not perhaps else None
 
 
 def holds(device: Device, point: Point) -> bool:

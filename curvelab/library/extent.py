@@ -22,14 +22,10 @@ from curvelab.records.device import DeviceRecord, Nameplate
 STEP_TIMES_S = 10.0 ** np.arange(-3.0, 4.01, 0.5)
 """The fixed times: half a decade apart, so that few devices lie between two of them."""
 
-_TIMES = STEP_TIMES_S[:, None]
-_NOTHING = np.zeros(STEP_TIMES_S.size)
-_NEVER = np.full(STEP_TIMES_S.size, np.inf)
-
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Extent:
-    """The currents in A at `STEP_TIMES_S`, and between which currents the edges answer at all."""
+    """The currents in A at the times, and between which currents the edges answer at all."""
 
     holds_surely: Floats
     holds_perhaps: Floats
@@ -55,12 +51,12 @@ def is_adjustable(record: DeviceRecord) -> bool:
     return bool(record.nameplate.settings) or any(_unit_a(curve.base, record.nameplate) is None for curve in times)
 
 
-def extents_of(records: Sequence[DeviceRecord]) -> list[Extent | None]:
-    """The extent of each device's band; None where it has no time curve or needs settings."""
+def extents_of(records: Sequence[DeviceRecord], times_s: Floats = STEP_TIMES_S) -> list[Extent | None]:
+    """The extent of each device's band at times; None where it has no time curve or needs settings."""
     acting = [() if is_adjustable(record) else _acting(record) for record in records]
     bounds = iter(_bounds([curve for curves in acting for curve in curves]))
     return [
-        _extent(record.nameplate, [(curve, next(bounds)) for curve in curves]) if curves else None
+        _extent(record.nameplate, [(curve, next(bounds)) for curve in curves], times_s) if curves else None
         for record, curves in zip(records, acting, strict=True)
     ]
 
@@ -76,14 +72,15 @@ def _acting(record: DeviceRecord) -> tuple[tuple[Curve, float], ...]:
     )
 
 
-def _extent(plate: Nameplate, curves: Sequence[tuple[tuple[Curve, float], _Bounds]]) -> Extent:
+def _extent(plate: Nameplate, curves: Sequence[tuple[tuple[Curve, float], _Bounds]], times_s: Floats) -> Extent:
     capacity_a = breaking_capacity_a(plate, Question(), path_of(Question(), plate, "A"))
     elements = dict.fromkeys(curve.element for (curve, _), _ in curves)
     own = [[one for one in curves if one[0][0].element == element] for element in elements]
-    holds = [_holds([bounds for (curve, _), bounds in each if curve.edge == "fast"]) for each in own]
+    holds = [_holds([bounds for (curve, _), bounds in each if curve.edge == "fast"], times_s) for each in own]
     trips = [
         _trips(
-            [(bounds, meaning_of(curve, plate.kind) in TOTAL) for (curve, _), bounds in each if curve.edge == "slow"]
+            [(bounds, meaning_of(curve, plate.kind) in TOTAL) for (curve, _), bounds in each if curve.edge == "slow"],
+            times_s,
         )
         for each in own
     ]
@@ -143,26 +140,26 @@ def _is_plain(curve: Curve) -> bool:
     return len(curve.parts) == 1 and curve.conditions.time_kind != "virtual"
 
 
-def _holds(curves: Sequence[_Bounds]) -> tuple[Floats, Floats]:
+def _holds(curves: Sequence[_Bounds], times_s: Floats) -> tuple[Floats, Floats]:
     """Up to which current an element holds for each time: surely by all its curves, perhaps by any."""
+    nothing, time = np.zeros(times_s.size), times_s[:, None]
     if not curves:
-        return _NOTHING, _NOTHING
-    surely = [
-        np.where(each.low_s >= _TIMES, each.low_a, 0.0).max(axis=1) if each.whole else _NOTHING for each in curves
-    ]
-    perhaps = [_where_first(each.high_s < _TIMES, each.high_a, each.high_a.max()) for each in curves]
+        return nothing, nothing
+    surely = [np.where(each.low_s >= time, each.low_a, 0.0).max(axis=1) if each.whole else nothing for each in curves]
+    perhaps = [_where_first(each.high_s < time, each.high_a, each.high_a.max()) for each in curves]
     return _least(surely), _greatest(perhaps)
 
 
-def _trips(curves: Sequence[tuple[_Bounds, bool]]) -> tuple[Floats, Floats]:
+def _trips(curves: Sequence[tuple[_Bounds, bool]], times_s: Floats) -> tuple[Floats, Floats]:
     """From which current an element trips within each time: surely by all its curves, perhaps by any."""
+    never, time = np.full(times_s.size, np.inf), times_s[:, None]
     if not any(total for _, total in curves):
-        return _NEVER, _NEVER
+        return never, never
     surely = [
-        np.where(each.high_s <= _TIMES, each.high_a, np.inf).min(axis=1) if each.whole and total else _NEVER
+        np.where(each.high_s <= time, each.high_a, np.inf).min(axis=1) if each.whole and total else never
         for each, total in curves
     ]
-    perhaps = [_above(each.low_s > _TIMES, each.low_a) for each, total in curves if total]
+    perhaps = [_above(each.low_s > time, each.low_a) for each, total in curves if total]
     return _greatest(surely), _least(perhaps)
 
 
