@@ -81,17 +81,6 @@ def stroke_profile(width: float, blur: float, reach: float) -> StrokeProfile:
     return StrokeProfile(width=width, blur=blur, reach=reach, table=table, slope=np.gradient(table, STEP, axis=1))
 
 
-def edge_profile(blur: float, reach: float) -> StrokeProfile:
-    """Tabulate the profile of the boundary of a filled area that lies at positive distances."""
-    distance = np.arange(-reach, reach + STEP / 2, STEP)
-    rows = []
-    for angle in np.linspace(0.0, np.pi / 4, ANGLES):
-        sharp = _trapezoid_sum(distance, float(angle))
-        rows.append(gaussian_filter1d(sharp, max(blur, LEAST_BLUR) / STEP, mode="nearest", truncate=5.0))
-    table = np.array(rows)
-    return StrokeProfile(width=0.0, blur=blur, reach=reach, table=table, slope=np.gradient(table, STEP, axis=1))
-
-
 def bound(contrast_to_noise: ArrayLike, width: float, blur: float) -> Floats:
     """Cramer-Rao bound of a stroke's centre in px from one px of its length, at a contrast of so many noise sd."""
     total = np.hypot(blur, np.sqrt(1.0 / 12.0))
