@@ -35,7 +35,7 @@ class Trace:
     colour : tuple of int, or None
         Red, green, blue of the ink.
     width : float
-        Stroke width in the sheet's unit; 0 for the boundary of a filled area.
+        Stroke width in the sheet's unit; for the boundary of a filled area, what its step is spread over (0 if exact).
     boundary : bool
         True for the boundary of a filled area, False for the centre line of a stroke.
     origin : str

@@ -1,5 +1,7 @@
 """One line of a prepared raster plot, from its guide places."""
 
+from dataclasses import replace
+
 import numpy as np
 
 from curvelab.errors import TraceError
@@ -9,6 +11,7 @@ from curvelab.records.warning import ReadingWarning
 from curvelab.trace.centre import Centres, measure_centres
 from curvelab.trace.chains import ChainGraph, build_graph
 from curvelab.trace.course import course_of
+from curvelab.trace.edges import edge_raster
 from curvelab.trace.guide import Guide
 from curvelab.trace.outcome import Measured, gap_records, keep_seen
 from curvelab.trace.prepared import Prepared, Raster
@@ -26,6 +29,10 @@ def trace_raster(prepared: Prepared, raster: Raster, guide: Guide) -> tuple[Trac
     places = np.array(guide.through, dtype=np.float64)
     pixels = raster.pixels.columns_rows(places) - np.array(raster.ink.origin)
     wanted = ink_of_colour(guide.colour, raster.ink.density.shape[2])
+    edges = None if _lies_on(raster.graph, pixels) else edge_raster(raster)
+    boundary = edges is not None and _lies_on(edges.graph, pixels)
+    if edges is not None and boundary:
+        raster, wanted = edges, None
     graph = _graph(raster, guide)
     walk = _walk(raster, graph, pixels, guide, wanted)
     centres = _centres(raster, graph, walk)
@@ -40,7 +47,23 @@ def trace_raster(prepared: Prepared, raster: Raster, guide: Guide) -> tuple[Trac
             "Set the guide place on the line",
         )
     trace = _trace(raster, window, centres, measured, pixels)
-    return trace, _warnings(raster, walk)
+    warnings = _warnings(raster, walk)
+    if not boundary:
+        return trace, warnings
+    return replace(trace, boundary=True, colour=None), (_area_edge(guide), *warnings)
+
+
+def _area_edge(guide: Guide) -> ReadingWarning:
+    return ReadingWarning(
+        code="area-edge",
+        text="No line is there, so the edge of a filled area was read: look at it over the sheet before it is stored",
+        at=guide.through[0],
+    )
+
+
+def _lies_on(graph: ChainGraph, pixels: Floats) -> bool:
+    """Whether every guide place has a line near it."""
+    return all(chains_near(graph, pixel, None) for pixel in pixels)
 
 
 def _graph(raster: Raster, guide: Guide) -> ChainGraph:

@@ -57,7 +57,7 @@ def read_one(seed: int, quality: str, folder: Path) -> SheetResult:
 
 
 def _result(sheet: DrawnSheet, plot: PlotTruth, truth: CurveTruth, curve: Curve) -> CurveResult:
-    current, value = _joined(curve)
+    current, value = joined(curve)
     scale = _decade_per_unit(plot) if sheet.truth.unit == "pt" else 1.0
     found = score(plot, truth.design.name, current, value)
     covered, stated = _coverage(truth, curve)
@@ -72,7 +72,7 @@ def _result(sheet: DrawnSheet, plot: PlotTruth, truth: CurveTruth, curve: Curve)
     )
 
 
-def _joined(curve: Curve) -> tuple[Floats, Floats]:
+def joined(curve: Curve) -> tuple[Floats, Floats]:
     """All parts in one pair of arrays, with a NaN row between parts."""
     gap = np.full(1, np.nan)
     current = np.concatenate([piece for part in curve.parts for piece in (part.current, gap)])
