@@ -50,10 +50,12 @@ def heading(walked: Floats) -> Heading | None:
     """Continuation of a line from its walked places, the last one the tip; None where there are too few."""
     if len(walked) < 4:
         return None
-    back = np.r_[0.0, np.cumsum(np.hypot(*np.diff(walked[::-1], axis=0).T))]
+    # neighbouring places are a pixel or more apart: no window reaches further back
+    last = walked[: -int(max(WINDOWS)) - 3 : -1]
+    back = np.r_[0.0, np.cumsum(np.hypot(*np.diff(last, axis=0).T))]
     best = None
     for window in WINDOWS:
-        near = walked[::-1][back <= window]
+        near = last[back <= window]
         if len(near) < 4:
             break
         fitted, rms = _fit(near)
