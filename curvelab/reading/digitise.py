@@ -6,12 +6,13 @@ from pathlib import Path
 
 from curvelab import __version__
 from curvelab.axes.calibrate import calibrate
-from curvelab.devices.device import Device
 from curvelab.errors import InputError, SheetError
 from curvelab.reading.accept import accept
 from curvelab.reading.assemble import assemble, owned
+from curvelab.reading.check import checked
 from curvelab.reading.follow import follow_curves
 from curvelab.reading.model import fitted_curves, typed_curves
+from curvelab.reading.remember import Remember, anew
 from curvelab.reading.watch import Watch, unwatched
 from curvelab.records.axes import Axes
 from curvelab.records.curve import SheetKey
@@ -20,7 +21,6 @@ from curvelab.records.sheet import Sheet
 from curvelab.records.warning import ReadingWarning
 from curvelab.records.worksheet import AxisEntry, SheetEntry, Worksheet
 from curvelab.sheets.open import open_sheet
-from curvelab.standards.review import review
 from curvelab.worksheets.read import read_worksheet
 
 NO_CURVES = ReadingWarning(
@@ -59,8 +59,8 @@ def digitise(
     return read(read_worksheet(path), path.parent, watch)
 
 
-def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Reading:
-    """Read what a worksheet says; its file names are relative to ``folder``."""
+def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, remember: Remember = anew) -> Reading:
+    """Read what a worksheet says; file names are relative to ``folder``, ``remember`` may keep what stations made."""
     sheet: Sheet | None = None
     axes: Axes | None = None
     warnings: tuple[ReadingWarning, ...] = ()
@@ -70,17 +70,17 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Readin
     if worksheet.sheet is not None:
         watch("Opening the sheet", 0.0)
         page = worksheet.sheet
-        sheet = _open(page, folder)
+        sheet = _sheet(page, folder, remember)
         watch("Calibrating the axes", 0.0)
         current = worksheet.current or AxisEntry(quantity="current")
-        axes, doubts = calibrate(sheet, current, worksheet.value, page.plot)
+        axes, doubts = _calibrated(sheet, current, worksheet.value, page.plot, remember)
         worksheet = replace(worksheet, sheet=replace(page, plot=axes.plot))
         quantity = axes.value.quantity
         guided = tuple(entry for entry in entries if entry.through)
-        followed, more_doubts = follow_curves(sheet, axes, guided, watch)
+        followed, more_doubts = follow_curves(sheet, axes, guided, watch, remember)
         key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=axes.plot, file=page.file)
         watch("Fitting the bands", 0.0)
-        followed_curves = fitted_curves(followed, axes, key)
+        followed_curves = fitted_curves(followed, axes, key, remember)
         warnings = doubts + more_doubts + (() if worksheet.curves else (NO_CURVES,))
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     devices, device_doubts = assemble(worksheet, curves)
@@ -91,10 +91,23 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched) -> Readin
         axes=axes,
         curves=curves,
         devices=devices,
-        findings=review([Device(record) for record in devices]),
+        findings=checked(devices, remember),
         warnings=accept(warnings + device_doubts, worksheet.accepted),
         program_version=__version__,
     )
+
+
+def _sheet(entry: SheetEntry, folder: Path, remember: Remember) -> Sheet:
+    """The sheet of a worksheet; only bytes known by their hash are the same again."""
+    if entry.sha256 is None:
+        return _open(entry, folder)
+    return remember("sheet", (entry.file, entry.page, entry.sha256), lambda: _open(entry, folder))
+
+
+def _calibrated(
+    sheet: Sheet, current: AxisEntry, value: AxisEntry | None, plot: int | None, remember: Remember
+) -> tuple[Axes, tuple[ReadingWarning, ...]]:
+    return remember("axes", (sheet, current, value, plot), lambda: calibrate(sheet, current, value, plot))
 
 
 def _open(entry: SheetEntry, folder: Path) -> Sheet:

@@ -1,8 +1,10 @@
 """The station that traces every curve the worksheet guides."""
 
 from dataclasses import dataclass
+from functools import partial
 
 from curvelab.errors import TraceError
+from curvelab.reading.remember import Remember
 from curvelab.reading.watch import Watch
 from curvelab.records.axes import Axes
 from curvelab.records.sheet import Sheet
@@ -22,7 +24,7 @@ class Followed:
 
 
 def follow_curves(
-    sheet: Sheet, axes: Axes, entries: tuple[CurveEntry, ...], watch: Watch
+    sheet: Sheet, axes: Axes, entries: tuple[CurveEntry, ...], watch: Watch, remember: Remember
 ) -> tuple[tuple[Followed, ...], tuple[ReadingWarning, ...]]:
     """Trace each guided entry on its own.
 
@@ -31,14 +33,14 @@ def follow_curves(
     TraceError
         No line where an entry's guide says; the message names the entry.
     """
-    prepared = prepare(sheet, axes)
+    prepared = remember("page", (sheet, axes), lambda: prepare(sheet, axes))
     followed = []
     warnings: list[ReadingWarning] = []
     for number, entry in enumerate(entries, start=1):
         watch("Tracing curves", (number - 1) / len(entries))
         guide = Guide(through=entry.through, colour=entry.colour, avoid=entry.avoid)
         try:
-            trace, doubts = trace_guided(prepared, guide)
+            trace, doubts = remember("trace", (prepared, guide), partial(trace_guided, prepared, guide))
         except TraceError as error:
             raise TraceError(f"[[curves]] {number}: {error.problem}", error.expected, error.fix) from error
         followed.append(Followed(entry=entry, trace=trace))

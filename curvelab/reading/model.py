@@ -2,6 +2,7 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from functools import partial
 
 import numpy as np
 
@@ -10,6 +11,7 @@ from curvelab.fit.curve import fit_curve
 from curvelab.fit.order import keep_order
 from curvelab.reading.follow import Followed
 from curvelab.reading.points import fit_points, point_uncertainty
+from curvelab.reading.remember import Remember
 from curvelab.records.axes import Axes
 from curvelab.records.curve import Curve, SheetKey, typed_part
 from curvelab.records.fit import CurveFit
@@ -89,7 +91,9 @@ def _curve(entry: CurveEntry, *, base: str, quantity: str, fit_or_points: CurveF
     )
 
 
-def fitted_curves(followed: Sequence[Followed], axes: Axes, sheet: SheetKey) -> tuple[ReadCurve, ...]:
+def fitted_curves(
+    followed: Sequence[Followed], axes: Axes, sheet: SheetKey, remember: Remember
+) -> tuple[ReadCurve, ...]:
     """Fit each trace and tabulate it.
 
     Raises
@@ -100,14 +104,19 @@ def fitted_curves(followed: Sequence[Followed], axes: Axes, sheet: SheetKey) -> 
     rising = axes.value.quantity != "time"
     fitted = []
     for number, each in enumerate(followed, start=1):
-        ordered = replace(each, trace=_in_order(each.trace, axes, rising=rising))
-        points = fit_points(ordered.trace, axes)
+        make = partial(_fit, each.trace, axes, rising=rising)
         try:
-            fit = fit_curve(points, rising=rising)
+            trace, points, fit = remember("fit", (each.trace, axes), make)
         except FitError as error:
             raise FitError(f"[[curves]] {number}: {error.problem}", error.expected, error.fix) from error
-        fitted.append(_Fitted(followed=ordered, points=points, fit=fit))
+        fitted.append(_Fitted(followed=replace(each, trace=trace), points=points, fit=fit))
     return tuple(_read_curve(each, axes, sheet) for each in _ordered(fitted))
+
+
+def _fit(trace: Trace, axes: Axes, *, rising: bool) -> tuple[Trace, FitPoints, CurveFit]:
+    ordered = _in_order(trace, axes, rising=rising)
+    points = fit_points(ordered, axes)
+    return ordered, points, fit_curve(points, rising=rising)
 
 
 def _read_curve(fitted: _Fitted, axes: Axes, sheet: SheetKey) -> ReadCurve:

@@ -25,5 +25,10 @@ def review(devices: Sequence[Device], rules: Iterable[Rule] | None = None) -> tu
         A rule table is not valid.
     """
     chosen = None if rules is None else tuple(rules)
-    each = (finding for device in devices for finding in (*check(device, chosen), *doubts_about(device)))
+    each = (finding for device in devices for finding in review_alone(device, chosen))
     return (*each, *doubts_about_family(devices))
+
+
+def review_alone(device: Device, rules: Iterable[Rule] | None = None) -> tuple[Finding, ...]:
+    """Findings of one device by itself; arguments as for `review`."""
+    return (*check(device, rules), *doubts_about(device))
