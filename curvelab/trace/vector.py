@@ -52,7 +52,7 @@ def trace_strokes(prepared: Prepared, guide: Guide) -> tuple[Trace, tuple[Readin
     window = plot_window(prepared.axes)
     places = np.array(guide.through, dtype=np.float64)
     wanted = ink_of_colour(guide.colour, 3)
-    pieces = _pieces(prepared, guide, window)
+    pieces = pieces_of(prepared, guide, window)
     start = _nearest(pieces, places, guide, wanted)
     line, jumps = _joined(start, [p for p in pieces if p is not start and p.alike(start)])
     if start.boundary:
@@ -86,7 +86,7 @@ def trace_strokes(prepared: Prepared, guide: Guide) -> tuple[Trace, tuple[Readin
     return trace, ()
 
 
-def _pieces(prepared: Prepared, guide: Guide, window: PlotWindow) -> list[Piece]:
+def pieces_of(prepared: Prepared, guide: Guide, window: PlotWindow) -> list[Piece]:
     """Strokes inside the plot that are no grid line, frame or backdrop."""
     found = []
     for stroke in prepared.strokes:
