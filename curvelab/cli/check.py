@@ -15,9 +15,8 @@ from curvelab.library.key import split_key
 from curvelab.library.library import Library
 from curvelab.library.place import library_path
 from curvelab.library.search import Page, Wanted
-from curvelab.reading.as_json import finding_json
 from curvelab.records.device import DeviceRecord, Nameplate
-from curvelab.records.finding import Finding
+from curvelab.records.finding import Finding, finding_json
 from curvelab.standards.family import doubts_about_family
 from curvelab.standards.review import review
 from curvelab.standards.rules import rules_beside

@@ -11,7 +11,7 @@ from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, Mark
 from curvelab.records.band import bands_of
 from curvelab.records.curve import Curve, Part
-from curvelab.records.finding import Finding
+from curvelab.records.finding import finding_json
 from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.sheet import Sheet
 from curvelab.records.warning import Acceptance, ReadingWarning
@@ -164,30 +164,6 @@ def _bands(reading: Reading) -> Iterable[Json]:
                 "slow": _edge(band.slow),
                 "mean": _edge(band.mean),
             }
-
-
-def finding_json(finding: Finding) -> Json:
-    """One finding, as in the reading's list."""
-    return {
-        "device": finding.device,
-        "standard": finding.standard,
-        "clause": finding.clause,
-        "requirement": finding.requirement,
-        "limit": finding.limit,
-        "unit": finding.unit,
-        "current": finding.current,
-        "base": finding.base,
-        "value": finding.value,
-        "interval": list(finding.interval) if finding.interval else None,
-        "outcome": finding.outcome,
-        "advisory": finding.advisory,
-        "source": finding.source,
-        "rule": finding.rule,
-        "note": finding.note,
-        "permitted": finding.permitted,
-        "margin": finding.margin,
-        "time_s": finding.time_s,
-    }
 
 
 def _acceptance(acceptance: Acceptance) -> Json:

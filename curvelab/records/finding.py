@@ -1,7 +1,7 @@
 """A finding: the outcome of one check of a device against one requirement."""
 
 from dataclasses import dataclass
-from typing import Literal
+from typing import Any, Literal
 
 Outcome = Literal["meets", "fails", "undecided", "at limit", "not covered"]
 
@@ -43,3 +43,27 @@ class Finding:
             return None
         above = self.value / self.limit - 1
         return above if self.permitted == "at_least" else -above
+
+
+def finding_json(finding: Finding) -> dict[str, Any]:
+    """One finding as the JSON object of a reading's list."""
+    return {
+        "device": finding.device,
+        "standard": finding.standard,
+        "clause": finding.clause,
+        "requirement": finding.requirement,
+        "limit": finding.limit,
+        "unit": finding.unit,
+        "current": finding.current,
+        "base": finding.base,
+        "value": finding.value,
+        "interval": list(finding.interval) if finding.interval else None,
+        "outcome": finding.outcome,
+        "advisory": finding.advisory,
+        "source": finding.source,
+        "rule": finding.rule,
+        "note": finding.note,
+        "permitted": finding.permitted,
+        "margin": finding.margin,
+        "time_s": finding.time_s,
+    }

@@ -4,9 +4,10 @@ from collections.abc import Iterable, Iterator
 
 from curvelab.devices.device import Device
 from curvelab.records.finding import Finding
+from curvelab.records.limit import Judgement
 from curvelab.standards.answer import Answer, answer_of, cold_answer
 from curvelab.standards.elements import of_element, undrawn_element
-from curvelab.standards.judge import Judgement, judge, judge_energy
+from curvelab.standards.judge import judge, judge_energy
 from curvelab.standards.point import Point, at_drawn_settings, at_other_end, point_of, written_settings
 from curvelab.standards.rule import Rule
 from curvelab.standards.rules import load_rules

@@ -6,7 +6,7 @@ from typing import Literal
 
 from curvelab.records.answer import EdgeAnswer
 from curvelab.records.finding import Finding
-from curvelab.standards.judge import Limit, judge_number
+from curvelab.records.limit import Limit, judge_number
 
 PLAUSIBILITY = "plausibility"
 
