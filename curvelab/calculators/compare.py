@@ -9,8 +9,9 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from curvelab.calculators.margin import Asked, Margin, margin_between
-from curvelab.calculators.reach import MarginAt, Reach, clears_first, contacts, knots_of
+from curvelab.calculators.reach import Reach, clears_first, contacts, knots_of, margin_of
 from curvelab.devices.device import Device
+from curvelab.devices.names import names_of
 from curvelab.errors import DeviceError
 from curvelab.records.answer import TripTimes
 from curvelab.records.arrays import Floats
@@ -35,11 +36,11 @@ class Pair:
     Parameters
     ----------
     a, b : str
-        Their keys.
+        Their names, see `curvelab.devices.names`.
     b_over_a, a_over_b : Ratio
         Slow time of b over fast time of a, and the reverse.
     sooner : array of str
-        The key of the device that surely clears first, ``undecided`` where the bands or their intervals overlap,
+        The name of the device that surely clears first, ``undecided`` where the bands or their intervals overlap,
         ``not_covered`` where a curve does not reach.
     b_clears_first, a_clears_first : Reach
         The stretch of current in which b (a) clears before the other may act.
@@ -59,7 +60,7 @@ class Pair:
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Comparison:
-    """Devices side by side at currents in A; pairs in the order in which the devices were given."""
+    """Devices by name side by side at currents in A; pairs in the order in which the devices were given."""
 
     devices: tuple[str, ...]
     current_a: Floats
@@ -94,11 +95,12 @@ def compare(devices: Sequence[Device], currents: ArrayLike | None = None) -> Com
             raise DeviceError(f"'{device.key}' has no time-current curve to compare", "", "Compare devices with curves")
     current_a = _spread(devices) if currents is None else np.ravel(np.asarray(currents, dtype=np.float64))
     asked = [Asked(device, current_a) for device in devices]
+    names = names_of([device.record for device in devices])
     return Comparison(
-        devices=tuple(device.key for device in devices),
+        devices=names,
         current_a=current_a,
         times=tuple(each.times for each in asked),
-        pairs=tuple(_pair(a, b) for a, b in combinations(asked, 2)),
+        pairs=tuple(_pair(two, own) for two, own in zip(combinations(asked, 2), combinations(names, 2), strict=True)),
     )
 
 
@@ -107,39 +109,33 @@ def _spread(devices: Sequence[Device]) -> Floats:
     return np.geomspace(knots[0], knots[-1], _DEFAULT_CURRENTS)
 
 
-def _pair(a: Asked, b: Asked) -> Pair:
+def _pair(asked: tuple[Asked, Asked], names: tuple[str, str]) -> Pair:
+    a, b = asked
     knots = knots_of(a.device, b.device)
     b_first, a_first = margin_between(a, b), margin_between(b, a)
-    b_at, a_at = _margin_at(a.device, b.device), _margin_at(b.device, a.device)
+    b_at, a_at = margin_of(a.device, b.device), margin_of(b.device, a.device)
     b_knots, a_knots = b_at(knots), a_at(knots)
     return Pair(
-        a=a.device.key,
-        b=b.device.key,
+        a=names[0],
+        b=names[1],
         b_over_a=_ratio(b_first),
         a_over_b=_ratio(a_first),
-        sooner=_sooner(a.device.key, b.device.key, a_first, b_first),
+        sooner=sooner_of(names, a_first, b_first),
         b_clears_first=clears_first(b_at, knots, b_knots),
         a_clears_first=clears_first(a_at, knots, a_knots),
         contacts_a=tuple(sorted({*contacts(b_at, knots, b_knots), *contacts(a_at, knots, a_knots)})),
     )
 
 
-def _margin_at(upstream: Device, downstream: Device) -> MarginAt:
-    def margin_at(current_a: Floats) -> Margin:
-        return margin_between(Asked(upstream, current_a), Asked(downstream, current_a))
-
-    return margin_at
-
-
 def _ratio(margin: Margin) -> Ratio:
     return Ratio(value=np.exp(-margin.best), lower=np.exp(-margin.upper), upper=np.exp(-margin.lower))
 
 
-def _sooner(a: str, b: str, a_first: Margin, b_first: Margin) -> NDArray[Any]:
-    """Who surely clears first; an interval that is not known leaves the best value to say."""
+def sooner_of(names: tuple[str, str], a_first: Margin, b_first: Margin) -> NDArray[Any]:
+    """Who surely clears first, see `Pair`; an interval that is not known leaves the best value to say."""
     known = ~(np.isnan(a_first.best) & np.isnan(b_first.best))
-    result = np.where(known, "undecided", "not_covered").astype(np.dtype(("U", 64)))
-    for key, margin in ((a, a_first), (b, b_first)):
-        sure = np.where(np.isnan(margin.lower), margin.best, margin.lower)
-        result[sure > 0] = key
+    longest = max(map(len, (*names, "not_covered")))
+    result = np.where(known, "undecided", "not_covered").astype(np.dtype(("U", longest)))
+    for name, margin in zip(names, (a_first, b_first), strict=True):
+        result[margin.sure > 0] = name
     return result

@@ -25,6 +25,11 @@ class Margin:
     lower: Floats
     upper: Floats
 
+    @property
+    def sure(self) -> Floats:
+        """What decides: the lower end of the interval; the best value where the uncertainty is not known."""
+        return np.where(np.isnan(self.lower), self.best, self.lower)
+
 
 class Asked:
     """A device's times at currents in A; those with intervals of the curves' own only when they are needed."""

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from curvelab.calculators.margin import Margin
+from curvelab.calculators.margin import Asked, Margin, margin_between
 from curvelab.devices.device import Device
 from curvelab.records.arrays import Floats
 
@@ -30,6 +30,15 @@ class Reach:
     up_to_a: float | None = None
     lower_a: float | None = None
     upper_a: float | None = None
+
+
+def margin_of(upstream: Device, downstream: Device) -> MarginAt:
+    """The margin between two devices as a function of the current in A."""
+
+    def margin_at(current_a: Floats) -> Margin:
+        return margin_between(Asked(upstream, current_a), Asked(downstream, current_a))
+
+    return margin_at
 
 
 def knots_of(*devices: Device) -> Floats:
