@@ -1,7 +1,8 @@
 """A device that can be asked: elements combined at a setting, currents turned between bases, answers with status."""
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping, Sequence
 from types import MappingProxyType
+from typing import Literal
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -11,15 +12,22 @@ from curvelab.devices.bases import amperes, checked_base
 from curvelab.devices.breaking import breaking_capacity_a
 from curvelab.devices.element import pick_up
 from curvelab.devices.found import Found, shown
+from curvelab.devices.limiting import edge_limits, edge_values
 from curvelab.devices.lines import Lines, is_off, lines_of_edge, needed_settings
 from curvelab.devices.question import Path, Question, path_of, sees
 from curvelab.devices.settings import Given, checked_settings, missing_settings
 from curvelab.errors import DeviceError
-from curvelab.records.answer import EdgeAnswer, TripCurrents, TripTimes
+from curvelab.records.answer import EdgeAnswer, LetThrough, LetThroughCurrents, TripCurrents, TripTimes
 from curvelab.records.arrays import Floats
 from curvelab.records.band import Band, bands_of
-from curvelab.records.curve import MEANINGS, Conditions, Edge
+from curvelab.records.curve import MEANINGS, Conditions, Curve, Edge
 from curvelab.records.device import DeviceRecord, Nameplate
+
+Limiting = Literal["let_through", "peak"]
+"""What a current-limiting device is drawn for beside its times."""
+
+Ask = Callable[[tuple[Lines, ...], Edge], Found]
+"""How the lines of one edge are asked."""
 
 _NONE: Given = MappingProxyType({})
 _EDGES: tuple[Edge, ...] = ("fast", "slow", "mean")
@@ -136,11 +144,11 @@ class Device:
         self._refuse_unset()
         capacity_a = breaking_capacity_a(self.nameplate, question, way)
         limited = np.ravel(asked), None if capacity_a is None else capacity_a * self._units_per_unit("A", base)
-        answers: dict[str, EdgeAnswer | None] = {}
-        for edge in _EDGES:
-            lines = self._lines(edge, question, way)
-            found = None if lines is None else edge_times(lines, edge, self._units(lines, base), limited, own=own)
-            answers[edge] = _shown(found, lines, asked.shape)
+
+        def times(lines: tuple[Lines, ...], edge: Edge) -> Found:
+            return edge_times(lines, edge, self._units(lines, base), limited, own=own)
+
+        answers = self._each_edge(self._times, times, (question, way), asked.shape)
         return TripTimes(current=_as_given(asked), base=base, **answers)
 
     def trip_current(
@@ -172,18 +180,75 @@ class Device:
         question = Question(path=path, meaning=meaning, conditions=conditions)
         way = path_of(question, self.nameplate, checked_base(base))
         self._refuse_unset()
-        answers: list[EdgeAnswer | None] = []
-        for edge in _EDGES:
-            lines = self._lines(edge, question, way)
-            found = None if lines is None else edge_currents(lines, edge, self._units(lines, base), np.ravel(asked))
-            answers.append(_shown(found, lines, asked.shape))
-        holds, trips, mean = answers
-        return TripCurrents(time_s=_as_given(asked), base=base, trips=trips, holds=holds, mean=mean)
 
-    def bends_a(self) -> Floats:
+        def currents(lines: tuple[Lines, ...], edge: Edge) -> Found:
+            return edge_currents(lines, edge, self._units(lines, base), np.ravel(asked))
+
+        answers = self._each_edge(self._times, currents, (question, way), asked.shape)
+        return TripCurrents(
+            time_s=_as_given(asked), base=base, trips=answers["slow"], holds=answers["fast"], mean=answers["mean"]
+        )
+
+    def let_through(
+        self,
+        current: ArrayLike,
+        base: str = "A",
+        *,
+        quantity: Limiting = "let_through",
+        meaning: str | None = None,
+        conditions: Conditions = Conditions(),
+    ) -> LetThrough:
+        """Let-through energies in A2s, or with ``quantity="peak"`` cut-off currents in A, at prospective currents.
+
+        Never beyond what is drawn; over several voltages, none of which is asked for, the slow edge answers the
+        largest. Parameters and errors as for `trip_time`.
+        """
+        asked = _positive(current, "current")
+        question = Question(meaning=meaning, conditions=conditions)
+        way = path_of(question, self.nameplate, checked_base(base))
+        self._refuse_unset()
+        capacity_a = breaking_capacity_a(self.nameplate, question, way)
+        limited = np.ravel(asked), None if capacity_a is None else capacity_a * self._units_per_unit("A", base)
+
+        def values(lines: tuple[Lines, ...], edge: Edge) -> Found:
+            return edge_values(lines, edge, self._units(lines, base), limited)
+
+        answers = self._each_edge(self.limiting(quantity), values, (question, way), asked.shape)
+        return LetThrough(quantity=quantity, current=_as_given(asked), base=base, **answers)
+
+    def let_through_current(
+        self,
+        value: ArrayLike,
+        base: str = "A",
+        *,
+        quantity: Limiting = "let_through",
+        meaning: str | None = None,
+        conditions: Conditions = Conditions(),
+    ) -> LetThroughCurrents:
+        """The greatest prospective current up to which each line stays at or below an energy in A2s (a peak in A).
+
+        ``at_least`` the last current drawn where the line never exceeds it. Parameters and errors as for `trip_time`.
+        """
+        asked = _positive(value, "let-through")
+        question = Question(meaning=meaning, conditions=conditions)
+        way = path_of(question, self.nameplate, checked_base(base))
+        self._refuse_unset()
+
+        def limits(lines: tuple[Lines, ...], _: Edge) -> Found:
+            return edge_limits(lines, self._units(lines, base), np.ravel(asked))
+
+        answers = self._each_edge(self.limiting(quantity), limits, (question, way), asked.shape)
+        return LetThroughCurrents(quantity=quantity, value=_as_given(asked), base=base, **answers)
+
+    def limiting(self, quantity: Limiting) -> tuple[Curve, ...]:
+        """Its let-through or cut-off lines."""
+        return tuple(curve for curve in self._record.curves if curve.quantity == quantity)
+
+    def bends_a(self, path: Path | None = None) -> Floats:
         """Currents in A, rising, at which its times may bend or step: what is tabulated, and declared pick-ups.
 
-        Of the elements that act on the path a current has when nothing else is said; shape (n,), empty without curves.
+        Of the elements that act on the path, by default that of a current when nothing else is said; shape (n,), empty
+        without curves.
 
         Raises
         ------
@@ -191,7 +256,7 @@ class Device:
             An adjustable device without its settings, or a rating its curves need is missing.
         """
         self._refuse_unset()
-        way = path_of(Question(), self.nameplate, "A")
+        way = path_of(Question(path=path), self.nameplate, "A")
         acting = [
             curve for curve in self._times if sees(curve.element, way) and not is_off(curve.element, self._settings)
         ]
@@ -207,12 +272,19 @@ class Device:
         if not self.is_set:
             raise missing_settings(self.nameplate)
 
-    def _lines(self, edge: Edge, question: Question, way: Path) -> tuple[Lines, ...] | None:
-        return lines_of_edge(self._times, edge, self.nameplate, self._settings, question, way)
+    def _each_edge(
+        self, curves: Sequence[Curve], ask: Ask, asked: tuple[Question, Path], shape: tuple[int, ...]
+    ) -> dict[Edge, EdgeAnswer | None]:
+        """The answer of each edge that some of the curves draw."""
+        answers: dict[Edge, EdgeAnswer | None] = {}
+        for edge in _EDGES:
+            lines = lines_of_edge(curves, edge, self.nameplate, self._settings, *asked)
+            answers[edge] = None if lines is None else _shown(ask(lines, edge), lines, shape)
+        return answers
 
-    def _units(self, elements: tuple[Lines, ...] | None, base: str) -> dict[str, float]:
+    def _units(self, elements: tuple[Lines, ...], base: str) -> dict[str, float]:
         """What one unit of each base the lines are drawn in is in the base asked."""
-        bases = {line.curve.base for each in elements or () for line in each.lines}
+        bases = {line.curve.base for each in elements for line in each.lines}
         return {drawn: self._units_per_unit(drawn, base) for drawn in sorted(bases)}
 
     def _units_per_unit(self, base: str, asked: str) -> float:
@@ -223,10 +295,8 @@ class Device:
         return amperes(plate, settings, base) / amperes(plate, settings, asked)
 
 
-def _shown(found: Found | None, elements: tuple[Lines, ...] | None, shape: tuple[int, ...]) -> EdgeAnswer | None:
+def _shown(found: Found, elements: tuple[Lines, ...], shape: tuple[int, ...]) -> EdgeAnswer:
     """An edge's answer in the shape of what was asked, with the weakest basis and meaning of its lines."""
-    if found is None or elements is None:
-        return None
     bases = {line.curve.basis for each in elements for line in each.lines}
     basis = next((name for name in ("declared", "sheet", "standard") if name in bases), "sheet")
     said = {each.meaning for each in elements}

@@ -10,6 +10,10 @@ from curvelab.records.curve import Curve, Edge, Part
 from curvelab.records.device import Tolerance
 
 _NO_SHIFT = (0.0, 0.0)
+_POWER = {"time": 0, "let_through": 2, "peak": 1}
+"""A device that acts at another current as the mean one does at its own has all its currents scaled: its time stays,
+its peak scales with the current, its energy with the square of it."""
+
 _STEPS = 16
 """A shift in seconds bends a straight line of a log-log plot: each is cut into this many."""
 
@@ -40,6 +44,8 @@ def edges_of_mean(mean: Curve, tolerance: Tolerance) -> tuple[Curve, ...]:
     """The fast and slow edge of a mean line at its stated limits, basis ``declared``; none without limits.
 
     The fast edge shifts down in current and time, the slow edge up; where several limits are stated, both hold at once.
+    On a let-through sheet a limit in current scales the energy by its square, a limit in time by itself; what a limit
+    in time does to a peak current nobody can say, so that such a line stays without edges.
 
     Raises
     ------
@@ -47,7 +53,8 @@ def edges_of_mean(mean: Curve, tolerance: Tolerance) -> tuple[Curve, ...]:
         The tolerance is not one about a mean line, or takes a time to zero.
     """
     checked_tolerance(tolerance, f"Curve '{mean.element}'")
-    if tolerance.current is None and tolerance.time is None and tolerance.time_s is None:
+    of_time = tolerance.time is not None or tolerance.time_s is not None
+    if (tolerance.current is None and not of_time) or (of_time and mean.quantity == "peak"):
         return ()
     return _shifted(mean, tolerance, "fast", 0), _shifted(mean, tolerance, "slow", 1)
 
@@ -56,15 +63,17 @@ def _shifted(mean: Curve, tolerance: Tolerance, edge: Edge, side: int) -> Curve:
     in_current = 1 + (tolerance.current or _NO_SHIFT)[side]
     in_time = 1 + (tolerance.time or _NO_SHIFT)[side]
     in_seconds = (tolerance.time_s or _NO_SHIFT)[side]
-    parts = tuple(_shifted_part(part, in_current, in_time, in_seconds) for part in mean.parts)
+    power = _POWER[mean.quantity]
+    in_value = in_time * in_current**power
+    parts = tuple(_shifted_part(part, in_current, in_value, in_seconds, power) for part in mean.parts)
     return replace(mean, edge=edge, parts=parts, basis="declared")
 
 
-def _shifted_part(part: Part, in_current: float, in_time: float, in_seconds: float) -> Part:
+def _shifted_part(part: Part, in_current: float, in_value: float, in_seconds: float, power: int) -> Part:
     if in_seconds:
         part = _cut(part)
-    relative = part.value * in_time
-    value = relative + in_seconds
+    relative = part.value * in_value
+    value = relative + in_seconds * (part.current * in_current) ** power
     if (value <= 0).any():
         raise DeviceError(
             f"tolerance_time_s = {in_seconds:g} takes a time of {relative.min():g} s to zero or below",

@@ -59,3 +59,27 @@ class TripCurrents:
     trips: EdgeAnswer | None
     holds: EdgeAnswer | None
     mean: EdgeAnswer | None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class LetThrough:
+    """Let-through energies in A2s, or peak currents in A, at currents: an edge is None where there is no such line."""
+
+    quantity: Literal["let_through", "peak"]
+    current: float | Floats
+    base: str
+    fast: EdgeAnswer | None
+    slow: EdgeAnswer | None
+    mean: EdgeAnswer | None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class LetThroughCurrents:
+    """The greatest current up to which each line stays at or below a let-through energy in A2s, or a peak in A."""
+
+    quantity: Literal["let_through", "peak"]
+    value: float | Floats
+    base: str
+    fast: EdgeAnswer | None
+    slow: EdgeAnswer | None
+    mean: EdgeAnswer | None

@@ -61,7 +61,9 @@ def outer_bounds(curve: Curve, current: Floats, *, own: bool = False) -> tuple[F
 
 
 def currents_at(curve: Curve, value: Floats) -> Bounded:
-    """Currents of a falling curve at values: of the slow edge the least, of the fast edge the greatest.
+    """Currents at values: of a falling slow edge the least, of a falling fast edge the greatest.
+
+    Of a rising curve (let-through, peak) the greatest up to which it stays at or below the value.
 
     Where a value lies in a gap between two parts, or is repeated on a level stretch, that is the end on the safe side:
     the least current from which on the slow edge is surely no longer than the value, the greatest up to which the fast
@@ -126,6 +128,8 @@ def _bounds_table(curve: Curve, own: bool) -> PowerTable | None:
 @lru_cache(maxsize=1024)
 def _current_table(curve: Curve) -> PowerTable:
     """Current, lower and upper over rising values; the current alone where the uncertainty is not known."""
+    if not falls(curve):
+        return _rising_current_table(curve)
     best = best_chain(curve)
     current = _inverse(_bridged(best, curve.edge), first=curve.edge == "fast", clamped=False)
     bounds = bound_chains(curve, own=False)
@@ -134,6 +138,20 @@ def _current_table(curve: Curve) -> PowerTable:
     lower, upper = bounds
     sides = [_inverse(lower, first=False, clamped=True), _inverse(upper, first=True, clamped=True)]
     return with_bounds(current, side_by_side(sides))
+
+
+def _rising_current_table(curve: Curve) -> PowerTable:
+    current = _last_current(_bridged(best_chain(curve), "fast"), clamped=False)
+    bounds = bound_chains(curve, own=False)
+    if bounds is None:
+        return current
+    lower, upper = bounds
+    return with_bounds(current, side_by_side([_last_current(each, clamped=True) for each in (upper, lower)]))
+
+
+def _last_current(chain: Chain, *, clamped: bool) -> PowerTable:
+    """The last current up to which a chain has stayed at or below each value."""
+    return chain_table(np.maximum.accumulate(chain.value), chain.current, first=False, clamped=clamped)
 
 
 def _inverse(chain: Chain, *, first: bool, clamped: bool) -> PowerTable:
