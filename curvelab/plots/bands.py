@@ -14,16 +14,18 @@ from curvelab.plots.limits import draw_limit, placed_limits
 from curvelab.plots.paper import Paper, draw_paper
 from curvelab.plots.save import picture_format, save_figure
 from curvelab.plots.shapes import between_outlines, halo_outlines
-from curvelab.plots.subject import Subject, amperes_per_unit, ranges, subjects_of
+from curvelab.plots.sides import draw_strip, shade_undecided, strip_height
+from curvelab.plots.subject import Subject, amperes_per_unit, ranges, subjects_of, units_per_unit
 from curvelab.plots.tags import draw_tags
 from curvelab.records.curve import Curve, Edge
 from curvelab.records.device import DeviceRecord
 from curvelab.records.finding import Finding
+from curvelab.records.stretch import Sides
 
 A4_INCHES = (8.27, 11.69)
 DPI = 200
-LEFT, RIGHT, BOTTOM = 0.115, 0.075, 0.065
-"""Margins about the axes, as fractions of the page."""
+LEFT, RIGHT, BOTTOM, SLIM = 0.115, 0.075, 0.065, 0.022
+"""Margins about the axes, and beneath a strip, as fractions of the page."""
 TOP_SCALE = 0.022
 """What a second current scale on top takes of the page."""
 
@@ -33,6 +35,7 @@ def draw_bands(
     path: str | Path,
     *,
     findings: Sequence[Finding] = (),
+    sides: Sequence[Sides] = (),
     quantity: str = "time",
 ) -> None:
     """Draw the curves of devices over each other on one A4 page, as PNG, SVG or PDF by the file's ending.
@@ -47,6 +50,8 @@ def draw_bands(
     path : path
     findings : sequence of Finding
         Their limits are drawn as brackets open to the permitted side; of a time-current plot only.
+    sides : sequence of Sides
+        Who clears first: a strip beneath; where one pair alone is undecided, the plot is shaded.
     quantity : str
         ``time``, ``let_through`` or ``peak``.
 
@@ -58,13 +63,18 @@ def draw_bands(
         The picture cannot be written under that name.
     """
     picture_format(path)
-    save_figure(bands_figure(devices, findings=findings, quantity=quantity), path)
+    save_figure(bands_figure(devices, findings=findings, sides=sides, quantity=quantity), path)
 
 
 def bands_figure(
-    devices: Sequence[DeviceRecord], *, findings: Sequence[Finding] = (), quantity: str = "time", foot: float = 0.0
+    devices: Sequence[DeviceRecord],
+    *,
+    findings: Sequence[Finding] = (),
+    sides: Sequence[Sides] = (),
+    quantity: str = "time",
+    free: tuple[float, float] = (0.0, 0.0),
 ) -> Figure:
-    """The figure of `draw_bands`, for a report to place among others; ``foot`` of the page is left free beneath it."""
+    """The figure of `draw_bands`; of the page, ``free`` above and beneath is left to others."""
     subjects, base = subjects_of(devices, quantity)
     limits = placed_limits(findings, subjects, base) if quantity == "time" else ()
     amperes = amperes_per_unit(subjects, base)
@@ -74,14 +84,21 @@ def bands_figure(
     paper = Paper(base=base, quantity=quantity, currents=currents, values=values, amperes_per_unit=amperes)
     with rc_context(STYLE):
         figure = Figure(figsize=A4_INCHES, dpi=DPI, facecolor=PAPER)
-        top = header_height(subjects) + (TOP_SCALE if amperes is not None else 0.0)
-        axes = draw_paper(figure, (LEFT, BOTTOM + foot, 1 - LEFT - RIGHT, 1 - BOTTOM - foot - top), paper)
+        above, beneath = free
+        top = above + header_height(subjects) + (TOP_SCALE if amperes is not None else 0.0)
+        bottom = beneath + (SLIM + strip_height(sides) if sides else BOTTOM)
+        axes = draw_paper(figure, (LEFT, bottom, 1 - LEFT - RIGHT, 1 - bottom - top), paper)
         for subject in subjects:
             _draw_subject(axes, subject)
         draw_tags(axes, subjects)
         for limit in limits:
             draw_limit(axes, limit)
-        draw_header(figure, subjects, LEFT)
+        if sides:
+            units_per_a = units_per_unit(subjects[0], "A", base) or 1.0
+            draw_strip(figure, axes, subjects, sides, units_per_a)
+            if len(sides) == 1:
+                shade_undecided(axes, sides[0], units_per_a)
+        draw_header(figure, subjects, LEFT, above)
     return figure
 
 

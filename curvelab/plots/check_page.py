@@ -45,7 +45,7 @@ def draw_check_page(device: DeviceRecord, findings: Sequence[Finding], path: str
     picture_format(path)
     height = min(TALLEST, ROW * (len(findings) + 2) + GAP)
     with rc_context(STYLE):
-        figure = bands_figure([device], findings=findings, foot=height)
+        figure = bands_figure([device], findings=findings, free=(0.0, height))
         _draw_table(figure, findings, height - GAP)
     save_figure(figure, path)
 

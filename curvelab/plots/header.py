@@ -14,38 +14,30 @@ from curvelab.records.curve import Edge
 TITLE, ROW, GAP = 0.058, 0.0155, 0.036
 """Heights as fractions of the page: title with its margin, a line of the list, the key of the lines."""
 KEY_GAP = 0.007
-COLUMNS = 2
-ONE_COLUMN = 4
-"""Up to this many devices stand under each other."""
 
 EDGE_WORDS: dict[Edge, str] = {"fast": "fast edge", "slow": "slow edge", "mean": "mean line"}
 
 
-def _rows(subjects: Sequence[Subject]) -> int:
-    count = len(subjects)
-    return 1 if count == 1 else count if count <= ONE_COLUMN else -(-count // COLUMNS)
-
-
 def header_height(subjects: Sequence[Subject]) -> float:
     """What the header takes of the page."""
-    return TITLE + ROW * _rows(subjects) + GAP
+    return TITLE + ROW * len(subjects) + GAP
 
 
-def draw_header(figure: Figure, subjects: Sequence[Subject], left: float) -> None:
-    """Title, devices and key, in the margin above the axes so that nothing is covered."""
-    figure.text(left, 1 - TITLE + 0.012, _title(subjects), fontsize=13, fontweight="bold", va="bottom")
-    top = 1 - TITLE
+def draw_header(figure: Figure, subjects: Sequence[Subject], left: float, above: float) -> None:
+    """Title, devices and key, in the margin above the axes so that nothing is covered; ``above`` is left free."""
+    top = 1 - above - TITLE
+    figure.text(left, top + 0.012, _title(subjects), fontsize=13, fontweight="bold", va="bottom")
     if len(subjects) == 1:
         figure.text(left, top, _about(subjects[0]), fontsize=8.5, color=QUIET, va="top")
     else:
         rows, labels = [_swatch(subject) for subject in subjects], [_entry(subject) for subject in subjects]
-        _list(figure, rows, labels, (left, top), 1 if len(subjects) <= ONE_COLUMN else COLUMNS)
+        _list(figure, rows, labels, (left, top), 1)
     key = list(_key(subjects))
     _list(
         figure,
         [each for each, _ in key],
         [words for _, words in key],
-        (left, top - ROW * _rows(subjects) - KEY_GAP),
+        (left, top - ROW * len(subjects) - KEY_GAP),
         len(key),
     )
 
@@ -72,8 +64,8 @@ def _list(
 
 
 def _title(subjects: Sequence[Subject]) -> str:
-    keys = [subject.plate.key for subject in subjects]
-    return " · ".join(keys) if len(keys) <= 3 and sum(map(len, keys)) <= 54 else f"{len(keys)} devices compared"
+    names = [subject.name for subject in subjects]
+    return " · ".join(names) if len(names) <= 3 and sum(map(len, names)) <= 54 else f"{len(names)} devices compared"
 
 
 def _about(subject: Subject) -> str:
@@ -86,7 +78,7 @@ def _about(subject: Subject) -> str:
 
 
 def _entry(subject: Subject) -> str:
-    return f"{subject.letter}   {subject.plate.key}:  {_about(subject)}"
+    return f"{subject.letter}   {subject.name}:  {_about(subject)}"
 
 
 def _swatch(subject: Subject) -> Artist:

@@ -42,11 +42,13 @@ DEVICE_INKS = (
     DeviceInk(colour="#3d4246", hatch="....."),
     DeviceInk(colour="#8f2a61", hatch="|||||"),
     DeviceInk(colour="#5f6300", hatch="-----"),
+    DeviceInk(colour="#1f4e9c", hatch="xxxxx"),
+    DeviceInk(colour="#7a3b12", hatch="ooo"),
 )
 
 
 def device_ink(index: int) -> DeviceInk:
-    """The ink of the device at a position; after six they repeat, told apart by their letters."""
+    """The ink of the device at a position; after eight they repeat, told apart by their letters."""
     return DEVICE_INKS[index % len(DEVICE_INKS)]
 
 

@@ -6,6 +6,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from curvelab.devices.bases import amperes
+from curvelab.devices.names import names_of
 from curvelab.errors import DeviceError
 from curvelab.plots.ink import DeviceInk, device_ink
 from curvelab.records.band import Band, bands_of
@@ -27,8 +28,9 @@ KIND_WORDS = {
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Subject:
-    """One device as it is drawn: its bands, its ink, and its letter where there are several."""
+    """One device as it is drawn: its name, bands and ink, and its letter where there are several."""
 
+    name: str
     plate: Nameplate
     bands: tuple[Band, ...]
     ink: DeviceInk
@@ -58,12 +60,13 @@ def subjects_of(devices: Sequence[DeviceRecord], quantity: str) -> tuple[tuple[S
     base = bases.pop() if alike else "A"
     subjects = tuple(
         Subject(
+            name=name,
             plate=plate,
             bands=bands_of(_in_base(curve, base, plate) for curve in curves),
             ink=device_ink(index),
             letter=_letter(index) if len(owned) > 1 else "",
         )
-        for index, (plate, curves) in enumerate(owned)
+        for index, (name, (plate, curves)) in enumerate(zip(names_of(devices), owned, strict=True))
     )
     return subjects, base
 
