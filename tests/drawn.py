@@ -21,6 +21,7 @@ from tests.drawing.styles import styled
 QUALITIES = {
     "clean": ("agg", "resvg", "pdfium"),
     "snapped": ("agg-snapped",),
+    "stepped": ("agg-stepped",),
     "grey": ("agg", "resvg", "pdfium"),
     "bilevel": ("agg", "resvg", "pdfium"),
     "photo": ("agg", "resvg", "pdfium"),
@@ -70,7 +71,7 @@ def _drawn(
     page = design.page
     if quality == "vector":
         name, data = f"{stem}.{renderer[-3:]}", VECTOR[renderer](drawn.ink, page)
-    elif quality in {"clean", "snapped"}:
+    elif quality in {"clean", "snapped", "stepped"}:
         truth = truth.to_pixels()
         pixels = raster(drawn, page, renderer)
         name, data = f"{stem}.png", image_file(pixels if seed % 3 else grey(pixels), "png", page.dpi)

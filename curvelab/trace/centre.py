@@ -25,7 +25,9 @@ OUTLIER = 3.0
 FLOOR = 0.012
 """Least misfit of the model, in shares of the line's ink."""
 TWO_LEVEL_FLOOR = 0.3
-"""The same in a 1-bit scan: pixels at a stroke's edges are black or white, not grey."""
+"""The same where pixels at a stroke's edges are ink or paper and nothing between: a 1-bit scan, a plot drawn in steps."""
+HARD_EDGED = 0.03
+"""Share of a line's inked pixels between ink and paper: fewer, and its edges run in steps."""
 GRID_DOUBT = 0.06
 """Doubt of the predicted grid ink, in shares of it."""
 STEADY = 0.5
@@ -113,11 +115,12 @@ def measure_centres(raster: Raster, course: Course, ink: Floats, width: float) -
     blur = 0.6
     profile = stroke_profile(width, blur, _reach(width, blur) + 3.0)
     across = course.across
-    floor = TWO_LEVEL_FLOOR if raster.ink.two_level else FLOOR
     noise = raster.ink.noise / max(float(np.abs(ink).mean()), 0.05)
-    fit = None
+    floor, fit = FLOOR, None
     for number in range(PASSES):
         window = _window(raster, course, ink, profile)
+        if number == 0:
+            floor = TWO_LEVEL_FLOOR if raster.ink.two_level or _hard_edged(window) else FLOOR
         fit = _fit(window, profile, noise, floor)
         across = course.across + fit.offset / course.cosine
         if number == PASSES - 1:
@@ -139,6 +142,13 @@ def measure_centres(raster: Raster, course: Course, ink: Floats, width: float) -
         blur=profile.blur,
         ink=ink,
     )
+
+
+def _hard_edged(window: _Window) -> bool:
+    """Whether hardly a pixel of the line lies between ink and paper."""
+    ink = (window.seen - window.under)[(window.inside > 0) & (window.grid < 0.05)]
+    between = np.count_nonzero((ink > 0.15) & (ink < 0.85))
+    return between < HARD_EDGED * np.count_nonzero(ink >= 0.15)
 
 
 def _reach(width: float, blur: float) -> float:

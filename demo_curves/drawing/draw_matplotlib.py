@@ -28,9 +28,15 @@ SETTINGS = {
 ANCHORS = {"start": "left", "middle": "center", "end": "right"}
 
 
-def agg_pixels(ink: tuple[Ink, ...], page: Page, *, snapped: bool) -> NDArray[np.uint8]:
-    """RGB pixels (height, width, 3). `snapped` leaves matplotlib its habit of moving upright and level lines."""
+def agg_pixels(ink: tuple[Ink, ...], page: Page, *, snapped: bool = False, stepped: bool = False) -> NDArray[np.uint8]:
+    """RGB pixels (height, width, 3).
+
+    `snapped` leaves matplotlib its habit of moving upright and level lines; `stepped` lets each pixel of a line be
+    ink or none, as plotting programs do that know no shades.
+    """
     with _figure(ink, page, snap=None if snapped else False) as figure:
+        for line in figure.findobj(Line2D):
+            line.set_antialiased(not stepped)
         canvas = FigureCanvasAgg(figure)
         canvas.draw()
         return np.asarray(canvas.buffer_rgba())[:, :, :3].copy()

@@ -18,13 +18,14 @@ Pixels = NDArray[np.uint8]
 
 RASTER: Mapping[str, Callable[[tuple[Ink, ...], Page], Pixels]] = MappingProxyType(
     {
-        "agg": lambda ink, page: agg_pixels(ink, page, snapped=False),
+        "agg": agg_pixels,
         "agg-snapped": lambda ink, page: agg_pixels(ink, page, snapped=True),
+        "agg-stepped": lambda ink, page: agg_pixels(ink, page, stepped=True),
         "resvg": resvg_pixels,
         "pdfium": pdfium_pixels,
     }
 )
-"""Renderers to RGB pixels; only "agg-snapped" moves level and upright lines to whole pixels."""
+"""Renderers to RGB pixels; only "agg-snapped" moves level and upright lines to whole pixels, only "agg-stepped" knows no shades."""
 
 VECTOR: Mapping[str, Callable[[tuple[Ink, ...], Page], bytes]] = MappingProxyType(
     {

@@ -21,7 +21,7 @@ def traced(seed: int, quality: str) -> list[TraceScore]:
 
 @pytest.mark.parametrize(
     ("quality", "rms", "completeness"),
-    [("clean", 0.05, 0.99), ("snapped", 0.05, 0.99), ("grey", 0.15, 0.98)],
+    [("clean", 0.05, 0.99), ("snapped", 0.05, 0.99), ("stepped", 0.3, 0.99), ("grey", 0.15, 0.98)],
 )
 def test_lines_are_followed_to_a_fraction_of_a_pixel(quality: str, rms: float, completeness: float) -> None:
     scores = [score for seed in SEEDS for score in traced(seed, quality)]
