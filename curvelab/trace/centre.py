@@ -25,7 +25,7 @@ OUTLIER = 3.0
 FLOOR = 0.012
 """Least misfit of the model, in shares of the line's ink."""
 TWO_LEVEL_FLOOR = 0.3
-"""The same where pixels at a stroke's edges are ink or paper and nothing between: a 1-bit scan, a plot drawn in steps."""
+"""The same where a stroke's edges are ink or paper and nothing between: a 1-bit scan, a plot drawn in steps."""
 HARD_EDGED = 0.03
 """Share of a line's inked pixels between ink and paper: fewer, and its edges run in steps."""
 GRID_DOUBT = 0.06

@@ -25,7 +25,10 @@ RASTER: Mapping[str, Callable[[tuple[Ink, ...], Page], Pixels]] = MappingProxyTy
         "pdfium": pdfium_pixels,
     }
 )
-"""Renderers to RGB pixels; only "agg-snapped" moves level and upright lines to whole pixels, only "agg-stepped" knows no shades."""
+"""Renderers to RGB pixels.
+
+Only "agg-snapped" moves level and upright lines to whole pixels; only "agg-stepped" draws lines without shades.
+"""
 
 VECTOR: Mapping[str, Callable[[tuple[Ink, ...], Page], bytes]] = MappingProxyType(
     {

@@ -12,7 +12,7 @@ import numpy as np
 from tests.benchmark.guided import SheetResult, read_one
 from tests.drawn import QUALITIES
 
-GUIDED = "clean,snapped,grey,bilevel,vector"
+GUIDED = "clean,snapped,stepped,grey,bilevel,vector"
 """Classes that guided reading is measured on by default; photographs ask for more of the axes."""
 
 COLUMNS = "{:<10}{:>8}{:>8}{:>10}{:>10}{:>10}{:>10}{:>10}{:>10}{:>9}{:>8}"
