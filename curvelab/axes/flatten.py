@@ -9,11 +9,15 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from curvelab.axes.fan import Fan, fanned, parallel
 from curvelab.axes.segments import Segments
 from curvelab.records.arrays import Floats
 
 LONG = 0.3
 """Share of the longest piece from which on a piece tells the slope of its line."""
+
+PLACE_SD = 0.6
+"""Pixels by which places are off in the search."""
 
 FEWEST = 5
 """Long pieces of a direction without which it is taken to be parallel."""
@@ -70,25 +74,19 @@ class Flattening:
 def flattening(upright: Segments, level: Segments, size: tuple[float, float]) -> Flattening:
     """The map of a page from the slopes of its long pieces."""
     centre = 0.5 * np.array(size)
-    first, by_across = _fan(upright, centre, 0)
-    second, by_down = _fan(level, centre, 1)
+    first, second = _fan(upright, centre, 0), _fan(level, centre, 1)
+    by_across, by_down = first.growth, second.growth
     if max(abs(by_across), abs(by_down)) * 0.25 * size[0] * size[1] < NOTICED:
         return Flattening(centre=centre, far=np.zeros(2))
-    below = 1.0 - first * second
-    far = np.array([by_down - by_across * second, by_across - first * by_down]) / below
+    below = 1.0 - first.slope * second.slope
+    far = np.array([by_down - by_across * second.slope, by_across - first.slope * by_down]) / below
     return Flattening(centre=centre, far=far)
 
 
-def _fan(segments: Segments, centre: Floats, across: int) -> tuple[float, float]:
-    """Slope of the line through the centre, and by how much slopes grow per place across: robust (Theil and Sen)."""
-    if not segments.length.size:
-        return 0.0, 0.0
-    long = segments.where(segments.length >= LONG * segments.length.max())
-    if len(long.across) < FEWEST:
-        return float(np.median(long.lean)), 0.0
+def _fan(segments: Segments, centre: Floats, across: int) -> Fan:
+    """How the long pieces lean, places counted from the page's centre."""
+    long = segments.where(segments.length >= LONG * segments.length.max(initial=0.0))
     at = long.across - long.lean * (0.5 * (long.first + long.last) - centre[1 - across]) - centre[across]
-    low, high = np.triu_indices(len(at), 1)
-    apart = at[high] - at[low]
-    far = np.abs(apart) > 0.1 * float(np.ptp(at))
-    growth = float(np.median((long.lean[high] - long.lean[low])[far] / apart[far])) if far.any() else 0.0
-    return float(np.median(long.lean - growth * at)), growth
+    if len(at) < FEWEST:
+        return parallel(long.lean, long.length, PLACE_SD)
+    return fanned(at, long.lean, long.length, PLACE_SD)

@@ -4,8 +4,6 @@ from collections.abc import Collection, Iterable
 from dataclasses import dataclass, replace
 from typing import Literal
 
-import numpy as np
-
 from curvelab.axes.plots import Plot
 from curvelab.axes.seen import Seen
 from curvelab.lettering.numbers import number_of
@@ -19,9 +17,6 @@ INSIDE = 0.15
 
 BEYOND = 1.5
 """Heights by which its middle may lie beyond the frame's corners."""
-
-TREND_LINES = 8
-"""Lines from which on their slopes may change across, as on a page taken at an angle."""
 
 LEAST_CHANCE = 0.02
 
@@ -69,8 +64,7 @@ def labels_beside(words: Iterable[Word], plot: Plot, seen: tuple[Seen, Seen], ac
                 Label(
                     text=word.text,
                     readings=readings,
-                    at=place[across]
-                    - slope_at(seen[across], place[across]) * (place[1 - across] - seen[across].middle),
+                    at=place[across] - seen[across].slope_at(place[across]) * (place[1 - across] - seen[across].middle),
                     half=max(half, 0.25 * word.height),
                     side=side,
                     box=word.box,
@@ -86,18 +80,6 @@ def labels_in(labels: Iterable[Label], units: Collection[str]) -> list[Label]:
         for label in labels
     )
     return [label for label in kept if label.readings]
-
-
-def slope_at(seen: Seen, place: float) -> float:
-    """Slope of the lines near a place across."""
-    if not len(seen.at):
-        return 0.0
-    if len(seen.at) < TREND_LINES:
-        return seen.slope
-    # The median of pairs' slopes (Theil and Sen), as a curve or a box among the lines leans otherwise.
-    low, high = np.triu_indices(len(seen.at), 1)
-    trend = float(np.median((seen.lean[high] - seen.lean[low]) / (seen.at[high] - seen.at[low])))
-    return float(np.median(seen.lean + trend * (place - seen.at)))
 
 
 def _middle(box: tuple[float, float, float, float]) -> tuple[float, float]:

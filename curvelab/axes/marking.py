@@ -3,7 +3,6 @@
 import numpy as np
 
 from curvelab.axes.consensus import Ruling
-from curvelab.axes.labels import slope_at
 from curvelab.axes.page import Page
 from curvelab.axes.plots import Plot
 from curvelab.axes.seen import Seen
@@ -36,7 +35,7 @@ def marks_of(page: Page, plot: Plot, seen: Seen, ruling: Ruling, across: int) ->
         at = _line_at(seen, predicted)
         low, high = plot.span(1 - across)
         along = low if agreed.label.side in ("above", "left") else high
-        at += slope_at(seen, at) * (along - seen.middle)
+        at += seen.slope_at(at) * (along - seen.middle)
         point = np.array([[at, along] if across == 0 else [along, at]])
         x, y = page.places(point)[0]
         place = (round(float(x), DECIMALS), round(float(y), DECIMALS))
@@ -56,7 +55,7 @@ def _marks_all_over(page: Page, plot: Plot, seen: Seen, ruling: Ruling, across: 
         if agreed is None and at not in seen.at:
             continue
         along = 0.5 * (low + high) + (STRAIGHT_AT if len(marks) % 2 else -STRAIGHT_AT) * 0.5 * (high - low)
-        leaning = at + slope_at(seen, at) * (along - seen.middle)
+        leaning = at + seen.slope_at(at) * (along - seen.middle)
         x, y = page.places(np.array([[leaning, along] if across == 0 else [along, leaning]]))[0]
         place = (round(float(x), DECIMALS), round(float(y), DECIMALS))
         column = across if not page.swapped else 1 - across

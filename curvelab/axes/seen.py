@@ -4,6 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from curvelab.axes.fan import Fan, fanned
 from curvelab.axes.plots import Plot
 from curvelab.records.arrays import Floats
 
@@ -19,8 +20,8 @@ class Seen:
     ----------
     at : array, rising
         Places across, at ``middle`` along.
-    lean : array
-        Slope of each line, across by along.
+    fan : Fan
+        How the lines lean, across by along; its places count from 0 across.
     middle : float
     span : (float, float)
         What the plot covers across.
@@ -31,7 +32,7 @@ class Seen:
     """
 
     at: Floats
-    lean: Floats
+    fan: Fan
     middle: float
     span: tuple[float, float]
     sd: float
@@ -44,8 +45,12 @@ class Seen:
 
     @property
     def slope(self) -> float:
-        """Median slope."""
-        return float(np.median(self.lean)) if len(self.lean) else 0.0
+        """Slope of the lines in the plot's middle."""
+        return self.slope_at(0.5 * sum(self.span))
+
+    def slope_at(self, place: float) -> float:
+        """Slope of the lines near a place across."""
+        return float(self.fan.at(np.array([place]))[0])
 
 
 def seen_lines(plot: Plot, across: int, sd: float) -> Seen:
@@ -62,18 +67,21 @@ def seen_lines(plot: Plot, across: int, sd: float) -> Seen:
     segments = plot.upright if across == 0 else plot.level
     along = plot.span(1 - across)
     middle, extent = 0.5 * (along[0] + along[1]), along[1] - along[0]
-    at = segments.across + segments.lean * (middle - 0.5 * (segments.first + segments.last))
-    # A short piece's own slope is poor: the usual one carries it to the middle.
-    usual = float(np.median(segments.lean[segments.length >= 0.5 * extent])) if len(at) else 0.0
-    short = segments.length < 0.5 * extent
-    at = np.where(short, segments.across + usual * (middle - 0.5 * (segments.first + segments.last)), at)
+    off_middle = middle - 0.5 * (segments.first + segments.last)
+    at = segments.across + segments.lean * off_middle
+    long = segments.length >= LONG * extent
+    fan = fanned(at[long], segments.lean[long], segments.length[long], sd)
+    # A short piece's own slope is poor: that of the others carries it to the middle. A long one that leans is a curve.
+    at = np.where(segments.length < 0.5 * extent, segments.across + fan.at(at) * off_middle, at)
+    follows = ~long
+    follows[long] = fan.members
     order = np.argsort(at, kind="stable")
+    order = order[follows[order]]
     breaks = np.flatnonzero(np.diff(at[order]) > 3.0 * sd) + 1
     groups = np.split(order, breaks) if len(order) else []
     lines = [
-        (float(np.average(at[group], weights=segments.length[group])), float(np.median(segments.lean[group])))
+        float(np.average(at[group], weights=segments.length[group]))
         for group in groups
         if float(segments.length[group].sum()) >= LONG * extent
     ]
-    places = np.array(lines).reshape(-1, 2)
-    return Seen(at=places[:, 0], lean=places[:, 1], middle=middle, span=plot.span(across), sd=sd, rises=across == 0)
+    return Seen(at=np.array(lines), fan=fan, middle=middle, span=plot.span(across), sd=sd, rises=across == 0)

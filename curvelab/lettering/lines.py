@@ -15,6 +15,15 @@ WORD_GAP = 1.45
 """Gap between neighbours of one line, as a share of the taller one's height: a printed space is less, even in faces
 whose characters are all of one width."""
 
+LINE_GAP = 1.35
+"""The same between two parts of one line, as a share of the taller part's height: a space between short letters."""
+
+LEAST_ALIKE = 0.6
+"""Parts of one line share at least this of the lower one's height, and their heights differ by no more."""
+
+MOST_PARTS = 1500
+"""Beyond this the ink is hatching, whose parts are not joined."""
+
 BARRED_GAP = 0.3
 """Neighbours closer than this are letters of one word, with a grid line behind it."""
 
@@ -67,7 +76,47 @@ def text_lines(ink: Ink) -> list[TextLine]:
             for group in _groups(members, kept)
             for turned in [is_upright and len(group) > 1]  # a piece alone is read level
         ]
-    return sorted(_outermost(lines), key=lambda line: (line.box[1], line.box[0]))
+    lines = _joined(_outermost(lines), ink)
+    return sorted(lines, key=lambda line: (line.box[1], line.box[0]))
+
+
+def _joined(lines: list[TextLine], ink: Ink) -> list[TextLine]:
+    """Lines whose parts stood a little further apart than neighbours do, taken together."""
+    if len(lines) > MOST_PARTS:
+        return lines
+    for upright, barriers in ((False, ink.upright_lines), (True, ink.level_lines.T)):
+        # A line that grew may be as tall as the next part asks for.
+        while len(links := _continuations(lines, upright, barriers)):
+            groups = _groups(np.isin(np.arange(len(lines)), links), links)
+            grown = [
+                TextLine(boxes=np.vstack([lines[part].boxes for part in group]), upright=upright) for group in groups
+            ]
+            together = set(np.concatenate(groups).tolist())
+            lines = [line for number, line in enumerate(lines) if number not in together] + grown
+    return lines
+
+
+def _continuations(lines: list[TextLine], upright: bool, barriers: Bytes) -> Ints:
+    """Pairs of lines of one direction, shape (n, 2); a piece alone has no direction of its own and joins either."""
+    alone = np.array([len(line.boxes) == 1 for line in lines], dtype=bool)
+    mine = np.flatnonzero(alone | np.array([line.upright == upright for line in lines], dtype=bool))
+    boxes = np.array([lines[number].box for number in mine], dtype=np.int64).reshape(-1, 4)
+    links = mine[_parts(boxes[:, [1, 0, 3, 2]] if upright else boxes, barriers)]
+    return links[~alone[links].all(axis=1)]
+
+
+def _parts(boxes: Boxes, barriers: Bytes) -> Ints:
+    """Pairs of level lines, shape (n, 2), of which the second goes on where the first ends."""
+    x0, y0, x1, y1 = boxes.T
+    height = y1 - y0
+    tall = np.maximum(height[:, None], height[None, :])
+    low = np.minimum(height[:, None], height[None, :])
+    gap = x0[None, :] - x1[:, None]
+    shared = np.minimum(y1[:, None], y1[None, :]) - np.maximum(y0[:, None], y0[None, :])
+    near = (gap > 0) & (gap <= LINE_GAP * tall) & (shared >= LEAST_ALIKE * low) & (low >= LEAST_ALIKE * tall)
+    left, right = np.nonzero(near)
+    free = _free(boxes, left, right, gap[left, right] / np.maximum(tall[left, right], 1), barriers)
+    return np.column_stack([left[free], right[free]])
 
 
 def _outermost(lines: list[TextLine]) -> list[TextLine]:

@@ -21,6 +21,9 @@ LEAST_CHANCE = 1e-3
 NUMBERS_APART = 0.55 * CAPITAL_PX
 """Numbers with a wider gap are two; the thin space within 1 000 is narrower."""
 
+DIGITS_APART = 0.3 * CAPITAL_PX
+"""The same beyond the usual gap of the line's digits: ``100`` and ``200`` may stand close."""
+
 GROUPS_APART = 1.2 * CAPITAL_PX
 """The widest space within 10 000, in faces whose characters are all of one width."""
 
@@ -100,16 +103,29 @@ def _chances(readings: list[Reading]) -> list[float]:
 def _spans(characters: tuple[Character, ...]) -> list[tuple[float, float]]:
     """Ranges of strip columns that hold one word each."""
     edges = [-math.inf]
+    usual = _usual_gap(characters)
     for number, (left, right) in enumerate(pairwise(characters), start=1):
         if not right.text or not left.text:
             edges.append((left.segment.box[2] + right.segment.box[0]) / 2)
             continue
         gap = right.segment.box[0] - left.segment.box[2]
         numeric = left.text in _NUMERIC and right.text in _NUMERIC
-        if numeric and gap > NUMBERS_APART and not (gap <= GROUPS_APART and _is_group(characters[number:])):
+        digits = left.text.isdigit() and right.text.isdigit()
+        apart = min(NUMBERS_APART, usual + DIGITS_APART) if digits else NUMBERS_APART
+        if numeric and gap > apart and not (gap <= GROUPS_APART and _is_group(characters[number:])):
             edges.append((left.segment.box[2] + right.segment.box[0]) / 2)
     edges.append(math.inf)
     return list(pairwise(edges))
+
+
+def _usual_gap(characters: tuple[Character, ...]) -> float:
+    """The gap within numbers of a line: what most neighbouring digits stand apart at most."""
+    gaps = [
+        right.segment.box[0] - left.segment.box[2]
+        for left, right in pairwise(characters)
+        if left.text.isdigit() and right.text.isdigit()
+    ]
+    return max(float(np.median(gaps)), 0.0) if len(gaps) > 2 else NUMBERS_APART
 
 
 def _is_group(characters: tuple[Character, ...]) -> bool:

@@ -4,17 +4,19 @@ import numpy as np
 import pytest
 from numpy.typing import NDArray
 
+from curvelab.axes.fan import Fan
 from curvelab.axes.rulers import log_rulers
 from curvelab.axes.seen import Seen
 from tests.axes.printed import decades
 
 Floats = NDArray[np.float64]
+LEVEL = Fan(slope=0.0, growth=0.0, members=np.ones(0, dtype=bool))
 
 
 def seen_at(places: Floats, sd: float = 0.5) -> Seen:
     """Lines at places, upright, on a plot from 50 to 1550."""
     at = np.sort(places)
-    return Seen(at=at, lean=np.zeros(len(at)), middle=0.0, span=(50.0, 1550.0), sd=sd, rises=True)
+    return Seen(at=at, fan=LEVEL, middle=0.0, span=(50.0, 1550.0), sd=sd, rises=True)
 
 
 def lines(low: float, per_decade: float, mantissas: tuple[float, ...]) -> Floats:
