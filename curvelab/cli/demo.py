@@ -5,6 +5,7 @@ from pathlib import Path
 import click
 
 import curvelab
+from curvelab.calculators.stretches import sides_of
 from curvelab.cli.check import findings_table
 from curvelab.cli.compare import comparison_text
 from curvelab.cli.output import named
@@ -45,8 +46,8 @@ def command(output: str) -> int:
         breaker, checked = library.device(BREAKER), library.device(CHECKED)
         pair = [library.device(key) for key in PAIR]
     draw_bands([breaker.record], folder / f"{BREAKER}.png", findings=check(breaker))
-    draw_bands([device.record for device in pair], folder / "comparison.pdf")
-    draw_bands([device.record for device in pair], folder / "comparison.png")
+    for ending in ("pdf", "png"):
+        draw_bands([device.record for device in pair], folder / f"comparison.{ending}", sides=sides_of(pair))
     _say(breaker, checked, pair)
     click.echo(f"\n{len(readings)} sheets and tables read, {count} devices in {library_file}")
     click.echo(f"Pictures in {folder}: " + ", ".join(sorted(path.name for path in folder.glob("*.p[nd][gf]"))))
@@ -83,4 +84,4 @@ def _say(breaker: Device, checked: Device, pair: list[Device]) -> None:
     click.echo(f"\n{named(checked.nameplate)} (out of standard on purpose)")
     click.echo(findings_table(check(checked)))
     click.echo("")
-    click.echo(comparison_text(pair, curvelab.compare(pair)))
+    click.echo(comparison_text(pair, curvelab.compare(pair), sides_of(pair)))

@@ -2,12 +2,15 @@
 
 from collections.abc import Sequence
 from itertools import groupby
+from typing import Any
 
 import numpy as np
 from matplotlib.axes import Axes as Canvas
 from matplotlib.figure import Figure
 from matplotlib.patches import PathPatch
 from matplotlib.path import Path
+from matplotlib.patheffects import withStroke
+from numpy.typing import ArrayLike
 
 from curvelab.plots.ink import PAPER
 from curvelab.records.arrays import Floats
@@ -21,6 +24,12 @@ VECTOR_PIXELS = 2339
 """Longer side of the picture of a vector page: 200 dots an inch on A4."""
 
 
+PagePlace = tuple[float, float, float, float]
+"""Left, bottom, width, height as fractions of a figure."""
+LETTERS = 5.5
+"""In points."""
+
+
 class Ground:
     """A figure that shows the sheet, and the way from places to it.
 
@@ -28,9 +37,11 @@ class Ground:
     ----------
     sheet : Sheet
         With pixels: drawn one to one. Without: its strokes and words are drawn.
+    page : tuple, optional
+        A figure and the place in it that the sheet is fitted into; left out, a figure of its own, pixel for pixel.
     """
 
-    def __init__(self, sheet: Sheet) -> None:
+    def __init__(self, sheet: Sheet, page: tuple[Figure, PagePlace] | None = None) -> None:
         self._pixels = sheet.pixels
         if self._pixels is not None:
             height, width = self._pixels.grey.shape
@@ -38,20 +49,48 @@ class Ground:
         else:
             self._scale = VECTOR_PIXELS / max(sheet.width, sheet.height)
             width, height = round(sheet.width * self._scale), round(sheet.height * self._scale)
-        dpi = max(COARSEST_DPI, max(height, width) / A4_LONGER_INCHES)
-        # A little more than whole pixels: the size is rounded down when the figure is drawn.
-        size = (width + 0.01) / dpi, (height + 0.01) / dpi
-        self.figure = Figure(figsize=size, dpi=dpi, facecolor=PAPER)
-        self.canvas: Canvas = self.figure.add_axes((0, 0, 1, 1))
+        self.figure, place = page or _own_page(width, height)
+        inches = self.figure.get_size_inches()
+        shrunk = min(inches[0] * place[2] / width, inches[1] * place[3] / height)
+        across, down = shrunk * width / inches[0], shrunk * height / inches[1]
+        # Centred across, at the top of its place.
+        corner = place[0] + (place[2] - across) / 2, place[1] + place[3] - down
+        self.canvas: Canvas = self.figure.add_axes((*corner, across, down))
         self.canvas.set_axis_off()
         if self._pixels is not None:
             _show(self.canvas, self._pixels)
         self.canvas.set_xlim(-0.5, width - 0.5)
         self.canvas.set_ylim(height - 0.5, -0.5)
+        self._points = 72 * shrunk
         if self._pixels is None:
-            points = self._scale * 72 / dpi
-            self._draw_strokes(sheet.strokes, points)
-            self._draw_words(sheet.words, points)
+            self._draw_strokes(sheet.strokes, self._scale * self._points)
+            self._draw_words(sheet.words, self._scale * self._points)
+
+    @property
+    def letter(self) -> tuple[float, float]:
+        """Width and height of a letter in canvas coordinates."""
+        return 0.6 * LETTERS / self._points, 1.3 * LETTERS / self._points
+
+    def line(self, places: ArrayLike, width: float, **look: Any) -> None:
+        """A polyline through places; width in points."""
+        across, down = self.at(places)
+        self.canvas.plot(across, down, linewidth=width, solid_capstyle="butt", **look)
+
+    def write(self, at: tuple[float, float], words: str, colour: str, offset: tuple[float, float]) -> None:
+        """Words at an offset in points from canvas coordinates, on the side the offset goes to."""
+        self.canvas.annotate(
+            words,
+            at,
+            xytext=offset,
+            textcoords="offset points",
+            fontsize=LETTERS,
+            color=colour,
+            ha="left" if offset[0] >= 0 else "right",
+            va="center",
+            path_effects=[withStroke(linewidth=1.6, foreground=PAPER)],
+            zorder=6,
+            annotation_clip=False,
+        )
 
     @property
     def size(self) -> tuple[float, float]:
@@ -113,6 +152,13 @@ class Ground:
                 parse_math=False,
                 zorder=0,
             )
+
+
+def _own_page(width: int, height: int) -> tuple[Figure, PagePlace]:
+    dpi = max(COARSEST_DPI, max(height, width) / A4_LONGER_INCHES)
+    # A little more than whole pixels: the size is rounded down when the figure is drawn.
+    size = (width + 0.01) / dpi, (height + 0.01) / dpi
+    return Figure(figsize=size, dpi=dpi, facecolor=PAPER), (0.0, 0.0, 1.0, 1.0)
 
 
 def _show(canvas: Canvas, pixels: Pixels) -> None:

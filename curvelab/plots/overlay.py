@@ -2,18 +2,15 @@
 
 from collections.abc import Iterator, Sequence
 from pathlib import Path
-from typing import Any
 
 import numpy as np
 from matplotlib import rc_context
 from matplotlib.figure import Figure
 from matplotlib.patches import Polygon
-from matplotlib.patheffects import withStroke
-from numpy.typing import ArrayLike
 
 from curvelab.errors import InputError
-from curvelab.plots.ground import Ground
-from curvelab.plots.ink import INK, PAPER, STYLE, WARM
+from curvelab.plots.ground import Ground, PagePlace
+from curvelab.plots.ink import INK, STYLE, WARM
 from curvelab.plots.placing import Words
 from curvelab.plots.save import picture_format, save_figure
 from curvelab.records.arrays import Floats
@@ -25,8 +22,6 @@ from curvelab.units import written_current, written_time
 
 HAIRLINE = 0.35
 EDGE_WIDTH: dict[Edge, float] = {"fast": 0.45, "slow": 0.9, "mean": 0.6}
-LETTERS = 5.5
-"""In points."""
 
 
 def draw_overlay(reading: Reading, path: str | Path) -> None:
@@ -44,13 +39,13 @@ def draw_overlay(reading: Reading, path: str | Path) -> None:
     save_figure(overlay_figure(reading), path)
 
 
-def overlay_figure(reading: Reading) -> Figure:
-    """The figure of `draw_overlay`, one pixel of the sheet on one of its own."""
+def overlay_figure(reading: Reading, page: tuple[Figure, PagePlace] | None = None) -> Figure:
+    """The figure of `draw_overlay`, one pixel of the sheet on one of its own; or within a place of another figure."""
     sheet = reading.sheet
     if sheet is None:
         raise InputError("The reading has no sheet to draw on", "", "Draw its bands instead")
     with rc_context(STYLE):
-        ground = Ground(sheet)
+        ground = Ground(sheet, page)
         if reading.axes is not None:
             _draw_axes(ground, reading.axes)
         traced = [
@@ -64,30 +59,9 @@ def overlay_figure(reading: Reading) -> Figure:
     return ground.figure
 
 
-def _line(ground: Ground, places: ArrayLike, width: float, **look: Any) -> None:
-    across, down = ground.at(places)
-    ground.canvas.plot(across, down, linewidth=width, solid_capstyle="butt", **look)
-
-
-def _words(ground: Ground, at: Place, words: str, colour: str, offset: tuple[float, float]) -> None:
-    ground.canvas.annotate(
-        words,
-        at,
-        xytext=offset,
-        textcoords="offset points",
-        fontsize=LETTERS,
-        color=colour,
-        ha="left" if offset[0] >= 0 else "right",
-        va="center",
-        path_effects=[withStroke(linewidth=1.6, foreground=PAPER)],
-        zorder=6,
-        annotation_clip=False,
-    )
-
-
 def _draw_axes(ground: Ground, axes: Axes) -> None:
     for line in axes.grid:
-        _line(ground, line.points, HAIRLINE, color=INK, alpha=0.6, zorder=2)
+        ground.line(line.points, HAIRLINE, color=INK, alpha=0.6, zorder=2)
     for axis in (axes.current, axes.value):
         for mark in axis.marks:
             _draw_mark(ground, axis, mark)
@@ -110,7 +84,7 @@ def _draw_mark(ground: Ground, axis: Axis, mark: Mark) -> None:
         linestyle="none",
         zorder=5,
     )
-    _words(ground, (float(across[0]), float(down[0])), _mark_words(axis, mark), colour, (4.5, -5.0))
+    ground.write((float(across[0]), float(down[0])), _mark_words(axis, mark), colour, (4.5, -5.0))
 
 
 def _mark_words(axis: Axis, mark: Mark) -> str:
@@ -131,21 +105,20 @@ def _stretches(trace: Trace) -> Iterator[Floats]:
 def _draw_trace(ground: Ground, edge: Edge, trace: Trace) -> None:
     for stretch in _stretches(trace):
         dashes = (0.0, (5.0, 2.0)) if edge == "mean" else "-"
-        _line(ground, stretch, EDGE_WIDTH[edge], color=INK, linestyle=dashes, zorder=4)
+        ground.line(stretch, EDGE_WIDTH[edge], color=INK, linestyle=dashes, zorder=4)
     for gap in trace.gaps:
-        _line(ground, [gap.start, gap.end], 0.6, color=WARM, linestyle=(0.0, (1.0, 1.5)), zorder=4)
+        ground.line([gap.start, gap.end], 0.6, color=WARM, linestyle=(0.0, (1.0, 1.5)), zorder=4)
 
 
 def _draw_names(ground: Ground, traced: Sequence[tuple[ReadCurve, Trace]]) -> None:
     """Each curve's name beside it, where it covers least; a dot says which line is meant."""
     lines = [np.column_stack(ground.at(trace.places)) for _, trace in traced]
-    letter = LETTERS * ground.figure.dpi / 72
-    words = Words(lines=lines, letter=(0.6 * letter, 1.3 * letter), page=ground.size)
+    words = Words(lines=lines, letter=ground.letter, page=ground.size)
     for line, (curve, _) in zip(lines, traced, strict=True):
         name = _curve_words(curve)
         place, right = words.beside(line, name)
         ground.canvas.plot(*place, marker="o", markersize=2.2, color=INK, linestyle="none", zorder=5)
-        _words(ground, place, name, INK, (5.0 if right else -5.0, 0.0))
+        ground.write(place, name, INK, (5.0 if right else -5.0, 0.0))
 
 
 def _curve_words(curve: ReadCurve) -> str:

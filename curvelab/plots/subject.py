@@ -79,9 +79,20 @@ def _letter(index: int) -> str:
 def _in_base(curve: Curve, base: str, plate: Nameplate) -> Curve:
     if curve.base == base:
         return curve
-    factor = amperes(plate, curve.at, curve.base)
+    factor = amperes(plate, curve.at, curve.base) / amperes(plate, curve.at, base)
     parts = tuple(replace(part, current=part.current * factor) for part in curve.parts)
     return replace(curve, base=base, parts=parts)
+
+
+def curves_in_base(subject: Subject, base: str) -> tuple[Curve, ...]:
+    """The subject's curves with currents in another base.
+
+    Raises
+    ------
+    DeviceError
+        A rating or setting for it is not known.
+    """
+    return tuple(_in_base(curve, base, subject.plate) for curve in subject.curves)
 
 
 def units_per_unit(subject: Subject, base: str, drawn_base: str) -> float | None:

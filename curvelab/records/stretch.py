@@ -2,6 +2,8 @@
 
 from dataclasses import dataclass
 
+from curvelab.units import FIGURES, MOST_FIGURES, written_current
+
 UNDECIDED, NOT_COVERED = "undecided", "not_covered"
 
 
@@ -21,3 +23,12 @@ class Sides:
     a: str
     b: str
     stretches: tuple[Stretch, ...]
+
+
+def written_stretch(stretch: Stretch) -> str:
+    """``254 A to 298 A``, in as many figures as tell its ends apart."""
+    for figures in range(FIGURES, MOST_FIGURES + 1):
+        start, end = (written_current(each, "A", figures) for each in (stretch.from_a, stretch.to_a))
+        if start != end:
+            break
+    return f"{start} to {end}"

@@ -1,6 +1,7 @@
 """Commands end to end on typed points: what is printed, written and returned; one line and exit 2 for bad input."""
 
 import json
+import math
 import subprocess
 import sys
 from pathlib import Path
@@ -100,6 +101,40 @@ def test_a_comparison_says_who_clears_first(site: Path, capsys: pytest.CaptureFi
     assert run(["compare", "hall-gg100", "hall-b32", "--picture", str(picture)]) == 0
     assert "hall-b32 clears before hall-gg100 may act" in capsys.readouterr().out
     assert picture.read_bytes().startswith(b"<?xml")
+
+
+def test_chosen_currents_have_a_row_each_with_ratio_and_who_is_sooner(
+    site: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    words = ["hall-gg100", "hall-b32", "--current", "200", "1000"]
+    status, answer = printed_json(capsys, "compare", *words)
+    (pair,) = answer["pairs"]
+    assert (status, answer["current"]) == (0, [200, 1000])
+    # The fast edge at 1000 A is the mean line at 1000 A / 0.9, on the straight line from (1000, 0.1) to (3000, 0.0012).
+    fast_s = 0.1 * 0.9 ** (math.log(0.1 / 0.0012) / math.log(3))
+    assert pair["b_over_a"][1] == pytest.approx(0.02 / fast_s, rel=1e-9)
+    assert [each["sooner"] for each in pair["stretches"]][-2:] == ["hall-b32", "not_covered"]
+    assert run(["compare", *words]) == 0
+    shown = capsys.readouterr().out
+    assert "slow hall-b32 / fast hall-gg100" in shown
+    assert "hall-b32 clears first" in shown
+    assert (site / "firm.sqlite").exists()
+
+
+def test_two_revisions_of_a_device_are_compared_under_names_of_their_own(
+    site: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    (site / "b32.toml").write_text(B32.replace("[160, 9]", "[160, 8]"), encoding="utf-8")
+    run(["store", str(site / "b32.toml")])
+    status, answer = printed_json(capsys, "compare", "hall-b32@1", "hall-b32@2")
+    assert (status, answer["devices"]) == (0, ["hall-b32@1", "hall-b32@2"])
+
+
+def test_bands_go_back_over_a_sheet_only_where_there_is_one(site: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    picture = site / "back.png"
+    assert run(["compare", "hall-gg100", "hall-b32", "--on-sheet", str(picture)]) == 2
+    assert "'hall-gg100' was not read from a sheet" in capsys.readouterr().err
+    assert not picture.exists()
 
 
 def test_checks_are_a_table_and_json(site: Path, capsys: pytest.CaptureFixture[str]) -> None:
