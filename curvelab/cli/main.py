@@ -15,7 +15,9 @@ COMMANDS = {
     "check": "Check a device against its standard.",
     "query": "Trip times at currents, or currents for times.",
     "compare": "Set two or more devices side by side.",
+    "disconnection": "Whether a device disconnects a fault in time, and the greatest loop impedance.",
     "library": "List, find, review, exchange and keep what is stored.",
+    "workbench": "Read, correct, compare and review in the browser.",
     "demo": "Run the whole chain on the shipped sheets.",
 }
 """Command -> what it does; each is the function ``command`` of the module of its name."""

@@ -11,15 +11,19 @@ from tests.devices.made import device, line
 TABLE = tomllib.loads((Path(__file__).parent / "bs_7671_table_41_3.toml").read_text(encoding="utf-8"))
 
 
-def loop_ohm(characteristic: str, rated_a: float, multiple: float) -> float:
+def breaker(characteristic: str, rated_a: float, multiple: float):
     lower = {"B": 3.0, "C": 5.0, "D": 10.0}[characteristic]
-    breaker = device(
+    return device(
         line("fast", [(1.13, 7000), (lower, 2), (lower, 0.01), (50, 0.005)]),
         line("slow", [(1.45, 3000), (multiple, 4), (multiple, 0.05), (50, 0.02)]),
         characteristic=characteristic,
         rated_current_a=rated_a,
     )
-    return TABLE["factor"] * TABLE["voltage_v"] / breaker.trip_current(TABLE["time_s"]).trips.value
+
+
+def loop_ohm(characteristic: str, rated_a: float, multiple: float) -> float:
+    made = breaker(characteristic, rated_a, multiple)
+    return TABLE["factor"] * TABLE["voltage_v"] / made.trip_current(TABLE["time_s"]).trips.value
 
 
 def test_the_table_has_all_its_rows():

@@ -1,0 +1,75 @@
+"""Answers of calculators as JSON objects, format 1: plain lists, null for what is not known."""
+
+from collections.abc import Sequence
+from typing import Any, TypeAlias
+
+from curvelab.calculators.cautions import Caution
+from curvelab.calculators.disconnection import Disconnection
+from curvelab.calculators.estimate import Estimate
+from curvelab.calculators.facts import Origin
+from curvelab.calculators.verdict import worst
+from curvelab.records.finding import Finding, finding_json
+
+Json: TypeAlias = dict[str, Any]
+
+FORMAT = 1
+
+
+def estimate_json(found: Estimate | None) -> Json | None:
+    """A number with its status, interval, unit and basis."""
+    if found is None:
+        return None
+    return {
+        "status": found.status,
+        "value": found.value,
+        "interval": list(found.interval) if found.interval else None,
+        "unit": found.unit,
+        "basis": found.basis,
+        "reason": found.reason,
+    }
+
+
+def disconnection_json(answer: Disconnection) -> Json:
+    """Whether a device disconnects in time; currents in A, times in s, impedances in ohm."""
+    asked = answer.asked
+    return {
+        "format": FORMAT,
+        "device": answer.device,
+        "revision": answer.revision,
+        "state": answer.state,
+        "system": asked.system,
+        "circuit": asked.circuit,
+        "voltage_v": asked.voltage_v,
+        "required_time": {"time_s": answer.required.time_s, **_origin(answer.required.origin)},
+        "practice": {
+            "name": answer.practice.name,
+            "current": answer.practice.current,
+            "voltage_factor": answer.reckoning.voltage_factor,
+            "measured_factor": answer.reckoning.measured_factor,
+            **_origin(answer.practice.origin),
+        },
+        "residual_current_a": answer.reckoning.residual_a,
+        "trips": estimate_json(answer.trips),
+        "greatest_loop": estimate_json(answer.greatest_loop),
+        "greatest_measured_loop": estimate_json(answer.greatest_measured_loop),
+        "loop_impedance_ohm": asked.loop_ohm,
+        "measured": asked.measured,
+        "fault_current_a": answer.fault.current_a if answer.fault else None,
+        "time": estimate_json(answer.time),
+        "notes": list(answer.notes),
+        **_judged(answer.findings, answer.cautions),
+    }
+
+
+def _judged(findings: Sequence[Finding], cautions: Sequence[Caution]) -> Json:
+    return {
+        "outcome": worst(findings),
+        "findings": [finding_json(finding) for finding in findings],
+        "cautions": [{"code": caution.code, "text": caution.text} for caution in cautions],
+    }
+
+
+def _origin(origin: Origin | None) -> Json:
+    if origin is None:
+        return {"clause": None, "source": None, "confidence": None}
+    return {"clause": origin.clause, "source": origin.source, "confidence": origin.confidence}

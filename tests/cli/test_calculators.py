@@ -1,0 +1,194 @@
+"""The calculators' commands end to end from typed worksheets: hand-worked cases of an invented pumping station."""
+
+import json
+from pathlib import Path
+
+import pytest
+
+from curvelab.cli.main import run
+
+SITE = "handbook of an invented pumping station"
+
+B32 = f"""
+format = 1
+[[curves]]
+edge = "fast"
+meaning = "clearing"
+points = [[36.2, 9000], [64, 20], [96, 5], [96, 0.01], [1000, 0.008]]
+source = "{SITE}"
+[[curves]]
+edge = "slow"
+meaning = "clearing"
+points = [[44.8, 7000], [64, 110], [160, 9], [160, 0.09], [1000, 0.02]]
+source = "{SITE}"
+[[devices]]
+key = "hall-b32"
+kind = "mcb"
+characteristic = "B"
+standard = "IEC 60898-1"
+rated_current_a = 32
+"""
+
+C20 = f"""
+format = 1
+[axes.current]
+unit = "xIn"
+[[curves]]
+edge = "fast"
+meaning = "clearing"
+points = [[1.13, 9000], [2.55, 10], [5, 2], [5, 0.01], [50, 0.008]]
+source = "{SITE}"
+[[curves]]
+edge = "slow"
+meaning = "clearing"
+points = [[1.45, 3500], [2.55, 60], [10, 3], [10, 0.05], [50, 0.02]]
+source = "{SITE}"
+[[devices]]
+key = "hall-c20"
+kind = "mcb"
+characteristic = "C"
+standard = "IEC 60898-1"
+rated_current_a = 20
+"""
+
+RCD = f"""
+format = 1
+[axes.current]
+unit = "xIdn"
+[[curves]]
+edge = "fast"
+element = "residual"
+points = [[0.5, 0.3], [0.5, 0.02], [500, 0.01]]
+source = "{SITE}"
+[[curves]]
+edge = "slow"
+element = "residual"
+points = [[1, 0.3], [2, 0.15], [5, 0.04], [500, 0.04]]
+source = "{SITE}"
+[[devices]]
+key = "hall-rcd30"
+kind = "rcd"
+standard = "IEC 61008-1"
+rated_current_a = 40
+rated_residual_current_a = 0.03
+"""
+
+SWITCH = """
+format = 1
+[[devices]]
+key = "hall-isolator"
+kind = "switch"
+rated_current_a = 63
+"""
+
+SHEETS = {"b32": B32, "c20": C20, "rcd": RCD, "switch": SWITCH}
+
+
+@pytest.fixture(scope="module")
+def library(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    """A library that holds every device of the station."""
+    folder = tmp_path_factory.mktemp("station")
+    files = [folder / f"{name}.toml" for name in SHEETS]
+    for file, text in zip(files, SHEETS.values(), strict=True):
+        file.write_text(text, encoding="utf-8")
+    assert run(["store", *map(str, files), "--library", str(folder / "firm.sqlite")]) == 0
+    return folder / "firm.sqlite"
+
+
+@pytest.fixture
+def site(library: Path, monkeypatch: pytest.MonkeyPatch) -> Path:
+    monkeypatch.setenv("CURVELAB_LIBRARY", str(library))
+    return library
+
+
+def answered(capsys: pytest.CaptureFixture[str], words: str) -> tuple[int, dict]:
+    """The exit status of a command and the JSON it printed."""
+    capsys.readouterr()
+    status = run([*words.split(), "--json", "-"])
+    return status, json.loads(capsys.readouterr().out)
+
+
+def printed(capsys: pytest.CaptureFixture[str], words: str) -> str:
+    capsys.readouterr()
+    run(words.split())
+    return capsys.readouterr().out
+
+
+def refused(capsys: pytest.CaptureFixture[str], words: str) -> str:
+    capsys.readouterr()
+    assert run(words.split()) == 2
+    shown = capsys.readouterr()
+    assert not shown.out
+    assert shown.err.count("\n") == 1
+    return shown.err
+
+
+@pytest.mark.usefixtures("site")
+def test_the_greatest_loop_of_a_b32(capsys):
+    status, answer = answered(capsys, "disconnection hall-b32 --voltage 230 --practice bs7671")
+    assert status == 0
+    assert answer["trips"]["value"] == 160.0
+    assert answer["greatest_loop"]["value"] == pytest.approx(1.3656, abs=5e-5)
+    assert answer["greatest_measured_loop"]["value"] == pytest.approx(1.09, abs=5e-3)
+
+
+@pytest.mark.usefixtures("site")
+@pytest.mark.parametrize(("loop", "outcome", "status"), [("1.30", "meets", 0), ("1.37", "fails", 1)])
+def test_a_given_loop_of_a_b32(capsys, loop, outcome, status):
+    words = f"disconnection hall-b32 --voltage 230 --loop-impedance {loop}"
+    assert answered(capsys, words)[0] == status
+    answer = answered(capsys, words)[1]
+    assert answer["outcome"] == outcome
+    assert ("Tables print 1.37 ohm" in printed(capsys, words)) == (loop == "1.37")
+
+
+@pytest.mark.usefixtures("site")
+@pytest.mark.parametrize(
+    ("practice", "fault_a", "limit_ohm", "outcome"),
+    [("asnzs3000", 164.3, 1.53, "meets"), ("bs7671", 156.1, 1.09, "fails")],
+)
+def test_two_practices_for_a_c20(capsys, practice, fault_a, limit_ohm, outcome):
+    status, answer = answered(
+        capsys, f"disconnection hall-c20 --voltage 230 --loop-impedance 1.40 --practice {practice}"
+    )
+    assert (status, answer["outcome"]) == (0 if outcome == "meets" else 1, outcome)
+    assert answer["fault_current_a"] == pytest.approx(fault_a, abs=0.05)
+    assert answer["greatest_loop"]["value"] == pytest.approx(limit_ohm, abs=5e-3)
+
+
+@pytest.mark.usefixtures("site")
+def test_the_electrode_of_an_rcd(capsys):
+    status, answer = answered(capsys, "disconnection hall-rcd30 --voltage 230 --system TT --electrode 1200")
+    findings = {finding["rule"]: finding for finding in answer["findings"]}
+    assert status == 0
+    assert findings["touch-voltage"]["value"] == pytest.approx(36.0)
+    assert answer["fault_current_a"] == pytest.approx(0.192, abs=5e-4)
+    assert answer["greatest_loop"]["value"] == pytest.approx(1667, abs=0.5)
+    text = printed(capsys, "disconnection hall-rcd30 --voltage 230 --system TT --electrode 1200")
+    assert "6.39 IΔn" in text
+    assert "36 V" in text
+
+
+@pytest.mark.usefixtures("site")
+def test_a_switch_does_not_disconnect_and_the_answer_says_so(capsys):
+    words = "disconnection hall-isolator --voltage 230"
+    status, answer = answered(capsys, words)
+    assert (status, answer["trips"]["status"]) == (1, "not_covered")
+    assert "not a protective device" in printed(capsys, words)
+
+
+@pytest.mark.usefixtures("site")
+@pytest.mark.parametrize(
+    ("words", "said"),
+    [
+        ("disconnection hall-b32", "--voltage"),
+        ("disconnection hall-b32 --voltage 48", "Give the required time"),
+        ("disconnection hall-b32 --voltage 230 --practice best", "bs7671, iec60364, asnzs3000"),
+        ("disconnection hall-b32 --voltage 230 --system IT", "IT"),
+        ("disconnection hall-b32 --voltage 230 --loop-impedance 0", "loop_ohm"),
+        ("disconnection nobody --voltage 230", "nobody"),
+        ("disconnection hall-b32 --voltage 230 --set ir=0.8", "no settings"),
+    ],
+)
+def test_bad_questions_take_one_line(capsys, words, said):
+    assert said in refused(capsys, words)
