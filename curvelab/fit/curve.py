@@ -10,6 +10,7 @@ from curvelab.errors import FitError
 from curvelab.fit.corners import corner_kinks, kinks_of
 from curvelab.fit.exact import corners_of, kept_samples, points_piece
 from curvelab.fit.gaps import gap_at, runs_of
+from curvelab.fit.hypotheses import forms_of, stretches_of, strokes_of
 from curvelab.fit.kinks import kink_candidates
 from curvelab.fit.noise import Noise
 from curvelab.fit.rotate import unrotated
@@ -85,6 +86,9 @@ def _fit_exact(strand: Strand) -> CurveFit:
         correlation=1.0,
         strays=(),
         budget=budget_of(samples, 1.0),
+        forms=()
+        if strand.rising
+        else forms_of([each for run, indices in zip(runs, corners, strict=True) for each in strokes_of(run, indices)]),
     )
 
 
@@ -147,6 +151,7 @@ def _curve_fit(strand: Strand, segments: list[Segments], gaps: tuple[FitGap, ...
         correlation=noise.inflation,
         strays=_strays(segments),
         budget=budget_of(samples, noise.inflation),
+        forms=() if strand.rising else forms_of([each for one in segments for each in stretches_of(one)]),
     )
 
 

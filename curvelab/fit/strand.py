@@ -35,6 +35,7 @@ class Strand:
     v: Floats
     sd: Floats
     common: Floats
+    shared: Floats
     order: NDArray[np.intp]
     gaps: tuple[int, ...]
     kept: NDArray[np.bool_]
@@ -60,6 +61,7 @@ class Strand:
             v=self.v[first:last],
             sd=self.sd[first:last],
             common=self.common[first:last],
+            shared=self.shared[first:last],
             order=self.order[first:last],
             kept=self.kept[first:last],
             gaps=tuple(k - first for k in self.gaps if first < k < last),
@@ -94,6 +96,7 @@ def strand_of(points: FitPoints, *, rising: bool) -> Strand:
         v=v,
         sd=sd,
         common=points.common[order],
+        shared=_shared(points)[order],
         order=order,
         gaps=gaps,
         kept=kept,
@@ -101,6 +104,10 @@ def strand_of(points: FitPoints, *, rising: bool) -> Strand:
         blur=points.blur,
         correlation_length=points.correlation_length,
     )
+
+
+def _shared(points: FitPoints) -> Floats:
+    return np.zeros((len(points.sd), 2, 0)) if points.shared is None else points.shared
 
 
 def _check(points: FitPoints) -> None:

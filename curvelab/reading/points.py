@@ -66,6 +66,7 @@ def fit_points(trace: Trace, axes: Axes) -> FitPoints:
         correlation_length=trace.correlation_length * float(np.median(stretch)),
         breaks=_breaks(trace),
         blur=trace.width * float(np.median(across)),
+        shared=axes.map.errors_at(trace.places) * to_log[:, :, None],
     )
 
 

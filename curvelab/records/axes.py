@@ -16,6 +16,9 @@ MarkOrigin = Literal["given", "grid", "label", "vector"]
 
 SOLVER_STEPS = 30
 
+LEAST_MODE = 1e-10
+"""Of the largest variance of the parameters: below it a combination of them is known exactly."""
+
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Mark:
@@ -160,6 +163,16 @@ class PlaneMap:
         sensitivity = self.sensitivity(places)
         covariance: Floats = np.einsum("kim,mn,kjn->kij", sensitivity, self.covariance, sensitivity)
         return covariance
+
+    def errors_at(self, places: ArrayLike) -> Floats:
+        """What independent errors of unit variance, whose sum the calibration's is, do to the scaled pair.
+
+        Shape (n, 2, r): the covariance between two places is errors[i] @ errors[j].T.
+        """
+        variances, modes = np.linalg.eigh(self.covariance)
+        known = variances > LEAST_MODE * variances[-1]
+        errors: Floats = self.sensitivity(places) @ (modes[:, known] * np.sqrt(variances[known]))
+        return errors
 
     def places(self, scaled: ArrayLike) -> Floats:
         """Places of scaled (current, value) pairs by Newton's method; shapes (n, 2) -> (n, 2).

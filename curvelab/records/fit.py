@@ -7,6 +7,7 @@ import numpy as np
 
 from curvelab.records.arrays import Floats, freeze
 from curvelab.records.curve import Part
+from curvelab.records.form import PublishedForm
 
 Form = Literal["spline", "line", "points"]
 
@@ -117,6 +118,8 @@ class CurveFit:
     budget : Budget
     moved : float
         Decades along the normal by which keeping the order of two edges moved the tabulated form; 0 for not at all.
+    forms : tuple of PublishedForm
+        Published forms that stretches follow as well as the model does, at most one a stretch, in the order of u.
     """
 
     rising: bool
@@ -132,6 +135,7 @@ class CurveFit:
     strays: tuple[int, ...]
     budget: Budget
     moved: float = 0.0
+    forms: tuple[PublishedForm, ...] = ()
 
     @property
     def numbers(self) -> int:

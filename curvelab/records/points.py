@@ -23,6 +23,9 @@ class FitPoints:
         Indices k such that a gap lies between points k - 1 and k.
     blur : float
         Size of the stroke in decades: a corner is not resolved closer than this.
+    shared : array, shape (n, 2, r), optional
+        What each of r independent calibration errors of unit variance does to every point, in decades, so that the
+        calibration's covariance between points i and j is shared[i] @ shared[j].T; None where only ``common`` is known.
     """
 
     log_current: Floats
@@ -32,6 +35,7 @@ class FitPoints:
     correlation_length: float
     breaks: tuple[int, ...] = ()
     blur: float = 0.0
+    shared: Floats | None = None
 
     def __post_init__(self) -> None:
         freeze(
@@ -41,3 +45,5 @@ class FitPoints:
             sd=self.sd,
             common=self.common,
         )
+        if self.shared is not None:
+            freeze(self, shared=self.shared)
