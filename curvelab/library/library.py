@@ -1,7 +1,7 @@
 """The library's face: open it, store readings and devices, ask for devices."""
 
 import os
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -84,10 +84,15 @@ class Library(OpenedLibrary):
         NotFoundError
             No such key.
         """
-        rows = self._index("device_key = ? ORDER BY revision", key)
+        rows = self.revisions([key])
         if not rows:
             raise NotFoundError(f"The library has no device '{key}'", "", "List what it has")
         return rows
+
+    def revisions(self, keys: Sequence[str]) -> list[dict[str, Any]]:
+        """Every revision of devices, by key and number: rows of the view ``device_index``."""
+        asked = ", ".join("?" * len(keys))
+        return self._index(f"device_key IN ({asked}) ORDER BY device_key, revision", *keys)
 
     def find(self, wanted: Wanted = EVERY, page: Page = FIRST_PAGE) -> Found:
         """Devices by words and nameplate, their current revisions, one page of them."""

@@ -152,18 +152,23 @@ def _bands(reading: Reading) -> Iterable[Json]:
         (device.nameplate.key, device.curves) for device in reading.devices
     ] or [(None, [read.curve for read in reading.curves])]
     for key, curves in owners:
-        for band in bands_of(curves):
-            yield {
-                "device": key,
-                "element": band.element,
-                "base": band.base,
-                "start": band.conditions.start,
-                "conditions": asdict(band.conditions),
-                "at": dict(sorted(band.at.items())),
-                "fast": _edge(band.fast),
-                "slow": _edge(band.slow),
-                "mean": _edge(band.mean),
-            }
+        yield from bands_json(key, curves)
+
+
+def bands_json(key: str | None, curves: Iterable[Curve]) -> Iterable[Json]:
+    """The bands that a device's curves make, as in the reading's list."""
+    for band in bands_of(curves):
+        yield {
+            "device": key,
+            "element": band.element,
+            "base": band.base,
+            "start": band.conditions.start,
+            "conditions": asdict(band.conditions),
+            "at": dict(sorted(band.at.items())),
+            "fast": _edge(band.fast),
+            "slow": _edge(band.slow),
+            "mean": _edge(band.mean),
+        }
 
 
 def _acceptance(acceptance: Acceptance) -> Json:

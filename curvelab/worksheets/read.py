@@ -47,7 +47,11 @@ def parse_worksheet(text: str, name: str = "worksheet") -> Worksheet:
     """
     if len(text) > LARGEST_BYTES:
         raise _too_large(name)
-    entries = _toml(text, name)
+    return worksheet_of(_toml(text, name), name, text)
+
+
+def worksheet_of(entries: Mapping[str, Any], name: str = "worksheet", text: str = "") -> Worksheet:
+    """A worksheet from the tables its text holds; errors as for `parse_worksheet`."""
     _check_format(entries, name)
     top = Table(entries, name, keys.TOP)
     sheet = _sheet(top, name)

@@ -1,0 +1,293 @@
+"""Addresses of drafts: sheets come in, worksheets are changed, readings are stored.
+
+What reads sheets is loaded when it is first asked for, so that the page is there at once.
+"""
+
+import asyncio
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any
+
+from starlette.concurrency import run_in_threadpool
+from starlette.requests import Request
+from starlette.responses import Response
+
+from curvelab.errors import InputError
+from curvelab.workbench.bench import Bench
+from curvelab.workbench.changes import Change
+from curvelab.workbench.failures import Busy
+from curvelab.workbench.route import Content, Method, Nothing, Route, body_of, bounded_body, written
+from curvelab.workbench.shapes import Schema
+
+if TYPE_CHECKING:
+    from curvelab.workbench.draft import Draft
+
+LONGEST_WAIT_S = 25.0
+CLICK_WAIT_S = 0.25
+"""How long the answer to a change waits for the reading, so that a click is one request."""
+WORTH_TELLING_S = 0.15
+"""Progress that is told more often would only keep the page busy."""
+MOST_UPLOADS = 2
+UPLOAD_BYTES = 220_000_000
+"""The size limit of a sheet's file."""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Begin:
+    """What a draft is begun from: the body's bytes called ``name``, a demo sheet, or a stored device's evidence."""
+
+    name: str = ""
+    page: int = 1
+    plot: int | None = None
+    demo: str | None = None
+    device: str | None = None
+    reading: int = 1
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class OfDraft:
+    """One draft."""
+
+    id: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Look:
+    """One draft; where it is still as ``since``, after it has changed or ``wait`` seconds."""
+
+    id: str
+    since: int | None = None
+    wait: float = 0.0
+    have: int | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Changing:
+    """One draft; ``have`` is the reading the asker has."""
+
+    id: str
+    have: int | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Changed:
+    """A change and the version it builds on."""
+
+    base_version: int
+    change: Change
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Tile:
+    """One tile of a page."""
+
+    id: str
+    level: int
+    column: int
+    row: int
+    page: int | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Cut:
+    """The surroundings of a place, ``radius`` in the sheet's unit, ``zoom`` pixels a pixel."""
+
+    id: str
+    x: float
+    y: float
+    radius: float = 40.0
+    zoom: float = 2.0
+    page: int | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class AtPlace:
+    """A place on the sheet."""
+
+    id: str
+    x: float
+    y: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class AtValues:
+    """A current in the axis's base and a value in its base unit."""
+
+    id: str
+    current: float
+    time: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Signed:
+    """Who stores, and why."""
+
+    author: str
+    note: str = ""
+
+
+async def begin(bench: Bench, asked: Begin, request: Request) -> Response:
+    """Begin a draft."""
+    if bench.uploads >= MOST_UPLOADS:
+        raise Busy("Several sheets are being opened already", "", "Try again in a moment")
+    bench.uploads += 1
+    try:
+        data = await bounded_body(request, UPLOAD_BYTES)
+        state = await run_in_threadpool(_begun, bench, asked, data)
+    finally:
+        bench.uploads -= 1
+    return written(state, 201)
+
+
+def _begun(bench: Bench, asked: Begin, data: bytes) -> dict[str, Any]:
+    from curvelab.workbench import sources  # noqa: PLC0415
+    from curvelab.workbench.state import draft_state  # noqa: PLC0415
+
+    if asked.demo is not None:
+        draft = sources.from_demo(bench.drafts, asked.demo)
+    elif asked.device is not None:
+        with bench.reading() as library:
+            draft = sources.from_device(bench.drafts, library, asked.device, asked.reading)
+    else:
+        draft = sources.from_upload(bench.drafts, asked.name, data, page=asked.page, plot=asked.plot)
+    return draft_state(draft)
+
+
+def demo_sheets(_: Bench, __: Nothing) -> list[dict[str, str]]:
+    """The sheets that come with the program."""
+    from curvelab.workbench.sources import demo_sheets as listed  # noqa: PLC0415
+
+    return listed()
+
+
+def list_drafts(bench: Bench, _: Nothing) -> list[dict[str, Any]]:
+    """All drafts, those changed last first."""
+    return bench.drafts.listed()
+
+
+async def look(bench: Bench, asked: Look, _: Request) -> Response:
+    """A draft's state, now or once it has changed."""
+    from curvelab.workbench.state import draft_state  # noqa: PLC0415
+
+    draft = await run_in_threadpool(lambda: bench.drafts.draft(asked.id))
+    if asked.since is not None and draft.tick == asked.since and asked.wait > 0:
+        await draft.bell.heard(lambda: draft.tick != asked.since, min(asked.wait, LONGEST_WAIT_S))
+        if draft.work.state == "reading":
+            await asyncio.sleep(WORTH_TELLING_S)
+    return written(await run_in_threadpool(draft_state, draft, asked.have))
+
+
+async def change(bench: Bench, asked: Changing, request: Request) -> Response:
+    """Change a draft; its reading is in the answer where it is ready at once."""
+    from curvelab.workbench.state import draft_state  # noqa: PLC0415
+
+    body: Changed = await body_of(Changed, request)
+    draft = await run_in_threadpool(lambda: bench.drafts.draft(asked.id))
+    await run_in_threadpool(draft.change, body.base_version, body.change)
+    await draft.bell.heard(lambda: draft.work.state != "reading", CLICK_WAIT_S)
+    return written(await run_in_threadpool(draft_state, draft, asked.have))
+
+
+def put_away(bench: Bench, asked: OfDraft) -> dict[str, Any]:
+    """Move a draft to the bin."""
+    bench.drafts.put_away(asked.id)
+    return {"id": asked.id}
+
+
+def restore(bench: Bench, asked: OfDraft) -> dict[str, Any]:
+    """Bring a draft back from the bin."""
+    return _state(bench.drafts.restore(asked.id))
+
+
+def cancel(bench: Bench, asked: OfDraft) -> dict[str, Any]:
+    """Stop reading."""
+    draft = bench.drafts.draft(asked.id)
+    draft.cancel()
+    return _state(draft)
+
+
+def read_again(bench: Bench, asked: OfDraft) -> dict[str, Any]:
+    """Read what was stopped."""
+    draft = bench.drafts.draft(asked.id)
+    draft.read()
+    return _state(draft)
+
+
+def _state(draft: "Draft") -> dict[str, Any]:
+    from curvelab.workbench.state import draft_state  # noqa: PLC0415
+
+    return draft_state(draft)
+
+
+def store(bench: Bench, asked: OfDraft, signed: Signed) -> dict[str, Any]:
+    """Store the reading's devices in the library."""
+    from curvelab.workbench.state import storable  # noqa: PLC0415
+
+    if not signed.author.strip():
+        raise InputError("To store needs a name", "", "Say who stores")
+    draft = bench.drafts.draft(asked.id)
+    reading, files = storable(draft)
+    with bench.writing() as library:
+        stored = library.store(reading, author=signed.author, reason=signed.note, sheet_files=files)
+    return {"devices": [{"key": each.key, "revision": each.revision, "changed": each.changed} for each in stored]}
+
+
+def tile(bench: Bench, asked: Tile) -> Content:
+    """One tile of the sheet's picture."""
+    pyramid = bench.drafts.draft(asked.id).pyramid(asked.page)
+    return Content(data=pyramid.tile(asked.level, asked.column, asked.row), media="image/png", lasting=True)
+
+
+def cut(bench: Bench, asked: Cut) -> Content:
+    """The surroundings of a place, cut from the sheet."""
+    if not (0 < asked.radius <= 10_000 and 0 < asked.zoom <= 64):
+        raise InputError(f"A cut of radius {asked.radius:g} and zoom {asked.zoom:g} cannot be made", "Both positive")
+    pyramid = bench.drafts.draft(asked.id).pyramid(asked.page)
+    picture = pyramid.around((asked.x, asked.y), asked.radius, asked.zoom)
+    return Content(data=picture, media="image/png", lasting=True)
+
+
+def locate(bench: Bench, asked: AtPlace) -> dict[str, Any]:
+    """What a place on the sheet means, and the curve nearest to it there."""
+    from curvelab.workbench.places import located  # noqa: PLC0415
+
+    return located(bench.drafts.draft(asked.id), (asked.x, asked.y))
+
+
+def place(bench: Bench, asked: AtValues) -> dict[str, Any]:
+    """Where on the sheet a current and a value are."""
+    from curvelab.workbench.places import placed  # noqa: PLC0415
+
+    return placed(bench.drafts.draft(asked.id), asked.current, asked.time)
+
+
+DRAFT = "/api/drafts/{id}"
+
+_STATE: Schema = {"type": "object", "required": ["id", "version", "tick", "work", "worksheet", "open", "can_store"]}
+_IMAGE = "image/png"
+
+
+def _route(method: Method, path: str, summary: str, does: Callable[..., Any], **more: Any) -> Route:
+    return Route(method=method, path=path, summary=summary, does=does, tag="drafts", **more)
+
+
+DRAFT_ROUTES = (
+    _route("GET", "/api/demo-sheets", "Sheets that come with the program", demo_sheets, answer={"type": "array"}),
+    _route("GET", "/api/drafts", "Drafts, those changed last first", list_drafts, answer={"type": "array"}),
+    _route("POST", "/api/drafts", "Begin a draft", begin, asked=Begin, raw=True, alive=True, status=201, answer=_STATE),
+    _route("GET", DRAFT, "A draft, now or once it has changed", look, asked=Look, alive=True, answer=_STATE),
+    _route("DELETE", DRAFT, "Move a draft to the bin", put_away, asked=OfDraft, answer={"type": "object"}),
+    _route("POST", f"{DRAFT}/restore", "Bring a draft back from the bin", restore, asked=OfDraft, answer=_STATE),
+    _route(
+        "POST", f"{DRAFT}/changes", "Make one change", change, asked=Changing, body=Changed, alive=True, answer=_STATE
+    ),
+    _route("POST", f"{DRAFT}/cancel", "Stop reading", cancel, asked=OfDraft, answer=_STATE),
+    _route("POST", f"{DRAFT}/read", "Read what was stopped", read_again, asked=OfDraft, answer=_STATE),
+    _route("POST", f"{DRAFT}/store", "Store the devices", store, asked=OfDraft, body=Signed, answer={"type": "object"}),
+    _route(
+        "GET", f"{DRAFT}/tiles/{{level}}/{{column}}/{{row}}.png", "A tile of the sheet", tile, asked=Tile, media=_IMAGE
+    ),
+    _route("GET", f"{DRAFT}/cut.png", "The surroundings of a place", cut, asked=Cut, media=_IMAGE),
+    _route("GET", f"{DRAFT}/locate", "What a place means", locate, asked=AtPlace, answer={"type": "object"}),
+    _route("GET", f"{DRAFT}/place", "Where values are", place, asked=AtValues, answer={"type": "object"}),
+)

@@ -1,0 +1,79 @@
+"""Keeps what the stations of a reading made, a few pages at a time, so that one change costs one change."""
+
+import threading
+from collections import OrderedDict
+from collections.abc import Callable, Hashable
+from typing import Any, TypeVar
+
+Result = TypeVar("Result")
+
+CAPACITY = {"sheet": 1, "picture": 1, "axes": 4, "page": 1, "trace": 60, "fit": 60, "check": 60}
+"""Results of each station kept of one page; a page prepared for tracing is large."""
+
+PAGES = 3
+"""Pages kept, those used last."""
+
+MOST_PIXELS = 40_000_000
+"""Of all pages kept together; the page in use is kept whatever its size."""
+
+
+class PageMemory:
+    """What was made of one page; it is the ``remember`` of a reading.
+
+    What hangs on a forgotten result is forgotten with it, so that nothing large is kept alive by something small.
+    """
+
+    def __init__(self) -> None:
+        self._kept: dict[str, OrderedDict[tuple[Hashable, ...], Any]] = {station: OrderedDict() for station in CAPACITY}
+        self._making = {station: threading.RLock() for station in CAPACITY}
+        self._changing = threading.RLock()
+
+    def __call__(self, station: str, given: tuple[Hashable, ...], make: Callable[[], Result]) -> Result:
+        """The result of ``make``, or the one made before; two who want the same wait for one."""
+        with self._making[station]:
+            kept = self._kept[station]
+            with self._changing:
+                if given in kept:
+                    kept.move_to_end(given)
+                    found: Result = kept[given]
+                    return found
+            result = make()
+            with self._changing:
+                kept[given] = result
+                while len(kept) > CAPACITY[station]:
+                    self._forget(kept.popitem(last=False)[1])
+            return result
+
+    @property
+    def pixels(self) -> int:
+        """Pixels of the sheet that is kept."""
+        with self._changing:
+            sheets = [sheet for sheet in self._kept["sheet"].values() if sheet.pixels]
+        return sum(int(sheet.pixels.grey.size) for sheet in sheets)
+
+    def _forget(self, result: Any) -> None:
+        """Forget everything that was made from a result, or from a part of it."""
+        gone = {id(result), *map(id, result if isinstance(result, tuple) else ())}
+        for kept in self._kept.values():
+            for given in [given for given in kept if any(id(part) in gone for part in given)]:
+                self._forget(kept.pop(given, None))
+
+
+class Pages:
+    """The memories of the pages used last."""
+
+    def __init__(self) -> None:
+        self._kept: OrderedDict[Hashable, PageMemory] = OrderedDict()
+        self._lock = threading.Lock()
+
+    def memory(self, page: Hashable) -> PageMemory:
+        """The memory of a page, which from now on is the one used last."""
+        with self._lock:
+            memory = self._kept.pop(page, None) or PageMemory()
+            self._kept[page] = memory
+            while len(self._kept) > PAGES or self._are_many():
+                self._kept.popitem(last=False)
+            return memory
+
+    def _are_many(self) -> bool:
+        return len(self._kept) > 1 and sum(each.pixels for each in self._kept.values()) > MOST_PIXELS

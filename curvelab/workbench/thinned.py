@@ -1,0 +1,73 @@
+"""A reading for the page: as for every program, with traces and numbers only as fine as they can be seen."""
+
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from curvelab.reading.as_json import reading_json
+from curvelab.records.arrays import Floats
+from curvelab.records.reading import Reading
+from curvelab.records.worksheet import Worksheet
+
+SEEN = 0.35
+"""Pixels or points that a thinned trace strays at most."""
+FIGURES = 7
+
+
+def page_reading(reading: Reading) -> dict[str, Any]:
+    """The reading's JSON, thinned; each curve with ``entry``, its place among the worksheet's, null if it has none."""
+    told, worksheet = reading_json(reading), reading.worksheet
+    if told["sheet"] is not None and worksheet.sheet is not None:
+        told["sheet"]["file"] = worksheet.sheet.file
+    for curve, read, entry in zip(told["curves"], reading.curves, _entries(reading, worksheet), strict=True):
+        curve["entry"] = entry
+        if read.trace is not None:
+            kept = thinned(read.trace.places, SEEN)
+            curve["points"] = {name: [values[k] for k in kept] for name, values in curve["points"].items()}
+    shortened: dict[str, Any] = _short(told)
+    # The page computes with the map, which would move if it were rounded.
+    shortened["axes"] = told["axes"]
+    return shortened
+
+
+def _entries(reading: Reading, worksheet: Worksheet) -> list[int | None]:
+    """Traced entries come first, typed ones after them; curves that were found by themselves have none."""
+    traced = [index for index, entry in enumerate(worksheet.curves) if entry.through]
+    typed = [index for index, entry in enumerate(worksheet.curves) if entry.points]
+    order = [*traced, *typed]
+    return [*order] if len(order) == len(reading.curves) else [None] * len(reading.curves)
+
+
+def thinned(places: Floats, stray: float) -> list[int]:
+    """Indices of places such that the polyline through them strays from none by more than ``stray``."""
+    keep: NDArray[np.bool_] = np.zeros(len(places), dtype=bool)
+    if len(places) == 0:
+        return []
+    keep[[0, -1]] = True
+    waiting = [(0, len(places) - 1)]
+    while waiting:
+        first, last = waiting.pop()
+        if last - first < 2:
+            continue
+        chord = places[last] - places[first]
+        away = places[first + 1 : last] - places[first]
+        length = float(np.hypot(*chord))
+        across = np.abs(away[:, 0] * chord[1] - away[:, 1] * chord[0]) / length if length else np.hypot(*away.T)
+        worst = int(np.argmax(across))
+        if across[worst] > stray:
+            middle = first + 1 + worst
+            keep[middle] = True
+            waiting += [(first, middle), (middle, last)]
+    return np.flatnonzero(keep).tolist()
+
+
+def _short(value: Any) -> Any:
+    """The same with numbers of as many figures as are ever shown."""
+    if isinstance(value, float):
+        return float(f"{value:.{FIGURES}g}")
+    if isinstance(value, list):
+        return [_short(each) for each in value]
+    if isinstance(value, dict):
+        return {name: _short(each) for name, each in value.items()}
+    return value

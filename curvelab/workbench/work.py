@@ -1,0 +1,116 @@
+"""The reading of one draft in the background: one at a time, of the newest worksheet, told about and stopped."""
+
+import logging
+import threading
+from collections.abc import Callable
+from concurrent.futures import Executor
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import Literal
+
+from curvelab.errors import Cancelled, CurvelabError
+from curvelab.reading.digitise import read
+from curvelab.reading.remember import Remember
+from curvelab.records.reading import Reading
+from curvelab.records.worksheet import Worksheet
+
+log = logging.getLogger(__name__)
+
+WorkState = Literal["reading", "ready", "failed", "cancelled"]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Work:
+    """How far the reading of the newest worksheet is, and the last reading that was completed."""
+
+    state: WorkState
+    stage: str = ""
+    fraction: float = 0.0
+    error: CurvelabError | None = None
+    reading: Reading | None = None
+    of: Worksheet | None = None
+    """The worksheet that ``reading`` was made from."""
+    number: int = 0
+    """Counts readings."""
+
+
+class Worker:
+    """Reads worksheets of one draft.
+
+    Parameters
+    ----------
+    threads : Executor
+        Where the work is done.
+    folder : Path
+        The draft's.
+    memory : callable
+        Gives what is remembered of the draft's page.
+    tell : callable
+        Called after each change of `work`.
+    """
+
+    def __init__(
+        self, threads: Executor, folder: Path, memory: Callable[[], Remember], tell: Callable[[], None]
+    ) -> None:
+        self._threads = threads
+        self._folder = folder
+        self._memory = memory
+        self._tell = tell
+        self._lock = threading.Lock()
+        self._wanted: Worksheet | None = None
+        self._is_running = False
+        self.work = Work(state="cancelled")
+
+    def want(self, worksheet: Worksheet) -> None:
+        """Read this; what is being read of an older worksheet stops."""
+        with self._lock:
+            self._wanted = worksheet
+            self.work = replace(self.work, state="reading", stage="Waiting", fraction=0.0, error=None)
+            start = not self._is_running
+            self._is_running = True
+        self._tell()
+        if start:
+            self._threads.submit(self._run)
+
+    def cancel(self) -> None:
+        """Stop; the last completed reading stays."""
+        with self._lock:
+            self._wanted = None
+            if self.work.state == "reading":
+                self.work = replace(self.work, state="cancelled", stage="", fraction=0.0)
+        self._tell()
+
+    def _run(self) -> None:
+        """Read until nothing newer is wanted."""
+        while True:
+            with self._lock:
+                worksheet = self._wanted
+                if worksheet is None:
+                    self._is_running = False
+                    return
+            done = self._outcome(worksheet)
+            with self._lock:
+                if self._wanted is worksheet:
+                    self._wanted = None
+                    self.work = done
+            self._tell()
+
+    def _outcome(self, worksheet: Worksheet) -> Work:
+        def watch(stage: str, fraction: float) -> None:
+            with self._lock:
+                if self._wanted is not worksheet:
+                    raise Cancelled
+                self.work = replace(self.work, stage=stage, fraction=fraction)
+            self._tell()
+
+        try:
+            reading = read(worksheet, self._folder, watch, self._memory())
+        except Cancelled:
+            return replace(self.work, state="cancelled")
+        except CurvelabError as error:
+            return replace(self.work, state="failed", stage="", error=error)
+        except Exception as error:
+            log.exception("A reading failed")
+            problem = CurvelabError(f"The program made a mistake in reading: {error}", "", "Undo the last change")
+            return replace(self.work, state="failed", stage="", error=problem)
+        return Work(state="ready", fraction=1.0, reading=reading, of=worksheet, number=self.work.number + 1)
