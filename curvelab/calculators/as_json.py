@@ -8,6 +8,7 @@ from curvelab.calculators.disconnection import Disconnection
 from curvelab.calculators.estimate import Estimate
 from curvelab.calculators.facts import Origin
 from curvelab.calculators.verdict import worst
+from curvelab.calculators.withstand import Withstand
 from curvelab.records.finding import Finding, finding_json
 
 Json: TypeAlias = dict[str, Any]
@@ -57,6 +58,42 @@ def disconnection_json(answer: Disconnection) -> Json:
         "fault_current_a": answer.fault.current_a if answer.fault else None,
         "time": estimate_json(answer.time),
         "notes": list(answer.notes),
+        **_judged(answer.findings, answer.cautions),
+    }
+
+
+def withstand_json(answer: Withstand) -> Json:
+    """Whether a conductor withstands a device; energies in A2s, currents in A, cross-sections in mm2."""
+    conductor = answer.conductor
+    return {
+        "format": FORMAT,
+        "device": answer.device,
+        "revision": answer.revision,
+        "state": answer.state,
+        "conductor": {
+            "material": conductor.material,
+            "insulation": conductor.insulation,
+            "use": conductor.use,
+            "factors": [
+                {"k": each.k, "above_mm2": each.above_mm2, **_origin(each.origin)} for each in conductor.factors
+            ],
+        },
+        "area_mm2": answer.area_mm2,
+        "k2s2_a2s": answer.withstands_a2s,
+        "current": [answer.from_a, answer.to_a],
+        "let_through": estimate_json(answer.energy),
+        "least_area": estimate_json(answer.least_area),
+        "next_size_mm2": answer.next_size_mm2,
+        "spans": [
+            {
+                "from_a": each.from_a,
+                "to_a": each.to_a,
+                "way": each.way.name.lower(),
+                "let_through": estimate_json(each.energy),
+                "worst_current_a": each.worst_a,
+            }
+            for each in answer.stresses
+        ],
         **_judged(answer.findings, answer.cautions),
     }
 

@@ -2,12 +2,15 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from math import isclose
 from typing import Literal
 
 from curvelab.calculators.estimate import Estimate
 from curvelab.calculators.facts import Origin
 from curvelab.records.finding import Finding
 from curvelab.records.limit import Judgement, Limit, judge_number
+
+_SAME = 1e-9
 
 _WORST_FIRST = ("fails", "not covered", "undecided", "at limit", "meets")
 
@@ -59,10 +62,12 @@ def verdict(required: Requirement, found: Estimate, note: str = "") -> Finding:
 def _judged(limit: Limit, found: Estimate) -> Judgement:
     if found.value is None and found.reason:
         return Judgement(outcome="not covered", note=found.reason)
-    judgement = judge_number(limit, found.answer())
     if found.interval is not None:
-        return judgement
-    return replace(judgement, interval=None)
+        return judge_number(limit, found.answer())
+    # A rounding decides nothing: within it, a number of no known uncertainty lies on the limit.
+    on_limit = found.value is not None and isclose(found.value, limit.number, rel_tol=_SAME)
+    judgement = judge_number(limit, (replace(found, value=limit.number) if on_limit else found).answer())
+    return replace(judgement, value=found.value, interval=None)
 
 
 def worst(findings: Sequence[Finding]) -> str | None:

@@ -16,6 +16,7 @@ COMMANDS = {
     "query": "Trip times at currents, or currents for times.",
     "compare": "Set two or more devices side by side.",
     "disconnection": "Whether a device disconnects a fault in time, and the greatest loop impedance.",
+    "withstand": "Whether a conductor withstands what a device lets through.",
     "library": "List, find, review, exchange and keep what is stored.",
     "workbench": "Read, correct, compare and review in the browser.",
     "demo": "Run the whole chain on the shipped sheets.",

@@ -44,6 +44,12 @@ def _fits(option: str, word: str) -> bool:
     return True
 
 
+class ManySettings(ManyValues):
+    """A command of which only the settings take several values."""
+
+    many = frozenset({"--set"})
+
+
 class Settings(click.ParamType[Any]):
     """``ir=0.8`` or ``ii=off``; in ``compare`` ``KEY.ir=0.8``."""
 

@@ -26,6 +26,8 @@ from curvelab.records.device import DeviceRecord, Nameplate
 Limiting = Literal["let_through", "peak"]
 """What a current-limiting device is drawn for beside its times."""
 
+Quantity = Literal["time", "let_through", "peak"]
+
 Ask = Callable[[tuple[Lines, ...], Edge], Found]
 """How the lines of one edge are asked."""
 
@@ -244,8 +246,8 @@ class Device:
         """Its let-through or cut-off lines."""
         return tuple(curve for curve in self._record.curves if curve.quantity == quantity)
 
-    def bends_a(self, path: Path | None = None) -> Floats:
-        """Currents in A, rising, at which its times may bend or step: what is tabulated, and declared pick-ups.
+    def bends_a(self, path: Path | None = None, quantity: Quantity = "time") -> Floats:
+        """Currents in A, rising, at which its lines may bend or step: what is tabulated, and declared pick-ups.
 
         Of the elements that act on the path, by default that of a current when nothing else is said; shape (n,), empty
         without curves.
@@ -258,7 +260,9 @@ class Device:
         self._refuse_unset()
         way = path_of(Question(path=path), self.nameplate, "A")
         acting = [
-            curve for curve in self._times if sees(curve.element, way) and not is_off(curve.element, self._settings)
+            curve
+            for curve in self._record.curves
+            if curve.quantity == quantity and sees(curve.element, way) and not is_off(curve.element, self._settings)
         ]
         bends = [
             np.append(part.current, pick_up(curve) or part.current[:0])

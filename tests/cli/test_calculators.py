@@ -81,7 +81,48 @@ kind = "switch"
 rated_current_a = 63
 """
 
-SHEETS = {"b32": B32, "c20": C20, "rcd": RCD, "switch": SWITCH}
+C16 = f"""
+format = 1
+[axes.current]
+unit = "xIn"
+[[curves]]
+edge = "fast"
+meaning = "clearing"
+points = [[1.13, 9000], [2.55, 10], [5, 2], [5, 0.01], [500, 0.008]]
+source = "{SITE}"
+[[curves]]
+edge = "slow"
+meaning = "clearing"
+points = [[1.45, 3500], [2.55, 60], [10, 3], [10, 0.05], [500, 0.02]]
+source = "{SITE}"
+[[devices]]
+key = "hall-c16"
+kind = "mcb"
+characteristic = "C"
+standard = "IEC 60898-1"
+rated_current_a = 16
+breaking = [ {{ quantity = "Icn", value_a = 10000, voltage_v = 230 }} ]
+"""
+
+C16_LET_THROUGH = f"""
+format = 1
+[axes.let_through]
+unit = "A2s"
+[[curves]]
+edge = "slow"
+meaning = "clearing"
+points = [[100, 300], [10000, 30000]]
+source = "{SITE}"
+[[devices]]
+key = "hall-c16"
+kind = "mcb"
+characteristic = "C"
+standard = "IEC 60898-1"
+rated_current_a = 16
+breaking = [ {{ quantity = "Icn", value_a = 10000, voltage_v = 230 }} ]
+"""
+
+SHEETS = {"b32": B32, "c20": C20, "rcd": RCD, "switch": SWITCH, "c16": C16, "c16-let-through": C16_LET_THROUGH}
 
 
 @pytest.fixture(scope="module")
@@ -191,4 +232,38 @@ def test_a_switch_does_not_disconnect_and_the_answer_says_so(capsys):
     ],
 )
 def test_bad_questions_take_one_line(capsys, words, said):
+    assert said in refused(capsys, words)
+
+
+@pytest.mark.usefixtures("site")
+def test_4_mm2_behind_a_c16_with_its_let_through_sheet(capsys):
+    words = "withstand hall-c16 --material copper --insulation pvc70 --area 4 --current 200 6000"
+    status, answer = answered(capsys, words)
+    assert (status, answer["outcome"]) == (0, "meets")
+    assert answer["k2s2_a2s"] == 211_600.0
+    # 3 A2s for each ampere: 18 000 A2s at 6 kA.
+    assert answer["let_through"]["value"] == pytest.approx(18_000.0)
+    assert answer["spans"][0]["way"] == "let_through"
+    assert "211.6 x 10^3 A2s" in printed(capsys, words)
+
+
+@pytest.mark.usefixtures("site")
+def test_without_a_let_through_sheet_nothing_is_withstood_below_a_tenth_of_a_second(capsys):
+    words = "withstand hall-b32 --material copper --insulation pvc70 --area 4 --current 200 900"
+    status, answer = answered(capsys, words)
+    assert (status, answer["outcome"]) == (1, "not covered")
+    assert "only a let-through sheet" in printed(capsys, words)
+
+
+@pytest.mark.usefixtures("site")
+@pytest.mark.parametrize(
+    ("words", "said"),
+    [
+        ("withstand hall-c16 --material tin --insulation pvc70 --current 200 900", "copper pvc70"),
+        ("withstand hall-c16 --material copper --insulation pvc70 --current 900 200", "MIN and MAX"),
+        ("withstand hall-c16 --material copper --insulation pvc70 --current 200", "--current"),
+        ("withstand hall-c16 --material copper --insulation pvc70 --area 0 --current 200 900", "cross-section"),
+    ],
+)
+def test_bad_conductors_take_one_line(capsys, words, said):
     assert said in refused(capsys, words)
