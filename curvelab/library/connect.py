@@ -78,6 +78,9 @@ def named_errors(path: Path) -> Iterator[None]:
             "",
             "Correct the value; nothing was stored",
         ) from error
+    except UnicodeDecodeError as error:  # text in a damaged page, met before the damage itself
+        problem, fix = _WORDS[sqlite3.SQLITE_CORRUPT]
+        raise LibraryError(f"The library {path} {problem}", "", fix) from error
     except sqlite3.Error as error:
         code = (getattr(error, "sqlite_errorcode", None) or sqlite3.SQLITE_ERROR) & 0xFF
         problem, fix = _WORDS.get(code, ("cannot be used: {error}", "Check the file"))

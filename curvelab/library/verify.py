@@ -54,7 +54,7 @@ def verify(connection: sqlite3.Connection, watch: Watch) -> Verdict:
 def _structure(connection: sqlite3.Connection) -> Problems:
     try:
         rows = connection.execute("PRAGMA integrity_check(20)").fetchall()
-    except sqlite3.DatabaseError as error:
+    except (sqlite3.DatabaseError, UnicodeDecodeError) as error:
         rows = [(str(error),)]
     yield from (f"The file is damaged: {' '.join(text.split())}" for (text,) in rows if text != "ok")
 

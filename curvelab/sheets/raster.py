@@ -12,6 +12,7 @@ from curvelab.records.sheet import Pixels, Sheet
 from curvelab.sheets import limits
 from curvelab.sheets.affine import IDENTITY
 from curvelab.sheets.levels import UnknownModeError, image_levels
+from curvelab.sheets.silent import silent_decoders
 from curvelab.sheets.source import Source
 
 FORMATS = ("PNG", "JPEG", "TIFF", "BMP", "WEBP")
@@ -30,7 +31,7 @@ def raster_page(source: Source) -> Sheet:
     SheetError
         The image is damaged, of a colour mode without grey levels, over the limits, or has no such page.
     """
-    with _decoding, warnings.catch_warnings():
+    with _decoding, warnings.catch_warnings(), silent_decoders():
         warnings.simplefilter("ignore")
         warnings.simplefilter("error", Image.DecompressionBombWarning)
         try:

@@ -69,7 +69,7 @@ def read_table(file: Path, within: tuple[Path, ...] = ()) -> tuple[Rule, ...]:
 def _parsed(file: Path, place: str) -> dict[str, Any]:
     try:
         table = tomllib.loads(file.read_text(encoding="utf-8"))
-    except (OSError, UnicodeDecodeError, tomllib.TOMLDecodeError) as error:
+    except (OSError, ValueError, RecursionError) as error:
         raise StandardError(f"{place} cannot be read: {error}", "A TOML file") from None
     refuse_unknown(table, _TABLE_KEYS, place)
     if table.get("format") != FORMAT:
