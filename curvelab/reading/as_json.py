@@ -43,7 +43,11 @@ def reading_json(reading: Reading) -> Json:
 
 def numbers(values: Floats) -> list[float | None]:
     """A list with null for what is not a finite number."""
-    return [number if np.isfinite(number) else None for number in np.asarray(values, dtype=np.float64).tolist()]
+    array = np.asarray(values, dtype=np.float64)
+    told: list[float | None] = array.tolist()
+    for index in np.flatnonzero(~np.isfinite(array)):
+        told[index] = None
+    return told
 
 
 def _sheet(sheet: Sheet, entry: SheetEntry | None) -> Json:

@@ -61,6 +61,18 @@ def digitise(
 
 def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, remember: Remember = anew) -> Reading:
     """Read what a worksheet says; file names are relative to ``folder``, ``remember`` may keep what stations made."""
+    reading = read_curves(worksheet, folder, watch, remember)
+    watch("Checking", 0.0)
+    return with_findings(reading, remember)
+
+
+def with_findings(reading: Reading, remember: Remember = anew) -> Reading:
+    """The reading with its devices checked."""
+    return replace(reading, findings=checked(reading.devices, remember))
+
+
+def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, remember: Remember = anew) -> Reading:
+    """Axes, curves and devices of a reading, not checked yet; arguments as for `read`."""
     sheet: Sheet | None = None
     axes: Axes | None = None
     warnings: tuple[ReadingWarning, ...] = ()
@@ -84,14 +96,13 @@ def read(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, remember:
         warnings = doubts + more_doubts + (() if worksheet.curves else (NO_CURVES,))
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     devices, device_doubts = assemble(worksheet, curves)
-    watch("Checking", 0.0)
     return Reading(
         worksheet=worksheet,
         sheet=sheet,
         axes=axes,
         curves=curves,
         devices=devices,
-        findings=checked(devices, remember),
+        findings=(),
         warnings=accept(warnings + device_doubts, worksheet.accepted),
         program_version=__version__,
     )

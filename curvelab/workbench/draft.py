@@ -66,6 +66,11 @@ class Draft:
         return self._worker.work
 
     @property
+    def is_shown(self) -> bool:
+        """Whether the newest worksheet's curves can be seen, or will not be."""
+        return self.work.state != "reading" or self.work.of is self.history.worksheet
+
+    @property
     def tick(self) -> int:
         """Counts every change that can be seen."""
         return self._tick

@@ -184,7 +184,7 @@ async def change(bench: Bench, asked: Changing, request: Request) -> Response:
     body: Changed = await body_of(Changed, request)
     draft = await run_in_threadpool(lambda: bench.drafts.draft(asked.id))
     await run_in_threadpool(draft.change, body.base_version, body.change)
-    await draft.bell.heard(lambda: draft.work.state != "reading", CLICK_WAIT_S)
+    await draft.bell.heard(lambda: draft.is_shown, CLICK_WAIT_S)
     return written(await run_in_threadpool(draft_state, draft, asked.have))
 
 

@@ -5,7 +5,7 @@ import threading
 from pathlib import Path
 
 from curvelab.plots.overlay import draw_overlay
-from curvelab.reading.rerun import restored
+from curvelab.reading.restore import restored
 from curvelab.records.evidence import Evidence
 from curvelab.workbench.failures import Unknown
 from curvelab.workbench.route import Content

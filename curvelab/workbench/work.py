@@ -9,7 +9,7 @@ from pathlib import Path
 from typing import Literal
 
 from curvelab.errors import Cancelled, CurvelabError
-from curvelab.reading.digitise import read
+from curvelab.reading.digitise import read_curves, with_findings
 from curvelab.reading.remember import Remember
 from curvelab.records.reading import Reading
 from curvelab.records.worksheet import Worksheet
@@ -95,6 +95,15 @@ class Worker:
                     self.work = done
             self._tell()
 
+    def _show(self, worksheet: Worksheet, reading: Reading) -> None:
+        """Let curves be seen before they are checked; what was found before stands until then."""
+        with self._lock:
+            if self._wanted is worksheet:
+                before = self.work.reading.findings if self.work.reading else ()
+                number, shown = self.work.number + 1, replace(reading, findings=before)
+                self.work = replace(self.work, reading=shown, of=worksheet, number=number)
+        self._tell()
+
     def _outcome(self, worksheet: Worksheet) -> Work:
         def watch(stage: str, fraction: float) -> None:
             with self._lock:
@@ -104,7 +113,11 @@ class Worker:
             self._tell()
 
         try:
-            reading = read(worksheet, self._folder, watch, self._memory())
+            memory = self._memory()
+            reading = read_curves(worksheet, self._folder, watch, memory)
+            self._show(worksheet, reading)
+            watch("Checking", 0.0)
+            reading = with_findings(reading, memory)
         except Cancelled:
             return replace(self.work, state="cancelled")
         except CurvelabError as error:

@@ -1,0 +1,178 @@
+"""A real browser at a real workbench. Skipped with a word where there is none, and never run in CI."""
+
+import base64
+import importlib.util
+import os
+import subprocess
+import sys
+from collections.abc import Iterator
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+import pytest
+
+if TYPE_CHECKING:
+    from playwright.sync_api import Browser, BrowserContext, Page
+
+CHROMIUM = Path(os.environ.get("CURVELAB_CHROMIUM", "/usr/bin/chromium"))
+ARGUMENTS = (
+    "--no-sandbox",
+    "--disable-gpu",
+    "--disable-quic",
+    "--no-first-run",
+    "--disable-background-networking",
+    "--disable-component-update",
+    "--disable-sync",
+)
+SHEETS = Path(__file__).parents[2] / "demo_curves" / "sheets"
+LONGEST_MS = 60_000
+THREADS = {name: "1" for name in ("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS")}
+
+DROP = """([name, data]) => {
+  const bytes = Uint8Array.from(atob(data), (letter) => letter.charCodeAt(0));
+  const carried = new DataTransfer();
+  carried.items.add(new File([bytes], name));
+  for (const type of ["dragenter", "dragover", "drop"]) {
+    document.body.dispatchEvent(new DragEvent(type, { bubbles: true, cancelable: true, dataTransfer: carried }));
+  }
+}"""
+
+PIXEL = """([x, y]) => {
+  const view = new URLSearchParams(location.hash.split("?")[1]);
+  const box = document.querySelector(".sheet-pane canvas").getBoundingClientRect();
+  const scale = Number(view.get("z"));
+  return [box.left + box.width / 2 + (x - view.get("x")) * scale, box.top + box.height / 2 + (y - view.get("y")) * scale];
+}"""
+
+
+def missing() -> str | None:
+    """Why there is no browser to test with, or None."""
+    if os.environ.get("CI"):
+        return "not in CI: a browser is needed"
+    if importlib.util.find_spec("playwright") is None:
+        return "Playwright is not installed (extra 'browser')"
+    return None if CHROMIUM.exists() else f"no Chromium at {CHROMIUM}"
+
+
+needs_browser = pytest.mark.skipif(missing() is not None, reason=missing() or "")
+
+
+class Screen:
+    """One page at the workbench, with what a person does there."""
+
+    def __init__(self, page: "Page", address: str) -> None:
+        self.page = page
+        self.address = address
+        self.actions = 0
+        self.errors: list[str] = []
+        page.set_default_timeout(LONGEST_MS)
+        page.on("pageerror", lambda error: self.errors.append(str(error)))
+        page.on("console", lambda said: self.errors.append(said.text) if said.type == "error" else None)
+
+    def goto(self, place: str = "#/") -> None:
+        self.page.goto(f"{self.address}{place}")
+
+    def act(self) -> None:
+        """Count what a person has to do."""
+        self.actions += 1
+
+    def drop(self, name: str, data: bytes) -> None:
+        self.act()
+        self.page.evaluate(DROP, [name, base64.b64encode(data).decode()])
+        self.page.wait_for_url("**/#/sheet/**")
+
+    def demo(self, name: str) -> None:
+        self.act()
+        self.page.locator(".demo", has_text=name).first.click()
+        self.page.wait_for_url("**/#/sheet/**")
+
+    def read(self) -> None:
+        """Wait until the newest worksheet was read."""
+        self.page.wait_for_function("() => document.querySelector('.desk')?.dataset.work === 'ready'")
+
+    def settled(self) -> None:
+        """Wait until a reading has ended, well or not."""
+        self.page.wait_for_function("() => ['ready', 'failed'].includes(document.querySelector('.desk')?.dataset.work)")
+
+    def pixel(self, x: float, y: float) -> tuple[float, float]:
+        """Where a place of the sheet is on the screen."""
+        self.page.wait_for_function("() => location.hash.includes('z=')")
+        across, down = self.page.evaluate(PIXEL, [x, y])
+        return across, down
+
+    def click(self, x: float, y: float, **more: Any) -> None:
+        self.act()
+        self.page.mouse.click(*self.pixel(x, y), **more)
+
+    @property
+    def open_texts(self) -> list[str]:
+        return self.page.locator(".entry-text").all_inner_texts()
+
+    def api(self, path: str) -> Any:
+        return self.page.evaluate("(path) => fetch(path).then((answer) => answer.json())", f"/api{path}")
+
+    @property
+    def draft(self) -> str:
+        return self.page.url.split("#/sheet/")[1].split("?")[0]
+
+    def state(self) -> Any:
+        return self.api(f"/drafts/{self.draft}")
+
+
+class Workbench:
+    """A running workbench process with its own library, and a browser beside it."""
+
+    def __init__(self, address: str, process: int, browser: "Browser") -> None:
+        self.address = address
+        self.process = process
+        self.browser = browser
+        self.contexts: list[BrowserContext] = []
+
+    def screen(self, place: str = "#/", **look: Any) -> Screen:
+        """A page in a browser of its own, as another person has it."""
+        context = self.browser.new_context(**{"viewport": {"width": 1280, "height": 800}, **look})
+        self.contexts.append(context)
+        return self.tab(context, place)
+
+    def tab(self, context: "BrowserContext", place: str = "#/") -> Screen:
+        screen = Screen(context.new_page(), self.address)
+        screen.goto(place)
+        return screen
+
+    def close(self) -> None:
+        for context in self.contexts:
+            context.close()
+        self.contexts.clear()
+
+
+@pytest.fixture(scope="session")
+def chromium() -> Iterator["Browser"]:
+    """One browser for all tests."""
+    if (reason := missing()) is not None:
+        pytest.skip(reason)
+    from playwright.sync_api import sync_playwright  # noqa: PLC0415 - an optional extra
+
+    with sync_playwright() as playwright:
+        browser = playwright.chromium.launch(executable_path=str(CHROMIUM), args=list(ARGUMENTS))
+        yield browser
+        browser.close()
+
+
+@pytest.fixture(scope="module")
+def served(chromium: "Browser", tmp_path_factory: pytest.TempPathFactory) -> Iterator[Workbench]:
+    """A workbench process for one module."""
+    library = tmp_path_factory.mktemp("browser") / "firm.sqlite"
+    command = [sys.executable, "-m", "curvelab", "workbench", "--library", str(library), "--no-open"]
+    with subprocess.Popen(command, stdout=subprocess.PIPE, text=True, env={**os.environ, **THREADS}) as process:
+        assert process.stdout is not None
+        address = process.stdout.readline().split()[-1]
+        yield Workbench(address, process.pid, chromium)
+        process.terminate()
+        process.stdout.close()
+
+
+@pytest.fixture
+def bench(served: Workbench) -> Iterator[Workbench]:
+    """The module's workbench; its pages are closed after each test."""
+    yield served
+    served.close()

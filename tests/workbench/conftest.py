@@ -1,0 +1,13 @@
+from collections.abc import Iterator
+from pathlib import Path
+
+import pytest
+from starlette.testclient import TestClient
+
+from tests.workbench.served import workbench
+
+
+@pytest.fixture
+def client(tmp_path: Path) -> Iterator[TestClient]:
+    with workbench(tmp_path / "firm.sqlite") as served:
+        yield served
