@@ -3,10 +3,12 @@
 from collections.abc import Sequence
 from typing import Any, TypeAlias
 
+from curvelab.calculators.breaking import BreakingAnswer
 from curvelab.calculators.cautions import Caution
 from curvelab.calculators.disconnection import Disconnection
 from curvelab.calculators.estimate import Estimate
 from curvelab.calculators.facts import Origin
+from curvelab.calculators.overload import Overload
 from curvelab.calculators.verdict import worst
 from curvelab.calculators.withstand import Withstand
 from curvelab.records.finding import Finding, finding_json
@@ -94,6 +96,41 @@ def withstand_json(answer: Withstand) -> Json:
             }
             for each in answer.stresses
         ],
+        **_judged(answer.findings, answer.cautions),
+    }
+
+
+def overload_json(answer: Overload) -> Json:
+    """Whether a device protects a conductor against overload; currents in A."""
+    return {
+        "format": FORMAT,
+        "device": answer.device,
+        "revision": answer.revision,
+        "state": answer.state,
+        "capacity_a": answer.load.capacity_a,
+        "design_current_a": answer.load.design_a,
+        "set_current_a": answer.set_a,
+        "conventional_time": {"time_s": answer.conventional_time_s, **_origin(answer.conventional_origin)},
+        "trips": estimate_json(answer.trips),
+        "least_capacity": estimate_json(answer.least_capacity),
+        "refusal": answer.refusal,
+        **_judged(answer.findings, answer.cautions),
+    }
+
+
+def breaking_json(answer: BreakingAnswer) -> Json:
+    """Whether a device breaks a short circuit; currents in A."""
+    return {
+        "format": FORMAT,
+        "device": answer.device,
+        "revision": answer.revision,
+        "state": answer.state,
+        "back_up": answer.back_up,
+        "prospective_a": answer.asked.prospective_a,
+        "voltage_v": answer.asked.voltage_v,
+        "supply": answer.asked.supply,
+        "capacity": estimate_json(answer.capacity),
+        "back_up_capacity": estimate_json(answer.back_up_capacity),
         **_judged(answer.findings, answer.cautions),
     }
 

@@ -61,7 +61,7 @@ def verdict(required: Requirement, found: Estimate, note: str = "") -> Finding:
 
 def _judged(limit: Limit, found: Estimate) -> Judgement:
     if found.value is None and found.reason:
-        return Judgement(outcome="not covered", note=found.reason)
+        return Judgement(outcome="not covered", note=f"{found.reason[0].upper()}{found.reason[1:]}.")
     if found.interval is not None:
         return judge_number(limit, found.answer())
     # A rounding decides nothing: within it, a number of no known uncertainty lies on the limit.

@@ -267,3 +267,33 @@ def test_without_a_let_through_sheet_nothing_is_withstood_below_a_tenth_of_a_sec
 )
 def test_bad_conductors_take_one_line(capsys, words, said):
     assert said in refused(capsys, words)
+
+
+@pytest.mark.usefixtures("site")
+def test_overload_from_the_real_band(capsys):
+    status, answer = answered(capsys, "overload hall-b32 --capacity 36 --design-current 28")
+    assert (status, answer["outcome"]) == (0, "meets")
+    # Between 44.8 A at 7000 s and 64 A at 110 s, a straight line in log-log: 3600 s at 47.4 A.
+    assert answer["trips"]["value"] == pytest.approx(47.43, abs=0.01)
+    assert "I2, surely trips" in printed(capsys, "overload hall-b32 --capacity 36")
+
+
+@pytest.mark.usefixtures("site")
+def test_an_rcd_gives_no_overload_protection_and_says_so(capsys):
+    assert answered(capsys, "overload hall-rcd30 --capacity 40")[0] == 1
+    assert "residual current only" in printed(capsys, "overload hall-rcd30 --capacity 40")
+
+
+@pytest.mark.usefixtures("site")
+@pytest.mark.parametrize(("prospective", "outcome", "status"), [(9000, "meets", 0), (12_000, "fails", 1)])
+def test_breaking_capacity_at_its_voltage(capsys, prospective, outcome, status):
+    found = answered(capsys, f"breaking hall-c16 --prospective {prospective} --voltage 230")
+    assert (found[0], found[1]["outcome"]) == (status, outcome)
+
+
+@pytest.mark.usefixtures("site")
+def test_a_back_up_device_is_named(capsys):
+    words = "breaking hall-c16 --prospective 12000 --voltage 230 --back-up hall-b32"
+    status, answer = answered(capsys, words)
+    assert (status, answer["back_up"]) == (1, "hall-b32")
+    assert "states no breaking capacity at 230 V" in printed(capsys, words)
