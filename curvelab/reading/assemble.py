@@ -15,14 +15,14 @@ from curvelab.worksheets.series import device_keys
 
 
 def owned(worksheet: Worksheet, entry: CurveEntry, number: int) -> CurveEntry:
-    """The entry with the device it belongs to: the only one where it names none.
+    """The entry with the device it belongs to: the only one where it names none and says which edge it is.
 
     Raises
     ------
     WorksheetError
         There are several devices and the entry names none.
     """
-    if entry.devices or not worksheet.devices:
+    if entry.devices or not worksheet.devices or entry.edge is None:
         return entry
     if len(worksheet.devices) > 1:
         keys = ", ".join(device.nameplate.key for device in worksheet.devices)

@@ -10,7 +10,8 @@ from curvelab.errors import InputError, SheetError
 from curvelab.reading.accept import accept
 from curvelab.reading.assemble import assemble, owned
 from curvelab.reading.check import checked
-from curvelab.reading.follow import follow_curves
+from curvelab.reading.find import find_curves, with_found
+from curvelab.reading.follow import follow_curves, open_edges
 from curvelab.reading.model import fitted_curves, typed_curves
 from curvelab.reading.remember import Remember, anew
 from curvelab.reading.watch import Watch, unwatched
@@ -22,11 +23,6 @@ from curvelab.records.warning import ReadingWarning
 from curvelab.records.worksheet import AxisEntry, SheetEntry, Worksheet
 from curvelab.sheets.open import open_sheet
 from curvelab.worksheets.read import read_worksheet
-
-NO_CURVES = ReadingWarning(
-    code="no-curves",
-    text="No curve was asked for, so none was read: give each line an entry in [[curves]] with a place it passes.",
-)
 
 
 def digitise(
@@ -88,12 +84,17 @@ def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, re
         axes, doubts = _calibrated(sheet, current, worksheet.value, page.plot, remember)
         worksheet = replace(worksheet, sheet=replace(page, plot=axes.plot))
         quantity = axes.value.quantity
-        guided = tuple(entry for entry in entries if entry.through)
-        followed, more_doubts = follow_curves(sheet, axes, guided, watch, remember)
+        if worksheet.curves:
+            guided = tuple(entry for entry in entries if entry.through)
+            followed, more_doubts = follow_curves(sheet, axes, guided, watch, remember)
+        else:
+            found = find_curves(sheet, axes, worksheet.devices, watch, remember)
+            followed, more_doubts = found.followed, found.warnings
+            worksheet = with_found(worksheet, found)
         key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=axes.plot, file=page.file)
         watch("Fitting the bands", 0.0)
         followed_curves = fitted_curves(followed, axes, key, remember)
-        warnings = doubts + more_doubts + (() if worksheet.curves else (NO_CURVES,))
+        warnings = doubts + more_doubts + open_edges(followed)
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     devices, device_doubts = assemble(worksheet, curves)
     return Reading(

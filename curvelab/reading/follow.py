@@ -17,10 +17,11 @@ from curvelab.trace.prepare import prepare
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Followed:
-    """One entry of the worksheet with the trace it led to."""
+    """One entry of the worksheet with the trace it led to, and what is printed on the line."""
 
     entry: CurveEntry
     trace: Trace
+    label: str = ""
 
 
 def follow_curves(
@@ -46,3 +47,16 @@ def follow_curves(
         followed.append(Followed(entry=entry, trace=trace))
         warnings.extend(doubts)
     return tuple(followed), tuple(warnings)
+
+
+def open_edges(followed: tuple[Followed, ...]) -> tuple[ReadingWarning, ...]:
+    """Warnings of lines of which nobody said which limit they are."""
+    return tuple(
+        ReadingWarning(
+            code="edge-unknown",
+            text="Which limit this line is is not known, so it is a line of no device: set edge in its [[curves]]",
+            at=(float(each.trace.places[0, 0]), float(each.trace.places[0, 1])),
+        )
+        for each in followed
+        if each.entry.edge is None
+    )

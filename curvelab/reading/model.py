@@ -75,12 +75,12 @@ def _ordered(fitted: list[_Fitted]) -> list[_Fitted]:
 
 
 def _curve(entry: CurveEntry, *, base: str, quantity: str, fit_or_points: CurveFit | None) -> Curve:
-    if entry.edge is None:
+    if entry.edge is None and entry.points:
         raise WorksheetError("A curve has no edge", "edge = 'fast', 'slow' or 'mean'", "Say which limit the line is")
     parts = fit_or_points.parts if fit_or_points else (typed_part(*zip(*entry.points, strict=True)),)
     return Curve(
         element=entry.element or "whole",
-        edge=entry.edge,
+        edge=entry.edge or "mean",
         meaning=entry.meaning,
         quantity=quantity,  # type: ignore[arg-type]
         base=base,
@@ -132,6 +132,7 @@ def _read_curve(fitted: _Fitted, axes: Axes, sheet: SheetKey) -> ReadCurve:
         curve=replace(curve, leaves_top=_leaves_top(trace, axes), sheet=sheet),
         devices=entry.devices,
         tolerance=entry.tolerance,
+        label=fitted.followed.label,
     )
 
 

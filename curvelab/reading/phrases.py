@@ -1,0 +1,74 @@
+"""Phrases: the words of a sheet joined to lines of text, as one reads them."""
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from itertools import pairwise
+
+import numpy as np
+
+from curvelab.records.sheet import Word
+
+Box = tuple[float, float, float, float]
+
+ONE_WORD, ONE_LINE = 0.16, 1.1
+"""Gap between words, relative to their height, up to which they are pieces of one word, or words of one line."""
+SAME_BASE = 0.35
+"""Distance of their middles, relative to their height, of words in one line."""
+SAME_HEIGHT = 1.45
+LEAST_CONFIDENCE = 0.3
+"""A word read with less says nothing."""
+DASHES = "-–—_.·' \"|"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Phrase:
+    """A line of text with the box around it in places, the height of its letters and its reading direction."""
+
+    text: str
+    box: Box
+    height: float
+    turned_deg: float = 0.0
+
+    @property
+    def middle(self) -> tuple[float, float]:
+        """The middle of its box."""
+        return (self.box[0] + self.box[2]) / 2, (self.box[1] + self.box[3]) / 2
+
+
+def phrases_of(words: Iterable[Word]) -> tuple[Phrase, ...]:
+    """Lines of text, top to bottom; words that say nothing (dashes of a line, doubtful readings) left out."""
+    left = [word for word in words if word.confidence >= LEAST_CONFIDENCE and any(c.isalnum() for c in word.text)]
+    level = sorted((word for word in left if word.turned_deg % 360 == 0), key=lambda word: (word.box[0], word.box[1]))
+    lines: list[list[Word]] = []
+    for word in level:
+        line = next((line for line in lines if _goes_on(line[-1], word)), None)
+        if line is None:
+            lines.append([word])
+        else:
+            line.append(word)
+    turned = [[word] for word in left if word.turned_deg % 360 != 0]
+    return tuple(sorted(map(_phrase, [*lines, *turned]), key=lambda one: (one.box[1], one.box[0])))
+
+
+def _goes_on(before: Word, word: Word) -> bool:
+    height = max(_height(before), _height(word))
+    apart = word.box[0] - before.box[2]
+    level = abs((word.box[1] + word.box[3]) - (before.box[1] + before.box[3])) / 2
+    alike = max(before.height, word.height) <= SAME_HEIGHT * min(before.height, word.height)
+    return -0.5 * height < apart < ONE_LINE * height and level < SAME_BASE * height and alike
+
+
+def _height(word: Word) -> float:
+    return max(word.box[3] - word.box[1], 0.7 * word.height)
+
+
+def _phrase(line: list[Word]) -> Phrase:
+    text = line[0].text
+    for before, word in pairwise(line):
+        near = word.box[0] - before.box[2] < ONE_WORD * max(_height(before), _height(word))
+        text += word.text if near else f" {word.text}"
+    boxes = np.array([word.box for word in line])
+    low, high = boxes[:, :2].min(axis=0), boxes[:, 2:].max(axis=0)
+    box = (float(low[0]), float(low[1]), float(high[0]), float(high[1]))
+    height = float(np.median([word.height for word in line]))
+    return Phrase(text=text.strip(DASHES), box=box, height=height, turned_deg=line[0].turned_deg)
