@@ -25,8 +25,10 @@ def located(draft: Draft, place: tuple[float, float]) -> dict[str, Any]:
         The draft's axes are not known yet.
     """
     axes, curves = _read(draft)
-    current, value = axes.values([place])
-    covariance = axes.map.covariance_at([place])[0]
+    # Far off the page values and their uncertainty pass all numbers.
+    with np.errstate(over="ignore", invalid="ignore", divide="ignore"):
+        current, value = axes.values([place])
+        covariance = axes.map.covariance_at([place])[0]
     sd_current, sd_value = (
         _relative(axis, float(number[0]), float(covariance[k, k]))
         for k, (axis, number) in enumerate(((axes.current, current), (axes.value, value)))
@@ -47,7 +49,8 @@ def placed(draft: Draft, current: float, value: float) -> dict[str, Any]:
         if axis.scale == "log" and number <= 0:
             raise InputError(f"{number:g} is not on a log axis", "A number above 0")
     try:
-        ((x, y),) = axes.places([current], [value])
+        with np.errstate(all="ignore"):
+            ((x, y),) = axes.places([current], [value])
     except AxesError as error:
         raise InputError(error.problem) from None
     return {"x": float(x), "y": float(y)}
@@ -63,7 +66,9 @@ def _read(draft: Draft) -> tuple[Axes, tuple[ReadCurve, ...]]:
 def _relative(axis: Axis, number: float, variance: float) -> float | None:
     """A relative standard uncertainty from the variance of the scaled coordinate."""
     sd = float(np.sqrt(max(variance, 0.0)))
-    return _finite(sd * LN10 if axis.scale == "log" else sd / abs(number) if number else np.nan)
+    if axis.scale == "linear":
+        return _finite(sd / abs(number)) if number else None
+    return _finite(sd * LN10)
 
 
 def _nearest(curves: tuple[ReadCurve, ...], place: tuple[float, float]) -> dict[str, Any] | None:
