@@ -42,6 +42,8 @@ class Strand:
     rising: bool
     blur: float
     correlation_length: float
+    warp: tuple[float, float]
+    edge: float
 
     @property
     def spacing(self) -> float:
@@ -103,6 +105,8 @@ def strand_of(points: FitPoints, *, rising: bool) -> Strand:
         rising=rising,
         blur=points.blur,
         correlation_length=points.correlation_length,
+        warp=points.warp,
+        edge=points.edge,
     )
 
 

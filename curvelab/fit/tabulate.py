@@ -12,8 +12,8 @@ from curvelab.fit.segments import Segments
 from curvelab.fit.strand import Strand
 from curvelab.fit.stretch import Stretch
 from curvelab.records.arrays import Floats
+from curvelab.records.budget import UncertaintyBudget
 from curvelab.records.curve import Part
-from curvelab.records.fit import Budget
 
 CHORD = 2e-5
 """Decades by which a chord may leave the model, along the normal: 0.008 px at 400 px a decade."""
@@ -44,12 +44,14 @@ class Samples:
     scatter: Floats
     smoothing: Floats
     chord: Floats
+    edge: Floats
+    warp: Floats
     calibration: Floats
 
     @property
     def total(self) -> Floats:
         """Variance along the normal of all causes."""
-        return self.scatter + self.smoothing + self.chord + self.calibration
+        return self.scatter + self.smoothing + self.chord + self.edge + self.warp + self.calibration
 
     @property
     def places(self) -> NDArray[np.intp]:
@@ -84,6 +86,8 @@ def _sampled(stretch: Stretch, start: float, end: float, strand: Strand) -> Samp
         scatter=scatter,
         smoothing=np.maximum(stretch.variance(u) / across - scatter, 0.0),
         chord=np.full_like(u, 0.0 if stretch.form == "line" else CHORD**2 / 12.0),
+        edge=np.full_like(u, strand.edge**2),
+        warp=warp_at(slope, strand),
         calibration=calibration_at(u, slope, strand),
     )
 
@@ -92,6 +96,12 @@ def calibration_at(u: Floats, slope: Floats, strand: Strand) -> Floats:
     """Variance along the normal that the calibration puts on places of the strand."""
     entries = [np.interp(u, strand.u, strand.common[:, i, j]) for i in (0, 1) for j in (0, 1)]
     return normal_variance(np.stack(entries, axis=1).reshape(-1, 2, 2), slope, strand.rising)
+
+
+def warp_at(slope: Floats, strand: Strand) -> Floats:
+    """Variance along the normal of what the calibration cannot follow."""
+    spread = np.broadcast_to(np.diag(np.square(strand.warp)), (len(slope), 2, 2))
+    return normal_variance(spread, slope, strand.rising)
 
 
 def polyline(u: Floats, v: Floats, own: Floats, calibration: Floats) -> Samples:
@@ -107,6 +117,8 @@ def polyline(u: Floats, v: Floats, own: Floats, calibration: Floats) -> Samples:
         scatter=own[sides],
         smoothing=none,
         chord=none,
+        edge=none,
+        warp=none,
         calibration=calibration[sides],
     )
 
@@ -162,18 +174,21 @@ def _settle(level: Floats, straight: NDArray[np.bool_], starts: NDArray[np.intp]
     level[after_corner - 1] = level[after_corner]
 
 
-def budget_of(samples: list[Samples], inflation: float) -> Budget:
-    """Medians over all samples of what contributes to the uncertainty along the normal, relative."""
-    scatter = np.concatenate([one.scatter for one in samples])
-    return Budget(
-        trace=_relative(scatter / inflation),
-        correlation=_relative(scatter * (1.0 - 1.0 / inflation)),
-        smoothing=_relative(np.concatenate([one.smoothing for one in samples])),
-        calibration=_relative(np.concatenate([one.calibration for one in samples])),
-        tabulation=_relative(np.concatenate([one.chord for one in samples])),
-        total=_relative(np.concatenate([one.total for one in samples])),
+def budget_of(samples: list[Samples], inflation: float) -> UncertaintyBudget:
+    """What contributes to the uncertainty along the normal, over the length of all runs."""
+    length = np.concatenate([np.gradient(one.u) * np.sqrt(1.0 + one.slope**2) for one in samples])
+
+    def relative(cause: str, factor: float = 1.0) -> float:
+        variance = np.concatenate([getattr(one, cause) for one in samples])
+        return float(LN10 * math.sqrt(factor * np.average(variance, weights=length)))
+
+    return UncertaintyBudget(
+        calibration=relative("calibration"),
+        warp=relative("warp"),
+        snapping=0.0,
+        trace=relative("scatter", 1.0 / inflation),
+        correlation=relative("scatter", 1.0 - 1.0 / inflation),
+        smoothing=relative("smoothing"),
+        edge=relative("edge"),
+        tabulation=relative("chord"),
     )
-
-
-def _relative(variance: Floats) -> float:
-    return float(LN10 * np.sqrt(np.median(variance)))

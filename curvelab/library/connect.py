@@ -10,7 +10,7 @@ from curvelab.errors import InputError, LibraryError, NotFoundError, SchemaError
 
 APPLICATION_ID = 1129665110
 """Marks a SQLite file as a library ("CURV"); the first migration sets it."""
-SCHEMA_VERSION = 2
+SCHEMA_VERSION = 3
 """The newest migration; kept in the file as ``user_version``."""
 OLDEST_SQLITE = (3, 37)
 """The first with STRICT tables."""

@@ -5,7 +5,7 @@ import json
 import math
 import sqlite3
 from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
-from dataclasses import asdict, fields, is_dataclass, replace
+from dataclasses import asdict, astuple, fields, is_dataclass, replace
 from typing import Any
 
 import numpy as np
@@ -15,6 +15,8 @@ from curvelab.library.rows import Row, WaitingRows
 from curvelab.records.axes import Axes
 from curvelab.records.curve import Curve
 from curvelab.records.finding import Finding
+from curvelab.records.fit import CurveFit
+from curvelab.records.form import PublishedForm
 from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.trace import Trace
 from curvelab.records.warning import ReadingWarning
@@ -29,8 +31,14 @@ EVIDENCE: Mapping[str, str] = {
     "read_curve": "seq",
     "read_point": "curve_seq, seq",
     "read_gap": "curve_seq, seq",
+    "read_fit": "curve_seq",
+    "read_form": "curve_seq, seq",
+    "read_form_parameter": "curve_seq, form_seq, seq",
 }
 """Table of a reading's rows -> their order."""
+
+LATER = frozenset({"read_fit", "read_form", "read_form_parameter"})
+"""Tables that readings stored before them have no rows in, and whose absence does not change a hash."""
 
 
 class ReadingRows:
@@ -62,6 +70,12 @@ class ReadingRows:
         self._add("read_point", ((number, seq, *values) for seq, values in points))
         for seq, gap in enumerate(trace.gaps if trace else (), start=1):
             self._add("read_gap", [(number, seq, *gap.start, *gap.end)])
+        if read.fit is not None:
+            self._add("read_fit", [(number, fit_as_json(read.fit))])
+            for seq, form in enumerate(read.fit.forms, start=1):
+                self._add("read_form", [(number, seq, *_form_values(form))])
+                own = ((number, seq, k, *astuple(each)) for k, each in enumerate(form.parameters, start=1))
+                self._add("read_form_parameter", own)
 
 
 def add_reading(
@@ -113,8 +127,11 @@ def evidence_sha256(said: Row, rows: Mapping[str, Iterable[Row]], curves: Mappin
     """
     digest = hashlib.sha256(_hashed(said))
     for table in EVIDENCE:
+        own = list(rows[table])
+        if table in LATER and not own:
+            continue
         digest.update(table.encode("ascii"))
-        for row in rows[table]:
+        for row in own:
             known = (row[0], curves[row[1]], *row[2:]) if table == "read_curve" else row  # type: ignore[index]
             digest.update(_hashed(known))
     return digest.digest()
@@ -156,6 +173,18 @@ def _trace_values(trace: Trace) -> tuple[object, ...]:
     colour = "#{:02x}{:02x}{:02x}".format(*trace.colour) if trace.colour else None
     followed = (trace.origin, trace.confidence, trace.correlation_length, *trace.ends_at_frame)
     return (*followed, colour, trace.width, trace.boundary)
+
+
+def _form_values(form: PublishedForm) -> tuple[object, ...]:
+    held = (form.from_current, form.to_current, form.rms, form.excess)
+    return (form.name, form.standard, *held, json.dumps(form.also), json.dumps(form.rivals))
+
+
+def fit_as_json(fit: CurveFit) -> str:
+    """The model without its tabulated form, which is the curve itself, and without its forms, which have rows."""
+    said = _plain(replace(fit, parts=(), forms=()))
+    del said["parts"], said["forms"]
+    return json.dumps(said, separators=(",", ":"), allow_nan=False)
 
 
 def _plain(value: Any) -> Any:

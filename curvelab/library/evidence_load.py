@@ -4,16 +4,19 @@ import json
 import math
 import sqlite3
 from collections.abc import Mapping
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
 
 from curvelab.library.axes_load import axes_from_json
+from curvelab.library.fit_load import read_fits
 from curvelab.library.load import missing_device, read_curve, rows_of
 from curvelab.records.axes import GridLine
 from curvelab.records.device import Tolerance
 from curvelab.records.evidence import Evidence, StoredReading
 from curvelab.records.finding import Finding
+from curvelab.records.fit import CurveFit
 from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.sheet import Sheet
 from curvelab.records.trace import Gap, Trace
@@ -145,8 +148,15 @@ def _curves(connection: Connection, reading_id: int) -> tuple[ReadCurve, ...]:
         (reading_id,),
     ):
         gaps.setdefault(number, []).append(Gap(start=(at[0], at[1]), end=(at[2], at[3])))
+    fits = read_fits(connection, reading_id)
     rows = rows_of(connection, "SELECT * FROM read_curve WHERE reading_id = ? ORDER BY seq", reading_id)
-    return tuple(_read_curve(connection, row, points[row["seq"]], tuple(gaps.get(row["seq"], ()))) for row in rows)
+    read = (_read_curve(connection, row, points[row["seq"]], tuple(gaps.get(row["seq"], ()))) for row in rows)
+    return tuple(_with_fit(one, fits.get(row["seq"])) for row, one in zip(rows, read, strict=True))
+
+
+def _with_fit(read: ReadCurve, fit: CurveFit | None) -> ReadCurve:
+    """The line with its model, whose tabulated form is the curve's."""
+    return read if fit is None else replace(read, fit=replace(fit, parts=read.curve.parts))
 
 
 def _read_curve(connection: Connection, row: Values, points: Any, gaps: tuple[Gap, ...]) -> ReadCurve:

@@ -43,6 +43,9 @@ COLUMNS = {
     ),
     "read_point": "reading_id, curve_seq, seq, x, y, sd, current, value, sd_current, sd_value",
     "read_gap": "reading_id, curve_seq, seq, start_x, start_y, end_x, end_y",
+    "read_fit": "reading_id, curve_seq, fit",
+    "read_form": ("reading_id, curve_seq, seq, name, standard, from_current, to_current, rms, excess, also, rivals"),
+    "read_form_parameter": "reading_id, curve_seq, form_seq, seq, name, value, sd",
     "revision_curve": "revision_id, seq, curve_id, reading_id",
     "log": "seq, at, name, action, revision_id, state, reason, origin, sha256",
 }

@@ -5,7 +5,7 @@ from dataclasses import dataclass, replace
 from typing import Any
 
 from curvelab.library.device_rows import add_curve
-from curvelab.library.evidence import EVIDENCE, evidence_sha256
+from curvelab.library.evidence import EVIDENCE, LATER, evidence_sha256
 from curvelab.library.exchange import Line
 from curvelab.library.exchange_read import curve_of, source_of
 from curvelab.library.identity import NO_STATEMENT, curve_sha256
@@ -67,7 +67,7 @@ class UnitedParts:
             sheet=sheet,
             said=tuple(said[name] for name in columns),
             evidence=said["evidence_sha256"] and bytes.fromhex(said["evidence_sha256"]),
-            rows={table: [self._row(table, one) for one in said["tables"][table]] for table in EVIDENCE},
+            rows={table: self._rows_of(table, said) for table in EVIDENCE},
         )
         name = (sheet.sha256, sheet.page, sheet.plot) if sheet else ()
         hashes = {curve_id: sha256 for curve_id, sha256, _ in self._curves.values()}
@@ -112,6 +112,11 @@ class UnitedParts:
             for table, rows in given.rows.items():
                 self._rows.add(table, ((reading_id, *row) for row in rows))
         return reading_id
+
+    def _rows_of(self, table: str, said: Line) -> list[Row]:
+        """The rows of a table; a file written before there was the table has none."""
+        given = said["tables"].get(table, ()) if table in LATER else said["tables"][table]
+        return [self._row(table, one) for one in given]
 
     def _row(self, table: str, said: Line) -> Row:
         """A row's values in the order of the columns, the reading's id left out."""

@@ -6,6 +6,7 @@ from typing import Literal
 import numpy as np
 
 from curvelab.records.arrays import Floats, freeze
+from curvelab.records.budget import UncertaintyBudget
 from curvelab.records.curve import Part
 from curvelab.records.form import PublishedForm
 
@@ -72,23 +73,6 @@ class FitGap:
     bridged: bool
 
 
-@dataclass(frozen=True, kw_only=True, slots=True)
-class Budget:
-    """What contributes how much: median relative standard uncertainty along the normal of each cause.
-
-    ``trace`` is the white part of the scatter, ``correlation`` what neighbouring errors being alike adds to it,
-    ``smoothing`` what the model may have smoothed away, ``calibration`` the sheet's axes (shared by its curves),
-    ``tabulation`` the chords between tabulated points, ``total`` the root of the sum of squares, point by point.
-    """
-
-    trace: float
-    correlation: float
-    smoothing: float
-    calibration: float
-    tabulation: float
-    total: float
-
-
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class CurveFit:
     """One curve fitted.
@@ -115,7 +99,7 @@ class CurveFit:
         Variance inflation of an average by correlated neighbours: 1 for independent points.
     strays : tuple of int
         Indices of the points the model does not follow.
-    budget : Budget
+    budget : UncertaintyBudget
     moved : float
         Decades along the normal by which keeping the order of two edges moved the tabulated form; 0 for not at all.
     forms : tuple of PublishedForm
@@ -133,7 +117,7 @@ class CurveFit:
     noise_scale: float
     correlation: float
     strays: tuple[int, ...]
-    budget: Budget
+    budget: UncertaintyBudget
     moved: float = 0.0
     forms: tuple[PublishedForm, ...] = ()
 

@@ -31,8 +31,8 @@ class PublishedForm:
     name, standard : str
         Such as ``IEC very inverse`` of ``IEC 60255-151``.
     parameters : tuple of FormParameter
-    start, end : float
-        log10 of the currents between which it holds.
+    from_current, to_current : float
+        Currents in the curve's base between which it holds.
     rms : float
         Root mean square of the points' distance from it along the normal, in decades.
     excess : float
@@ -46,8 +46,8 @@ class PublishedForm:
     name: str
     standard: str
     parameters: tuple[FormParameter, ...]
-    start: float
-    end: float
+    from_current: float
+    to_current: float
     rms: float
     excess: float
     also: tuple[str, ...] = ()

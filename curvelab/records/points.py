@@ -23,6 +23,10 @@ class FitPoints:
         Indices k such that a gap lies between points k - 1 and k.
     blur : float
         Size of the stroke in decades: a corner is not resolved closer than this.
+    warp : (float, float)
+        Standard deviations in log10 current and log10 value of what the calibration cannot follow, in decades.
+    edge : float
+        Standard deviation along the normal of the whole line against what its stroke stands for, in decades.
     shared : array, shape (n, 2, r), optional
         What each of r independent calibration errors of unit variance does to every point, in decades, so that the
         calibration's covariance between points i and j is shared[i] @ shared[j].T; None where only ``common`` is known.
@@ -35,6 +39,8 @@ class FitPoints:
     correlation_length: float
     breaks: tuple[int, ...] = ()
     blur: float = 0.0
+    warp: tuple[float, float] = (0.0, 0.0)
+    edge: float = 0.0
     shared: Floats | None = None
 
     def __post_init__(self) -> None:

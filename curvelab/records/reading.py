@@ -7,6 +7,7 @@ from curvelab.records.axes import Axes
 from curvelab.records.curve import Curve
 from curvelab.records.device import DeviceRecord, Tolerance
 from curvelab.records.finding import Finding
+from curvelab.records.fit import CurveFit
 from curvelab.records.sheet import Sheet
 from curvelab.records.trace import Trace
 from curvelab.records.warning import ReadingWarning
@@ -19,7 +20,8 @@ class ReadCurve:
 
     ``current``, ``value`` are those of the trace's places in base units, ``sd_current``, ``sd_value`` their relative
     standard uncertainties (NaN where steep or flat). ``curve`` is the fitted and tabulated model, ``label`` what is
-    printed on the line, ``tolerance`` what the worksheet states about this very line.
+    printed on the line, ``tolerance`` what the worksheet states about this very line. ``fit`` is the model that was
+    tabulated, with its published forms and uncertainty budget; None for typed points and readings kept without it.
     """
 
     trace: Trace | None
@@ -31,6 +33,7 @@ class ReadCurve:
     devices: tuple[str, ...]
     tolerance: Tolerance | None = None
     label: str = ""
+    fit: CurveFit | None = None
 
     def __post_init__(self) -> None:
         freeze(self, current=self.current, value=self.value, sd_current=self.sd_current, sd_value=self.sd_value)

@@ -80,14 +80,15 @@ def test_every_column_of_every_view_is_documented(database: Database) -> None:
 
 
 def test_a_failing_migration_leaves_nothing(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
-    broken = tmp_path / "0003_broken.sql"
+    number = connect.SCHEMA_VERSION + 1
+    broken = tmp_path / f"{number:04}_broken.sql"
     broken.write_text("CREATE TABLE half (x INTEGER) STRICT; INSERT INTO missing VALUES (1);", encoding="utf-8")
     path = tmp_path / "firm.sqlite"
     with open_library(path) as library:
         library.store(breaker("b32", curve()))
     good = migrate.migrations()
-    monkeypatch.setattr(migrate, "migrations", lambda: {**good, 3: broken})
-    monkeypatch.setattr(migrate, "SCHEMA_VERSION", 3)
+    monkeypatch.setattr(migrate, "migrations", lambda: {**good, number: broken})
+    monkeypatch.setattr(migrate, "SCHEMA_VERSION", number)
     with pytest.raises(sqlite3.OperationalError, match="no such table: missing"):
         migrate.open_migrated(path)
     monkeypatch.undo()

@@ -85,10 +85,9 @@ def test_a_library_of_every_earlier_schema_opens_after_a_backup(tmp_path: Path, 
         assert first.nameplate.breaking[0].value_a == 6000.0
         assert library.record("mill-mccb").nameplate.derating[0].factor == 0.9
         assert library.verify().problems == ()
-        assert [(entry.name, entry.state) for entry in library.log("riverside-b32")][:2] == [
-            ("A. Reader", "released"),
-            ("A. Reader", "draft"),
-        ]
+        log = library.log("riverside-b32")
+        assert log[0].name == "A. Reader"
+        assert {"released", "draft"} <= {entry.state for entry in log}
         assert library.store(library.record("mill-mccb"))[0].changed is False
     backup = path.with_name(f"firm.sqlite.schema-{number}.backup")
     database = sqlite3.connect(backup)

@@ -3,9 +3,12 @@
 import numpy as np
 
 from curvelab.records.axes import Axes, Axis, GridLine, Mark, PlaneMap
+from curvelab.records.budget import UncertaintyBudget
 from curvelab.records.curve import Conditions, Curve, Part, SheetKey, typed_part
 from curvelab.records.device import DeviceRecord, Nameplate
 from curvelab.records.finding import Finding
+from curvelab.records.fit import CurveFit, FitGap, Kink, Piece
+from curvelab.records.form import FormParameter, PublishedForm
 from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.sheet import Pixels, Sheet
 from curvelab.records.trace import Gap, Trace
@@ -100,6 +103,56 @@ def read_curve(edge, points, quantity="time"):
         curve=curve,
         devices=("riverside-b16",),
         label="B16",
+        fit=fit_of(curve.parts),
+    )
+
+
+def fit_of(parts):
+    budget = UncertaintyBudget(
+        calibration=1e-3,
+        warp=0.0,
+        snapping=0.0,
+        trace=5e-4,
+        correlation=2e-4,
+        smoothing=1e-4,
+        edge=3e-4,
+        tabulation=1e-5,
+    )
+    line = Piece(
+        form="line",
+        start=0.5,
+        end=1.5,
+        degree=1,
+        knots=np.array([0.5, 0.5, 1.5, 1.5]),
+        coefficients=np.array([0.1, 0.3]),
+        covariance=np.array([[1e-8, 2e-9], [2e-9, 1e-8]]),
+    )
+    form = PublishedForm(
+        name="adiabatic",
+        standard="",
+        parameters=(FormParameter(name="i2t", value=123.4, sd=0.002),),
+        from_current=1.5,
+        to_current=3.0,
+        rms=3e-5,
+        excess=0.2,
+        also=("another name",),
+        rivals=("another form",),
+    )
+    return CurveFit(
+        rising=False,
+        pieces=(line,),
+        kinks=(Kink(log_current=0.3, log_value=1.2, sd_log_current=1e-4, sd_log_value=2e-4, turn=0.7),),
+        gaps=(FitGap(start=(0.1, 2.0), end=(0.2, 1.9), bridged=True),),
+        parts=parts,
+        smoothing=(np.inf, 12.5),
+        edf=2.0,
+        residual_rms=1e-4,
+        noise_scale=1.1,
+        correlation=2.5,
+        strays=(3, 17),
+        budget=budget,
+        moved=1e-5,
+        forms=(form,),
     )
 
 
