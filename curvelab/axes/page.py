@@ -5,10 +5,11 @@ from dataclasses import dataclass, replace
 import cv2
 import numpy as np
 
+from curvelab.axes.ends import trimmed
 from curvelab.axes.flatten import Flattening, flattening
 from curvelab.axes.marks import pixel_size
 from curvelab.axes.segments import Segments, straight_segments
-from curvelab.axes.strips import STRIP, strips_of
+from curvelab.axes.strips import strips_of
 from curvelab.axes.tracks import track_lines
 from curvelab.records.arrays import Bytes, Floats
 from curvelab.records.sheet import Pixels, Sheet, Word
@@ -22,8 +23,8 @@ BENT_SD = 1.2
 VECTOR_SD = 0.1
 """The same of exact strokes, in pixels of the page as it is seen."""
 
-IMAGE_NEAR = 2.2 * STRIP
-"""Pixels by which ends that meet may seem apart: ends are known to about a strip."""
+IMAGE_NEAR = 12.0
+"""Pixels by which ends that meet may seem apart on images."""
 
 VECTOR_NEAR = 4.0
 
@@ -91,7 +92,7 @@ def page_of(sheet: Sheet) -> Page:
         )
     grey = sheet.pixels.grey
     turned: Bytes = np.ascontiguousarray(cv2.transpose(grey))
-    upright, level = (track_lines(strips_of(image, (0, image.shape[0]))) for image in (grey, turned))
+    upright, level = (trimmed(image, track_lines(strips_of(image, (0, image.shape[0])))) for image in (grey, turned))
     size = (float(grey.shape[1]), float(grey.shape[0]))
     flat = flattening(upright, level, size)
     return Page(

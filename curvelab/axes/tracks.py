@@ -37,6 +37,10 @@ OFF, FADED, DARKER = 0.8, 0.2, 2.0
 On a tinted or hatched ground a line is fainter than elsewhere; lettering is darker.
 """
 
+BESIDE = (4, 5, 6, 7)
+BESIDE_DARK = 0.5
+"""Pixels beside a piece one of which is lighter than this share of it, on both sides: rows of letters are not."""
+
 SETTLED = 4
 """Strips after which a piece's slope is known."""
 
@@ -169,6 +173,7 @@ def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: 
     first, last = np.where(first > last, middle, first), np.where(first > last, middle, last)
     # Gaps are allowed, but a piece is there more often than not.
     kept = (count >= LEAST_STRIPS) & (count * STRIP >= 0.5 * (last - first))
+    kept &= _beside(strips, strip, place, number) <= BESIDE_DARK * darkness
     centre = 0.5 * (first + last)
     return Segments(
         across=across + lean * (centre - middle),
@@ -178,6 +183,25 @@ def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: 
         width=np.ones(len(count)),
         darkness=np.clip(darkness / 255.0, 0.0, 1.0),
     ).where(kept)
+
+
+def _beside(strips: Strips, strip: Ints, place: Floats, number: Ints) -> Floats:
+    """How dark the lightest row of pixels is beside each piece, on the darker side."""
+    column = np.rint(place).astype(np.int64)
+    count = np.maximum(np.bincount(number), 1)
+    width = strips.dark.shape[1]
+    sides = [
+        np.min(
+            [
+                np.bincount(number, strips.dark[strip, np.clip(column + side * off, 0, width - 1)]) / count
+                for off in BESIDE
+            ],
+            axis=0,
+        )
+        for side in (-1, 1)
+    ]
+    beside: Floats = np.maximum(*sides)
+    return beside
 
 
 def _off_parabola(number: Ints, run: Floats, off: Floats) -> Floats:

@@ -20,6 +20,9 @@ GLYPH_PX = 110
 LINE_PX = 30
 """A straight run of ink this long inside a larger piece is a line, not a stroke of a character."""
 
+TICK_RATIO = 3.0
+"""Length by width from which on a piece that stands on a line is a tick, not a character."""
+
 Boxes = NDArray[np.int64]
 """Rows of (x0, y0, x1, y1), the end exclusive, in pixels."""
 
@@ -62,7 +65,7 @@ def find_ink(grey: Bytes) -> Ink:
     dark = (contrast >= ink_level(contrast)).astype(np.uint8)
     mask, boxes, large = _pieces(dark)
     level, upright = _lines(large)
-    more, more_boxes, _ = _pieces(large & ~level & ~upright)
+    more, more_boxes, _ = _pieces(large & ~level & ~upright & ~_ticks(large, level, upright))
     return Ink(
         contrast=contrast,
         mask=mask | more,
@@ -94,6 +97,23 @@ def _pieces(dark: Bytes) -> tuple[Bytes, Boxes, Bytes]:
     corners = chosen[:, [cv2.CC_STAT_LEFT, cv2.CC_STAT_TOP]]
     sizes = chosen[:, [cv2.CC_STAT_WIDTH, cv2.CC_STAT_HEIGHT]]
     return kept, np.hstack([corners, corners + sizes]), dark & ~kept
+
+
+def _ticks(large: Bytes, level: Bytes, upright: Bytes) -> Bytes:
+    """Short straight pieces that stand across a line."""
+    left = large & ~level & ~upright
+    _, labels, stats, _ = cv2.connectedComponentsWithStats(left, connectivity=8, ltype=cv2.CV_32S)
+    x, y, width, height = (stats[:, column] for column in range(4))
+    rows, columns = large.shape
+    above, below = np.maximum(y - 2, 0), np.minimum(y + height + 1, rows - 1)
+    before, after = np.maximum(x - 2, 0), np.minimum(x + width + 1, columns - 1)
+    across, down = x + width // 2, y + height // 2
+    upwards = (height >= TICK_RATIO * width) & ((level[above, across] > 0) | (level[below, across] > 0))
+    sideways = (width >= TICK_RATIO * height) & ((upright[down, before] > 0) | (upright[down, after] > 0))
+    ticks = (upwards | sideways).astype(np.uint8)
+    ticks[0] = 0
+    found: Bytes = ticks[labels]
+    return found
 
 
 def _lines(large: Bytes) -> tuple[Bytes, Bytes]:
