@@ -12,6 +12,7 @@ from typing import Any, ClassVar, Literal, TypeAlias
 from curvelab.errors import InputError
 from curvelab.records.trace import Place
 from curvelab.records.worksheet import Box, Worksheet
+from curvelab.units import unit_factor
 from curvelab.worksheets.read import worksheet_of
 from curvelab.worksheets.write import worksheet_text
 
@@ -47,7 +48,7 @@ class Passes:
     def made(self, worksheet: Worksheet) -> Worksheet:
         """The worksheet with one more guide place, in the order the line passes them."""
         if self.curve is None:
-            return edited(worksheet, lambda tables: _list(tables, "curves").append(self._new(worksheet)))
+            return edited(worksheet, lambda tables: _list(tables, "curves").append({"through": [list(self.at)]}))
         entry = _entry_number(worksheet.curves, self.curve, "curve")
         rising = worksheet.value is not None and worksheet.value.quantity != "time"
 
@@ -58,12 +59,6 @@ class Passes:
             raise InputError(f"Curve {self.curve + 1} is typed from a table and passes no place of the sheet")
         places = sorted({*entry.through, self.at}, key=along)
         return _with_fields(worksheet, "curves", self.curve, {"through": [list(place) for place in places]})
-
-    def _new(self, worksheet: Worksheet) -> Tables:
-        """An entry with the edge that is missing, where one is."""
-        drawn = [entry.edge for entry in worksheet.curves]
-        edge = "fast" if drawn == ["slow"] else "slow" if drawn == ["fast"] else "mean"
-        return {"edge": edge, "through": [list(self.at)]}
 
     @property
     def words(self) -> str:
@@ -251,6 +246,29 @@ class SetDevice:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class FillDevice:
+    """One blank of a device's nameplate: a text, or a number that may have its unit as in ``63 A`` or ``30 mA``."""
+
+    kind: ClassVar[str] = "fill-device"
+    device: int
+    name: str
+    value: float | str
+
+    def made(self, worksheet: Worksheet) -> Worksheet:
+        """The worksheet with the blank filled."""
+        value = self.value
+        if self.name.endswith("_a") and isinstance(value, str):
+            said = _number_and_unit(value)
+            value = said["value"] * unit_factor("current", said.get("unit", "A"))
+        return _with_fields(worksheet, "devices", self.device, {self.name: value})
+
+    @property
+    def words(self) -> str:
+        """What the step is called."""
+        return f"The device: {self.name} {self.value}"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class RemoveDevice:
     """Strike a device out."""
 
@@ -350,6 +368,7 @@ Correction: TypeAlias = (
     | RemoveMark
     | SetAxis
     | SetDevice
+    | FillDevice
     | RemoveDevice
     | Accept
     | ChoosePlot

@@ -10,7 +10,8 @@ class Bell:
 
     def __init__(self) -> None:
         self._waiting: set[tuple[asyncio.AbstractEventLoop, asyncio.Event]] = set()
-        self._lock = threading.Lock()
+        # Also rung by a signal's handler, which may interrupt the thread that holds it.
+        self._lock = threading.RLock()
 
     def ring(self) -> None:
         """Wake all that wait now."""

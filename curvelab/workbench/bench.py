@@ -80,6 +80,11 @@ class Bench:
         finally:
             self._writing.release()
 
+    def stop_waiting(self) -> None:
+        """Answer at once all requests that wait for something to happen."""
+        if self._drafts is not None:
+            self._drafts.stop_waiting()
+
     def close(self) -> None:
         """Stop what runs in the background."""
         if self._drafts is not None:

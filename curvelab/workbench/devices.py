@@ -21,6 +21,7 @@ from curvelab.records.curve import Curve
 from curvelab.records.finding import finding_json
 from curvelab.standards.review import review_alone
 from curvelab.standards.rules import rules_beside
+from curvelab.workbench.amperes import with_amperes
 from curvelab.workbench.limits import drawn_limits
 
 Row = Mapping[str, Any]
@@ -122,7 +123,7 @@ def drawn(device: Device, settings: Mapping[str, float | str]) -> dict[str, Any]
         "settings": dict(device.settings),
         "base": curves[0].base if curves else None,
         "rated_current_a": device.nameplate.rated_current_a,
-        "bands": list(bands_json(device.key, curves)),
+        "bands": with_amperes(bands_json(device.key, curves), [device.record], device.settings),
     }
 
 

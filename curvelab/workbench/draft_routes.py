@@ -171,8 +171,9 @@ async def look(bench: Bench, asked: Look, _: Request) -> Response:
 
     draft = await run_in_threadpool(lambda: bench.drafts.draft(asked.id))
     if asked.since is not None and draft.tick == asked.since and asked.wait > 0:
-        await draft.bell.heard(lambda: draft.tick != asked.since, min(asked.wait, LONGEST_WAIT_S))
-        if draft.work.state == "reading":
+        drafts = bench.drafts
+        await draft.bell.heard(lambda: drafts.is_stopping or draft.tick != asked.since, min(asked.wait, LONGEST_WAIT_S))
+        if draft.work.state == "reading" and not drafts.is_stopping:
             await asyncio.sleep(WORTH_TELLING_S)
     return written(await run_in_threadpool(draft_state, draft, asked.have))
 

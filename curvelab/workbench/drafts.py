@@ -56,11 +56,18 @@ class Drafts:
 
     def __init__(self, library: Path) -> None:
         self.folder = library.with_name(library.name + ".drafts")
+        self.is_stopping = False
         self._open: dict[str, Draft] = {}
         self._lock = threading.RLock()
         self._pages = Pages()
         self._threads = ThreadPoolExecutor(READERS, "reading")
         self._empty_bin()
+
+    def stop_waiting(self) -> None:
+        """Answer at once all requests that wait for a draft to change."""
+        self.is_stopping = True
+        for draft in [*self._open.values()]:
+            draft.bell.ring()
 
     def close(self) -> None:
         """Stop all readings."""

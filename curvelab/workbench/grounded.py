@@ -6,6 +6,7 @@ from curvelab.reading.complete import completed
 from curvelab.reading.corrections import (
     Avoid,
     Correction,
+    FillDevice,
     MoveMark,
     Passes,
     RemoveCurve,
@@ -31,8 +32,9 @@ def grounded(worksheet: Worksheet, reading: Reading | None, correction: Correcti
         return worksheet
     whole = completed(reading)
     if isinstance(correction, Passes | Avoid | SetCurve | RemoveCurve) and not worksheet.curves:
-        return replace(worksheet, curves=whole.curves, devices=worksheet.devices or whole.devices)
-    if isinstance(correction, SetDevice | RemoveDevice) and not worksheet.devices:
+        devices = worksheet.devices or whole.devices
+        return replace(worksheet, document=whole.document, curves=whole.curves, devices=devices)
+    if isinstance(correction, SetDevice | FillDevice | RemoveDevice) and not worksheet.devices:
         return replace(worksheet, devices=whole.devices)
     if isinstance(correction, SetMark | MoveMark | RemoveMark):
         if correction.axis == "current":

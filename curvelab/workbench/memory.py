@@ -1,14 +1,14 @@
 """Keeps what the stations of a reading made, a few pages at a time, so that one change costs one change."""
 
 import threading
-from collections import OrderedDict
+from collections import OrderedDict, defaultdict
 from collections.abc import Callable, Hashable
 from typing import Any, TypeVar
 
 Result = TypeVar("Result")
 
-CAPACITY = {"sheet": 1, "picture": 1, "axes": 4, "page": 1, "trace": 60, "fit": 60, "check": 60}
-"""Results of each station kept of one page; a page prepared for tracing is large."""
+CAPACITY = {"axes": 4, "trace": 60, "fit": 60, "check": 60}
+"""Results of a station kept of one page; of all others one, as a page prepared for tracing is large."""
 
 PAGES = 3
 """Pages kept, those used last."""
@@ -24,14 +24,15 @@ class PageMemory:
     """
 
     def __init__(self) -> None:
-        self._kept: dict[str, OrderedDict[tuple[Hashable, ...], Any]] = {station: OrderedDict() for station in CAPACITY}
-        self._making = {station: threading.RLock() for station in CAPACITY}
+        self._kept: defaultdict[str, OrderedDict[tuple[Hashable, ...], Any]] = defaultdict(OrderedDict)
+        self._making: defaultdict[str, threading.RLock] = defaultdict(threading.RLock)
         self._changing = threading.RLock()
 
     def __call__(self, station: str, given: tuple[Hashable, ...], make: Callable[[], Result]) -> Result:
         """The result of ``make``, or the one made before; two who want the same wait for one."""
-        with self._making[station]:
-            kept = self._kept[station]
+        with self._changing:
+            making, kept = self._making[station], self._kept[station]
+        with making:
             with self._changing:
                 if given in kept:
                     kept.move_to_end(given)
@@ -40,7 +41,7 @@ class PageMemory:
             result = make()
             with self._changing:
                 kept[given] = result
-                while len(kept) > CAPACITY[station]:
+                while len(kept) > CAPACITY.get(station, 1):
                     self._forget(kept.popitem(last=False)[1])
             return result
 
@@ -54,7 +55,7 @@ class PageMemory:
     def _forget(self, result: Any) -> None:
         """Forget everything that was made from a result, or from a part of it."""
         gone = {id(result), *map(id, result if isinstance(result, tuple) else ())}
-        for kept in self._kept.values():
+        for kept in [*self._kept.values()]:
             for given in [given for given in kept if any(id(part) in gone for part in given)]:
                 self._forget(kept.pop(given, None))
 

@@ -9,6 +9,7 @@ import webbrowser
 from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
+from types import FrameType
 
 import uvicorn
 
@@ -49,7 +50,8 @@ def serve(wanted: Wanted, say: Callable[[str], None]) -> None:
     address = _address(wanted.host, port, door.token)
     for line in _told(wanted, address, door):
         say(line)
-    app = application(Bench(wanted.library), door)
+    bench = Bench(wanted.library)
+    app = application(bench, door)
     config = uvicorn.Config(
         app,
         log_level=logging.WARNING,
@@ -61,7 +63,20 @@ def serve(wanted: Wanted, say: Callable[[str], None]) -> None:
     if wanted.opens:
         threading.Timer(0.2, webbrowser.open, [address]).start()
     with listening:
-        uvicorn.Server(config).run(sockets=[listening])
+        _Server(config, bench.stop_waiting).run(sockets=[listening])
+
+
+class _Server(uvicorn.Server):
+    """Answers requests that wait before it stops."""
+
+    def __init__(self, config: uvicorn.Config, stop_waiting: Callable[[], None]) -> None:
+        super().__init__(config)
+        self._stop_waiting = stop_waiting
+
+    def handle_exit(self, sig: int, frame: FrameType | None) -> None:
+        """Stop, on a signal from the terminal."""
+        self._stop_waiting()
+        super().handle_exit(sig, frame)
 
 
 def is_loopback(host: str) -> bool:

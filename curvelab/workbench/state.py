@@ -1,6 +1,5 @@
 """A draft's state as the page and other programs see it."""
 
-import tomllib
 from dataclasses import asdict
 from functools import lru_cache
 from pathlib import Path
@@ -12,7 +11,9 @@ from curvelab.sheets.tiles import TILE, Pyramid
 from curvelab.workbench.draft import Draft
 from curvelab.workbench.failures import error_json
 from curvelab.workbench.limits import drawn_limits
-from curvelab.workbench.open_list import OpenEntry, open_entries
+from curvelab.workbench.open_entry import OpenEntry
+from curvelab.workbench.open_list import open_entries
+from curvelab.workbench.said import only_read, tables, tables_read
 from curvelab.workbench.thinned import page_reading
 from curvelab.workbench.work import Work
 
@@ -22,6 +23,8 @@ def draft_state(draft: Draft, have: int | None = None) -> dict[str, Any]:
     tick, work, history, name = draft.tick, draft.work, draft.history, draft.kept.name
     worksheet, reading = history.worksheet, work.reading
     entries = open_entries(worksheet, reading, work.error)
+    said = tables(worksheet.text)
+    data = tables_read(reading) if reading and work.of is worksheet else said
     return {
         "id": draft.id,
         "version": history.version,
@@ -31,8 +34,8 @@ def draft_state(draft: Draft, have: int | None = None) -> dict[str, Any]:
         "sheet": sheet_state(draft) if draft.kept.sheet else None,
         "work": _work_state(work),
         "worksheet": worksheet.text,
-        "data": tomllib.loads(worksheet.text),
-        "read_from_sheet": [],
+        "data": data,
+        "read_from_sheet": only_read(said, data),
         "can_undo": history.can_undo,
         "can_redo": history.can_redo,
         "history": [{"text": step.words, "version": step.version} for step in history.steps],
@@ -79,7 +82,7 @@ def sheet_state(draft: Draft) -> dict[str, Any]:
         "page": sheet.page,
         "pages": own.pages,
         "plot": _plot(draft.work.reading) or (entry.plot if entry else None) or 1,
-        "plots": [],
+        "plots": [{"plot": number, "box": list(box)} for number, box in enumerate(draft.work.plots, start=1)],
         "width": sheet.width,
         "height": sheet.height,
         "unit": sheet.unit,

@@ -8,7 +8,8 @@ from numpy.typing import NDArray
 from curvelab.reading.as_json import reading_json
 from curvelab.records.arrays import Floats
 from curvelab.records.reading import Reading
-from curvelab.records.worksheet import Worksheet
+from curvelab.workbench.amperes import with_amperes
+from curvelab.workbench.entries import entries_of
 
 SEEN = 0.35
 """Pixels or points that a thinned trace strays at most."""
@@ -17,26 +18,19 @@ FIGURES = 7
 
 def page_reading(reading: Reading) -> dict[str, Any]:
     """The reading's JSON, thinned; each curve with ``entry``, its place among the worksheet's, null if it has none."""
-    told, worksheet = reading_json(reading), reading.worksheet
-    if told["sheet"] is not None and worksheet.sheet is not None:
-        told["sheet"]["file"] = worksheet.sheet.file
-    for curve, read, entry in zip(told["curves"], reading.curves, _entries(reading, worksheet), strict=True):
-        curve["entry"] = entry
+    told, entry = reading_json(reading), reading.worksheet.sheet
+    if told["sheet"] is not None and entry is not None:
+        told["sheet"]["file"] = entry.file
+    for curve, read, number in zip(told["curves"], reading.curves, entries_of(reading), strict=True):
+        curve["entry"] = number
         if read.trace is not None:
             kept = thinned(read.trace.places, SEEN)
             curve["points"] = {name: [values[k] for k in kept] for name, values in curve["points"].items()}
+    told["bands"] = with_amperes(told["bands"], reading.devices, {})
     shortened: dict[str, Any] = _short(told)
     # The page computes with the map, which would move if it were rounded.
     shortened["axes"] = told["axes"]
     return shortened
-
-
-def _entries(reading: Reading, worksheet: Worksheet) -> list[int | None]:
-    """Traced entries come first, typed ones after them; curves that were found by themselves have none."""
-    traced = [index for index, entry in enumerate(worksheet.curves) if entry.through]
-    typed = [index for index, entry in enumerate(worksheet.curves) if entry.points]
-    order = [*traced, *typed]
-    return [*order] if len(order) == len(reading.curves) else [None] * len(reading.curves)
 
 
 def thinned(places: Floats, stray: float) -> list[int]:

@@ -8,11 +8,12 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Literal
 
+from curvelab.axes.boxes import plot_boxes
 from curvelab.errors import Cancelled, CurvelabError
 from curvelab.reading.digitise import read_curves, with_findings
 from curvelab.reading.remember import Remember
 from curvelab.records.reading import Reading
-from curvelab.records.worksheet import Worksheet
+from curvelab.records.worksheet import Box, Worksheet
 
 log = logging.getLogger(__name__)
 
@@ -32,6 +33,8 @@ class Work:
     """The worksheet that ``reading`` was made from."""
     number: int = 0
     """Counts readings."""
+    plots: tuple[Box, ...] = ()
+    """Of the page, in the order of their numbers."""
 
 
 class Worker:
@@ -118,6 +121,7 @@ class Worker:
             self._show(worksheet, reading)
             watch("Checking", 0.0)
             reading = with_findings(reading, memory)
+            plots = _plots(reading, memory)
         except Cancelled:
             return replace(self.work, state="cancelled")
         except CurvelabError as error:
@@ -126,4 +130,15 @@ class Worker:
             log.exception("A reading failed")
             problem = CurvelabError(f"The program made a mistake in reading: {error}", "", "Undo the last change")
             return replace(self.work, state="failed", stage="", error=problem)
-        return Work(state="ready", fraction=1.0, reading=reading, of=worksheet, number=self.work.number + 1)
+        number = self.work.number + 1
+        return Work(state="ready", fraction=1.0, reading=reading, of=worksheet, number=number, plots=plots)
+
+
+def _plots(reading: Reading, remember: Remember) -> tuple[Box, ...]:
+    """Where the page's plots lie; where it has one, that is what the axes cover."""
+    sheet, axes = reading.sheet, reading.axes
+    if sheet is None or axes is None:
+        return ()
+    if axes.plot > 1 or any(warning.code == "several-plots" for warning in reading.warnings):
+        return remember("plots", (sheet,), lambda: plot_boxes(sheet))
+    return (axes.frame,)

@@ -49,7 +49,7 @@ def test_a_bare_upload_is_read_by_itself_and_says_what_is_open(client: TestClien
     assert state["name"] == "my sheet.pdf"
     assert state["sheet"]["unit"] == "pt"
     codes = [entry["code"] for entry in state["open"]]
-    assert "no-device" in codes
+    assert "device-read" in codes
     assert not state["can_store"]
     refused = client.post(f"/api/drafts/{state['id']}/store", json={"author": "Ida Brook"})
     assert refused.status_code == 400
@@ -211,3 +211,35 @@ def test_the_worksheet_may_be_written_as_text(client: TestClient) -> None:
     state = changed(client, state, kind="worksheet", text=text)
     assert state["worksheet"] == text
     assert json.dumps(state["data"]).count("Millrace") >= 1
+
+
+def test_a_bare_sheet_is_confirmed_filled_and_stored(client: TestClient) -> None:
+    """Sheet in, device confirmed, its blanks filled, stored: what was read is told apart from what was said."""
+    data = (SHEETS / "vector" / "mcb-b.pdf").read_bytes()
+    state = read_through(client, client.post("/api/drafts", params={"name": "b.pdf"}, content=data).json())
+    assert "devices.0.kind" in state["read_from_sheet"]
+    entry = next(each for each in state["open"] if each["code"] == "device-read")
+    state = changed(client, state, **entry["answers"][0]["change"])
+    assert "devices.0.kind" not in state["read_from_sheet"]
+    for code, value in (("blank-rated-current-a", "16 A"), ("blank-standard", "IEC 60898-1")):
+        entry = next(each for each in state["open"] if each["code"] == code)
+        state = changed(client, state, **entry["answers"][0]["change"], value=value)
+    assert state["open"] == []
+    assert state["data"]["devices"][0]["rated_current_a"] == 16
+    answer = client.post(f"/api/drafts/{state['id']}/store", json={"author": "Ida Brook"})
+    assert answer.status_code == 200, answer.text
+
+
+def test_a_new_line_is_named_in_one_answer(client: TestClient) -> None:
+    state = opened(client, VECTOR)
+    points = state["reading"]["curves"][1]["points"]
+    middle = len(points["x"]) // 2
+    state = changed(client, state, kind="remove-curve", curve=1)
+    state = changed(client, state, kind="passes", at=[points["x"][middle], points["y"][middle]])
+    (entry,) = [each for each in state["open"] if each["code"] == "edge-unknown"]
+    texts = [answer["text"] for answer in entry["answers"]]
+    assert "The slow edge, clearing" in texts
+    assert "The fast edge, clearing" not in texts, "the other line is the fast one"
+    change = entry["answers"][texts.index("The slow edge, clearing")]["change"]
+    state = changed(client, state, **change)
+    assert state["can_store"], state["open"]
