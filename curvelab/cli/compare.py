@@ -67,9 +67,10 @@ def command(
             _draw_on_sheet(library, keys[0], devices, on_sheet_file)
     if picture_file:
         # A picture needs the plotting library; the comparison alone starts without it.
+        from curvelab.plots.at_settings import drawn_record  # noqa: PLC0415
         from curvelab.plots.bands import draw_bands  # noqa: PLC0415
 
-        draw_bands([device.record for device in devices], picture_file, sides=sides)
+        draw_bands([drawn_record(device) for device in devices], picture_file, sides=sides)
     if json_file:
         write_json(comparison_json(comparison, sides), json_file)
     if json_file != "-":
@@ -80,8 +81,9 @@ def command(
 def _draw_on_sheet(library: Library, key: str, devices: Sequence[Device], path: str) -> None:
     """The bands over the newest sheet of the first device that has time-current curves."""
     # Opening a sheet and drawing need libraries that the comparison alone starts without.
+    from curvelab.plots.at_settings import drawn_record  # noqa: PLC0415
     from curvelab.plots.on_sheet import draw_on_sheet  # noqa: PLC0415
-    from curvelab.reading.rerun import restored  # noqa: PLC0415
+    from curvelab.reading.restore import restored  # noqa: PLC0415
 
     of_sheet = [
         stored
@@ -91,7 +93,7 @@ def _draw_on_sheet(library: Library, key: str, devices: Sequence[Device], path: 
     if not of_sheet:
         raise InputError(f"'{key}' was not read from a sheet", "", "Give --picture instead")
     with TemporaryDirectory() as folder:
-        draw_on_sheet(restored(of_sheet[-1], Path(folder)), [device.record for device in devices], path)
+        draw_on_sheet(restored(of_sheet[-1], Path(folder)), [drawn_record(device) for device in devices], path)
 
 
 def settings_by_key(

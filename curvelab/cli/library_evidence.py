@@ -9,7 +9,8 @@ import curvelab
 from curvelab.cli.output import library_option, write_text
 from curvelab.errors import InputError
 from curvelab.library.key import split_key
-from curvelab.reading.rerun import differences, rerun, restored
+from curvelab.reading.rerun import differences, rerun
+from curvelab.reading.restore import restored
 from curvelab.records.evidence import StoredReading
 
 

@@ -24,7 +24,7 @@ from curvelab.records.stretch import Sides
 
 A4_INCHES = (8.27, 11.69)
 DPI = 200
-LEFT, RIGHT, BOTTOM, SLIM = 0.115, 0.075, 0.065, 0.022
+LEFT, RIGHT, BOTTOM, SLIM = 0.13, 0.115, 0.065, 0.022
 """Margins about the axes, and beneath a strip, as fractions of the page."""
 TOP_SCALE = 0.022
 """What a second current scale on top takes of the page."""

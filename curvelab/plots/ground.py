@@ -14,6 +14,7 @@ from numpy.typing import ArrayLike
 
 from curvelab.plots.ink import PAPER
 from curvelab.records.arrays import Floats
+from curvelab.records.axes import Axes
 from curvelab.records.sheet import Pixels, Sheet, Stroke, Word
 
 A4_LONGER_INCHES = 11.69
@@ -92,12 +93,13 @@ class Ground:
             annotation_clip=False,
         )
 
-    @property
-    def size(self) -> tuple[float, float]:
-        """Width and height of the canvas in its own coordinates."""
-        left, right = self.canvas.get_xlim()
-        bottom, top = self.canvas.get_ylim()
-        return right - left, bottom - top
+    def room(self, axes: Axes | None) -> tuple[float, float, float, float]:
+        """Left, top, right and bottom, in canvas coordinates, of a plot; of the whole canvas without one."""
+        if axes is None:
+            (left, right), (bottom, top) = self.canvas.get_xlim(), self.canvas.get_ylim()
+            return left, top, right, bottom
+        (left, right), (top, bottom) = self.at([axes.frame[:2], axes.frame[2:]])
+        return float(left), float(top), float(right), float(bottom)
 
     def at(self, places: object) -> tuple[Floats, Floats]:
         """Places, shape (n, 2), as coordinates across and down the canvas."""

@@ -57,7 +57,7 @@ def on_sheet_figure(reading: Reading, devices: Sequence[DeviceRecord]) -> Figure
                 lines = list(_draw_curve(ground, axes, curve, subject.ink.colour))
                 if lines:
                     named.append((f"{subject.name} · {curve.edge}", subject.ink.colour, max(lines, key=len)))
-        _draw_names(ground, named)
+        _draw_names(ground, axes, named)
     return ground.figure
 
 
@@ -93,11 +93,11 @@ def _dense(line: Floats) -> Floats:
     return np.column_stack([np.interp(even, along, line[:, column]) for column in (0, 1)])
 
 
-def _draw_names(ground: Ground, named: Sequence[tuple[str, str, Floats]]) -> None:
+def _draw_names(ground: Ground, axes: Axes, named: Sequence[tuple[str, str, Floats]]) -> None:
     """Each line's name beside it, where it covers least."""
     if not named:
         return
-    words = Words(lines=[line for *_, line in named], letter=ground.letter, page=ground.size)
+    words = Words(lines=[line for *_, line in named], letter=ground.letter, room=ground.room(axes))
     for name, colour, line in named:
         place, right = words.beside(line, name)
         ground.write(place, name, colour, (5.0 if right else -5.0, 0.0))

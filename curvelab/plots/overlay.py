@@ -54,7 +54,7 @@ def overlay_figure(reading: Reading, page: tuple[Figure, PagePlace] | None = Non
         for curve, trace in traced:
             _draw_trace(ground, curve.curve.edge, trace)
         if traced:
-            _draw_names(ground, traced)
+            _draw_names(ground, reading.axes, traced)
         _draw_given(ground, reading)
     return ground.figure
 
@@ -110,10 +110,10 @@ def _draw_trace(ground: Ground, edge: Edge, trace: Trace) -> None:
         ground.line([gap.start, gap.end], 0.6, color=WARM, linestyle=(0.0, (1.0, 1.5)), zorder=4)
 
 
-def _draw_names(ground: Ground, traced: Sequence[tuple[ReadCurve, Trace]]) -> None:
+def _draw_names(ground: Ground, axes: Axes | None, traced: Sequence[tuple[ReadCurve, Trace]]) -> None:
     """Each curve's name beside it, where it covers least; a dot says which line is meant."""
     lines = [np.column_stack(ground.at(trace.places)) for _, trace in traced]
-    words = Words(lines=lines, letter=ground.letter, page=ground.size)
+    words = Words(lines=lines, letter=ground.letter, room=ground.room(axes))
     for line, (curve, _) in zip(lines, traced, strict=True):
         name = _curve_words(curve)
         place, right = words.beside(line, name)

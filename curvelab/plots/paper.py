@@ -38,7 +38,7 @@ QUANTITY_WORDS = {
 }
 ROOMY_DECADES = 3.2
 """Up to this many decades an axis has room for labels at 2 and 5."""
-LABEL_AT = 0.026
+LABEL_AT = 0.046
 """Where the second axis's name stands across the page, however long its numbers are."""
 MINOR_PAD = 5.5
 """In points: sets the small labels on the line of the large ones."""

@@ -25,13 +25,13 @@ class Words:
         Polylines across and down that should stay free, also where they jump a gap.
     letter : tuple of float
         Width and height of a letter, in the same unit.
-    page : tuple of float
-        Width and height of the drawing; words that leave it are the last choice.
+    room : tuple of float
+        Left, top, right and bottom of where words may stand; words that leave it are the last choice.
     """
 
     lines: Sequence[Floats]
     letter: tuple[float, float]
-    page: tuple[float, float]
+    room: Box
     taken: list[Box] = field(default_factory=list)
     _points: Floats = field(init=False)
 
@@ -56,7 +56,7 @@ class Words:
         across, down = self._points.T
         inside = (across > x0) & (across < x1) & (down > y0) & (down < y1)
         clashes = sum(x0 < other[2] and other[0] < x1 and y0 < other[3] and other[1] < y1 for other in self.taken)
-        outside = x0 < 0 or y0 < 0 or x1 > self.page[0] or y1 > self.page[1]
+        outside = x0 < self.room[0] or y0 < self.room[1] or x1 > self.room[2] or y1 > self.room[3]
         return float(inside.sum()) + TAKEN_WEIGHT * clashes + OUTSIDE_WEIGHT * outside
 
 

@@ -69,9 +69,16 @@ def _draw_title(figure: Figure, left: float, top: float) -> None:
 def _draw_row(strip: Axes, row: int, sides: Sides, by_name: Mapping[str, Subject], units_per_a: float) -> None:
     letters = f"{by_name[sides.a].letter} / {by_name[sides.b].letter}"
     strip.annotate(
-        letters, (0, row + 0.5), xycoords=("axes fraction", "data"), xytext=(-6, 0), textcoords="offset points",
-        ha="right", va="center", fontsize=7, annotation_clip=False,
-    )  # fmt: skip
+        letters,
+        (0, row + 0.5),
+        xycoords=("axes fraction", "data"),
+        xytext=(-6, 0),
+        textcoords="offset points",
+        ha="right",
+        va="center",
+        fontsize=7,
+        annotation_clip=False,
+    )
     low, high = strip.get_xlim()
     strip.plot([low, high], [row + 0.5, row + 0.5], color=MINOR, linewidth=0.5, zorder=0)
     for stretch in sides.stretches:
@@ -93,7 +100,14 @@ def _draw_bar(strip: Axes, row: int, ends: tuple[float, float], sooner: Subject 
     wide_enough = ends[1] / ends[0] > (high / low) ** 0.03
     if sooner is not None and wide_enough:
         strip.text(
-            (ends[0] * ends[1]) ** 0.5, row + 0.5, sooner.letter, fontsize=6.5, fontweight="bold", color=colour,
-            ha="center", va="center_baseline", zorder=3,
+            (ends[0] * ends[1]) ** 0.5,
+            row + 0.5,
+            sooner.letter,
+            fontsize=6.5,
+            fontweight="bold",
+            color=colour,
+            ha="center",
+            va="center_baseline",
+            zorder=3,
             bbox={"boxstyle": "square,pad=0.12", "facecolor": PAPER, "edgecolor": "none"},
-        )  # fmt: skip
+        )

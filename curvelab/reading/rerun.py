@@ -1,13 +1,13 @@
-"""A stored reading made whole again: drawn over its sheet, and read once more to see what another version finds."""
+"""A stored reading read once more, to see what another version finds."""
 
 from collections.abc import Iterator
-from dataclasses import dataclass, replace
-from pathlib import Path, PurePosixPath
+from dataclasses import dataclass
+from pathlib import Path
 
 import numpy as np
 
-from curvelab.errors import InputError, SheetError
 from curvelab.reading.digitise import read
+from curvelab.reading.restore import laid_out
 from curvelab.reading.watch import Watch, unwatched
 from curvelab.records.axes import Axes
 from curvelab.records.curve import Curve
@@ -15,9 +15,6 @@ from curvelab.records.evaluation import values_at
 from curvelab.records.evidence import StoredReading
 from curvelab.records.finding import Finding
 from curvelab.records.reading import ReadCurve, Reading
-from curvelab.records.worksheet import Worksheet
-from curvelab.sheets.open import open_sheet
-from curvelab.worksheets.read import parse_worksheet
 
 SAME = 1e-6
 """Relative; two machines may differ by as much with the same version."""
@@ -36,55 +33,14 @@ class Difference:
         return f"{self.of}: {self.stored} stored, {self.found} now"
 
 
-def restored(stored: StoredReading, folder: Path) -> Reading:
-    """The reading with its worksheet in full and its sheet opened from the bytes kept, ready to be drawn.
-
-    Parameters
-    ----------
-    folder : Path
-        An empty folder; the sheet's file is written into it and must stay while the reading is used.
-
-    Raises
-    ------
-    InputError
-        The sheet's bytes were not kept.
-    """
-    worksheet = _laid_out(stored, folder)
-    if worksheet.sheet is None:
-        return replace(stored.reading, worksheet=worksheet)
-    sheet = open_sheet(folder / worksheet.sheet.file, worksheet.sheet.page)
-    return replace(stored.reading, worksheet=worksheet, sheet=sheet)
-
-
 def rerun(stored: StoredReading, folder: Path, watch: Watch = unwatched) -> Reading:
     """Read again what was stored: the same bytes and worksheet with this version; arguments as for `restored`."""
-    return read(_laid_out(stored, folder), folder, watch)
+    return read(laid_out(stored, folder), folder, watch)
 
 
 def differences(stored: Reading, found: Reading) -> tuple[Difference, ...]:
     """What a re-run found otherwise than what was stored; empty where all numbers agree."""
     return (*_versions(stored, found), *_axes(stored, found), *_curves(stored, found), *_outcomes(stored, found))
-
-
-def _laid_out(stored: StoredReading, folder: Path) -> Worksheet:
-    """The worksheet of a stored reading, with its sheet's file where the worksheet names it."""
-    reading = stored.reading
-    text, entry = reading.worksheet.text, reading.worksheet.sheet
-    if entry is None:
-        return parse_worksheet(text) if text else reading.worksheet
-    worksheet = parse_worksheet(text) if text else Worksheet(sheet=replace(entry, file=PurePosixPath(entry.file).name))
-    if worksheet.sheet is None:
-        raise InputError("The stored worksheet names no sheet, its reading has one")
-    if stored.source is None:
-        raise SheetError(
-            f"The bytes of '{entry.file}' are not in the library", "", "Store the worksheet again beside its sheet"
-        )
-    place = folder / worksheet.sheet.file
-    if not place.resolve().is_relative_to(folder.resolve()):
-        raise SheetError(f"'{worksheet.sheet.file}' lies outside the folder of its worksheet")
-    place.parent.mkdir(parents=True, exist_ok=True)
-    place.write_bytes(stored.source)
-    return worksheet
 
 
 def _versions(stored: Reading, found: Reading) -> Iterator[Difference]:

@@ -2,6 +2,7 @@
 
 import json
 import math
+import os
 import subprocess
 import sys
 from pathlib import Path
@@ -135,6 +136,39 @@ def test_bands_go_back_over_a_sheet_only_where_there_is_one(site: Path, capsys: 
     assert run(["compare", "hall-gg100", "hall-b32", "--on-sheet", str(picture)]) == 2
     assert "'hall-gg100' was not read from a sheet" in capsys.readouterr().err
     assert not picture.exists()
+
+
+def test_a_report_is_the_same_in_every_process(site: Path) -> None:
+    for name, seed in (("one", "1"), ("two", "2")):
+        words = [sys.executable, "-m", "curvelab", "report", "hall-b32", "--output", str(site / f"{name}.pdf")]
+        subprocess.run(words, check=True, cwd=ROOT, env={**os.environ, "PYTHONHASHSEED": seed}, capture_output=True)
+    assert (site / "one.pdf").read_bytes() == (site / "two.pdf").read_bytes()
+
+
+def test_two_devices_have_a_comparison_document(site: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    words = ["report", "hall-gg100", "hall-b32@1", "--current", "200", "1000", "--output", str(site / "two.html")]
+    assert run(words) == 0
+    assert "Comparison document of hall-gg100@1 and hall-b32@1" in capsys.readouterr().out
+    text = (site / "two.html").read_text(encoding="utf-8")
+    assert "hall-b32 clears before hall-gg100 may act" in text
+
+
+@pytest.mark.parametrize(
+    ("words", "said"),
+    [
+        (["hall-b32", "--output", "report.doc"], ".pdf or .html"),
+        (["hall-b32", "hall-gg100", "hall-b32", "--output", "report.pdf"], "one device, or of two"),
+        (["hall-b33", "--output", "report.pdf"], "hall-b33"),
+        (["hall-b32", "--output", "missing/report.pdf"], "cannot be written"),
+    ],
+)
+def test_a_report_that_cannot_be_made_says_why(
+    words: list[str], said: str, site: Path, capsys: pytest.CaptureFixture[str], monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.chdir(site)
+    assert run(["report", *words]) == 2
+    assert said in capsys.readouterr().err
+    assert not list(site.glob("report*"))
 
 
 def test_checks_are_a_table_and_json(site: Path, capsys: pytest.CaptureFixture[str]) -> None:

@@ -134,11 +134,11 @@ def test_typed_points_have_no_sheet_to_draw_on(tmp_path):
 def test_words_avoid_lines_other_words_and_the_pages_edge():
     down = np.column_stack([np.full(200, 50.0), np.linspace(0, 200, 200)])
     beside = np.column_stack([np.linspace(55, 200, 300), np.full(300, 100.0)])
-    words = Words(lines=[down, beside], letter=(2.0, 5.0), page=(200.0, 200.0))
+    words = Words(lines=[down, beside], letter=(2.0, 5.0), room=(0, 0, 200.0, 200.0))
     place, right = words.beside(down, "slow edge")
     assert right
     assert abs(place[1] - 100) > 2.5
     second, right = words.beside(down, "slow edge")
     assert not right or abs(second[1] - place[1]) > 5
-    narrow = Words(lines=[down], letter=(6.0, 5.0), page=(200.0, 200.0))
+    narrow = Words(lines=[down], letter=(6.0, 5.0), room=(0, 0, 200.0, 200.0))
     assert narrow.beside(down, "slow edge")[1]

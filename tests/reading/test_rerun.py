@@ -10,7 +10,8 @@ from curvelab import digitise, open_library
 from curvelab.errors import SheetError
 from curvelab.paths import shipped
 from curvelab.plots.overlay import draw_overlay
-from curvelab.reading.rerun import differences, rerun, restored
+from curvelab.reading.rerun import differences, rerun
+from curvelab.reading.restore import restored
 from curvelab.records.curve import Part
 from curvelab.records.evidence import StoredReading
 from curvelab.records.reading import Reading
