@@ -6,8 +6,10 @@ from typing import Any, TypeAlias
 from curvelab.calculators.breaking import BreakingAnswer
 from curvelab.calculators.cautions import Caution
 from curvelab.calculators.disconnection import Disconnection
+from curvelab.calculators.discrimination import Case, Discrimination
 from curvelab.calculators.estimate import Estimate
 from curvelab.calculators.facts import Origin
+from curvelab.calculators.in_series import State
 from curvelab.calculators.overload import Overload
 from curvelab.calculators.verdict import worst
 from curvelab.calculators.withstand import Withstand
@@ -132,6 +134,37 @@ def breaking_json(answer: BreakingAnswer) -> Json:
         "capacity": estimate_json(answer.capacity),
         "back_up_capacity": estimate_json(answer.back_up_capacity),
         **_judged(answer.findings, answer.cautions),
+    }
+
+
+def discrimination_json(answer: Discrimination) -> Json:
+    """Up to which current only the downstream device acts; currents in A of the downstream device."""
+    transformer = answer.transformer
+    return {
+        "format": FORMAT,
+        "upstream": answer.upstream,
+        "downstream": answer.downstream,
+        "revisions": list(answer.revisions),
+        "up_to_a": answer.up_to_a,
+        "transformer": {"ratio": transformer.ratio, "connection": transformer.connection} if transformer else None,
+        "cases": [_case(case) for case in answer.cases],
+        "notes": list(answer.notes),
+        **_judged(answer.findings, answer.cautions),
+    }
+
+
+def _case(case: Case) -> Json:
+    holding = case.holding
+    return {
+        "fault": case.fault.name,
+        "upstream_share": case.fault.share,
+        "holds_from_a": holding.from_a,
+        "holds_up_to": estimate_json(holding.up_to),
+        "beyond": None if holding.beyond is None else holding.beyond.name.lower(),
+        "fails_from_a": holding.fails_from_a,
+        "spans": [
+            {"from_a": span.from_a, "to_a": span.to_a, "state": State(span.code).name.lower()} for span in case.spans
+        ],
     }
 
 

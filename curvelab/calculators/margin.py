@@ -7,6 +7,7 @@ import numpy as np
 
 from curvelab.devices.device import Device
 from curvelab.devices.meaning import TOTAL
+from curvelab.devices.question import Path
 from curvelab.records.answer import EdgeAnswer, TripTimes
 from curvelab.records.arrays import Floats
 from curvelab.records.curve import Edge, SheetKey
@@ -34,15 +35,16 @@ class Margin:
 class Asked:
     """A device's times at currents in A; those with intervals of the curves' own only when they are needed."""
 
-    def __init__(self, device: Device, current_a: Floats) -> None:
+    def __init__(self, device: Device, current_a: Floats, path: Path | None = None) -> None:
         self.device = device
         self.current_a = current_a
-        self.times = device.trip_time(current_a)
+        self.path = path
+        self.times = device.trip_time(current_a, path=path)
 
     @cached_property
     def own(self) -> TripTimes:
         """The same with intervals that leave out what the curves of one sheet share."""
-        return self.device.trip_time(self.current_a, own=True)
+        return self.device.trip_time(self.current_a, path=self.path, own=True)
 
 
 def margin_between(upstream: Asked, downstream: Asked) -> Margin:
@@ -60,7 +62,9 @@ def margin_between(upstream: Asked, downstream: Asked) -> Margin:
     shared = sheet is not None and sheet == _one_sheet(downstream.device, "slow")
     waits = _reach(fast, upstream.own.fast if shared else None)
     clears = _reach(slow, downstream.own.slow if shared else None)
-    return Margin(best=best, lower=best - _together(waits[0], clears[1]), upper=best + _together(waits[1], clears[0]))
+    with np.errstate(invalid="ignore"):
+        lower, upper = best - _together(waits[0], clears[1]), best + _together(waits[1], clears[0])
+    return Margin(best=best, lower=lower, upper=upper)
 
 
 def _waits(answer: EdgeAnswer) -> Floats:

@@ -15,7 +15,7 @@ STEP = 1e-9
 SLIVER = 1e-8
 """Relative width to which a change is found; a span no wider is the two sides of one tabulated step."""
 
-_PIECES = 16
+_PIECES, _ROUNDS = 16, 5
 
 Codes = NDArray[np.int8]
 CodeAt = Callable[[Floats], Codes]
@@ -50,8 +50,8 @@ def spans_of(code_at: CodeAt, places: Floats) -> tuple[Span, ...]:
     pieces = [
         np.geomspace(*pair, _PIECES, endpoint=False) if _is_wide(*pair) else pair[:1] for pair in pairwise(places)
     ]
-    changes = _changes(code_at, np.append(np.concatenate(pieces), places[-1]))
-    cuts = [float(places[0]), *(_snapped(change, places) for change in changes), float(places[-1])]
+    brackets = _changes(code_at, np.append(np.concatenate(pieces), places[-1]))
+    cuts = [float(places[0]), *(_cut(code_at, bracket, places) for bracket in brackets), float(places[-1])]
     wide = [(start, end) for start, end in pairwise(cuts) if _is_wide(start, end)]
     coded = zip(wide, code_at(np.sqrt([start * end for start, end in wide])).tolist(), strict=True)
     alike = (list(group) for _, group in groupby(coded, key=lambda each: each[1]))
@@ -62,18 +62,24 @@ def _is_wide(start: float, end: float) -> bool:
     return end > start * (1 + SLIVER)
 
 
-def _changes(code_at: CodeAt, currents: Floats) -> Iterator[float]:
-    """The currents at which the code changes, from rising currents close enough that none hides between two."""
+def _changes(code_at: CodeAt, currents: Floats) -> Iterator[tuple[float, float]]:
+    """Narrow brackets of each change, from rising currents close enough that none hides between two."""
     codes = code_at(currents)
     for place in np.flatnonzero(codes[:-1] != codes[1:]):
         start, end = float(currents[place]), float(currents[place + 1])
         if _is_wide(start, end):
             yield from _changes(code_at, np.geomspace(start, end, _PIECES + 1))
         else:
-            yield float(np.sqrt(start * end))
+            yield start, end
 
 
-def _snapped(change: float, places: Floats) -> float:
-    """The middle one of the places a change lies between, where they are a step's: its tabulated current."""
-    near = places[np.abs(places / change - 1) < SLIVER]
-    return float(near[near.size // 2]) if near.size else change
+def _cut(code_at: CodeAt, bracket: tuple[float, float], places: Floats) -> float:
+    """Where the code changes: the tabulated current of a step, else found to the last digits."""
+    near = places[(places > bracket[0] * (1 - SLIVER)) & (places < bracket[1] * (1 + SLIVER))]
+    if near.size:
+        return float(near[near.size // 2])
+    for _ in range(_ROUNDS):
+        fine = np.linspace(*bracket, _PIECES + 1)
+        changed = np.flatnonzero(np.diff(code_at(fine)))
+        bracket = float(fine[changed[0]]), float(fine[changed[0] + 1])
+    return bracket[0]

@@ -18,6 +18,7 @@ COMMANDS = {
     "disconnection": "Whether a device disconnects a fault in time, and the greatest loop impedance.",
     "withstand": "Whether a conductor withstands what a device lets through.",
     "report": "A document to review and sign, of one device or two.",
+    "discrimination": "Up to which current only the downstream one of two devices acts.",
     "overload": "Whether a device protects a conductor against overload.",
     "breaking": "Whether a device breaks a short circuit, alone or backed up.",
     "library": "List, find, review, exchange and keep what is stored.",
