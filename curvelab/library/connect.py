@@ -150,7 +150,10 @@ def _connect(path: Path, mode: str) -> sqlite3.Connection:
         )
     if os.path.isdir(path):
         raise LibraryError(f"{path} is a folder", "A library is one file", "Give the file, such as firm.sqlite")
-    return sqlite3.connect(f"{path.as_uri()}?mode={mode}", uri=True, timeout=BUSY_S, isolation_level=None)
+    # A server lends a connection to one thread after the other; that never two use it at once is the lender's care.
+    return sqlite3.connect(
+        f"{path.as_uri()}?mode={mode}", uri=True, timeout=BUSY_S, isolation_level=None, check_same_thread=False
+    )
 
 
 def _lies_in_read_only_folder(path: Path, error: sqlite3.OperationalError) -> bool:
