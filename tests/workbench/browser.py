@@ -25,8 +25,8 @@ ARGUMENTS = (
     "--disable-sync",
 )
 SHEETS = Path(__file__).parents[2] / "demo_curves" / "sheets"
-LONGEST_MS = 60_000
-THREADS = {name: "1" for name in ("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS")}
+LONGEST_MS = 30_000
+THREADS = dict.fromkeys(("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS"), "1")
 
 DROP = """([name, data]) => {
   const bytes = Uint8Array.from(atob(data), (letter) => letter.charCodeAt(0));
@@ -41,7 +41,8 @@ PIXEL = """([x, y]) => {
   const view = new URLSearchParams(location.hash.split("?")[1]);
   const box = document.querySelector(".sheet-pane canvas").getBoundingClientRect();
   const scale = Number(view.get("z"));
-  return [box.left + box.width / 2 + (x - view.get("x")) * scale, box.top + box.height / 2 + (y - view.get("y")) * scale];
+  const [across, down] = [x - view.get("x"), y - view.get("y")];
+  return [box.left + box.width / 2 + across * scale, box.top + box.height / 2 + down * scale];
 }"""
 
 
@@ -145,9 +146,9 @@ class Workbench:
         self.contexts.clear()
 
 
-@pytest.fixture(scope="session")
+@pytest.fixture(scope="module")
 def chromium() -> Iterator["Browser"]:
-    """One browser for all tests."""
+    """One browser for a module: its event loop must not outlive it."""
     if (reason := missing()) is not None:
         pytest.skip(reason)
     from playwright.sync_api import sync_playwright  # noqa: PLC0415 - an optional extra
@@ -163,7 +164,9 @@ def served(chromium: "Browser", tmp_path_factory: pytest.TempPathFactory) -> Ite
     """A workbench process for one module."""
     library = tmp_path_factory.mktemp("browser") / "firm.sqlite"
     command = [sys.executable, "-m", "curvelab", "workbench", "--library", str(library), "--no-open"]
-    with subprocess.Popen(command, stdout=subprocess.PIPE, text=True, env={**os.environ, **THREADS}) as process:
+    with subprocess.Popen(
+        command, stdout=subprocess.PIPE, stderr=subprocess.DEVNULL, text=True, env={**os.environ, **THREADS}
+    ) as process:
         assert process.stdout is not None
         address = process.stdout.readline().split()[-1]
         yield Workbench(address, process.pid, chromium)

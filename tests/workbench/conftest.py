@@ -4,7 +4,10 @@ from pathlib import Path
 import pytest
 from starlette.testclient import TestClient
 
+from tests.workbench.browser import bench, chromium, served
 from tests.workbench.served import workbench
+
+__all__ = ["bench", "chromium", "served"]
 
 
 @pytest.fixture

@@ -65,6 +65,7 @@ export class Desk {
     const { state } = this.draft;
     if (!state) return;
     this.node.classList.toggle("stale", Boolean(state.stale));
+    this.node.dataset.work = state.work.state;
     this.node.classList.toggle("no-sheet", !state.sheet);
     this.strip.update();
     this.sheet.update();

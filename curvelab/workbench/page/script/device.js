@@ -63,7 +63,7 @@ export class DeviceView {
     const picture = shown?.is_kept
       ? el("img", { src: query(`/api/devices/${part(this.pinned)}/overlay.png`, { reading: shown.number }), alt: `The reading of ${device(shown)} over its sheet`, class: "overlay" })
       : el("p", { class: "pane-empty" }, "The sheet itself is not kept in the library.");
-    return fill(this.evidence, el("div", { class: "pages" }, choice, again), el("div", { class: "overlay-frame", tabindex: 0, role: "region", "aria-label": "Reading over its sheet" }, picture));
+    return fill(this.evidence, el("div", { class: "pages" }, choice, again), el("div", { class: "overlay-frame", tabindex: 0, role: "region", "aria-label": "Reading over its sheet" }, el("p", { class: "pane-empty" }, "The reading is drawn over its sheet."), picture));
   }
 
   #middle() {

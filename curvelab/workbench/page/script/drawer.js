@@ -18,7 +18,7 @@ export function toggleDrawer(name, title, build, opener = document.activeElement
     closeDrawer();
   });
   document.querySelector("main").append(node);
-  document.body.classList.add("drawer-open");
+  document.body.dataset.drawer = name;
   open = { name, node, opener, body, build };
   fill(body, build(body));
   (body.querySelector("textarea, input, button") ?? node).focus({ preventScroll: true });
@@ -30,7 +30,7 @@ export function closeDrawer() {
   const { node, opener } = open;
   open = null;
   node.remove();
-  document.body.classList.remove("drawer-open");
+  delete document.body.dataset.drawer;
   if (opener?.isConnected) opener.focus({ preventScroll: true });
 }
 

@@ -35,7 +35,7 @@ export class OpenList {
     const many = this.entries.length;
     const words = many ? count(many, "thing still open", "things still open") : work.state === "ready" ? "Nothing is open" : "Reading";
     const hint = many ? "Each is settled by one or two answers, or accepted with a reason." : work.state === "ready" ? "Look once over both views, then store." : "What is open appears here.";
-    return [el("h2", { class: many ? "warm" : "" }, words), el("p", { class: "hint" }, hint)];
+    return [el("h2", { class: many ? "warm" : "", role: "status" }, words), el("p", { class: "hint" }, hint)];
   }
 
   #entry(entry) {
@@ -44,7 +44,9 @@ export class OpenList {
     const cut = this.#cut(entry);
     if (cut) go.append(cut);
     go.append(el("span", { class: "entry-text" }, plain(entry.text)));
-    const answers = here && el("div", { class: "answers" }, entry.answers.map((answer, index) => this.#answer(entry, answer, index)));
+    const own = entry.answers.map((answer, index) => this.#answer(entry, answer, index));
+    const strip = entry.kind === "device" && !own.length && button("Fill in what is marked above", () => this.desk.strip.begin(), { class: "strong", "data-focus": `answer-${entry.id}-0` });
+    const answers = here && el("div", { class: "answers" }, own, strip);
     return el("li", { class: here ? "entry here" : "entry" }, go, answers);
   }
 
@@ -125,7 +127,8 @@ export class OpenList {
   answer(number) {
     const entry = this.entries.find((each) => each.id === this.at);
     const answer = entry?.answers[number - 1];
-    if (answer) this.#take(entry, answer, `answer-${entry.id}-${number - 1}`);
+    if (entry && !entry.answers.length) this.desk.strip.begin();
+    else if (answer) this.#take(entry, answer, `answer-${entry.id}-${number - 1}`);
   }
 
   #moveOn() {

@@ -68,15 +68,17 @@ export function drawPaper(context, frame, ink) {
     const [low, end] = frame.window[i];
     for (const tick of ticksOf(axis, low, end, i ? high : wide)) {
       const at = frame.pixelOfScaled(i ? [frame.window[0][0], tick.at] : [tick.at, frame.window[1][0]]);
-      const line = i ? [[left, at[1]], [left + wide, at[1]]] : [[at[0], top], [at[0], top + high]];
-      stroke(context, line, { colour: ink(tick.rank ? "grid-minor" : "grid-major"), width: tick.rank ? 0.6 : 0.9 });
+      const [x, y] = at.map(crisp);
+      const line = i ? [[left, y], [left + wide, y]] : [[x, top], [x, top + high]];
+      stroke(context, line, { colour: ink(tick.rank ? "grid-minor" : "grid-major"), width: 1 });
       if (!tick.label) continue;
       const look = { colour: ink(tick.rank ? "quiet" : "graphite"), size: (tick.rank ? 10.5 : 12) * type };
       if (i) words(context, tick.label, left - 8, at[1], { ...look, align: "right", base: "middle" });
       else words(context, tick.label, at[0], top + high + 8, { ...look, align: "center", base: "top" });
     }
   });
-  stroke(context, [[left, top], [left, top + high], [left + wide, top + high]], { colour: ink("graphite"), width: 1 });
+  const foot = crisp(top + high);
+  stroke(context, [[crisp(left), top], [crisp(left), foot], [left + wide, foot]], { colour: ink("graphite"), width: 1 });
   const [currentAxis, valueAxis] = frame.axes;
   const below = BASE_NAMES[currentAxis.base] ?? currentAxis.base;
   words(context, below, left + wide, top + high + 38 * type, { colour: ink("quiet"), size: 12 * type, align: "right" });
@@ -199,10 +201,14 @@ export function drawLimits(context, frame, limits, ink, chosen = null) {
   }
 }
 
+/** On the middle of a pixel, so that a hairline is one. */
+const crisp = (at) => Math.round(at - 0.5) + 0.5;
+
 /** A hairline cross with the place open. */
-export function drawCross(context, [x, y], box, colour) {
+export function drawCross(context, place, box, colour) {
+  const [x, y] = place.map(crisp);
   const gap = 5;
-  const look = { colour, width: 0.8, alpha: 0.75 };
+  const look = { colour, width: 1, alpha: 0.7 };
   stroke(context, [[box.left, y], [x - gap, y]], look);
   stroke(context, [[x + gap, y], [box.left + box.wide, y]], look);
   stroke(context, [[x, box.top], [x, y - gap]], look);

@@ -2,7 +2,7 @@
 
 import { el, fill } from "./dom.js";
 import { edgesOf, valueAt } from "./bands.js";
-import { current, EDGES, figuresFor, quantity } from "./words.js";
+import { current, EDGES, plusMinus, quantity } from "./words.js";
 
 const NORMAL_95 = 1.959964;
 const APART = 18;
@@ -31,12 +31,11 @@ export class Plate {
     const base = plane?.base ?? this.desk.shownBands()[0]?.base ?? "A";
     const name = plane?.quantity ?? "time";
     const deviation = place && plane?.deviation(place);
-    const write = [(value, figures) => current(value, base, figures), (value, figures) => quantity(value, name, figures)];
+    const write = [(value) => current(value, base), (value) => quantity(value, name)];
     const here = values.map((value, i) => {
       const log = (i ? plane?.value : plane?.current)?.scale === "log";
       const half = deviation ? NORMAL_95 * deviation[i] : null;
-      const ends = half === null ? null : log ? [value * 10 ** -half, value * 10 ** half] : [value - half, value + half];
-      return figure(value, ends, write[i]);
+      return figure(write[i](value), half === null ? null : log ? 10 ** half - 1 : half / value);
     });
     const rows = [el("div", { class: "plate-here" }, here.map((each) => el("span", {}, each)))];
     for (const [edge, answer] of this.#answers(values[0])) {
@@ -69,19 +68,17 @@ export class Plate {
     const size = this.node.getBoundingClientRect();
     const right = at[0] + APART + size.width < box.width ? at[0] + APART : at[0] - APART - size.width;
     const below = at[1] + APART + size.height < box.height ? at[1] + APART : at[1] - APART - size.height;
-    const left = Math.max(8, Math.min(innerWidth - size.width - 8, box.left + right));
+    const left = Math.max(box.left + 4, Math.min(box.right - size.width - 4, box.left + right));
     this.node.style.transform = `translate(${left}px, ${Math.max(8, box.top + below)}px)`;
   }
 }
 
-function figure(value, ends, write) {
-  if (!ends) return [el("b", {}, write(value))];
-  const figures = figuresFor(value, ...ends);
-  return [el("b", {}, write(value, 3)), el("small", {}, `${write(ends[0], figures)} to ${write(ends[1], figures)}`)];
+function figure(words, share) {
+  return [el("b", {}, words), share !== null && el("small", {}, plusMinus(share))];
 }
 
 function said(answer, write) {
   if (!answer) return el("small", {}, "not covered");
   if (answer.status === "at_least") return [el("b", {}, `≥ ${write(answer.value)}`)];
-  return figure(answer.value, answer.interval, write);
+  return figure(write(answer.value), answer.interval && answer.interval[1] / answer.value - 1);
 }

@@ -1,4 +1,4 @@
-// How far the reading is, with a way to stop it; what went wrong stays until it is put right.
+// How far the reading is, with a way to stop it and to go on.
 
 import { post } from "./api.js";
 import { button, el, fill } from "./dom.js";
@@ -20,15 +20,8 @@ export class Progress {
     if (work.state === "reading") return this.#reading(work);
     clearTimeout(this.timer);
     this.since = null;
-    const failed = work.state === "failed" && work.error;
-    this.node.hidden = !(failed || work.state === "cancelled");
-    this.node.classList.toggle("failed", Boolean(failed));
-    if (failed) {
-      const { problem, expected, fix } = work.error;
-      fill(this.node, el("div", { role: "alert" }, el("strong", {}, `${problem}.`), expected && el("span", {}, ` Expected: ${expected}.`), fix && el("span", {}, ` ${fix}.`)));
-    } else if (work.state === "cancelled") {
-      fill(this.node, el("span", {}, "Reading was stopped. The next step you take starts it again."));
-    }
+    this.node.hidden = work.state !== "cancelled";
+    if (!this.node.hidden) fill(this.node, el("span", {}, "Reading was stopped."), button("Read on", () => attempt(() => post(`${this.draft.path}/read`)), { class: "plain" }));
     return undefined;
   }
 
@@ -39,7 +32,6 @@ export class Progress {
     else this.bar.removeAttribute("value");
     if (this.since) return;
     this.since = Date.now();
-    this.node.classList.remove("failed");
     this.timer = setTimeout(() => {
       fill(this.node, this.stage, this.bar, button("Stop", () => attempt(() => post(`${this.draft.path}/cancel`)), { class: "plain" }));
       this.node.hidden = false;

@@ -8,7 +8,7 @@ const OFF = "curvelab-keys-off";
 export const KEYS = [
   ["n, p", "next and previous open entry"],
   ["1, 2, 3", "first, second, third answer of the open entry"],
-  ["Space (hold)", "the bare paper in both views"],
+  ["f (hold)", "the bare paper in both views"],
   ["l", "choose the next line; clicks then go to it"],
   ["w", "the worksheet as text"],
   ["h", "what was done"],
@@ -55,14 +55,14 @@ export function watchKeys(desk) {
     event.preventDefault();
     return act();
   });
-  document.addEventListener("keyup", (event) => event.key === " " && desk()?.lay(false));
+  document.addEventListener("keyup", (event) => event.key === "f" && desk()?.lay(false));
   window.addEventListener("blur", () => desk()?.lay(false));
 }
 
-function deskKeys(desk, { key, target }) {
-  if (key === " ") return target.closest("button, a, summary, input") ? null : () => desk.lay(true);
+function deskKeys(desk, { key }) {
   if (/^[1-9]$/.test(key)) return () => desk.openList.answer(Number(key));
   return {
+    f: () => desk.lay(true),
     n: () => desk.openList.step(1),
     p: () => desk.openList.step(-1),
     w: () => desk.showWorksheet(),

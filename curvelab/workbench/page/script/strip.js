@@ -29,6 +29,11 @@ export class Strip {
     fill(this.node, devices.length > 1 && this.#which(devices), boxes, this.#adding(devices));
   }
 
+  /** Take the keyboard to the first blank that is needed. */
+  begin() {
+    (this.node.querySelector(".needed input, .needed select") ?? this.node.querySelector("input"))?.focus();
+  }
+
   #which(devices) {
     const pick = el("select", { "data-focus": "strip-which", onchange: (event) => this.#turnTo(Number(event.target.value)) });
     pick.append(...devices.map((device, index) => el("option", { value: index, selected: index === this.index }, `${index + 1} of ${devices.length}`)));
@@ -64,7 +69,7 @@ export class Strip {
   }
 
   async #set(name, text, number) {
-    const fields = fieldsOf(name, text.trim(), number);
+    const fields = fieldsOf(name, text.trim(), number, this.desk.draft.state.data?.devices?.[this.index]);
     const first = !this.desk.draft.state.data?.devices?.length;
     if (first) {
       // A device is written down as soon as it has a key and a kind.
@@ -79,13 +84,13 @@ export class Strip {
 }
 
 /** Several ratings make a series. Text that is no number goes as it is; the process says what is wrong with it. */
-function fieldsOf(name, text, number) {
+function fieldsOf(name, text, number, device) {
   if (name === "rated_current_a" && /[,;]/.test(text)) {
     const ratings = text.split(/[,;]/).map((each) => typedNumber(each) ?? each.trim());
-    return { ratings, rated_current_a: null };
+    return device?.rated_current_a === undefined ? { ratings } : { ratings, rated_current_a: null };
   }
   const fields = { [name]: text === "" ? null : number ? (typedNumber(text) ?? text) : text };
-  return name === "rated_current_a" ? { ...fields, ratings: null } : fields;
+  return name === "rated_current_a" && device?.ratings ? { ...fields, ratings: null } : fields;
 }
 
 const withoutBlanks = (fields) => Object.fromEntries(Object.entries(fields).filter(([, value]) => value !== null));

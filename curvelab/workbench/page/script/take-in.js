@@ -1,13 +1,14 @@
 // A sheet comes in: dropped anywhere, pasted, chosen, or one of the demo sheets.
 
 import { postBytes, post, query } from "./api.js";
-import { attempt, said } from "./say.js";
+import { attempt, hush, said } from "./say.js";
 
 const MOST_BYTES = 200 * 1024 * 1024;
 
 async function opened(path, bytes) {
   said("Opening the sheet.");
   const state = await attempt(() => (bytes ? postBytes(path, bytes) : post(path)));
+  hush();
   if (state) location.hash = `#/sheet/${encodeURIComponent(state.id)}`;
 }
 

@@ -122,6 +122,12 @@ export function typedNumber(text) {
   return text.trim() && Number.isFinite(value) ? value : null;
 }
 
+/** A half-width relative to its value, in two figures: ±0.12 %. */
+export function plusMinus(share) {
+  const value = 100 * Math.abs(share);
+  return `±${value < 0.01 ? "0.01" : rounded(value, 2)}${SPACE}%`;
+}
+
 export function count(number, one, many = `${one}s`) {
   return `${number}${SPACE}${number === 1 ? one : many}`;
 }
