@@ -7,7 +7,7 @@ from functools import reduce
 from curvelab.reading.phrases import Box, Phrase
 from curvelab.reading.said import Said, said_by, without
 
-LONGEST_NAME = 9
+LONGEST_NAME = 6
 """Words up to which a line of text may name a device; longer ones explain."""
 NAMES = ("kind", "characteristic", "characteristics", "ratings", "rating_range", "residual_current_a", "residual_delay")
 
