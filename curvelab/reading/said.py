@@ -62,11 +62,11 @@ _RELAY = re.compile(
     r"\b(IEC|IEEE)\b[^.;]*?\b(?:(very|extremely|long[- ]time|short[- ]time|moderately|normal|standard)\s+)?inverse",
     re.I,
 )
-_AMPERES = re.compile(r"(?<!\d)(?<!\d[.,])(\d{1,4}(?:[.,]\d)?)\s?(?:A|amps?|amperes?)(?![A-Za-z²])")
-_RANGE = re.compile(r"(\d{1,4}(?:[.,]\d)?)\s?A?\s*(?:to|[-–…]|up to|bis|à)\s*(\d{1,4}(?:[.,]\d)?)\s?A(?![A-Za-z²])")
-_LIST = re.compile(r"((?:\d{1,4}(?:\.\d)?\s?A?(?:,\s+|\s*(?:[/;]|and|und|et|&)\s*))+\d{1,4}(?:\.\d)?)\s?A(?![A-Za-z²])")
+_AMPERES = re.compile(r"(?<!\d)(?<!\d[.,])(\d{1,4}(?:[.,]\d)?)\s?(?:A|amps?|amperes?)(?![A-Za-z²\d])")
+_RANGE = re.compile(r"(\d{1,4}(?:[.,]\d)?)\s?A?\s*(?:to|[-–…]|up to|bis|à)\s*(\d{1,4}(?:[.,]\d)?)\s?A(?![A-Za-z²\d])")
+_LIST = re.compile(r"((?:\d{1,4}(?:\.\d)?\s?A?(?:,\s+|\s*(?:[/;]|and|und|et|&)\s*))+\d{1,4}(?:\.\d)?)\s?A(?![A-Za-z²\d])")
 _TYPED = re.compile(r"(?<![A-Za-z])[BCDKZ] ?(\d{1,3})(?![\d.])")
-_MILLI = re.compile(r"(?<!\d)(?<!\d[.,])(\d{1,4})\s?mA(?![A-Za-z])")
+_MILLI = re.compile(r"(?<!\d)(?<!\d[.,])(\d{1,4})\s?mA(?![A-Za-z²\d])")
 _SETTING = re.compile(
     r"(?<![A-Za-z])(?P<name>tms|TMS|td|TD|time dial|tr|tsd|tg|ir|Ir|IR|isd|Isd|ii|Ii|ig|Ig)"
     r"\s*(?:[=:]|at)?\s*(?P<value>\d+(?:[.,]\d+)?)"
