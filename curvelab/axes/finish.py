@@ -25,8 +25,8 @@ VECTOR_SD = 1e-5
 def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Axes, tuple[ReadingWarning, ...]]:
     """Fit the final map in places of the sheet and say what is doubtful."""
     snapping = find_snapping(sheet.pixels, axes, grid.lines) if sheet.pixels else None
-    plane = snapped_map(sheet.pixels, axes, snapping) if sheet.pixels and snapping else None
-    plane = plane or _with_common(_fitted(sheet, axes, grid), grid.common_sd)
+    within = snapped_map(sheet.pixels, axes, snapping) if sheet.pixels and snapping else None
+    plane = within or _with_common(_fitted(sheet, axes, grid), grid.common_sd)
     used = (_enough(grid, 0), _enough(grid, 1))
     marked = (_with_residuals(axes[0], 0, plane), _with_residuals(axes[1], 1, plane))
     residuals = np.array([mark.residual for axis in marked for mark in axis.marks])
@@ -38,6 +38,7 @@ def finished_axes(sheet: Sheet, axes: tuple[Axis, Axis], grid: Grid) -> tuple[Ax
         mark_residual_rms=float(np.sqrt(np.mean(residuals**2))),
         grid_residual_rms=_grid_rms(axes, grid, plane) if any(used) else None,
         grid=grid.lines,
+        snapped=within is not None,
     )
     return calibrated, tuple(doubts_of(sheet, marked, grid, used, snapped=snapping is not None))
 

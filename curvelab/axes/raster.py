@@ -30,7 +30,7 @@ LEAST_LINE_SD = 0.005
 """Pixels that the stroke model leaves on drawings without noise; this and the next two from drawings of many widths."""
 
 UNSETTLED_SD = 0.05
-SHARP_SD = 0.01
+SHARP_SD = 0.006
 
 ROOM = 3.0
 """Pixels that a finer line has on both sides: no two lines of the pattern may claim the same printed one."""

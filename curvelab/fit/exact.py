@@ -61,7 +61,7 @@ def kept_samples(strand: Strand, corners: NDArray[np.intp]) -> Samples:
     """
     _check_forward(strand)
     u, v = _monotone(strand, corners)
-    own = np.interp(u, strand.u, strand.sd) ** 2
+    own = np.interp(u, strand.u, np.hypot(strand.sd, strand.edge)) ** 2
     return polyline(u, v, own, calibration_at(u, np.gradient(v, u), strand))
 
 

@@ -2,7 +2,7 @@
 
 import math
 import tomllib
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache
 from typing import Literal
 
@@ -11,7 +11,7 @@ import numpy as np
 from curvelab.fit.rotate import ROOT_2, rotated
 from curvelab.paths import shipped
 from curvelab.records.arrays import Floats
-from curvelab.records.form import FormParameter
+from curvelab.records.form import FormParameter, PublishedForm
 
 Shape = Literal["inverse_time", "thermal_cold", "thermal_hot", "adiabatic", "definite_time"]
 
@@ -73,6 +73,23 @@ class Form:
             return found
         load = math.sqrt(shift[2])
         return (*found, FormParameter(name="preload", value=load, sd=math.sqrt(covariance[2, 2]) / (2.0 * load)))
+
+
+def under_name(found: PublishedForm, name: str) -> PublishedForm:
+    """A form found, under another of the names of its line (its ``also``), with the setting counted as that name does."""
+    forms = {form.name: form for form in published_forms()}
+    factor = forms[found.name].k / forms[name].k
+    setting = forms[name].setting
+    return replace(
+        found,
+        name=name,
+        standard=forms[name].standard,
+        parameters=tuple(
+            replace(each, name=setting, value=each.value * factor) if each.name == forms[found.name].setting else each
+            for each in found.parameters
+        ),
+        also=tuple(found.name if other == name else other for other in found.also),
+    )
 
 
 def _on_log(name: str, log_value: float, sd: float) -> FormParameter:

@@ -34,6 +34,7 @@ class Strand:
     u: Floats
     v: Floats
     sd: Floats
+    edge: Floats
     common: Floats
     shared: Floats
     order: NDArray[np.intp]
@@ -43,7 +44,6 @@ class Strand:
     blur: float
     correlation_length: float
     warp: tuple[float, float]
-    edge: float
 
     @property
     def spacing(self) -> float:
@@ -62,6 +62,7 @@ class Strand:
             u=self.u[first:last],
             v=self.v[first:last],
             sd=self.sd[first:last],
+            edge=self.edge[first:last],
             common=self.common[first:last],
             shared=self.shared[first:last],
             order=self.order[first:last],
@@ -97,6 +98,7 @@ def strand_of(points: FitPoints, *, rising: bool) -> Strand:
         u=u,
         v=v,
         sd=sd,
+        edge=(np.zeros(len(order)) if points.edge is None else points.edge)[order],
         common=points.common[order],
         shared=_shared(points)[order],
         order=order,
@@ -106,7 +108,6 @@ def strand_of(points: FitPoints, *, rising: bool) -> Strand:
         blur=points.blur,
         correlation_length=points.correlation_length,
         warp=points.warp,
-        edge=points.edge,
     )
 
 

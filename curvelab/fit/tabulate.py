@@ -86,7 +86,7 @@ def _sampled(stretch: Stretch, start: float, end: float, strand: Strand) -> Samp
         scatter=scatter,
         smoothing=np.maximum(stretch.variance(u) / across - scatter, 0.0),
         chord=np.full_like(u, 0.0 if stretch.form == "line" else CHORD**2 / 12.0),
-        edge=np.full_like(u, strand.edge**2),
+        edge=np.interp(u, strand.u, strand.edge) ** 2,
         warp=warp_at(slope, strand),
         calibration=calibration_at(u, slope, strand),
     )

@@ -31,6 +31,8 @@ def axes_from_json(text: str, grid: tuple[GridLine, ...]) -> Axes:
         grid_residual_rms=said["grid_residual_rms"],
         grid=grid,
         automatic=said["automatic"],
+        plot=said.get("plot", 1),
+        snapped=said.get("snapped", False),
     )
 
 

@@ -7,6 +7,7 @@ from typing import Any, TypeAlias
 
 import numpy as np
 
+from curvelab.reading.fit_json import fit_json
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis, Mark
 from curvelab.records.band import bands_of
@@ -128,6 +129,7 @@ def _curve(read: ReadCurve) -> Json:
             f"sd_{quantity}": numbers(read.sd_value),
         },
         "gaps": [{"from": list(gap.start), "to": list(gap.end)} for gap in (trace.gaps if trace else ())],
+        "fit": fit_json(read.fit) if read.fit else None,
     }
 
 

@@ -2,7 +2,6 @@
 
 from dataclasses import replace
 
-from curvelab.devices.multiplier import scaled_by_setting
 from curvelab.devices.series import device_records
 from curvelab.devices.tolerance import checked_tolerance, edges_of_mean
 from curvelab.errors import WorksheetError
@@ -49,7 +48,7 @@ def assemble(
 
 def _edges(read: ReadCurve) -> tuple[Curve, ...]:
     """The curve, and its declared edges where the worksheet states a tolerance for this very line."""
-    curve = scaled_by_setting(read.curve)
+    curve = read.curve
     if read.tolerance is None or curve.edge != "mean":
         return (curve,)
     return (curve, *edges_of_mean(curve, checked_tolerance(read.tolerance, "[[curves]]")))

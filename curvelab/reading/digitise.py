@@ -14,6 +14,7 @@ from curvelab.reading.find import find_curves, with_found
 from curvelab.reading.follow import follow_curves, open_edges
 from curvelab.reading.model import fitted_curves, typed_curves
 from curvelab.reading.remember import Remember, anew
+from curvelab.reading.said_forms import with_said_forms
 from curvelab.reading.watch import Watch, unwatched
 from curvelab.records.axes import Axes
 from curvelab.records.curve import SheetKey
@@ -93,9 +94,11 @@ def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, re
             worksheet = with_found(worksheet, found)
         key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=axes.plot, file=page.file)
         watch("Fitting the bands", 0.0)
-        followed_curves = fitted_curves(followed, axes, key, remember)
+        pixel = sheet.pixels.size_in_places if sheet.pixels else 0.0
+        followed_curves = fitted_curves(followed, axes, key, remember, pixel=pixel)
         warnings = doubts + more_doubts + open_edges(followed)
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
+    curves = with_said_forms(curves, worksheet.devices)
     devices, device_doubts = assemble(worksheet, curves)
     return Reading(
         worksheet=worksheet,

@@ -6,6 +6,7 @@ from functools import partial
 
 import numpy as np
 
+from curvelab.devices.multiplier import scaled_by_setting
 from curvelab.errors import FitError, WorksheetError
 from curvelab.fit.curve import fit_curve
 from curvelab.fit.order import keep_order
@@ -78,7 +79,7 @@ def _curve(entry: CurveEntry, *, base: str, quantity: str, fit_or_points: CurveF
     if entry.edge is None and entry.points:
         raise WorksheetError("A curve has no edge", "edge = 'fast', 'slow' or 'mean'", "Say which limit the line is")
     parts = fit_or_points.parts if fit_or_points else (typed_part(*zip(*entry.points, strict=True)),)
-    return Curve(
+    curve = Curve(
         element=entry.element or "whole",
         edge=entry.edge or "mean",
         meaning=entry.meaning,
@@ -89,12 +90,13 @@ def _curve(entry: CurveEntry, *, base: str, quantity: str, fit_or_points: CurveF
         at=entry.at,
         source=entry.source,
     )
+    return scaled_by_setting(curve)
 
 
 def fitted_curves(
-    followed: Sequence[Followed], axes: Axes, sheet: SheetKey, remember: Remember
+    followed: Sequence[Followed], axes: Axes, sheet: SheetKey, remember: Remember, *, pixel: float
 ) -> tuple[ReadCurve, ...]:
-    """Fit each trace and tabulate it.
+    """Fit each trace and tabulate it; ``pixel`` is a pixel's size in the sheet's unit, 0 for exact strokes.
 
     Raises
     ------
@@ -104,7 +106,7 @@ def fitted_curves(
     rising = axes.value.quantity != "time"
     fitted = []
     for number, each in enumerate(followed, start=1):
-        make = partial(_fit, each.trace, axes, rising=rising)
+        make = partial(_fit, each.trace, axes, pixel, rising=rising)
         try:
             trace, points, fit = remember("fit", (each.trace, axes), make)
         except FitError as error:
@@ -113,10 +115,13 @@ def fitted_curves(
     return tuple(_read_curve(each, axes, sheet) for each in _ordered(fitted))
 
 
-def _fit(trace: Trace, axes: Axes, *, rising: bool) -> tuple[Trace, FitPoints, CurveFit]:
+def _fit(trace: Trace, axes: Axes, pixel: float, *, rising: bool) -> tuple[Trace, FitPoints, CurveFit]:
     ordered = _in_order(trace, axes, rising=rising)
-    points = fit_points(ordered, axes)
-    return ordered, points, fit_curve(points, rising=rising)
+    points = fit_points(ordered, axes, pixel)
+    fit = fit_curve(points, rising=rising)
+    if axes.snapped:
+        fit = replace(fit, budget=replace(fit.budget, calibration=0.0, snapping=fit.budget.calibration))
+    return ordered, points, fit
 
 
 def _read_curve(fitted: _Fitted, axes: Axes, sheet: SheetKey) -> ReadCurve:
@@ -133,6 +138,7 @@ def _read_curve(fitted: _Fitted, axes: Axes, sheet: SheetKey) -> ReadCurve:
         devices=entry.devices,
         tolerance=entry.tolerance,
         label=fitted.followed.label,
+        fit=fitted.fit,
     )
 
 

@@ -2,6 +2,7 @@
 
 import numpy as np
 
+from curvelab.reading.warp import warp_sd
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, Axis
 from curvelab.records.normal import along_axes
@@ -9,6 +10,18 @@ from curvelab.records.points import FitPoints
 from curvelab.records.trace import Trace
 
 LN10 = float(np.log(10.0))
+
+MIDDLE_OF_STROKE = 0.003
+"""Of a stroke's width: standard deviation of its middle, as scans and renderers leave it."""
+
+EDGE_OF_AREA = 0.1 / 3.0**0.5
+"""Of what an area's step is spread over: the edge lies anywhere in a tenth of it to either side."""
+
+ALIGNED_PX = 0.03
+"""Pixels by which renderers of few sub-pixels move strokes along rows or columns."""
+
+AVERAGED_PX = 100.0
+"""Length of line in pixels over which a fit averages."""
 
 
 def _log_of(axis: Axis, scaled: Floats) -> tuple[Floats, Floats]:
@@ -40,11 +53,18 @@ def _breaks(trace: Trace) -> tuple[int, ...]:
     return tuple(sorted(set(found) - {0}))
 
 
-def fit_points(trace: Trace, axes: Axes) -> FitPoints:
+def fit_points(trace: Trace, axes: Axes, pixel: float = 0.0) -> FitPoints:
     """Points of a trace in log10 coordinates, in the order of the trace.
 
     The own standard deviation, measured along the line's normal on the sheet, is carried to the normal in log-log: the
     two differ where the decades of the axes differ in length.
+
+    Parameters
+    ----------
+    trace : Trace
+    axes : Axes
+    pixel : float
+        Size of a pixel in the sheet's unit; 0 where exact strokes were traced.
     """
     scaled = axes.map.scaled(trace.places)
     log_current, by_current = _log_of(axes.current, scaled[:, 0])
@@ -58,6 +78,7 @@ def fit_points(trace: Trace, axes: Axes) -> FitPoints:
     normal = _turned(direction) / stretch[:, None]
     across = np.abs(np.einsum("ki,kij,kj->k", normal, jacobian, _turned(along)))
     common = axes.map.covariance_at(trace.places) * to_log[:, :, None] * to_log[:, None, :]
+    bends = warp_sd(axes)
     return FitPoints(
         log_current=log_current,
         log_value=log_value,
@@ -66,8 +87,25 @@ def fit_points(trace: Trace, axes: Axes) -> FitPoints:
         correlation_length=trace.correlation_length * float(np.median(stretch)),
         breaks=_breaks(trace),
         blur=trace.width * float(np.median(across)),
+        warp=(bends[0] * float(np.median(np.abs(by_current))), bends[1] * float(np.median(np.abs(by_value)))),
+        edge=edge_sd(trace, along, pixel) * across,
         shared=axes.map.errors_at(trace.places) * to_log[:, :, None],
     )
+
+
+def edge_sd(trace: Trace, along: Floats, pixel: float) -> Floats:
+    """How far a whole stroke may lie from the curve it stands for, along its normal, in the sheet's unit.
+
+    Its middle is known to a share of its width. A stroke along a row or column of pixels is moved as a whole by a
+    renderer that counts few sub-pixels; one that crosses many is moved to and fro, which averages out.
+    """
+    if trace.origin == "vector":
+        return np.zeros(len(along))
+    lean = np.min(np.abs(along), axis=1) / np.maximum(np.max(np.abs(along), axis=1), 1e-12)
+    crossed = 2.0 * AVERAGED_PX * lean
+    width = EDGE_OF_AREA if trace.boundary else MIDDLE_OF_STROKE
+    moved = ALIGNED_PX * pixel / np.sqrt(1.0 + crossed**2)
+    return np.asarray(np.hypot(width * trace.width, moved))
 
 
 def point_uncertainty(points: FitPoints) -> tuple[Floats, Floats]:

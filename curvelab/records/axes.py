@@ -219,6 +219,8 @@ class Axes:
         True where no mark was given.
     plot : int
         Which of the page's plots this is, from 1.
+    snapped : bool
+        True where the covariance of the map is that of grid lines drawn on whole pixels.
     """
 
     current: Axis
@@ -230,6 +232,7 @@ class Axes:
     grid: tuple["GridLine", ...] = ()
     automatic: bool = False
     plot: int = 1
+    snapped: bool = False
 
     def values(self, places: ArrayLike) -> tuple[Floats, Floats]:
         """Currents and values in base units of places, shape (n, 2)."""

@@ -25,8 +25,9 @@ class FitPoints:
         Size of the stroke in decades: a corner is not resolved closer than this.
     warp : (float, float)
         Standard deviations in log10 current and log10 value of what the calibration cannot follow, in decades.
-    edge : float
-        Standard deviation along the normal of the whole line against what its stroke stands for, in decades.
+    edge : array, shape (n,), optional
+        Standard deviation along the normal of where the stroke as a whole lies against the curve it stands for, in
+        decades: alike for neighbours, so that no fit averages it out; None for none.
     shared : array, shape (n, 2, r), optional
         What each of r independent calibration errors of unit variance does to every point, in decades, so that the
         calibration's covariance between points i and j is shared[i] @ shared[j].T; None where only ``common`` is known.
@@ -40,7 +41,7 @@ class FitPoints:
     breaks: tuple[int, ...] = ()
     blur: float = 0.0
     warp: tuple[float, float] = (0.0, 0.0)
-    edge: float = 0.0
+    edge: Floats | None = None
     shared: Floats | None = None
 
     def __post_init__(self) -> None:
@@ -51,5 +52,7 @@ class FitPoints:
             sd=self.sd,
             common=self.common,
         )
+        if self.edge is not None:
+            freeze(self, edge=self.edge)
         if self.shared is not None:
             freeze(self, shared=self.shared)
