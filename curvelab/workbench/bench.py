@@ -1,22 +1,19 @@
 """What the handlers work with: the drafts, the library, and the rooms in which both may be busy."""
 
 import threading
-from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import AbstractContextManager
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from curvelab.library.library import Library, open_library
-from curvelab.workbench.failures import Busy
+from curvelab.library.library import Library
+from curvelab.workbench.lending import Lending
 
 if TYPE_CHECKING:
     # Reading sheets needs image libraries; the library alone is served without them.
     from curvelab.workbench.drafts import Drafts
 
-READERS = 24
-"""Connections that read at once; further requests wait."""
-WAIT_S = 20.0
-"""How long a request waits for its turn."""
+READERS = 16
+"""Libraries read at once; more would only wait for the processor."""
 
 
 class Bench:
@@ -33,8 +30,8 @@ class Bench:
         self.uploads = 0
         self._drafts: Drafts | None = None
         self._beginning = threading.Lock()
-        self._turns = threading.Semaphore(READERS)
-        self._writing = threading.Lock()
+        self._reading = Lending(library, READERS, create=False)
+        self._writing = Lending(library, 1, create=True)
 
     @property
     def drafts(self) -> "Drafts":
@@ -46,39 +43,13 @@ class Bench:
                 self._drafts = Drafts(self.library_path)
             return self._drafts
 
-    @contextmanager
-    def reading(self) -> Iterator[Library]:
-        """A library of this request's own, to read from.
+    def reading(self) -> AbstractContextManager[Library]:
+        """A library lent to this request, to read from; errors as for `Lending.lent`."""
+        return self._reading.lent()
 
-        Raises
-        ------
-        Busy
-            Too many read at once.
-        """
-        if not self._turns.acquire(timeout=WAIT_S):
-            raise Busy("Too many requests at once", "", "Try again")
-        try:
-            with open_library(self.library_path, create=False) as library:
-                yield library
-        finally:
-            self._turns.release()
-
-    @contextmanager
-    def writing(self) -> Iterator[Library]:
-        """The library to write to, one request after the other.
-
-        Raises
-        ------
-        Busy
-            Others take too long.
-        """
-        if not self._writing.acquire(timeout=WAIT_S):
-            raise Busy("Too many changes at once", "", "Try again")
-        try:
-            with open_library(self.library_path) as library:
-                yield library
-        finally:
-            self._writing.release()
+    def writing(self) -> AbstractContextManager[Library]:
+        """The library lent to this request alone, to write to; it is begun where there is none."""
+        return self._writing.lent()
 
     def stop_waiting(self) -> None:
         """Answer at once all requests that wait for something to happen."""
@@ -87,5 +58,7 @@ class Bench:
 
     def close(self) -> None:
         """Stop what runs in the background."""
+        self._reading.close()
+        self._writing.close()
         if self._drafts is not None:
             self._drafts.close()

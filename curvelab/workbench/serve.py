@@ -19,6 +19,8 @@ from curvelab.workbench.bench import Bench
 from curvelab.workbench.guard import Door, loopback_door, with_port
 
 LOOPBACK = "127.0.0.1"
+KEEP_ALIVE_S = 75
+"""How long a connection waits for the next question; a person thinks in between."""
 GRACE_S = 2
 """How long requests that are being answered may take once the server is to stop."""
 
@@ -57,6 +59,7 @@ def serve(wanted: Wanted, say: Callable[[str], None]) -> None:
         log_level=logging.WARNING,
         access_log=False,
         server_header=False,
+        timeout_keep_alive=KEEP_ALIVE_S,
         timeout_graceful_shutdown=GRACE_S,
         lifespan="on",
     )
