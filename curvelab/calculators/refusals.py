@@ -2,6 +2,7 @@
 
 from collections.abc import Sequence
 
+from curvelab.devices.bases import amperes
 from curvelab.devices.device import Device
 from curvelab.devices.meaning import TOTAL, meaning_of
 from curvelab.records.answer import EdgeAnswer
@@ -61,7 +62,7 @@ def reason(device: Device, edge: Edge, answer: EdgeAnswer | None, quantity: str 
     drawn = [curve for curve in lines if curve.edge == edge]
     if not drawn:
         return not_protective(device) or f"'{device.key}' has no {NAMES[edge]}"
-    return f"outside the sheet: the {NAMES[edge]} of '{device.key}' is drawn {_extent(drawn, quantity)}"
+    return f"outside the sheet: the {NAMES[edge]} of '{device.key}' is drawn {_extent(device, drawn, quantity)}"
 
 
 def _capacities(device: Device) -> str:
@@ -72,12 +73,12 @@ def _capacities(device: Device) -> str:
     )
 
 
-def _extent(curves: Sequence[Curve], quantity: str) -> str:
-    """From where to where lines are drawn; of several bases, those of the first."""
-    base = curves[0].base
+def _extent(device: Device, curves: Sequence[Curve], quantity: str) -> str:
+    """From where to where in A lines are drawn; of several bases, those of the first."""
+    base, unit = curves[0].base, _UNITS[quantity]
     alike = [curve for curve in curves if curve.base == base]
+    one = amperes(device.nameplate, device.settings, base)
     first = min((left_end(curve) for curve in alike), key=lambda end: end.current)
     last = max((right_end(curve) for curve in alike), key=lambda end: end.current)
-    unit = _UNITS[quantity]
-    start = f"{written_current(first.current, base)} ({written(first.value, unit)})"
-    return f"from {start} to {written_current(last.current, base)} ({written(last.value, unit)})"
+    start = f"{written_current(first.current * one, 'A')} ({written(first.value, unit)})"
+    return f"from {start} to {written_current(last.current * one, 'A')} ({written(last.value, unit)})"

@@ -1,15 +1,17 @@
 """``curvelab demo``: the whole chain on the shipped sheets, in one go."""
 
+from dataclasses import replace
 from pathlib import Path
 
 import click
 
 import curvelab
 from curvelab.calculators.stretches import sides_of
+from curvelab.calculators.trip import trip_currents, trip_times
 from curvelab.cli.check import findings_table
 from curvelab.cli.compare import comparison_text
 from curvelab.cli.output import named
-from curvelab.cli.query import answer_at, answer_for, answers_text
+from curvelab.cli.query import answers_text
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
 from curvelab.paths import shipped
@@ -79,8 +81,8 @@ def _read(worksheets: list[Path], folder: Path, library_file: Path) -> list[Read
 
 def _say(breaker: Device, checked: Device, pair: list[Device]) -> None:
     click.echo("")
-    click.echo(answers_text(breaker, [answer_at(breaker, ASKED_A)]))
-    click.echo(answers_text(breaker, [answer_for(breaker, ASKED_S)]).split("\n", 1)[1])
+    for answers in (trip_times(breaker, [ASKED_A]), trip_currents(breaker, [ASKED_S])):
+        click.echo(answers_text(breaker, replace(answers, cautions=())))
     click.echo(f"\n{named(checked.nameplate)} (out of standard on purpose)")
     click.echo(findings_table(check(checked)))
     click.echo("")

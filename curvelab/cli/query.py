@@ -1,26 +1,35 @@
 """``curvelab query``: what a stored device does at a current, or which currents go with a time."""
 
-from math import isnan
-from typing import Any
+from collections.abc import Callable
+from typing import get_args
 
 import click
 
 import curvelab
+from curvelab.calculators.as_json import trip_json
+from curvelab.calculators.refusals import not_protective
+from curvelab.calculators.trip import Edges, TripAnswer, TripAnswers, trip_currents, trip_times
+from curvelab.cli.answer import closing_lines, heading
 from curvelab.cli.many import ManyValues, Settings
-from curvelab.cli.output import json_option, library_option, named, table, write_json
+from curvelab.cli.output import json_option, library_option, table, write_json
 from curvelab.devices.device import Device
+from curvelab.devices.question import Path
 from curvelab.library.key import split_key
-from curvelab.records.answer import EdgeAnswer
-from curvelab.units import interval_figures, written_current, written_time
+from curvelab.units import written_current, written_time
 
-REACHED = {"value", "at_least", "at_most", "never"}
-"""Statuses that answer what was asked; any other makes the exit status 1."""
+HEADINGS = {"trips": "surely trips from", "holds": "surely holds up to"}
+
+LIMITING = {"let-through": lambda answer: answer.let_through, "cut-off": lambda answer: answer.peak}
+"""What a current-limiting device shows beside its times, and where an answer has it."""
 
 
 @click.command(cls=ManyValues)
 @click.argument("key")
 @click.option("--current", "currents", type=float, multiple=True, metavar="A...", help="Prospective currents in A.")
 @click.option("--time", "times", type=float, multiple=True, metavar="S...", help="Times in s.")
+@click.option(
+    "--path", type=click.Choice(get_args(Path)), help="How the current comes back [default: as the device sees it]."
+)
 @click.option(
     "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
 )
@@ -30,98 +39,52 @@ def command(
     key: str,
     currents: tuple[float, ...],
     times: tuple[float, ...],
+    path: Path | None,
     settings: tuple[tuple[str, float | str], ...],
     library_file: str | None,
     json_file: str | None,
 ) -> int:
     """Trip times of KEY at currents, or its currents for times; KEY@3 asks revision 3.
 
-    Each answer has a 95 % interval. Statuses: at_least and at_most are bounds, never is below a declared pick-up,
-    not_covered is outside what the sheet shows.
+    At currents also let-through energies and cut-off currents, where KEY has such sheets. Each answer has a 95 %
+    interval. Statuses: at_least and at_most are bounds, never is below a declared pick-up, not_covered is outside what
+    the sheet shows.
     """
     if bool(currents) == bool(times):
         raise click.UsageError("Give either --current A... or --time S....")
     with curvelab.open_library(library_file, create=False) as library:
         device = library.device(*split_key(key)).at(**dict(settings))
-    answers = [answer_at(device, each) for each in currents] + [answer_for(device, each) for each in times]
+    answers = trip_times(device, currents, path) if currents else trip_currents(device, times, path)
     if json_file:
-        write_json(_as_json(device, answers), json_file)
+        write_json(trip_json(device, answers), json_file)
     if json_file != "-":
         click.echo(answers_text(device, answers))
-    reached = all(edge is None or edge.status in REACHED for answer in answers for edge in answer["edges"].values())
-    return 0 if reached and all(any(answer["edges"].values()) for answer in answers) else 1
+    return 0 if all(answer.is_answered for answer in answers.answers) else 1
 
 
-def answer_at(device: Device, current_a: float) -> dict[str, Any]:
-    """What the device does at a current in A."""
-    times = device.trip_time(current_a)
-    return {"current": current_a, "edges": {"fast": times.fast, "slow": times.slow, "mean": times.mean}}
+def answers_text(device: Device, answers: TripAnswers) -> str:
+    """The device's name over its tables, a row for each thing asked; reasons and cautions below."""
+    tables = [_table(answers, lambda answer: answer.edges, "")]
+    tables += [_table(answers, edges_of, f"{name} ") for name, edges_of in LIMITING.items()]
+    reasons = dict.fromkeys(reason for answer in answers.answers for reason in answer.reasons)
+    notes = [*(f"{reason[0].upper()}{reason[1:]}." for reason in reasons), *answers.notes]
+    shown = [each for each in tables if each] or [f"Nothing to ask: {not_protective(device) or 'no line'}."]
+    return "\n".join([heading(device), *shown, *closing_lines((), notes, answers.cautions)])
 
 
-def answer_for(device: Device, time_s: float) -> dict[str, Any]:
-    """Which currents go with a time in s."""
-    currents = device.trip_current(time_s)
-    return {"time": time_s, "edges": {"trips": currents.trips, "holds": currents.holds, "mean": currents.mean}}
+def _table(answers: TripAnswers, edges_of: Callable[[TripAnswer], Edges | None], kind: str) -> str:
+    """One table of edges; empty where the device has no such line."""
+    rows = [(answer.asked, edges) for answer in answers.answers if (edges := edges_of(answer)) is not None]
+    names = [name for name in (rows[0][1] if rows else ()) if any(edges[name] for _, edges in rows)]
+    if not names:
+        return ""
+    heads = ["current" if answers.of_times else "time", *(kind + HEADINGS.get(name, name) for name in names)]
+    return table(heads, [[_asked(asked, answers), *_cells(edges, names)] for asked, edges in rows])
 
 
-def _as_json(device: Device, answers: list[dict[str, Any]]) -> dict[str, Any]:
-    return {
-        "format": 1,
-        "device": device.key,
-        "revision": device.revision,
-        "state": device.state,
-        "settings": dict(device.settings),
-        "base": "A",
-        "answers": [
-            {name: value for name, value in answer.items() if name != "edges"}
-            | {edge: _edge_json(found) for edge, found in answer["edges"].items()}
-            for answer in answers
-        ],
-    }
+def _asked(asked: float, answers: TripAnswers) -> str:
+    return written_current(asked, "A") if answers.of_times else written_time(asked)
 
 
-def _number(value: Any) -> float | None:
-    return None if isnan(value) else float(value)
-
-
-def _edge_json(found: EdgeAnswer | None) -> dict[str, Any] | None:
-    if found is None:
-        return None
-    known = not (isnan(found.lower) or isnan(found.upper))
-    return {
-        "status": found.status,
-        "value": _number(found.value),
-        "interval": [_number(found.lower), _number(found.upper)] if known else None,
-        "basis": found.basis,
-    }
-
-
-def answers_text(device: Device, answers: list[dict[str, Any]]) -> str:
-    """The device's name over a table, a row for each thing asked."""
-    state = f", revision {device.revision} ({device.state})" if device.revision else ""
-    asks_times = "current" in answers[0]
-    names = list(answers[0]["edges"])
-    shown = [name for name in names if any(answer["edges"][name] for answer in answers)]
-    rows = []
-    for answer in answers:
-        asked = written_current(answer["current"], "A") if asks_times else written_time(answer["time"])
-        rows.append([asked, *(_cell(answer["edges"][name], times=asks_times) for name in shown)])
-    headings = {"trips": "surely trips from", "holds": "surely holds up to"}
-    heads = ["current" if asks_times else "time", *(headings.get(name, name) for name in shown)]
-    return f"{named(device.nameplate)}{state}\n{table(heads, rows)}"
-
-
-def _cell(found: EdgeAnswer | None, *, times: bool) -> str:
-    if found is None:
-        return "-"
-    if isnan(found.value):
-        return str(found.status).replace("_", " ")
-
-    figures = interval_figures(float(found.value), float(found.lower), float(found.upper))
-
-    def written(value: Any) -> str:
-        return written_time(float(value), figures) if times else written_current(float(value), "A", figures)
-
-    prefix = {"at_least": "at least ", "at_most": "at most "}.get(str(found.status), "")
-    interval = "" if isnan(found.lower) else f" ({written(found.lower)} to {written(found.upper)})"
-    return f"{prefix}{written(found.value)}{interval}"
+def _cells(edges: Edges, names: list[str]) -> list[str]:
+    return [found.written() if (found := edges[name]) else "-" for name in names]

@@ -443,3 +443,26 @@ def test_a_transformer_between_them(capsys):
 )
 def test_bad_pairs_take_one_line(capsys, words, said):
     assert said in refused(capsys, words)
+
+
+@pytest.mark.usefixtures("site")
+def test_500_a_from_line_to_neutral_is_not_seen_by_an_rcd(capsys):
+    status, answer = answered(capsys, "query hall-rcd30 --current 500 --path line_to_neutral")
+    assert status == 1
+    assert answer["answers"][0]["slow"]["status"] == "not_seen"
+    assert "residual current only" in printed(capsys, "query hall-rcd30 --current 500 --path line_to_neutral")
+
+
+@pytest.mark.usefixtures("site")
+def test_a_query_at_a_current_shows_the_let_through_energy(capsys):
+    status, answer = answered(capsys, "query hall-c16 --current 200 3000")
+    assert status == 0
+    assert [each["let_through"]["slow"]["value"] for each in answer["answers"]] == pytest.approx([600.0, 9000.0])
+    assert answer["answers"][0]["peak"] is None
+    assert "let-through slow" in printed(capsys, "query hall-c16 --current 200 3000")
+
+
+@pytest.mark.usefixtures("site")
+def test_a_switch_is_not_asked_in_vain_and_says_why(capsys):
+    assert answered(capsys, "query hall-isolator --current 100")[0] == 1
+    assert "not a protective device" in printed(capsys, "query hall-isolator --current 100")
