@@ -179,3 +179,24 @@ def bench(served: Workbench) -> Iterator[Workbench]:
     """The module's workbench; its pages are closed after each test."""
     yield served
     served.close()
+
+
+STORE = """async ([demo, author]) => {
+  const said = { "X-Curvelab": "1", "Content-Type": "application/json" };
+  let state = await (await fetch(`/api/drafts?demo=${demo}`, { method: "POST", headers: said })).json();
+  while (state.work.state === "reading") {
+    state = await (await fetch(`/api/drafts/${state.id}?since=${state.tick}&wait=5`)).json();
+  }
+  const body = JSON.stringify({ author, note: "" });
+  const answer = await fetch(`/api/drafts/${state.id}/store`, { method: "POST", headers: said, body });
+  return answer.ok ? null : await answer.json();
+}"""
+
+
+def stock(bench: Workbench, author: str, *demos: str) -> None:
+    """Store demo sheets as another program would, over HTTP."""
+    screen = bench.screen()
+    for demo in demos:
+        refused = screen.page.evaluate(STORE, [demo, author])
+        assert refused is None, refused
+    bench.close()

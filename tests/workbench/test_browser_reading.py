@@ -170,8 +170,10 @@ def test_a_mark_is_dragged_under_a_magnifier(bench: Workbench) -> None:
     screen = bench.screen()
     screen.demo("mcb-b")
     screen.read()
-    (x, y), _ = screen.state()["data"]["axes"]["current"]["marks"][1].values()
-    at = screen.pixel(x, y)
+    x, _ = screen.state()["data"]["axes"]["current"]["marks"][1]["at"]
+    pin = screen.page.get_by_role("button", name=re.compile("^Mark 5 In on the current axis")).bounding_box()
+    assert pin is not None
+    at = (pin["x"] + 12, pin["y"] + 12)
     screen.page.mouse.move(*at)
     screen.page.mouse.down()
     screen.page.mouse.move(at[0] + 6, at[1], steps=3)

@@ -3,7 +3,7 @@
 import { get, part, query } from "./api.js";
 import { button, el, field, fill } from "./dom.js";
 import { attempt } from "./say.js";
-import { current, EDGES, plain, time, withInterval } from "./words.js";
+import { current, EDGES, time, withInterval } from "./words.js";
 
 const SIGNS = { at_least: "≥\u00a0", at_most: "≤\u00a0" };
 
@@ -52,19 +52,18 @@ const TOLD = { fast: EDGES.fast, slow: EDGES.slow, mean: EDGES.mean, trips: "Sur
 
 function lines(answer, of) {
   const write = of === "time" ? time : (value, figures) => current(value, "A", figures);
-  const rows = Object.entries(TOLD).filter(([name]) => answer[name]).map(([name, words]) => {
-    const told = answer[name];
-    const at = (values) => (Array.isArray(values) ? values[0] : values);
-    const [status, value] = [at(told.status), at(told.value)];
-    if (value === null || value === undefined) return el("div", {}, el("dt", {}, words), el("dd", {}, plain(status.replaceAll("_", " "))));
-    const [shown, interval] = withInterval(value, status === "value" ? [at(told.lower), at(told.upper)] : null, write);
+  const [told] = answer.answers;
+  const rows = Object.entries(TOLD).filter(([name]) => told[name]).map(([name, words]) => {
+    const { status, value, interval: ends } = told[name];
+    if (value === null) return el("div", {}, el("dt", {}, words), el("dd", {}, status.replaceAll("_", " ")));
+    const [shown, interval] = withInterval(value, ends, write);
     return el("div", {}, el("dt", {}, words), el("dd", {}, el("b", {}, `${SIGNS[status] ?? ""}${shown}`), interval && el("small", {}, ` ${interval}`)));
   });
   return el("dl", { class: "answers-told" }, rows);
 }
 
 function rangeOf(setting) {
-  const { from, to, steps } = setting;
+  const { from_value: from, to_value: to, steps } = setting;
   if (steps?.length) return steps.join(", ");
-  return from !== undefined && to !== undefined ? `${from} to ${to}` : "";
+  return from === null ? "" : `${from} to ${to}`;
 }

@@ -41,7 +41,8 @@ export class Desk {
     this.sheet.node.append(this.pages);
     const middle = el("section", { class: "middle", "aria-label": "What was read" }, this.progress.node, this.openList.node, this.store.node, this.parts.node, this.findings);
     const views = el("div", { class: "views" }, this.sheet.node, middle, this.twin.node);
-    this.node = el("div", { class: "desk" }, this.strip.node, views);
+    this.name = el("h1", { class: "unseen" }, "Sheet");
+    this.node = el("div", { class: "desk" }, this.name, this.strip.node, views);
     this.plate = new Plate(this, { sheet: this.sheet, twin: this.twin });
     this.draft.addEventListener("state", () => this.refresh());
     this.draft.addEventListener("gone", () => {
@@ -53,6 +54,7 @@ export class Desk {
 
   async open() {
     await this.draft.open();
+    this.name.textContent = this.draft.state.name;
     document.title = `${this.draft.state.name} – curvelab`;
   }
 

@@ -35,7 +35,7 @@ export class OpenList {
     const many = this.entries.length;
     const words = many ? count(many, "thing still open", "things still open") : work.state === "ready" ? "Nothing is open" : "Reading";
     const hint = many ? "Each is settled by one or two answers, or accepted with a reason." : work.state === "ready" ? "Look once over both views, then store." : "What is open appears here.";
-    return [el("h2", { class: many ? "warm" : "", role: "status" }, words), el("p", { class: "hint" }, hint)];
+    return [el("div", { role: "status" }, el("h2", { class: many ? "warm" : "" }, words)), el("p", { class: "hint" }, hint)];
   }
 
   #entry(entry) {

@@ -6,8 +6,13 @@ import { nameField, ownName } from "./person.js";
 import { attempt, said } from "./say.js";
 import { moment } from "./words.js";
 
-const STEPS = { draft: [["checked", "Mark as checked"], ["released", "Release"]], checked: [["released", "Release"]], released: [["withdrawn", "Withdraw"]], withdrawn: [] };
-const NEXT = { draft: "A second person looks at it, then releases it.", checked: "Checked; it may be released.", released: "Released: calculators use this revision.", withdrawn: "Withdrawn: no calculator uses this revision." };
+const STEPS = {
+  draft: [["checked", "Mark as checked"], ["withdrawn", "Withdraw"]],
+  checked: [["released", "Release"], ["draft", "Back to draft"], ["withdrawn", "Withdraw"]],
+  released: [["withdrawn", "Withdraw"]],
+  withdrawn: [],
+};
+const NEXT = { draft: "It is checked first, then a second person releases it.", checked: "Checked; it may be released.", released: "Released: calculators use this revision.", withdrawn: "Withdrawn: no calculator uses this revision." };
 
 export class Review {
   constructor(done) {
@@ -20,7 +25,6 @@ export class Review {
   update(device) {
     this.device = device;
     const steps = STEPS[device.state] ?? [];
-    const more = device.state !== "withdrawn" && device.state !== "released";
     fill(
       this.node,
       el("h2", {}, "Review"),
@@ -28,8 +32,7 @@ export class Review {
       this.name.node,
       this.reason,
       el("div", { class: "row-acts" },
-        steps.map(([to, words], index) => button(words, () => this.#decide(to), { class: index === steps.length - 1 && to !== "withdrawn" ? "strong" : "", "data-focus": `review-${to}` })),
-        more && button("Withdraw", () => this.#decide("withdrawn"), { "data-focus": "review-withdrawn" }),
+        steps.map(([to, words], index) => button(words, () => this.#decide(to), { class: index || to === "withdrawn" ? "" : "strong", "data-focus": `review-${to}` })),
         button("Note only", () => this.#decide(null), { class: "plain", "data-focus": "review-note" })),
     );
   }
