@@ -36,7 +36,7 @@ def edge_currents(elements: Sequence[Lines], edge: Edge, units: Units, time_s: F
     if not elements:
         return without_number(NOT_SEEN, time_s.size)
     founds = [
-        _over_conditions([currents_of(line, time_s).scaled(units[line.curve.base]) for line in each.lines], edge)
+        _over_conditions([currents_of(line, time_s).scaled(line.unit(units)) for line in each.lines], edge)
         if each.lines
         else without_number(NOT_COVERED, time_s.size)
         for each in elements
@@ -55,7 +55,7 @@ def _element_times(element: Lines, edge: Edge, units: Units, asked: tuple[Floats
         return without_number(NOT_COVERED, current.size)
     founds = []
     for line in element.lines:
-        unit = units[line.curve.base]
+        unit = line.unit(units)
         in_base = current if unit == 1.0 else current / unit
         founds.append(times_of(line, in_base, None if breaking is None else breaking / unit, own=own))
     return _over_conditions(founds, edge)
@@ -74,7 +74,7 @@ def _ended_at(lines: Sequence[Line], units: Units, current: Floats) -> Floats:
     times = []
     for line in lines:
         end = right_end(line.curve)
-        beyond = current > end.current * units[line.curve.base] * (1 + 1e-12)
+        beyond = current > end.current * line.unit(units) * (1 + 1e-12)
         times.append(np.where(beyond, end.value * line.time_factor, np.nan))
     return np.asarray(np.min(times, axis=0))
 

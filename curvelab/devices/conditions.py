@@ -13,18 +13,16 @@ def fit_of(curve: Curve, asked: Conditions, plate: Nameplate) -> Fit:
 
     A device trips sooner hot than cold, so a cold curve bounds a hot device on the slow side and a hot curve a cold
     device on the fast side. Where a sheet does not say, it is taken as cold and for alternating current at the device's
-    own frequency and ambient temperature.
+    own frequency. What another ambient temperature does is told by `curvelab.devices.ambient`.
     """
     drawn = curve.conditions
     if drawn.time_kind == "virtual" and asked.time_kind != "virtual":
         return "no"
     frequency = drawn.frequency_hz or plate.frequency_hz
-    ambient = plate.ambient_reference_c if drawn.ambient_c is None else drawn.ambient_c
     same = (
         (asked.supply, drawn.supply or "ac"),
         (asked.voltage_v, drawn.voltage_v or asked.voltage_v),
         (asked.frequency_hz, frequency),
-        (asked.ambient_c, ambient),
         (asked.poles_loaded, drawn.poles_loaded or asked.poles_loaded),
         (asked.time_kind, drawn.time_kind or "real"),
     )

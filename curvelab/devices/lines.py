@@ -4,8 +4,9 @@ import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
+from curvelab.devices.ambient import ambient_factor
 from curvelab.devices.bases import PICK_UP_SETTING, SETTING_OF_ELEMENT
-from curvelab.devices.conditions import fit_of
+from curvelab.devices.conditions import Fit, fit_of
 from curvelab.devices.meaning import answering, meaning_of
 from curvelab.devices.question import Path, Question, sees
 from curvelab.devices.settings import OFF, Given, missing_settings
@@ -17,11 +18,19 @@ _SAME = 1e-9
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Line:
-    """A curve that answers for an element; ``bound`` where it only bounds it at the conditions asked."""
+    """A curve that answers for an element; ``bound`` where it only bounds it at the conditions asked.
+
+    Its times count ``time_factor`` times, its currents ``current_factor`` times.
+    """
 
     curve: Curve
     time_factor: float
     bound: bool
+    current_factor: float = 1.0
+
+    def unit(self, units: Mapping[str, float]) -> float:
+        """What one unit of the curve's base is, where ``units`` says it of each base."""
+        return units[self.curve.base] * self.current_factor
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -72,16 +81,34 @@ def _lines_of_element(
     meanings = {meaning_of(curve, plate.kind) for curve in at_settings}
     meaning = answering(meanings, edge, question.meaning)
     fitting = [
-        (curve, fit_of(curve, question.conditions, plate))
+        (curve, *_fit(curve, edge, plate, question))
         for curve in _nearest_time_setting(at_settings, settings)
         if meaning_of(curve, plate.kind) == meaning
     ]
-    exact = [curve for curve, fit in fitting if fit == "holds"]
-    chosen = exact or [curve for curve, fit in fitting if fit == "bounds"]
+    exact = [(curve, factor) for curve, fit, factor in fitting if fit == "holds"]
+    chosen = exact or [(curve, factor) for curve, fit, factor in fitting if fit == "bounds"]
     lines = tuple(
-        Line(curve=curve, time_factor=_time_factor(curve, plate, settings), bound=not exact) for curve in chosen
+        Line(
+            curve=curve,
+            time_factor=_time_factor(curve, plate, settings),
+            bound=not exact,
+            current_factor=factor,
+        )
+        for curve, factor in chosen
     )
     return Lines(element=curves[0].element, meaning=meaning, lines=lines)
+
+
+def _fit(curve: Curve, edge: Edge, plate: Nameplate, question: Question) -> tuple[Fit, float]:
+    """How a curve answers, and the factor on its currents at the ambient temperature asked."""
+    fit = fit_of(curve, question.conditions, plate)
+    factor = ambient_factor(curve, plate, question.conditions.ambient_c)
+    if factor is None or (edge == "mean" and not factor.is_exact):
+        return "no", 1.0
+    if not factor.is_exact and fit == "holds":
+        fit = "bounds"
+    # Times grow with the factor: the slow edge is bounded by the greatest, the fast edge by the least.
+    return fit, factor.greatest if edge == "slow" else factor.least
 
 
 def _drawn_for(curve: Curve, plate: Nameplate, settings: Given) -> bool:

@@ -13,6 +13,9 @@ from curvelab.records.device import DeviceRecord, Nameplate, Tolerance
 from curvelab.records.warning import ReadingWarning
 from curvelab.records.worksheet import DeviceEntry
 
+_RATED = ("overload", "delayed", "instantaneous", "whole")
+"""Elements whose currents go with the rated current; others may have the same amperes in all ratings."""
+
 
 def device_records(
     entry: DeviceEntry, keys: Sequence[str], curves: Mapping[str, Sequence[Curve]]
@@ -34,6 +37,8 @@ def device_records(
         The nameplate, a tolerance or a curve cannot be.
     """
     plates = _nameplates(entry, keys)
+    if len(plates) > 1:
+        _refuse_amperes(entry, [curve for plate in plates for curve in curves.get(plate.key, ())])
     records = tuple(_record(checked_nameplate(plate), entry.tolerance, curves.get(plate.key, ())) for plate in plates)
     return records, tuple(doubt for plate in plates for doubt in doubts_about(plate))
 
@@ -45,6 +50,18 @@ def _nameplates(entry: DeviceEntry, keys: Sequence[str]) -> tuple[Nameplate, ...
         replace(entry.nameplate, key=key, rated_current_a=rating)
         for key, rating in zip(keys, entry.ratings, strict=True)
     )
+
+
+def _refuse_amperes(entry: DeviceEntry, curves: Sequence[Curve]) -> None:
+    """A line in amperes is that of one rating: what another rating does cannot be told from it."""
+    drawn = next((curve for curve in curves if curve.base == "A" and curve.element in _RATED), None)
+    if drawn is not None:
+        ratings = ", ".join(f"{rating:g}" for rating in entry.ratings)
+        raise DeviceError(
+            f"The {drawn.edge} edge of element '{drawn.element}' is drawn in amperes, for ratings {ratings} A alike",
+            "A series has curves in multiples, such as xIn",
+            "Give each printed rating its own device and its own line; ratings between them are not known",
+        )
 
 
 def _record(plate: Nameplate, tolerance: Tolerance | None, curves: Sequence[Curve]) -> DeviceRecord:

@@ -76,7 +76,7 @@ class Form:
 
 
 def under_name(found: PublishedForm, name: str) -> PublishedForm:
-    """A form found, under another of the names of its line (its ``also``), with the setting counted as that name does."""
+    """A form found, under another name of its line (one of its ``also``), the setting counted as that name does."""
     forms = {form.name: form for form in published_forms()}
     factor = forms[found.name].k / forms[name].k
     setting = forms[name].setting

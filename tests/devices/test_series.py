@@ -40,6 +40,17 @@ def test_a_series_is_one_device_a_rating_with_the_same_band_in_its_base():
     assert doubts == ()
 
 
+def test_a_line_in_amperes_is_no_line_of_a_series():
+    template = replace(PLATE, key="riverside-b{rating}", rated_current_a=None)
+    entry = DeviceEntry(nameplate=template, ratings=(16.0, 32.0))
+    keys = ["riverside-b16", "riverside-b32"]
+    with pytest.raises(DeviceError, match="drawn in amperes, for ratings 16, 32 A alike"):
+        device_records(entry, keys, dict.fromkeys(keys, (line("slow", B_SLOW, base="A"),)))
+    residual = line("slow", [(0.03, 0.2), (0.3, 0.04)], base="A", element="residual")
+    records, _ = device_records(entry, keys, dict.fromkeys(keys, (*BAND, residual)))
+    assert len(records) == 2
+
+
 def test_a_device_tolerance_turns_mean_lines_without_edges_into_bands():
     mean = line("mean", [(100, 10), (1000, 0.1)], base="A")
     record, _ = one(curves=(mean,), tolerance=Tolerance(current=(-0.1, 0.1)))
