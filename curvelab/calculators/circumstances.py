@@ -5,7 +5,7 @@ from math import isfinite
 
 from curvelab.calculators.practices import CIRCUITS, DEFAULT_PRACTICE, SYSTEMS, Circuit, System
 from curvelab.errors import InputError
-from curvelab.units import written_current
+from curvelab.units import written, written_current
 
 _NUMBERS = ("voltage_v", "required_s", "loop_ohm", "breaker_time_s")
 
@@ -86,7 +86,7 @@ def fault_of(asked: Circumstances, by: Reckoning) -> Fault | None:
     loop = f"{asked.loop_ohm:g} ohm" if warming == 1.0 else f"({asked.loop_ohm:g} ohm / {warming:.3g})"
     words = f"{written_current(current_a, 'A', 4)} ({written_voltage(asked.voltage_v, by.voltage_factor)} / {loop})"
     if by.residual_a is not None:
-        words += f" = {current_a / by.residual_a:.3g} IΔn"
+        words += f" = {written(current_a / by.residual_a, 'ratio')} IΔn"
     return Fault(current_a=current_a, words=words)
 
 

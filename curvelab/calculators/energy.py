@@ -2,8 +2,10 @@
 
 from dataclasses import dataclass
 from enum import IntEnum
+from typing import Literal
 
 import numpy as np
+from numpy.typing import NDArray
 
 from curvelab.calculators.facts import rows_of
 from curvelab.calculators.spans import Codes
@@ -12,18 +14,21 @@ from curvelab.records.answer import EdgeAnswer
 from curvelab.records.arrays import Floats
 from curvelab.records.curve import Conditions, Edge
 
+Bools = NDArray[np.bool_]
+
 VIRTUAL = Conditions(time_kind="virtual")
 
 
 class Way(IntEnum):
-    """How an energy is known, or why it is not."""
+    """How an energy is known, or why it is not; in a gap of a let-through line, by what bounds it."""
 
     TIMES = 0
     LET_THROUGH = 1
-    TOO_LONG = 2
-    TOO_SHORT = 3
-    NOT_COVERED = 4
-    ABOVE_BREAKING = 5
+    GAP = 2
+    TOO_LONG = 3
+    TOO_SHORT = 4
+    NOT_COVERED = 5
+    ABOVE_BREAKING = 6
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -34,7 +39,7 @@ class Amounts:
     lower: Floats
     upper: Floats
 
-    def where(self, chosen: np.ndarray[tuple[int, ...], np.dtype[np.bool_]], other: "Amounts") -> "Amounts":
+    def where(self, chosen: Bools, other: "Amounts") -> "Amounts":
         """The other's where chosen, these elsewhere."""
         return Amounts(
             value=np.where(chosen, other.value, self.value),
@@ -63,33 +68,61 @@ def cleared_energies(device: Device, current_a: Floats, breaker_time_s: float | 
     meaning = "relay_output" if breaker_time_s else "clearing"
     slow = device.trip_time(current_a, path="line_to_neutral", meaning=meaning).slow
     times = _numbers(slow, ("value", "at_most"), current_a, shift=breaker_time_s or 0.0)
-    drawn = drawn_energies(device, current_a, "slow", "clearing")
+    drawn, bounded = drawn_energies(device, current_a, "slow", "clearing")
     way = np.full(current_a.shape, Way.NOT_COVERED, dtype=np.int8)
     way[times.value > longest] = Way.TOO_LONG
     way[times.value < shortest] = Way.TOO_SHORT
-    way[~np.isnan(drawn.value) & ~(times.value >= shortest)] = Way.LET_THROUGH
+    told = ~np.isnan(drawn.value) & ~(times.value >= shortest)
+    way[told] = np.where(bounded, Way.GAP, Way.LET_THROUGH)[told]
     way[(times.value >= shortest) & (times.value <= longest)] = Way.TIMES
     if slow is not None:
         way[np.asarray(slow.status) == "above_breaking"] = Way.ABOVE_BREAKING
     squared = current_a**2
     by_time = Amounts(value=times.value * squared, lower=times.lower * squared, upper=times.upper * squared)
-    known = by_time.where(way == Way.LET_THROUGH, drawn)
-    unknown = way > Way.LET_THROUGH
+    known = by_time.where((way == Way.LET_THROUGH) | (way == Way.GAP), drawn)
+    unknown = way > Way.GAP
     nothing = np.full(current_a.shape, np.nan)
     return known.where(unknown, Amounts(value=nothing, lower=nothing, upper=nothing)), way
 
 
-def drawn_energies(device: Device, current_a: Floats, edge: Edge, meaning: str) -> Amounts:
-    """Energies of one edge that are drawn as such: on a let-through sheet, else as virtual times."""
-    answer = device.let_through(current_a, meaning=meaning)
-    sheet = _numbers(_edge(answer, edge), ("value",), current_a)
-    if not any(curve.conditions.time_kind == "virtual" for curve in device.record.curves):
-        return sheet
-    times = device.trip_time(current_a, path="line_to_neutral", meaning=meaning, conditions=VIRTUAL)
-    virtual = _numbers(_edge(times, edge), ("value",), current_a)
-    squared = current_a**2
-    energies = Amounts(value=virtual.value * squared, lower=virtual.lower * squared, upper=virtual.upper * squared)
-    return sheet.where(np.isnan(sheet.value), energies)
+def drawn_energies(
+    device: Device, current_a: Floats, edge: Literal["fast", "slow"], meaning: str
+) -> tuple[Amounts, Bools]:
+    """Energies of one edge that are drawn as such, on a let-through sheet or as virtual times; and which are bounds.
+
+    Energies never fall with current: in a gap of a let-through line the slow edge lies below its next value, the fast
+    edge above its last one.
+    """
+    sheet = _on_sheet(device, current_a, edge, meaning)
+    if any(curve.conditions.time_kind == "virtual" for curve in device.record.curves):
+        times = device.trip_time(current_a, path="line_to_neutral", meaning=meaning, conditions=VIRTUAL)
+        virtual = _numbers(_edge(times, edge), ("value",), current_a)
+        squared = current_a**2
+        energies = Amounts(value=virtual.value * squared, lower=virtual.lower * squared, upper=virtual.upper * squared)
+        sheet = sheet.where(np.isnan(sheet.value), energies)
+    gap = _gap_bounds(device, current_a, edge, meaning)
+    bounded = np.isnan(sheet.value) & ~np.isnan(gap.value)
+    return sheet.where(bounded, gap), bounded
+
+
+def _on_sheet(device: Device, current_a: Floats, edge: Edge, meaning: str) -> Amounts:
+    return _numbers(_edge(device.let_through(current_a, meaning=meaning), edge), ("value",), current_a)
+
+
+def _gap_bounds(device: Device, current_a: Floats, edge: Literal["fast", "slow"], meaning: str) -> Amounts:
+    """The energy at the end of a gap on the side that bounds it; NaN outside gaps."""
+    bends_a = device.bends_a("line_to_neutral", "let_through")
+    if bends_a.size == 0:
+        nothing = np.full(current_a.shape, np.nan)
+        return Amounts(value=nothing, lower=nothing, upper=nothing)
+    right = bends_a.searchsorted(current_a)
+    inside = (right > 0) & (right < bends_a.size)
+    before, after = bends_a[np.maximum(right - 1, 0)], bends_a[np.minimum(right, bends_a.size - 1)]
+    ends = [_on_sheet(device, end, edge, meaning) for end in (before, after)]
+    between = inside & ~np.isnan(ends[0].value) & ~np.isnan(ends[1].value)
+    nothing = np.where(between, 0.0, np.nan)
+    bound = ends[1] if edge == "slow" else ends[0]
+    return Amounts(value=bound.value + nothing, lower=bound.lower + nothing, upper=bound.upper + nothing)
 
 
 def _edge(answer: object, edge: Edge) -> EdgeAnswer | None:

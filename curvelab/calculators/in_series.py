@@ -91,6 +91,9 @@ class InSeries:
             by_time: Floats = getattr(self._time_margin, world)
             tells = ~self._is_quick(world) & ~np.isnan(self._time_margin.best)
             parts[world] = np.where(tells, by_time, getattr(self._energy_margin, world))
+        # At worst the upstream device acts too soon for times to tell, and no energies are known: it does not hold.
+        lost = self._is_quick("lower") & ~self._is_quick("best") & np.isnan(self._energy_margin.best)
+        parts["lower"] = np.where(lost, -np.inf, parts["lower"])
         return Margin(best=parts["best"], lower=parts["lower"], upper=parts["upper"])
 
     @property
@@ -140,14 +143,14 @@ class InSeries:
         if self._series.fault.path == "residual":
             return Margin(best=nothing, lower=nothing, upper=nothing)
         meaning = "pre_arcing" if self._series.upstream.nameplate.kind == "fuse" else "unlatching"
-        bears = drawn_energies(self._series.upstream, self._upstream.current_a, "fast", meaning)
-        passes = drawn_energies(self._series.downstream, self._current_a, "slow", "clearing")
+        bears, bears_more = drawn_energies(self._series.upstream, self._upstream.current_a, "fast", meaning)
+        passes, passes_less = drawn_energies(self._series.downstream, self._current_a, "slow", "clearing")
         with np.errstate(invalid="ignore", divide="ignore"):
-            return Margin(
-                best=np.log(bears.value / passes.value),
-                lower=np.log(bears.lower / passes.upper),
-                upper=np.log(bears.upper / passes.lower),
-            )
+            best = np.log(bears.value / passes.value)
+            lower, upper = np.log(bears.lower / passes.upper), np.log(bears.upper / passes.lower)
+        open_ones = (bears_more | passes_less) & ~(best > 0)
+        hidden = np.where(open_ones, np.nan, 0.0)
+        return Margin(best=best + hidden, lower=lower + hidden, upper=upper + hidden)
 
 
 def _energy_only_s() -> float:

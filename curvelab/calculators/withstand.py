@@ -15,6 +15,7 @@ from curvelab.calculators.spans import Codes, Span, places_of, spans_of
 from curvelab.calculators.verdict import Requirement, verdict
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
+from curvelab.records.answer import Status
 from curvelab.records.arrays import Floats, distinct
 from curvelab.records.finding import Finding
 from curvelab.units import written_current, written_let_through
@@ -150,7 +151,8 @@ def _stress(device: Device, faults: Faults, span: Span, places: Floats) -> Stres
     worst = int(np.nanargmax(value))
     lower, uppers = float(energies.lower[worst]), energies.upper[(ways == way) & ~np.isnan(energies.upper)]
     interval = None if isnan(lower) else (lower, float(uppers.max()))
-    energy = Estimate(status="value", value=float(value[worst]), interval=interval, unit="A2s")
+    status: Status = "at_most" if way == Way.GAP else "value"
+    energy = Estimate(status=status, value=float(value[worst]), interval=interval, unit="A2s")
     return Stress(from_a=span.from_a, to_a=span.to_a, way=way, energy=energy, worst_a=float(asked[worst]))
 
 

@@ -14,7 +14,11 @@ from curvelab.devices.device import Device
 from curvelab.library.key import split_key
 from curvelab.units import written_current, written_let_through
 
-_WAYS = {Way.TIMES: "times", Way.LET_THROUGH: "let-through sheet"}
+_WAYS = {
+    Way.TIMES: "times",
+    Way.LET_THROUGH: "let-through sheet",
+    Way.GAP: "gap of the let-through sheet, up to its next value",
+}
 
 
 @click.command(cls=ManySettings)

@@ -12,7 +12,7 @@ from curvelab.calculators.transformer import transformer_of
 from curvelab.devices.device import Device
 from curvelab.devices.tolerance import edges_of_mean
 from curvelab.errors import DeviceError, InputError
-from curvelab.records.curve import Conditions
+from curvelab.records.curve import Conditions, typed_part
 from curvelab.records.device import Breaking, DeviceRecord, Tolerance
 from tests.devices.made import device, line, moulded_case
 
@@ -142,7 +142,7 @@ def test_bands_that_meet_do_not_hold():
 def test_the_interval_of_the_last_current_holds_it_and_follows_the_sheets():
     widths = []
     for sd in (0.01, 0.001):
-        upstream = fuse(energy("mean", [(1000, 12_000), (80_000, 12_000)], "pre_arcing", sd=sd), sd=sd)
+        upstream = fuse(energy("mean", [(500, 12_000), (80_000, 12_000)], "pre_arcing", sd=sd), sd=sd)
         let_through = energy("slow", [(100, 300), (10_000, 30_000)], "clearing", sd=sd)
         low, high = only(discrimination(upstream, breaker(let_through, sd=sd))).holding.up_to.interval
         assert low < 3240 < high
@@ -150,6 +150,24 @@ def test_the_interval_of_the_last_current_holds_it_and_follows_the_sheets():
     # Worst against worst: 1.96 sd of both energies; the level line moves by its sd / sqrt(2) along its normal.
     assert widths[0] / widths[1] == pytest.approx(10.0, rel=0.05)
     assert only(discrimination(fuse(PRE_ARCING), breaker(LET_THROUGH))).holding.up_to.interval is None
+
+
+def test_the_interval_of_an_end_where_only_energies_could_tell():
+    low, high = only(discrimination(fuse(sd=0.01), breaker(sd=0.01))).holding.up_to.interval
+    assert 850 < low < 900 < high < 950
+
+
+def test_a_gap_of_the_let_through_line_is_bounded_by_its_next_value():
+    gapped = replace(
+        LET_THROUGH, parts=(typed_part([100, 1500], [300, 4500]), typed_part([2000, 10_000], [6000, 30_000]))
+    )
+    assert only(discrimination(fuse(PRE_ARCING), breaker(gapped))).holding.up_to.value == pytest.approx(3240.0)
+    over = replace(
+        LET_THROUGH, parts=(typed_part([100, 3000], [300, 9000]), typed_part([3500, 10_000], [10_500, 30_000]))
+    )
+    case = only(discrimination(fuse(PRE_ARCING), breaker(over)))
+    assert case.holding.up_to.value == pytest.approx(3000.0)
+    assert case.holding.beyond == State.UNDETERMINED
 
 
 @pytest.mark.parametrize(

@@ -1,6 +1,7 @@
 """Withstand: energies over a whole span of fault currents, the least cross-section and verdicts, worked by hand."""
 
 import math
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -11,7 +12,7 @@ from curvelab.calculators.facts import rows_of
 from curvelab.calculators.spans import places_of, spans_of
 from curvelab.calculators.withstand import Faults, withstand
 from curvelab.errors import InputError
-from curvelab.records.curve import Conditions
+from curvelab.records.curve import Conditions, typed_part
 from curvelab.records.device import Breaking
 from tests.devices.made import device, line, moulded_case, rcd
 
@@ -68,6 +69,19 @@ def test_nothing_is_carried_on_beyond_a_let_through_sheet():
     answer = withstand(made, PVC, Faults(least_a=150, greatest_a=9000), 4.0)
     assert [each.way for each in answer.stresses][-1] == Way.NOT_COVERED
     assert answer.stresses[-1].from_a == pytest.approx(6000.0)
+
+
+def test_in_a_gap_of_the_let_through_line_its_next_value_bounds_it():
+    gapped = let_through([(500, 38_000), (900, 50_000)])
+    gapped = replace(gapped, parts=(*gapped.parts, typed_part([1100, 6000], [55_000, 90_000])))
+    answer = withstand(inverse(gapped), PVC, Faults(least_a=700, greatest_a=5000), 4.0)
+    assert [each.way for each in answer.stresses] == [Way.LET_THROUGH, Way.GAP, Way.LET_THROUGH]
+    gap = answer.stresses[1].energy
+    assert (gap.status, gap.value) == ("at_most", pytest.approx(55_000.0))
+    assert [each.outcome for each in answer.findings] == ["meets"] * 3
+    # Less than that may pass there: too small a conductor is not sure to fail in the gap.
+    small = withstand(inverse(gapped), PVC, Faults(least_a=1000, greatest_a=1000), 2.0)
+    assert small.findings[0].outcome == "undecided"
 
 
 def test_virtual_times_are_energies():
