@@ -10,13 +10,20 @@ from curvelab.records.arrays import Bytes, Floats
 
 INK = (-1, 0, 1)
 PAPER = (-7, -6, -5, 5, 6, 7)
-"""Pixels across a line, and beside it, that tell whether it is there."""
+SIDE = 3
+"""Pixels across a line, and beside it, so many on each side, that tell whether it is there."""
 
 THERE = 0.45
 """Share of a line's usual contrast from which on it is there."""
 
 LONGEST_GAP = 3
 """Pixels that a solid line may lack; a dashed one as many as it lacks elsewhere, and"""
+
+CLEAR = 8.0
+"""A line's contrast in standard deviations of the noise that is left in it, to tell whether it is there."""
+
+MOST_ROWS = 16
+"""Rows averaged for that at most; the ends of a fainter line stay as they are."""
 
 DASHED = 1.5
 """this times as many."""
@@ -49,15 +56,16 @@ def _ends(image: Bytes, segments: Segments, k: int, span: tuple[int, int]) -> tu
     along = np.arange(span[0], span[1] + 1)
     middle = 0.5 * (segments.first[k] + segments.last[k])
     column = np.rint(segments.across[k] + segments.lean[k] * (along - middle)).astype(np.int64)
-    there = _there(image, along, column, (float(segments.first[k]), float(segments.last[k])))
+    known = (float(segments.first[k]), float(segments.last[k]))
+    there, rows = _there(image, along, column, known)
     places = np.flatnonzero(there)
-    if len(places) < 2:
-        return float(segments.first[k]), float(segments.last[k])
+    if len(places) < 2 or rows > MOST_ROWS:
+        return known
     gaps = np.diff(places)
     centre = int(np.argmin(np.abs(places - 0.5 * len(along))))
     half = max(len(gaps) // 4, 1)
     usual = float(np.quantile(gaps[max(centre - half, 0) : centre + half], 0.95)) - 1.0
-    wide = np.flatnonzero(gaps - 1 > max(LONGEST_GAP, DASHED * usual))
+    wide = np.flatnonzero(gaps - 1 > max(LONGEST_GAP + rows - 1, DASHED * usual))
     before, after = wide[wide < centre], wide[wide >= centre]
     low = places[before[-1] + 1] if len(before) else places[0]
     high = places[after[0]] if len(after) else places[-1]
@@ -66,18 +74,25 @@ def _ends(image: Bytes, segments: Segments, k: int, span: tuple[int, int]) -> tu
 
 def _there(
     image: Bytes, along: NDArray[np.int64], column: NDArray[np.int64], known: tuple[float, float]
-) -> NDArray[np.bool_]:
-    """Whether the line is darker than the paper beside it, row by row."""
+) -> tuple[NDArray[np.bool_], int]:
+    """Whether the line is darker than the paper beside it, row by row, and over how many rows that was averaged."""
     width = image.shape[1]
 
     def levels(offsets: tuple[int, ...]) -> Floats:
         found: Floats = image[along[:, None], np.clip(column[:, None] + np.array(offsets), 0, width - 1)].astype(float)
         return found
 
-    dark = np.median(levels(PAPER), axis=1) - levels(INK).min(axis=1)
+    paper = levels(PAPER)
+    dark = np.median(paper, axis=1) - levels(INK).mean(axis=1)
     inside = (along >= known[0]) & (along <= known[1])
     usual = float(np.median(dark[inside]))
-    # Where a line crosses, paper beside it is dark as well: the line is taken to go on.
-    crossed = levels(PAPER).max(axis=1) < np.median(levels(PAPER)) - 0.5 * usual
+    noise = 1.4826 * float(np.median(np.abs(np.diff(dark)))) / np.sqrt(2.0)
+    rows = max(int(np.ceil((CLEAR * noise / max(usual, 1.0)) ** 2)), 1)
+    if rows > MOST_ROWS:
+        return np.ones(len(along), dtype=bool), rows
+    dark = np.convolve(np.pad(dark, rows // 2, mode="edge"), np.ones(rows) / rows, mode="valid")[: len(along)]
+    # Where something crosses, the paper beside is dark: the line is taken to go on.
+    darker = np.minimum(paper[:, :SIDE].mean(axis=1), paper[:, SIDE:].mean(axis=1))
+    crossed = darker < np.median(darker) - max(0.5 * usual, 3.0 * noise)
     there: NDArray[np.bool_] = (dark >= THERE * usual) | crossed
-    return there
+    return there, rows

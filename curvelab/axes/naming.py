@@ -12,8 +12,8 @@ LEGIBLE = 0.4
 """Chance of the texts with one meaning from which on they count as read; a text that means anything is no accident."""
 
 LEAST_LEGIBLE = 0.35
-UNIT_WITH_NUMBER = 0.6
-"""Confidence that a unit printed with a number is that of the whole axis."""
+UNIT_WITH_NUMBER, MOST_WITH_NUMBERS = 0.6, 0.8
+"""Confidence that a unit printed with one number is that of the whole axis, and with many; a title says more."""
 
 Box = tuple[float, float, float, float]
 
@@ -98,25 +98,26 @@ def _meant(word: Word) -> tuple[AxisTitle, float] | None:
 
 
 def with_units(labels: tuple[list[Label], list[Label]]) -> list[Naming]:
-    """Numbers that carry a unit, as titles of their own axis: ``1 kA``, ``10 s``."""
-    found = []
+    """Units that numbers carry, as titles of their own axis: ``1 kA``, ``10 s``; several with one unit are surer."""
+    found: dict[tuple[int, str], Naming] = {}
     for across, beside in enumerate(labels):
         for label in beside:
             surest = max(label.readings, key=lambda reading: reading.chance)
             title = title_of(f"({surest.unit.removeprefix('x')})") if surest.unit else None
-            if title is not None and surest.unit is not None:
-                fitness = (1.0, 0.0) if across == 0 else (0.0, 1.0)
-                found.append(
-                    Naming(
-                        title=replace(title, unit=surest.unit),
-                        text=label.text,
-                        side=label.side,
-                        fitness=fitness,
-                        confidence=UNIT_WITH_NUMBER * surest.chance,
-                        box=label.box,
-                    )
-                )
-    return found
+            if title is None or surest.unit is None:
+                continue
+            before = found.get((across, surest.unit))
+            other = 1.0 - (before.confidence / MOST_WITH_NUMBERS if before else 0.0)
+            other *= 1.0 - UNIT_WITH_NUMBER / MOST_WITH_NUMBERS * surest.chance
+            found[across, surest.unit] = Naming(
+                title=replace(title, unit=surest.unit),
+                text=label.text,
+                side=label.side,
+                fitness=(1.0, 0.0) if across == 0 else (0.0, 1.0),
+                confidence=MOST_WITH_NUMBERS * (1.0 - other),
+                box=label.box,
+            )
+    return list(found.values())
 
 
 def best_pair(

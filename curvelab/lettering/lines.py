@@ -24,6 +24,9 @@ LEAST_ALIKE = 0.6
 MOST_PARTS = 1500
 """Beyond this the ink is hatching, whose parts are not joined."""
 
+CLEARLY_NEARER = 0.65
+"""Ratio of gaps below which a piece belongs to its level neighbour, whatever the rest of an upright line says."""
+
 BARRED_GAP = 0.3
 """Neighbours closer than this are letters of one word, with a grid line behind it."""
 
@@ -67,6 +70,8 @@ def text_lines(ink: Ink) -> list[TextLine]:
     level, gaps_level = _links(characters, ink.upright_lines)
     upright, gaps_upright = _links(swapped, ink.level_lines.T)
     votes = _is_upright(len(characters), level, upright, gaps_level < gaps_upright, gaps_upright < gaps_level)
+    # A chain of dashes must not take a number along that has its own neighbours much nearer.
+    votes &= ~(gaps_level < CLEARLY_NEARER * gaps_upright)
     lines = []
     for is_upright, links in ((False, level), (True, upright)):
         members = votes == is_upright
@@ -132,7 +137,7 @@ def _outermost(lines: list[TextLine]) -> list[TextLine]:
 
 
 def _links(boxes: Boxes, barriers: Bytes) -> tuple[Ints, NDArray[np.float64]]:
-    """Pairs of neighbours on a level line, shape (n, 2), and each piece's smallest gap relative to its height.
+    """Pairs of neighbours on a level line, shape (n, 2), and each piece's smallest gap relative to the lower's height.
 
     A pair apart as words are is no pair where an upright line of the page stands between.
     """
@@ -154,7 +159,8 @@ def _links(boxes: Boxes, barriers: Bytes) -> tuple[Ints, NDArray[np.float64]]:
     near &= ~within  # the dot in a zero is part of it
     left, right, relative = left[near], right[near], gap[near] / tall[near]
     free = _free(boxes[order], left, right, relative, barriers)
-    left, right, relative = left[free], right[free], relative[free]
+    left, right = left[free], right[free]
+    relative = gap[near][free] / low[near][free]
     smallest = np.full(len(order), np.inf)
     np.minimum.at(smallest, order[left], relative)
     np.minimum.at(smallest, order[right], relative)

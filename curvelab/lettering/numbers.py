@@ -13,6 +13,9 @@ LEAST_EXPONENT, MOST_EXPONENT = -9, 12
 FLATTENED = 0.15
 """Weight of 102 or 10-2 being 10² or 10⁻² whose exponent lost its height."""
 
+LOOK_ALIKE = 0.6
+"""Weight of ``IO`` being 10: in faces whose digits look like letters, where nothing else makes it a number."""
+
 GROUPED, DECIMAL = 0.75, 0.25
 """Weights of 1,000 and 1.000 being a thousand or one."""
 
@@ -36,6 +39,8 @@ _NUMBER = re.compile(
     rf"(?:(?P<lead>{_PLAIN})\s*[x×·*]\s*)?10(?:(?P<raised>{_RAISED})|\^\s*[({{]?(?P<caret>[+-]?\d+)[)}}]?)"
     rf"|(?P<mantissa>{_MANTISSA})(?:[eE](?P<exponent>[+-]?\d+)|\s?(?P<thousands>[kKM])(?![a-zA-Z]))?"
 )
+_LETTERED = re.compile(r"(?=.*[OoIlZz])[\dOoIlZzSs]+(?:[.,][\dOoIlZzSs]+)?(?= ?(?:k|[kmM]?A|m?s|min|h)?$)")
+_DIGITS = str.maketrans("OoIlZzSs", "00112255")
 _FLAT = re.compile(r"10 ?(?P<exponent>-\d{1,2}|\d)")
 
 
@@ -60,6 +65,10 @@ def number_of(text: str) -> tuple[ParsedNumber, ...]:
     for value, unit, weight in (*_regular(plain), *_flattened(plain)):
         if value > 0:
             found[value, unit] = found.get((value, unit), 0.0) + weight
+    if not found:
+        for value, unit, weight in _regular(_LETTERED.sub(lambda match: match[0].translate(_DIGITS), plain)):
+            if value > 0:
+                found[value, unit] = found.get((value, unit), 0.0) + LOOK_ALIKE * weight
     total = max(1.0, sum(found.values()))
     numbers = [ParsedNumber(value=value, unit=unit, weight=weight / total) for (value, unit), weight in found.items()]
     return tuple(sorted(numbers, key=lambda number: -number.weight))

@@ -24,7 +24,7 @@ MOST_ATOMS = 6
 """A character is never cut into more."""
 
 BROKEN_GAP = 0.14 * CAPITAL_PX
-WIDEST = 1.5 * CAPITAL_PX
+WIDEST = 1.8 * CAPITAL_PX
 JOINED_WIDEST = 1.25 * CAPITAL_PX
 """Parts of one broken character lie closer than BROKEN_GAP and are no wider than this together."""
 

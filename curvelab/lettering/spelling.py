@@ -9,6 +9,9 @@ LEAST_LETTERS = 4
 """Shorter words are too alike: ``in`` and ``Ir`` must not be taken for one another."""
 
 _LONG = tuple(sorted(word for word in WORDS if len(word) >= LEAST_LETTERS))
+_SLIM = re.compile(r"(?<=[a-z])[\]\[|!1](?=[a-z])|(?<=[a-z])0(?=[a-z])")
+"""What stands for an l within a word, or for an o."""
+
 _TOKEN = re.compile(r"[^\W\d_][\w'|]*(?:[-.][^\W\d_][\w'|]*)*|[0-9|][A-Za-z|]{3,}")
 
 
@@ -25,7 +28,7 @@ def respelt(text: str) -> tuple[str, int]:
         changed += letters
         return word
 
-    return _TOKEN.sub(mend, text), changed
+    return _TOKEN.sub(mend, _SLIM.sub(lambda match: "o" if match[0] == "0" else "l", text)), changed
 
 
 @lru_cache(maxsize=512)

@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from curvelab.lettering.decode import Character, Reading, written
+from curvelab.lettering.numbers import number_of
 from curvelab.lettering.strip import CAPITAL_PX, Strip
 from curvelab.records.sheet import Word
 
@@ -20,6 +21,9 @@ LEAST_CHANCE = 1e-3
 
 NUMBERS_APART = 0.55 * CAPITAL_PX
 """Numbers with a wider gap are two; the thin space within 1 000 is narrower."""
+
+WORDS_APART = 0.22 * CAPITAL_PX
+"""The same between a number with its unit and the next number: ``50 A`` and ``100 A``."""
 
 DIGITS_APART = 0.3 * CAPITAL_PX
 """The same beyond the usual gap of the line's digits: ``100`` and ``200`` may stand close."""
@@ -112,6 +116,10 @@ def _spans(characters: tuple[Character, ...]) -> list[tuple[float, float]]:
         numeric = left.text in _NUMERIC and right.text in _NUMERIC
         digits = left.text.isdigit() and right.text.isdigit()
         apart = min(NUMBERS_APART, usual + DIGITS_APART) if digits else NUMBERS_APART
+        if gap > WORDS_APART and right.text in _NUMERIC and left.text not in _NUMERIC:
+            if number_of(written(_within(characters[:number], edges[-1], math.inf))):
+                edges.append((left.segment.box[2] + right.segment.box[0]) / 2)
+            continue
         if numeric and gap > apart and not (gap <= GROUPS_APART and _is_group(characters[number:])):
             edges.append((left.segment.box[2] + right.segment.box[0]) / 2)
     edges.append(math.inf)
