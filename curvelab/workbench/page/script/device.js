@@ -13,7 +13,6 @@ import { attempt } from "./say.js";
 import { takeStored } from "./take-in.js";
 import { moment } from "./words.js";
 
-const ACTIONS = { stored: "stored", imported: "taken over", noted: "noted", checked: "checked", released: "released", withdrawn: "withdrawn" };
 
 export class DeviceView {
   constructor(key) {
@@ -88,7 +87,7 @@ export class DeviceView {
 
   #happened() {
     const rows = [...this.history].reverse().map((entry) => {
-      const what = `${entry.name || "Somebody"} ${ACTIONS[entry.action] ?? entry.action} revision ${entry.revision}`;
+      const what = `${entry.name || "Somebody"} ${did(entry)} revision ${entry.revision}`;
       const before = entry.action === "stored" && entry.revision > 1 && el("a", { href: `#/library?with=${part(`${this.device.key}@${entry.revision - 1},${this.device.key}@${entry.revision}`)}` }, "Beside the one before");
       return el("li", {}, el("span", {}, what), el("small", {}, [moment(entry.when), entry.reason].filter(Boolean).join(" · ")), before);
     });
@@ -99,6 +98,12 @@ export class DeviceView {
     const to = (name) => `/api/devices/${part(this.pinned)}/${name}`;
     return el("ul", { class: "exports" }, el("li", {}, el("a", { href: to("points.csv"), download: true }, "Points as a table (CSV)")), el("li", {}, el("a", { href: `/api/devices/${part(this.device.key)}/export.jsonl`, download: true }, "All that is stored (JSON lines)")));
   }
+}
+
+/** What happened, as a verb: stored, checked, released, withdrawn, made a draft again, noted. */
+function did({ action, state }) {
+  if (action !== "reviewed") return action === "noted" ? "noted something about" : action;
+  return { withdrawn: "withdrew", draft: "sent back" }[state] ?? state;
 }
 
 const device = (reading) => reading.file ?? `reading ${reading.number}`;

@@ -8,6 +8,7 @@ let timer = 0;
 /** Tell what happened; `way` = { label, act } offers a way back. */
 export function said(text, way = null) {
   clearTimeout(timer);
+  forgiven();
   const place = document.getElementById("said");
   fill(place, el("span", {}, text), way && button(way.label, () => (hush(), way.act()), { class: "plain" }));
   place.classList.add("shown");
@@ -32,7 +33,7 @@ export function refused(error) {
   place.classList.add("shown");
 }
 
-export function forgiven() {
+function forgiven() {
   document.getElementById("refused").classList.remove("shown");
 }
 
@@ -43,9 +44,7 @@ function ended(text) {
 /** Run what may be refused; the refusal is shown, and null comes back. */
 export async function attempt(work) {
   try {
-    const result = await work();
-    forgiven();
-    return result;
+    return await work();
   } catch (error) {
     if (error.name === "AbortError") return null;
     if (!("line" in error)) throw error;
