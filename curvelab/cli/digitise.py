@@ -1,12 +1,13 @@
-"""``curvelab digitise``: read a sheet, a worksheet, or every worksheet of a folder."""
+"""``curvelab digitise``: read a sheet, a worksheet, or every sheet of a folder."""
 
+from collections.abc import Mapping
 from pathlib import Path
 
 import click
 
 import curvelab
 from curvelab.cli.output import json_option, table, write_json, write_text
-from curvelab.errors import CurvelabError, InputError
+from curvelab.errors import InputError
 from curvelab.plots.overlay import draw_overlay
 from curvelab.reading.as_json import reading_json
 from curvelab.reading.complete import completed
@@ -25,32 +26,54 @@ from curvelab.worksheets.write import worksheet_text
 )
 @click.option("--picture", "picture_file", type=click.Path(dir_okay=False), help="Draw the reading over its sheet.")
 @click.option("--library", "library_file", type=click.Path(dir_okay=False), help="Store the devices in this library.")
-def command(
-    source: str,
-    page: int | None,
-    plot: int | None,
-    json_file: str | None,
-    worksheet_file: str | None,
-    picture_file: str | None,
-    library_file: str | None,
-) -> int:
-    """Read SOURCE: a sheet (PNG, JPEG, TIFF, BMP, WebP, PDF, SVG), a worksheet (.toml), or a folder of worksheets."""
+@click.option(
+    "--output",
+    type=click.Path(file_okay=False),
+    help="Of a folder: where results go [default: FOLDER/curvelab-results].",
+)
+@click.option("--cluster", metavar="ADDRESS", help="Of a folder: read over the Dask cluster with this scheduler.")
+def command(source: str, page: int | None, plot: int | None, **files: str | None) -> int:
+    """Read SOURCE: a sheet (PNG, JPEG, TIFF, BMP, WebP, PDF, SVG), a worksheet (.toml), or a folder of either.
+
+    Of a folder every page is read, on all processors, but those a worksheet in it speaks of. Each page's JSON,
+    worksheet and overlay go to the folder of results, with summary.csv and summary.json; run again, it reads only what
+    is new or has changed. To correct a page, put its worksheet beside its sheet and edit it there.
+    """
+    of_one = page, plot, files["worksheet_file"], files["picture_file"]
     if Path(source).is_dir():
-        if page or plot or worksheet_file or picture_file:
+        if any(of_one):
             raise InputError(
                 f"'{source}' is a folder", "", "Give --page, --plot, --worksheet and --picture with one sheet"
             )
-        return _read_folder(Path(source), json_file, library_file)
-    reading = curvelab.digitise(source, page=page, plot=plot)
-    if worksheet_file:
-        write_text(worksheet_text(completed(reading)), worksheet_file)
-    if picture_file:
-        draw_overlay(reading, picture_file)
-    if json_file:
-        write_json(reading_json(reading), json_file)
-    if library_file:
-        _store([(Path(source), reading)], library_file)
-    if json_file != "-":
+        return _read_folder(Path(source), files)
+    if files["output"] or files["cluster"]:
+        raise InputError(f"'{source}' is one sheet", "", "Give --output and --cluster with a folder")
+    return _read_one(source, curvelab.digitise(source, page=page, plot=plot), files)
+
+
+def _read_folder(folder: Path, files: Mapping[str, str | None]) -> int:
+    # Many pages need what one does not: processes, or a cluster.
+    from curvelab.cli.batch import RESULTS, Where, read_folder  # noqa: PLC0415
+
+    results = Path(files["output"] or folder / RESULTS)
+    where = Where(
+        results=results, library_file=files["library_file"], json_file=files["json_file"], cluster=files["cluster"]
+    )
+    return read_folder(folder, where)
+
+
+def _read_one(source: str, reading: Reading, files: Mapping[str, str | None]) -> int:
+    if files["worksheet_file"]:
+        write_text(worksheet_text(completed(reading)), files["worksheet_file"])
+    if files["picture_file"]:
+        draw_overlay(reading, files["picture_file"])
+    if files["json_file"]:
+        write_json(reading_json(reading), files["json_file"])
+    if files["library_file"]:
+        sheet = reading.worksheet.sheet
+        with curvelab.open_library(files["library_file"]) as library:
+            library.store(reading, sheet_files=[Path(source).parent / sheet.file] if sheet else [])
+    if files["json_file"] != "-":
         click.echo(summary(reading))
     return status(reading)
 
@@ -96,43 +119,3 @@ def summary(reading: Reading) -> str:
 
 
 _OUTCOMES = ("meets", "fails", "undecided", "at limit", "not covered")
-
-
-def _store(readings: list[tuple[Path, Reading]], library_file: str) -> None:
-    files = [path.parent / each.worksheet.sheet.file for path, each in readings if each.worksheet.sheet]
-    with curvelab.open_library(library_file) as library:
-        library.store([reading for _, reading in readings], sheet_files=files)
-
-
-def _read_folder(folder: Path, json_file: str | None, library_file: str | None) -> int:
-    """Read every worksheet of a folder; one that cannot be read does not stop the others."""
-    paths = sorted(folder.glob("*.toml"))
-    if not paths:
-        raise InputError(f"Folder '{folder}' holds no worksheet", "Files that end in .toml")
-    readings: list[tuple[Path, Reading]] = []
-    rows = []
-    for path in paths:
-        try:
-            reading = curvelab.digitise(path)
-        except CurvelabError as error:
-            rows.append([path.name, "-", "-", str(error)])
-            continue
-        readings.append((path, reading))
-        rows.append([path.name, str(len(reading.curves)), str(len(reading.devices)), _state(reading)])
-    if library_file:
-        _store(readings, library_file)
-    if json_file:
-        write_json([reading_json(reading) for _, reading in readings], json_file)
-    if json_file != "-":
-        click.echo(table(["worksheet", "curves", "devices", "outcome"], rows))
-    if len(readings) < len(paths):
-        return 2
-    return max(status(reading) for _, reading in readings)
-
-
-def _state(reading: Reading) -> str:
-    open_count = len(open_warnings(reading))
-    failing = sum(each.outcome == "fails" for each in reading.findings)
-    words = [f"{failing} checks fail"] if failing else []
-    words += [f"{open_count} warnings"] if open_count else []
-    return ", ".join(words) or "read"

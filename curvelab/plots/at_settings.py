@@ -2,13 +2,14 @@
 
 from collections.abc import Iterator
 from dataclasses import replace
+from typing import cast
 
 import numpy as np
 
 from curvelab.devices.device import Device
 from curvelab.records.answer import EdgeAnswer
 from curvelab.records.arrays import Floats
-from curvelab.records.curve import COVERAGE_FACTOR, Curve, Edge, Part
+from curvelab.records.curve import COVERAGE_FACTOR, Basis, Curve, Edge, Part
 from curvelab.records.device import DeviceRecord
 
 STEP = 1e-9
@@ -49,7 +50,7 @@ def _curve(edge: Edge, answer: EdgeAnswer, current: Floats) -> Curve:
         meaning=answer.meaning,
         base="A",
         parts=tuple(_parts(answer, current)),
-        basis=answer.basis,
+        basis=cast(Basis, answer.basis),
     )
 
 

@@ -33,6 +33,14 @@ def picture_format(path: str | Path) -> str:
     return ending
 
 
+def picture_bytes(figure: Figure, ending: str) -> bytes:
+    """The figure as ``png``, ``svg`` or ``pdf``, at its own size and resolution."""
+    content = BytesIO()
+    with rc_context(STYLE):
+        figure.savefig(content, format=ending, dpi=figure.dpi, metadata=METADATA[ending])
+    return content.getvalue()
+
+
 def save_figure(figure: Figure, path: str | Path) -> None:
     """Write the figure at its own size and resolution; nothing is written unless all of it can be drawn.
 
@@ -41,11 +49,8 @@ def save_figure(figure: Figure, path: str | Path) -> None:
     InputError
         The ending is not known, or the file cannot be written.
     """
-    ending = picture_format(path)
-    content = BytesIO()
-    with rc_context(STYLE):
-        figure.savefig(content, format=ending, dpi=figure.dpi, metadata=METADATA[ending])
+    content = picture_bytes(figure, picture_format(path))
     try:
-        Path(path).write_bytes(content.getvalue())
+        Path(path).write_bytes(content)
     except OSError as error:
         raise InputError(f"Picture '{path}' cannot be written: {error.strerror}", "", "Choose another place") from error

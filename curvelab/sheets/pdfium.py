@@ -43,6 +43,22 @@ def opened_page(source: Source) -> Iterator[tuple[pdfium.PdfPage, int]]:
             document.close()
 
 
+def document_pages(source: Source) -> int:
+    """Number of pages of a PDF.
+
+    Raises
+    ------
+    SheetError
+        The file is damaged or needs a password.
+    """
+    with _pdfium:
+        document = _document(source)
+        try:
+            return len(document)
+        finally:
+            document.close()
+
+
 def _document(source: Source) -> pdfium.PdfDocument:
     try:
         return pdfium.PdfDocument(source.data)

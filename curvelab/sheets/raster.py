@@ -3,6 +3,8 @@
 import io
 import threading
 import warnings
+from collections.abc import Iterator
+from contextlib import contextmanager
 
 import numpy as np
 from PIL import Image, ImageOps
@@ -31,11 +33,30 @@ def raster_page(source: Source) -> Sheet:
     SheetError
         The image is damaged, of a colour mode without grey levels, over the limits, or has no such page.
     """
+    with _guarded(source):
+        return _decoded(source)
+
+
+def image_frames(source: Source) -> int:
+    """Number of images of a TIFF, 1 of any other image.
+
+    Raises
+    ------
+    SheetError
+        The image is damaged or has too many.
+    """
+    with _guarded(source), Image.open(io.BytesIO(source.data), formats=FORMATS) as image:
+        return _frames(source, image)
+
+
+@contextmanager
+def _guarded(source: Source) -> Iterator[None]:
+    """Whatever a decoder raises or prints, as an error that names the file."""
     with _decoding, warnings.catch_warnings(), silent_decoders():
         warnings.simplefilter("ignore")
         warnings.simplefilter("error", Image.DecompressionBombWarning)
         try:
-            return _decoded(source)
+            yield
         except SheetError:
             raise
         except (Image.DecompressionBombError, Image.DecompressionBombWarning) as error:
