@@ -190,7 +190,7 @@ export class Desk {
 
   #remember() {
     const { view } = this.sheet;
-    if (view?.width) keepPlace({ x: view.x.toFixed(1), y: view.y.toFixed(1), z: view.scale.toFixed(4) });
+    if (view?.width) keepPlace({ x: view.x.toFixed(1), y: view.y.toFixed(1), z: view.scale.toPrecision(6) });
   }
 
   // Drawers. -------------------------------------------------------------------------------------------------------
