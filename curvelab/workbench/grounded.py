@@ -3,19 +3,10 @@
 from dataclasses import replace
 
 from curvelab.reading.complete import completed
-from curvelab.reading.corrections import (
-    Avoid,
-    Correction,
-    FillDevice,
-    MoveMark,
-    Passes,
-    RemoveCurve,
-    RemoveDevice,
-    RemoveMark,
-    SetCurve,
-    SetDevice,
-    SetMark,
-)
+from curvelab.reading.correct_axes import MoveMark, RemoveMark, SetMark
+from curvelab.reading.correct_devices import FillDevice, RemoveDevice, SetDevice
+from curvelab.reading.correct_lines import Avoid, Passes, RemoveCurve, SetCurve
+from curvelab.reading.corrections import Correction
 from curvelab.records.reading import Reading
 from curvelab.records.worksheet import AxisEntry, Worksheet
 

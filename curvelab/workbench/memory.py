@@ -13,7 +13,7 @@ CAPACITY = {"axes": 4, "trace": 60, "fit": 60, "check": 60}
 PAGES = 3
 """Pages kept, those used last."""
 
-MOST_PIXELS = 40_000_000
+MOST_PIXELS = 20_000_000
 """Of all pages kept together; the page in use is kept whatever its size."""
 
 

@@ -167,6 +167,8 @@ async def body_of(kind: Any, request: Request) -> Any:
     content = await bounded_body(request, LARGEST_BODY)
     try:
         given = json.loads(content)
+        # Halves of characters, which JSON can name, could be neither written nor sent.
+        json.dumps(given, ensure_ascii=False).encode()
     except (ValueError, RecursionError) as error:
         raise InputError(f"The body is not JSON: {' '.join(str(error).split())[:80]}", "A JSON text in UTF-8") from None
     return value_of(kind, given, "body")

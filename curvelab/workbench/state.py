@@ -6,6 +6,7 @@ from pathlib import Path
 from typing import Any
 
 from curvelab.errors import InputError
+from curvelab.records.finding import finding_json
 from curvelab.records.reading import Reading
 from curvelab.sheets.tiles import TILE, Pyramid
 from curvelab.workbench.draft import Draft
@@ -43,6 +44,7 @@ def draft_state(draft: Draft, have: int | None = None) -> dict[str, Any]:
         "reading_version": work.number,
         "stale": work.of is not worksheet,
         **({} if have == work.number and reading else {"reading": _reading_state(draft)}),
+        "findings": [finding_json(each) for each in reading.findings] if reading else [],
         "limits": drawn_limits(reading.devices, reading.findings) if reading else [],
         "open": [entry_json(each) for each in entries],
         "can_store": can_store(work, entries) and work.of is worksheet,

@@ -5,7 +5,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from curvelab.reading.as_json import reading_json
+from curvelab.reading.as_json import numbers, reading_json
 from curvelab.records.arrays import Floats
 from curvelab.records.reading import Reading
 from curvelab.workbench.amperes import with_amperes
@@ -58,10 +58,21 @@ def thinned(places: Floats, stray: float) -> list[int]:
 
 def _short(value: Any) -> Any:
     """The same with numbers of as many figures as are ever shown."""
-    if isinstance(value, float):
-        return float(f"{value:.{FIGURES}g}")
-    if isinstance(value, list):
-        return [_short(each) for each in value]
     if isinstance(value, dict):
         return {name: _short(each) for name, each in value.items()}
-    return value
+    if not isinstance(value, list) or not value:
+        return value
+    if isinstance(value[0], float | None):
+        return numbers(rounded(np.array(value, dtype=np.float64)))
+    return [_short(each) for each in value]
+
+
+def rounded(values: Floats) -> Floats:
+    """Values to so many figures, each the nearest number that is written so short."""
+    with np.errstate(divide="ignore", over="ignore"):
+        digits = FIGURES - 1 - np.floor(np.log10(np.abs(values)))
+        digits = np.where(np.isfinite(digits), np.clip(digits, -22, 22), 0)
+        # A whole number divided by a power of ten is rounded once, and so is the nearest to its decimal form.
+        power = 10.0 ** np.abs(digits)
+        result: Floats = np.where(digits >= 0, np.round(values * power) / power, np.round(values / power) * power)
+    return result

@@ -32,7 +32,7 @@ class Work:
     of: Worksheet | None = None
     """The worksheet that ``reading`` was made from."""
     number: int = 0
-    """Counts readings."""
+    """Counts readings; their findings may come later."""
     plots: tuple[Box, ...] = ()
     """Of the page, in the order of their numbers."""
 
@@ -130,7 +130,7 @@ class Worker:
             log.exception("A reading failed")
             problem = CurvelabError(f"The program made a mistake in reading: {error}", "", "Undo the last change")
             return replace(self.work, state="failed", stage="", error=problem)
-        number = self.work.number + 1
+        number = self.work.number
         return Work(state="ready", fraction=1.0, reading=reading, of=worksheet, number=number, plots=plots)
 
 

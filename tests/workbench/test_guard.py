@@ -82,6 +82,30 @@ def test_too_much_is_refused_while_it_streams(client: TestClient, monkeypatch: p
     assert review.status_code == 413
 
 
+@pytest.mark.parametrize(
+    "content",
+    [
+        b"",
+        b"{",
+        b"[1",
+        b'"text"',
+        b"null",
+        b'{"name": "\\ud800"}',
+        b"\xff\xfe{}",
+        b"[" * 100_000,
+        b'{"name": NaN}',
+        b'{"name": "a", "name2": 1}',
+        b'{"name": "Ida", "revision": 1e400}',
+        b'{"name": "Ida", "revision": 99999999999999999999}',
+        b'{"name": "Ida", "to": {"x": 1}}',
+    ],
+)
+def test_a_hostile_body_is_refused_in_one_line(client: TestClient, content: bytes) -> None:
+    answer = client.post("/api/devices/x/review", content=content)
+    assert answer.status_code == 400
+    assert len(answer.json()["error"]["problem"]) < 300
+
+
 def test_no_path_from_the_browser_is_opened(client: TestClient, tmp_path: Path) -> None:
     (tmp_path / "secret.txt").write_text("secret")
     for address in (
