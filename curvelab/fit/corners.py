@@ -9,6 +9,7 @@ from curvelab.fit.segments import Segments
 from curvelab.fit.stretch import Stretch
 from curvelab.fit.tabulate import Samples
 from curvelab.records.fit import Kink
+from curvelab.records.propagation import propagated
 
 LEAST_TURN = 0.02
 """Radians below which two strokes in line are no corner."""
@@ -28,7 +29,7 @@ def _kink(left: Stretch, right: Stretch, place: float, rising: bool) -> Kink:
     by_v = np.array([1.0, -1.0]) / (slopes[1] - slopes[0])
     sensitivity = np.stack([by_v, np.array([1.0, 0.0]) + slopes[0] * by_v])
     turned = np.array([[1.0, 1.0], [-1.0, 1.0]]) / math.sqrt(2.0) @ sensitivity
-    sd = np.sqrt((turned**2) @ variances)
+    sd = np.sqrt(np.diag(propagated(turned, np.diag(variances))))
     log_current, log_value = unrotated(u, left.value(u), rising)
     return Kink(
         log_current=float(log_current[0]),

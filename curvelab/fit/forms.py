@@ -12,6 +12,7 @@ from curvelab.fit.rotate import ROOT_2, rotated
 from curvelab.paths import shipped
 from curvelab.records.arrays import Floats
 from curvelab.records.form import FormParameter, PublishedForm
+from curvelab.records.propagation import propagated
 
 Shape = Literal["inverse_time", "thermal_cold", "thermal_hot", "adiabatic", "definite_time"]
 
@@ -67,7 +68,7 @@ class Form:
             rate = 3.0 / ROOT_2 if self.shape == "adiabatic" else 1.0 / ROOT_2
             return (_on_log(self.setting, rate * shift[1], rate * math.sqrt(covariance[1, 1])),)
         turn = np.array([[1.0, 1.0], [-1.0, 1.0]]) / ROOT_2
-        at, spread = turn @ shift[:2], np.sqrt(np.diag(turn @ covariance[:2, :2] @ turn.T))
+        at, spread = turn @ shift[:2], np.sqrt(np.diag(propagated(turn, covariance[:2, :2])))
         found = (_on_log("pick_up", at[0], spread[0]), _on_log(self.setting, at[1], spread[1]))
         if self.shape != "thermal_hot":
             return found

@@ -24,8 +24,8 @@ from curvelab.fit.stretch import Stretch
 from curvelab.records.arrays import Floats
 from curvelab.records.form import PublishedForm
 
-ONCE_IN = 1e-3
-"""How often a true form may be refused by chance."""
+ONCE_IN = 1e-5
+"""How often a true form may be refused by chance, were the noise known."""
 
 DRAWN = 4e-5
 """Decades by which a sheet may draw a form wrongly throughout: 0.016 px at 400 px a decade."""

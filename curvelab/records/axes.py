@@ -8,6 +8,7 @@ from numpy.typing import ArrayLike
 
 from curvelab.errors import AxesError
 from curvelab.records.arrays import Floats, freeze
+from curvelab.records.propagation import propagated
 from curvelab.units import CURRENT_UNITS, unit_factor
 
 Scale = Literal["log", "linear"]
@@ -160,9 +161,7 @@ class PlaneMap:
 
     def covariance_at(self, places: ArrayLike) -> Floats:
         """Covariance of the scaled pair that the calibration causes, shape (n, 2, 2)."""
-        sensitivity = self.sensitivity(places)
-        covariance: Floats = np.einsum("kim,mn,kjn->kij", sensitivity, self.covariance, sensitivity)
-        return covariance
+        return propagated(self.sensitivity(places), self.covariance)
 
     def errors_at(self, places: ArrayLike) -> Floats:
         """What independent errors of unit variance, whose sum the calibration's is, do to the scaled pair.

@@ -36,7 +36,7 @@ class PublishedForm:
     rms : float
         Root mean square of the points' distance from it along the normal, in decades.
     excess : float
-        How much worse it fits than the spline, as a share of what chance allows once in a thousand: below 1.
+        How much worse it fits than the spline, as a share of what chance may make of a true form: below 1.
     also : tuple of str
         Forms that are the same line with other parameters: only the sheet's words can tell which is meant.
     rivals : tuple of str
