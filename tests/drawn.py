@@ -8,6 +8,7 @@ from numpy.typing import NDArray
 from scipy.spatial import cKDTree
 
 from demo_curves.drawing.degrade import Scan, bilevel, scanned, seen_through
+from demo_curves.drawing.design import SheetDesign
 from demo_curves.drawing.files import image_file
 from demo_curves.drawing.geometry import Points, at_length, densified, lengths
 from demo_curves.drawing.layout import lay_out
@@ -17,6 +18,7 @@ from demo_curves.drawing.truth import PlotTruth, SheetTruth
 from demo_curves.drawing.worksheet import Clicks, WorksheetHead, worksheet_text
 from tests.drawing.shapes import KINDS, Subject
 from tests.drawing.styles import styled
+from tests.drawing.worded import WORDINGS, worded
 
 QUALITIES = {
     "clean": ("agg", "resvg", "pdfium"),
@@ -62,10 +64,30 @@ def sheet_of(subject: Subject, seed: int, quality: str = "clean", renderer: str 
 def _drawn(
     subject: Subject, stem: str, chance: tuple[int, np.random.Generator], quality: str, renderer: str | None
 ) -> DrawnSheet:
+    design = styled(subject, chance[1], line_art=quality == "bilevel")
+    return _printed(design, subject, stem, chance, quality, renderer)
+
+
+def worded_sheet(seed: int, quality: str = "clean", kind: str | None = None) -> DrawnSheet:
+    """A sheet whose words tell what every line is (see WORDINGS)."""
+    rng = np.random.default_rng(seed)
+    kind = kind or sorted(WORDINGS)[seed % len(WORDINGS)]
+    wording = WORDINGS[kind](rng)
+    design = worded(wording, rng, line_art=quality == "bilevel")
+    return _printed(design, wording.subject, f"{kind}-{seed}", (seed, rng), quality, None)
+
+
+def _printed(
+    design: SheetDesign,
+    subject: Subject,
+    stem: str,
+    chance: tuple[int, np.random.Generator],
+    quality: str,
+    renderer: str | None,
+) -> DrawnSheet:
     seed, rng = chance
     renderers = QUALITIES[quality]
     renderer = renderer or renderers[seed % len(renderers)]
-    design = styled(subject, rng, line_art=quality == "bilevel")
     drawn = lay_out(design)
     truth = drawn.truth
     page = design.page

@@ -51,25 +51,26 @@ def _by_value(scaled: Floats, *, falls: bool) -> tuple[Floats, Floats]:
     return rising, current
 
 
-def monotone_match(costs: Floats, dearest: float) -> list[int] | None:
-    """For each row (labels in order) the column (lines in order) it belongs to, columns rising; None where impossible.
+def monotone_match(gains: Floats) -> dict[int, int]:
+    """Which row (labels in order) belongs to which column (lines in order), columns rising with rows.
 
-    The cheapest assignment in which a later label has a later line and every label has one (dynamic programming).
+    The assignment of the largest sum of gains (dynamic programming); -inf where a pair cannot be. Rows and columns may
+    be left over.
     """
-    rows, columns = costs.shape
-    if rows > columns:
-        return None
-    best = np.full((rows + 1, columns + 1), np.inf)
-    best[0] = 0.0
+    rows, columns = gains.shape
+    best = np.zeros((rows + 1, columns + 1))
     for row in range(1, rows + 1):
-        for column in range(row, columns + 1):
-            best[row, column] = min(best[row, column - 1], best[row - 1, column - 1] + costs[row - 1, column - 1])
-    if not np.isfinite(best[rows, columns]):
-        return None
-    chosen, column = [0] * rows, columns
-    for row in range(rows, 0, -1):
-        while best[row, column] == best[row, column - 1]:
+        for column in range(1, columns + 1):
+            both = best[row - 1, column - 1] + gains[row - 1, column - 1]
+            best[row, column] = max(best[row - 1, column], best[row, column - 1], both)
+    match: dict[int, int] = {}
+    row, column = rows, columns
+    while row and column:
+        if best[row, column] == best[row - 1, column]:
+            row -= 1
+        elif best[row, column] == best[row, column - 1]:
             column -= 1
-        chosen[row - 1] = column - 1
-        column -= 1
-    return chosen if all(costs[row, column] <= dearest for row, column in enumerate(chosen)) else None
+        else:
+            row, column = row - 1, column - 1
+            match[row] = column
+    return match

@@ -10,8 +10,10 @@ from curvelab.reading.said import Said, said_by
 from curvelab.records.arrays import Floats
 from curvelab.trace.found import FoundLine, ShortLine
 
-BESIDE = 2.2
+BESIDE = 2.6
 """Heights of letters within which words stand beside a line."""
+MIDDLE = 0.25
+"""Weight of the distance from the middle of words beside that from their box: on its own line it lies in the middle."""
 CLEARER = 1.7
 """How many times farther the next line is from words that mean one."""
 ROW = 0.7
@@ -123,7 +125,7 @@ def labels_on(
         if not ranked or ranked[0][0] > BESIDE:
             continue
         nearest, number = ranked[0]
-        if len(ranked) > 1 and ranked[1][0] < max(CLEARER * nearest, nearest + 0.35):
+        if len(ranked) > 1 and ranked[1][0] < max(CLEARER * nearest, nearest + 0.25):
             doubtful.append(phrase)
             continue
         labels.append(Label(phrase=phrase, said=said, line=number, distance=nearest))
@@ -140,7 +142,10 @@ def distances(phrase: Phrase, lines: Sequence[FoundLine], short_lines: Sequence[
 def _distances(
     phrase: Phrase, courses: Sequence[Floats], short_lines: Sequence[ShortLine]
 ) -> Iterator[tuple[float, int]]:
-    beside = [_from_box(phrase.box, course) / phrase.height for course in courses]
+    middle = np.array(phrase.middle)
+    beside = [
+        (_from_box(phrase.box, course) + MIDDLE * _from_place(middle, course)) / phrase.height for course in courses
+    ]
     tips = [tip for line in short_lines if (tip := _leads_to(phrase, line)) is not None]
     for number, course in enumerate(courses):
         led = [_from_place(tip, course) / phrase.height for tip in tips]

@@ -9,6 +9,8 @@ from curvelab.reading.said import Said, said_by, without
 
 LONGEST_NAME = 6
 """Words up to which a line of text may name a device; longer ones explain."""
+FEWEST_WORDS = 4
+"""Words from which a text within the plot explains something; shorter ones belong to a line."""
 NAMES = ("kind", "characteristic", "characteristics", "ratings", "rating_range", "residual_current_a", "residual_delay")
 
 
@@ -39,7 +41,7 @@ def sheet_said(phrases: Sequence[Phrase], frame: Box) -> SheetSaid:
     around = [one for one in phrases if not inside(one, frame) and not _is_number(one)]
     above = sorted((one for one in around if one.box[3] < frame[1] and not one.turned_deg), key=_by_height)
     beside = [one for one in around if one not in above]
-    notes = [one for one in phrases if inside(one, frame)]
+    notes = [one for one in phrases if inside(one, frame) and len(one.text.split()) >= FEWEST_WORDS]
     title = above[0] if above else max(beside, key=lambda one: one.height, default=None)
     spoken = [*_of(above, explains=False), *_of(beside, explains=True), *_of(notes, explains=True)]
     return SheetSaid(title=title.text if title else "", said=reduce(Said.over, spoken, Said()))

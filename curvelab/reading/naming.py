@@ -63,7 +63,7 @@ class _Namer:
         self.sheet: SheetSaid = sheet_said([one for one in phrases if id(one) not in legend], axes.frame)
         self.order = Order([line.trace for line in found.lines], axes)
         self.said: list[LineSaid] = said_of_lines(found, labels, rows, axes, self.order)
-        self.whose = identities(found.lines, self.said, self.order)
+        self.whose = identities(found.lines, self.said, self.order, self.sheet.said.characteristics)
         self.devices: list[DeviceEntry] = []
         self.warnings: list[ReadingWarning] = []
 
@@ -75,6 +75,7 @@ class _Namer:
         for number in twins(entries):
             entries[number] = replace(entries[number], edge=None)
         entries = [replace(entry, devices=()) if entry.edge is None else entry for entry in entries]
+        self._warn(entries)
         used = {key for entry in entries for key in entry.devices}
         devices = self.given or tuple(entry for entry in self.devices if entry.nameplate.key in used)
         return Naming(
@@ -85,6 +86,36 @@ class _Namer:
             warnings=tuple(self.warnings),
         )
 
+    def _warn(self, entries: Sequence[CurveEntry]) -> None:
+        """What stays open, and words that may be misread."""
+        for line, said, entry in zip(self.lines, self.said, entries, strict=True):
+            at = (float(line.trace.places[0, 0]), float(line.trace.places[0, 1]))
+            for phrase in said.doubtful:
+                self.warnings.append(
+                    ReadingWarning(
+                        code="label-doubtful",
+                        text=f"The words on this line were read as '{phrase.text}': check them on the sheet",
+                        at=at,
+                    )
+                )
+            if entry.edge is not None and not entry.devices:
+                self.warnings.append(
+                    ReadingWarning(
+                        code="device-unknown",
+                        text="Whose line this is cannot be read from the sheet: give [[devices]] with kind and key",
+                        at=at,
+                    )
+                )
+        for device in self.devices if not self.given else ():
+            plate = device.nameplate
+            if plate.rated_current_a is None and plate.kind not in ("relay", "rcd"):
+                self.warnings.append(
+                    ReadingWarning(
+                        code="rating-unknown",
+                        text=f"'{plate.key}' has no rated current on the sheet: set rated_current_a or ratings",
+                    )
+                )
+
     def _said(self, number: int) -> Said:
         """What line and sheet say together; of a sheet with several devices each line says which is its own."""
         return self.said[number].said.over(self._of_identity(number)).over(self.sheet.said)
@@ -94,11 +125,12 @@ class _Namer:
         whose = self.whose[number]
         if whose is None:
             return Said()
-        characteristic, rating, settings, start = whose
+        characteristic, rating, rating_range, settings, start = whose
         return Said(
             characteristic=characteristic,
             characteristics=(characteristic,) if characteristic else (),
             ratings=(rating,) if rating is not None else (),
+            rating_range=rating_range,
             settings=dict(settings),
             start=start,  # type: ignore[arg-type]
         )
@@ -136,7 +168,7 @@ class _Namer:
 
     def _device_said(self, number: int) -> Said:
         """What is said of a line's device: with several on the sheet, a line without words has none of them."""
-        several = len({one[:2] for one in self.whose if one is not None}) > 1
+        several = len({one[:3] for one in self.whose if one is not None}) > 1
         if several and self.whose[number] is None:
             return without(self.sheet.said, "characteristic", "characteristics", "ratings", "kind")
         return self._said(number)

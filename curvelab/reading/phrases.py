@@ -1,7 +1,8 @@
 """Phrases: the words of a sheet joined to lines of text, as one reads them."""
 
-from collections.abc import Iterable
-from dataclasses import dataclass
+import re
+from collections.abc import Iterable, Iterator
+from dataclasses import dataclass, replace
 from itertools import pairwise
 
 import numpy as np
@@ -10,8 +11,9 @@ from curvelab.records.sheet import Word
 
 Box = tuple[float, float, float, float]
 
-ONE_WORD, ONE_LINE = 0.16, 1.1
-"""Gap between words, relative to their height, up to which they are pieces of one word, or words of one line."""
+_VALUE = re.compile(r"(\d+(?:[.,]\d+)? ?A)(?: |(?=\d)|$)")
+ONE_WORD, ONE_LINE = 0.2, 0.75
+"""Gap between words, relative to their size, up to which they are pieces of one word, or words of one line."""
 SAME_BASE = 0.35
 """Distance of their middles, relative to their height, of words in one line."""
 SAME_HEIGHT = 1.45
@@ -22,12 +24,13 @@ DASHES = "-–—_.·' \"|"
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Phrase:
-    """A line of text with the box around it in places, the height of its letters and its reading direction."""
+    """A line of text with its box in places, height of letters, reading direction, and the chance that it reads so."""
 
     text: str
     box: Box
     height: float
     turned_deg: float = 0.0
+    confidence: float = 1.0
 
     @property
     def middle(self) -> tuple[float, float]:
@@ -37,7 +40,8 @@ class Phrase:
 
 def phrases_of(words: Iterable[Word]) -> tuple[Phrase, ...]:
     """Lines of text, top to bottom; words that say nothing (dashes of a line, doubtful readings) left out."""
-    left = [word for word in words if word.confidence >= LEAST_CONFIDENCE and any(c.isalnum() for c in word.text)]
+    apart = (piece for word in words for piece in _labels_apart(word))
+    left = [word for word in apart if word.confidence >= LEAST_CONFIDENCE and any(c.isalnum() for c in word.text)]
     level = sorted((word for word in left if word.turned_deg % 360 == 0), key=lambda word: (word.box[0], word.box[1]))
     lines: list[list[Word]] = []
     for word in level:
@@ -50,12 +54,25 @@ def phrases_of(words: Iterable[Word]) -> tuple[Phrase, ...]:
     return tuple(sorted(map(_phrase, [*lines, *turned]), key=lambda one: (one.box[1], one.box[0])))
 
 
+def _labels_apart(word: Word) -> Iterator[Word]:
+    """Values that stand side by side in one run, ``16 A 25 A``, belong to lines of their own."""
+    pieces = list(_VALUE.finditer(word.text))
+    if len(pieces) < 2 or word.turned_deg or "".join(one[0] for one in pieces).strip() != word.text.strip():
+        yield word
+        return
+    x0, y0, x1, y1 = word.box
+    for piece in pieces:
+        start, end = (x0 + (x1 - x0) * at / len(word.text) for at in (piece.start(1), piece.end(1)))
+        yield replace(word, text=piece[1], box=(start, y0, end, y1), alternatives=())
+
+
 def _goes_on(before: Word, word: Word) -> bool:
     height = max(_height(before), _height(word))
+    size = max(before.height, word.height)
     apart = word.box[0] - before.box[2]
     level = abs((word.box[1] + word.box[3]) - (before.box[1] + before.box[3])) / 2
     alike = max(before.height, word.height) <= SAME_HEIGHT * min(before.height, word.height)
-    return -0.5 * height < apart < ONE_LINE * height and level < SAME_BASE * height and alike
+    return -0.5 * size < apart < ONE_LINE * size and level < SAME_BASE * height and alike
 
 
 def _height(word: Word) -> float:
@@ -65,10 +82,16 @@ def _height(word: Word) -> float:
 def _phrase(line: list[Word]) -> Phrase:
     text = line[0].text
     for before, word in pairwise(line):
-        near = word.box[0] - before.box[2] < ONE_WORD * max(_height(before), _height(word))
+        near = word.box[0] - before.box[2] < ONE_WORD * max(before.height, word.height)
         text += word.text if near else f" {word.text}"
     boxes = np.array([word.box for word in line])
     low, high = boxes[:, :2].min(axis=0), boxes[:, 2:].max(axis=0)
     box = (float(low[0]), float(low[1]), float(high[0]), float(high[1]))
     height = float(np.median([word.height for word in line]))
-    return Phrase(text=text.strip(DASHES), box=box, height=height, turned_deg=line[0].turned_deg)
+    return Phrase(
+        text=text.strip(DASHES),
+        box=box,
+        height=height,
+        turned_deg=line[0].turned_deg,
+        confidence=min(word.confidence for word in line),
+    )

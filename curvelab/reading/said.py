@@ -64,7 +64,9 @@ _RELAY = re.compile(
 )
 _AMPERES = re.compile(r"(?<!\d)(?<!\d[.,])(\d{1,4}(?:[.,]\d)?)\s?(?:A|amps?|amperes?)(?![A-Za-z²\d])")
 _RANGE = re.compile(r"(\d{1,4}(?:[.,]\d)?)\s?A?\s*(?:to|[-–…]|up to|bis|à)\s*(\d{1,4}(?:[.,]\d)?)\s?A(?![A-Za-z²\d])")
-_LIST = re.compile(r"((?:\d{1,4}(?:\.\d)?\s?A?(?:,\s+|\s*(?:[/;]|and|und|et|&)\s*))+\d{1,4}(?:\.\d)?)\s?A(?![A-Za-z²\d])")
+_LIST = re.compile(
+    r"((?:\d{1,4}(?:\.\d)?\s?A?(?:,\s+|\s*(?:[/;]|and|und|et|&)\s*))+\d{1,4}(?:\.\d)?)\s?A(?![A-Za-z²\d])"
+)
 _TYPED = re.compile(r"(?<![A-Za-z])[BCDKZ] ?(\d{1,3})(?![\d.])")
 _MILLI = re.compile(r"(?<!\d)(?<!\d[.,])(\d{1,4})\s?mA(?![A-Za-z²\d])")
 _SETTING = re.compile(
@@ -140,7 +142,7 @@ def said_by(text: str) -> Said:
         ratings=() if ranges else _ratings(plain),
         rating_range=(_number(ranges[1]), _number(ranges[2])) if ranges else None,
         number=_number(bare[1]) if bare else None,
-        residual_current_a=milli[0] / 1000.0 if len(milli) == 1 else None,
+        residual_current_a=milli[0] / 1000.0 if len(milli) == 1 and milli[0] > 0 else None,
         residual_delay=_delay(text),
         start=_start(lower),
         settings=settings,

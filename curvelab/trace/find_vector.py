@@ -37,10 +37,10 @@ def find_on_strokes(prepared: Prepared) -> FoundLines:
     judge = Judge.of(prepared.axes, STRAIGHT)
     cover = Cover(spacing=SPACING, slack=NEAR)
     candidates = _candidates(prepared, judge.window)
-    short = [one for one in candidates if _is_straight(one) and one.length < LEAST_LENGTH * judge.side]
+    short = [one for one in candidates if _is_straight(one) and judge.is_furniture(one.points)]
     lines: list[FoundLine] = []
     for candidate in _without_hatching(candidates):
-        if cover.holds(candidate.points) or candidate in short:
+        if candidate.length < LEAST_LENGTH * judge.side or cover.holds(candidate.points):
             continue
         guide = Guide(through=(_middle(candidate.points),))
         try:

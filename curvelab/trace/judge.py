@@ -4,6 +4,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 import numpy as np
+from numpy.typing import NDArray
 
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes
@@ -55,9 +56,9 @@ class Judge:
         """Whether a straight line inside the plot is as short as a leader or an arrow."""
         return not self.at_frame(places).any() and length_of(places) < LONGEST_FURNITURE * self.side
 
-    def at_frame(self, places: Floats) -> Floats:
+    def at_frame(self, places: Floats) -> NDArray[np.bool_]:
         """Whether the line's start and end lie at the frame."""
-        result: Floats = self.window.depth(places[[0, -1]]) < AT_FRAME * self.side
+        result: NDArray[np.bool_] = self.window.depth(places[[0, -1]]) < AT_FRAME * self.side
         return result
 
     def _on_grid(self, places: Floats) -> float:
