@@ -12,9 +12,36 @@ _PUBLIC = {
     "digitise": "curvelab.reading.digitise",
     "open_library": "curvelab.library.library",
     "compare": "curvelab.calculators.compare",
+    "disconnection": "curvelab.calculators.disconnection",
+    "Circumstances": "curvelab.calculators.circumstances",
+    "withstand": "curvelab.calculators.withstand",
+    "Faults": "curvelab.calculators.withstand",
+    "conductor_of": "curvelab.calculators.conductors",
+    "discrimination": "curvelab.calculators.discrimination",
+    "transformer_of": "curvelab.calculators.transformer",
+    "overload": "curvelab.calculators.overload",
+    "Load": "curvelab.calculators.overload",
+    "breaking": "curvelab.calculators.breaking",
+    "ShortCircuit": "curvelab.calculators.breaking",
 }
 
-__all__ = ["__version__", "compare", "digitise", "open_library"]
+__all__ = [
+    "Circumstances",
+    "Faults",
+    "Load",
+    "ShortCircuit",
+    "__version__",
+    "breaking",
+    "compare",
+    "conductor_of",
+    "digitise",
+    "disconnection",
+    "discrimination",
+    "open_library",
+    "overload",
+    "transformer_of",
+    "withstand",
+]
 
 
 def __getattr__(name: str) -> Any:

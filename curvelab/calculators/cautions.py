@@ -8,6 +8,9 @@ from curvelab.devices.device import Device
 from curvelab.units import written_current
 
 _RECLOSE = "Do not re-close on a fault: find it first, and let a bimetal cool."
+BACK_UP = ("aM", "aR")
+"""Characteristics of fuses that break short circuits only: they give no overload protection."""
+
 _BREAKERS = ("mcb", "mccb", "acb", "rcbo")
 
 
@@ -28,7 +31,7 @@ GENERAL = Caution(
 def cautions_of(*devices: Device) -> tuple[Caution, ...]:
     """Cautions on the devices an answer rests on, and the general one last."""
     of_devices = (caution for device in devices for caution in _of_device(device))
-    return (*dict.fromkeys(of_devices), *_reclosing(devices), GENERAL)
+    return (*dict.fromkeys(of_devices), *_overload(devices), *_reclosing(devices), GENERAL)
 
 
 def least_breaking_current_a(device: Device) -> float | None:
@@ -57,6 +60,12 @@ def _of_device(device: Device) -> Iterator[Caution]:
             "another device must clear those currents."
         )
         yield Caution(code="least-breaking-current", text=text)
+
+
+def _overload(devices: tuple[Device, ...]) -> Iterator[Caution]:
+    for device in devices:
+        if device.nameplate.kind == "fuse" and device.nameplate.characteristic in BACK_UP:
+            yield Caution(code="no-overload-protection", text=f"{device.key} gives no overload protection.")
 
 
 def _reclosing(devices: tuple[Device, ...]) -> Iterator[Caution]:

@@ -4,10 +4,10 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from math import isfinite
 
-from curvelab.calculators.cautions import Caution, cautions_of
+from curvelab.calculators.cautions import BACK_UP, Caution, cautions_of
 from curvelab.calculators.estimate import Estimate, estimate
 from curvelab.calculators.facts import Origin, Row, lies_in, rows_of
-from curvelab.calculators.refusals import BACK_UP, no_total_time, not_protective, reason, residual_only
+from curvelab.calculators.refusals import no_total_time, not_protective, reason, residual_only
 from curvelab.calculators.verdict import Requirement, verdict
 from curvelab.devices.bases import amperes
 from curvelab.devices.device import Device

@@ -12,8 +12,6 @@ from curvelab.units import written, written_current
 
 NAMES = {"fast": "fast edge", "slow": "slow edge", "mean": "mean line"}
 _UNITS = {"time": "s", "let_through": "A2s", "peak": "A"}
-BACK_UP = ("aM", "aR")
-"""Characteristics of fuses that break short circuits only: they give no overload protection."""
 
 
 def not_protective(device: Device) -> str:

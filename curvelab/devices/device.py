@@ -8,19 +8,19 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from curvelab.devices.ask import edge_currents, edge_times
+from curvelab.devices.asked import as_given, positive, shown_edge
 from curvelab.devices.bases import amperes, checked_base
 from curvelab.devices.breaking import breaking_capacity_a
 from curvelab.devices.element import pick_up
-from curvelab.devices.found import Found, shown
+from curvelab.devices.found import Found
 from curvelab.devices.limiting import edge_limits, edge_values
 from curvelab.devices.lines import Lines, is_off, lines_of_edge, needed_settings
 from curvelab.devices.question import Path, Question, path_of, sees
 from curvelab.devices.settings import Given, checked_settings, missing_settings
-from curvelab.errors import DeviceError
 from curvelab.records.answer import EdgeAnswer, LetThrough, LetThroughCurrents, TripCurrents, TripTimes
 from curvelab.records.arrays import Floats
 from curvelab.records.band import Band, bands_of
-from curvelab.records.curve import MEANINGS, Conditions, Curve, Edge
+from curvelab.records.curve import Conditions, Curve, Edge
 from curvelab.records.device import DeviceRecord, Nameplate
 
 Limiting = Literal["let_through", "peak"]
@@ -140,7 +140,7 @@ class Device:
         DeviceError
             A current that is not positive, a base the device lacks, or an adjustable device without its settings.
         """
-        asked = _positive(current, "current")
+        asked = positive(current, "current")
         question = Question(path=path, meaning=meaning, conditions=conditions)
         way = path_of(question, self.nameplate, checked_base(base))
         self._refuse_unset()
@@ -151,7 +151,7 @@ class Device:
             return edge_times(lines, edge, self._units(lines, base), limited, own=own)
 
         answers = self._each_edge(self._times, times, (question, way), asked.shape)
-        return TripTimes(current=_as_given(asked), base=base, **answers)
+        return TripTimes(current=as_given(asked), base=base, **answers)
 
     def trip_current(
         self,
@@ -178,7 +178,7 @@ class Device:
         DeviceError
             As for `trip_time`.
         """
-        asked = _positive(time_s, "time")
+        asked = positive(time_s, "time")
         question = Question(path=path, meaning=meaning, conditions=conditions)
         way = path_of(question, self.nameplate, checked_base(base))
         self._refuse_unset()
@@ -188,7 +188,7 @@ class Device:
 
         answers = self._each_edge(self._times, currents, (question, way), asked.shape)
         return TripCurrents(
-            time_s=_as_given(asked), base=base, trips=answers["slow"], holds=answers["fast"], mean=answers["mean"]
+            time_s=as_given(asked), base=base, trips=answers["slow"], holds=answers["fast"], mean=answers["mean"]
         )
 
     def let_through(
@@ -205,7 +205,7 @@ class Device:
         Never beyond what is drawn; over several voltages, none of which is asked for, the slow edge answers the
         largest. Parameters and errors as for `trip_time`.
         """
-        asked = _positive(current, "current")
+        asked = positive(current, "current")
         question = Question(meaning=meaning, conditions=conditions)
         way = path_of(question, self.nameplate, checked_base(base))
         self._refuse_unset()
@@ -216,7 +216,7 @@ class Device:
             return edge_values(lines, edge, self._units(lines, base), limited)
 
         answers = self._each_edge(self.limiting(quantity), values, (question, way), asked.shape)
-        return LetThrough(quantity=quantity, current=_as_given(asked), base=base, **answers)
+        return LetThrough(quantity=quantity, current=as_given(asked), base=base, **answers)
 
     def let_through_current(
         self,
@@ -231,7 +231,7 @@ class Device:
 
         ``at_least`` the last current drawn where the line never exceeds it. Parameters and errors as for `trip_time`.
         """
-        asked = _positive(value, "let-through")
+        asked = positive(value, "let-through")
         question = Question(meaning=meaning, conditions=conditions)
         way = path_of(question, self.nameplate, checked_base(base))
         self._refuse_unset()
@@ -240,7 +240,7 @@ class Device:
             return edge_limits(lines, self._units(lines, base), np.ravel(asked))
 
         answers = self._each_edge(self.limiting(quantity), limits, (question, way), asked.shape)
-        return LetThroughCurrents(quantity=quantity, value=_as_given(asked), base=base, **answers)
+        return LetThroughCurrents(quantity=quantity, value=as_given(asked), base=base, **answers)
 
     def limiting(self, quantity: Limiting) -> tuple[Curve, ...]:
         """Its let-through or cut-off lines."""
@@ -283,7 +283,7 @@ class Device:
         answers: dict[Edge, EdgeAnswer | None] = {}
         for edge in _EDGES:
             lines = lines_of_edge(curves, edge, self.nameplate, self._settings, *asked)
-            answers[edge] = None if lines is None else _shown(ask(lines, edge), lines, shape)
+            answers[edge] = None if lines is None else shown_edge(ask(lines, edge), lines, shape)
         return answers
 
     def _units(self, elements: tuple[Lines, ...], base: str) -> dict[str, float]:
@@ -297,38 +297,3 @@ class Device:
             return 1.0
         plate, settings = self.nameplate, self._settings
         return amperes(plate, settings, base) / amperes(plate, settings, asked)
-
-
-def _shown(found: Found, elements: tuple[Lines, ...], shape: tuple[int, ...]) -> EdgeAnswer:
-    """An edge's answer in the shape of what was asked, with the weakest basis and meaning of its lines."""
-    bases = {line.curve.basis for each in elements for line in each.lines}
-    basis = next((name for name in ("declared", "sheet", "standard") if name in bases), "sheet")
-    said = {each.meaning for each in elements}
-    meaning = next((name for name in MEANINGS if name in said), None)
-    return shown(found, basis, meaning, shape=shape)
-
-
-def _positive(numbers: ArrayLike, what: str) -> Floats:
-    """Numbers asked as an array of their own shape.
-
-    Raises
-    ------
-    DeviceError
-        One is not a positive finite number.
-    """
-    try:
-        asked = np.asarray(numbers, dtype=np.float64)
-    except (TypeError, ValueError):
-        raise DeviceError(
-            f"A {what} of {numbers!r} is not a number", "A positive number, or an array of them"
-        ) from None
-    wrong = ~(np.isfinite(asked) & (asked > 0))
-    if wrong.any():
-        raise DeviceError(
-            f"A {what} of {asked[wrong].flat[0]:g} cannot be asked", f"Each {what} must be positive and finite"
-        )
-    return asked
-
-
-def _as_given(asked: Floats) -> float | Floats:
-    return float(asked) if asked.ndim == 0 else asked

@@ -1,13 +1,14 @@
 """Discrimination of devices in series: by time, energy and current, of residual devices, and across a transformer."""
 
 from dataclasses import replace
+from itertools import pairwise
 
 import numpy as np
 import pytest
 
 from curvelab.calculators.discrimination import discrimination
 from curvelab.calculators.facts import rows_of
-from curvelab.calculators.in_series import State
+from curvelab.calculators.in_series import Series, State
 from curvelab.calculators.transformer import transformer_of
 from curvelab.devices.device import Device
 from curvelab.devices.tolerance import edges_of_mean
@@ -297,3 +298,50 @@ def test_an_adjustable_device_is_asked_at_its_settings_and_a_current_must_be_pos
         discrimination(moulded_case(), breaker())
     with pytest.raises(InputError, match="prospective"):
         discrimination(fuse(), breaker(), -1.0)
+
+
+def random_band(rng, key, rated_a, kind):
+    """A band that falls with a step, some of it with a gap, drawn from wherever to wherever."""
+    current = rated_a * np.sort(rng.uniform(1.2, 60.0, 6))
+    slow_s = np.sort(10 ** rng.uniform(-2, 3, 6))[::-1]
+    fast_s = slow_s * rng.uniform(0.2, 0.9)
+    current[3] = current[2]
+    meaning = "operating" if kind == "fuse" else "clearing"
+    lines = [
+        line("fast", list(zip(current, fast_s, strict=True)), base="A", sd=0.01, meaning=meaning),
+        line("slow", list(zip(current * 1.1, slow_s, strict=True)), base="A", sd=0.01, meaning=meaning),
+    ]
+    if rng.random() < 0.5:
+        energies = [(current[1], 1e3 * rng.uniform(0.5, 2)), (current[-1] * 3, 1e5 * rng.uniform(0.5, 2))]
+        lines.append(energy("slow", energies, meaning))
+        lines.append(energy("fast", energies, "pre_arcing" if kind == "fuse" else "unlatching"))
+    capacity = (Breaking(quantity="Icu", value_a=rated_a * rng.uniform(30, 200)),)
+    return device(*lines, key=key, kind=kind, rated_current_a=rated_a, breaking=capacity)
+
+
+@pytest.mark.parametrize("seed", range(15))
+def test_every_current_of_a_span_has_its_state(seed):
+    rng = np.random.default_rng([4711, seed])
+    upstream = random_band(rng, "up", 63.0, rng.choice(["fuse", "mccb"]))
+    downstream = random_band(rng, "down", 20.0, "mcb")
+    case = only(discrimination(upstream, downstream))
+    series = Series(upstream, downstream, case.fault)
+    for span in case.spans:
+        inside = np.exp(rng.uniform(np.log(span.from_a * (1 + 1e-7)), np.log(span.to_a * (1 - 1e-7)), 50))
+        assert set(series.at(inside).states.tolist()) == {span.code}
+    assert all(a.to_a == b.from_a for a, b in pairwise(case.spans))
+
+
+@pytest.mark.parametrize("seed", range(10))
+def test_it_never_holds_by_time_where_the_bands_overlap(seed):
+    rng = np.random.default_rng([99, seed])
+    upstream, downstream = random_band(rng, "up", 40.0, "mccb"), random_band(rng, "down", 32.0, "mcb")
+    for span in only(discrimination(upstream, downstream)).spans:
+        current = np.array([np.sqrt(span.from_a * span.to_a)])
+        fast, slow = upstream.trip_time(current).fast, downstream.trip_time(current).slow
+        both = (fast.status == "value") & (slow.status == "value")
+        if both.all() and span.code == State.HOLDS_BY_TIME:
+            assert fast.value > slow.value
+            assert fast.value >= 0.1
+        if both.all() and span.code == State.FAILS_BY_TIME:
+            assert fast.value <= slow.value

@@ -76,7 +76,11 @@ def test_a_back_up_fuse_below_its_least_breaking_current_is_warned_of():
     )
     answer = trip_times(fuse, [500.0, 700.0])
     assert answer.notes == ("At 500 A it may melt and not break.",)
-    assert [caution.code for caution in answer.cautions] == ["least-breaking-current", "qualified-person"]
+    assert [caution.code for caution in answer.cautions] == [
+        "least-breaking-current",
+        "no-overload-protection",
+        "qualified-person",
+    ]
 
 
 def test_a_revision_that_is_not_released_is_said_so():
