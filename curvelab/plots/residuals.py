@@ -16,7 +16,7 @@ from curvelab.records.reading import ReadCurve, Reading
 from curvelab.records.residuals import curve_distances, grid_residuals
 
 A4_INCHES = (8.27, 11.69)
-LEFT, RIGHT, GAP = 0.125, 0.06, 0.075
+LEFT, RIGHT, GAP = 0.125, 0.09, 0.075
 """Margins and the gap between panels, as fractions of the page."""
 LEAST_SPAN = 0.05
 """In the sheet's unit: a scale no finer than this, so that nothing looks like something."""

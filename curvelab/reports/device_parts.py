@@ -54,7 +54,7 @@ def device_section(case: Case) -> Section:
             Column("Duration", 2, "right"),
         )
         blocks.append(Table(columns=columns, rows=tuple(map(_breaking_row, plate.breaking))))
-    else:
+    elif plate.kind not in ("relay", "switch"):
         blocks.append(Paragraph(words="No breaking capacity is given.", look="open"))
     if plate.settings:
         columns = (

@@ -31,6 +31,8 @@ KEEP = 34.0
 """A heading needs so much room beneath it, in mm."""
 BETWEEN = 4.0
 """Between columns, in mm."""
+WHOLE, AFTER = 8, 14.0
+"""A paragraph of up to so many lines is kept whole, with so much room in mm for the beginning of what follows."""
 LABEL_SHARE = 0.38
 """Of a column of facts, for their names."""
 COLOURS: dict[Look, str] = {"plain": GRAPHITE, "open": WARM, "quiet": QUIET}
@@ -87,7 +89,9 @@ def _set_block(block: Block, pages: Pages) -> None:
 
 @_set_block.register
 def _(block: Paragraph, pages: Pages) -> None:
-    for line in wrapped(typeset(block.words), ROOM, BODY):
+    lines = wrapped(typeset(block.words), ROOM, BODY)
+    pages.need(line_mm(BODY) * min(len(lines), WHOLE) + AFTER)
+    for line in lines:
         pages.need(line_mm(BODY))
         pages.y += line_mm(BODY)
         pages.write(LEFT, pages.y - 1.0, line, BODY, colour=COLOURS[block.look])

@@ -1,9 +1,7 @@
 """Sections on the reading: the sheet with what was read on it, axes and residuals, and the uncertainty budget."""
 
 from collections.abc import Iterator
-from dataclasses import fields
 from functools import partial
-from typing import Any
 
 import numpy as np
 from matplotlib import rc_context
@@ -13,6 +11,7 @@ from curvelab.plots.ink import PAPER, STYLE
 from curvelab.plots.overlay import overlay_figure
 from curvelab.plots.residuals import residual_figure
 from curvelab.records.axes import Axis
+from curvelab.records.budget import CAUSES, Cause, UncertaintyBudget
 from curvelab.records.curve import COVERAGE_FACTOR, Curve
 from curvelab.records.normal import along_normal
 from curvelab.records.reading import ReadCurve, Reading
@@ -147,9 +146,20 @@ EXPLAINED = (
     "squares. The last two columns are half-widths of the 95 % interval. How well the sheet describes the device is "
     "not in them."
 )
+CAUSE_WORDS: dict[Cause, str] = {
+    "calibration": "Marks",
+    "warp": "Bends",
+    "snapping": "Pixels",
+    "trace": "Scatter",
+    "correlation": "Alike",
+    "smoothing": "Smooth",
+    "edge": "Stroke",
+    "tabulation": "Points",
+}
 CAUSES_EXPLAINED = (
-    "The causes one by one, medians along each line: relative standard uncertainties along the normal as they stood "
-    "when it was fitted."
+    "The causes one by one, root mean squares along each line. "
+    + "; ".join(f"{CAUSE_WORDS[cause]} - {text[0].lower()}{text[1:]}" for cause, text, _ in CAUSES)
+    + "."
 )
 LINES_EXPLAINED = (
     "The lines as they were followed: the standard deviation of one place across the line, over how far neighbouring "
@@ -201,12 +211,10 @@ def _budget_rows(curve: Curve) -> Iterator[Row]:
         )
 
 
-def _causes_table(fits: list[tuple[Curve, Any]]) -> Table:
-    """A column a cause, whatever causes the fit tells apart."""
-    causes = [each.name for each in fields(fits[0][1])]
-    columns = (Column("Line", 2.4), *(Column(cause.capitalize(), 1.6, "right") for cause in causes))
+def _causes_table(fits: list[tuple[Curve, UncertaintyBudget]]) -> Table:
+    columns = (Column("Line", 2.3), *(Column(CAUSE_WORDS[cause], 1.6, "right") for cause, _, _ in CAUSES))
     rows = (
-        Row(cells=(curve_words(curve), *(_percent(getattr(budget, cause)) for cause in causes)))
+        Row(cells=(curve_words(curve), *(_percent(getattr(budget, cause)) for cause, _, _ in CAUSES)))
         for curve, budget in fits
     )
     return Table(columns=columns, rows=tuple(rows))
