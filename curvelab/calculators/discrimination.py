@@ -88,7 +88,7 @@ def discrimination(
         transformer=transformer,
         cases=cases,
         findings=(*(each for each in findings if each), *residual_ratio_finding(upstream, downstream)),
-        notes=tuple(_notes(upstream, downstream, cases)),
+        notes=tuple(dict.fromkeys(_notes(upstream, downstream, cases))),
         cautions=cautions_of(upstream, downstream),
     )
 
@@ -148,7 +148,7 @@ def _notes(upstream: Device, downstream: Device, cases: tuple[Case, ...]) -> Ite
     if downstream.nameplate.kind == "rcd" and upstream.nameplate.kind != "rcd":
         yield f"'{downstream.key}' acts on residual current only: it clears no fault between lines or to neutral."
     silent = no_total_time(downstream)
-    if silent and cases:
+    if silent and any(case.holding.from_a is None for case in cases):
         yield f"{silent}."
     if any(span.code == State.UNDETERMINED for case in cases for span in case.spans):
         yield (

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 
 from curvelab.calculators.cautions import Caution, cautions_of, least_breaking_current_a
 from curvelab.calculators.estimate import Estimate, estimate
-from curvelab.calculators.refusals import reason
+from curvelab.calculators.refusals import reason, residual_only
 from curvelab.devices.device import Device, Quantity
 from curvelab.devices.meaning import TOTAL
 from curvelab.devices.question import Path
@@ -100,12 +100,12 @@ def _drawn(edges: Edges | None) -> list[Estimate]:
 
 
 def _at(device: Device, current_a: float, path: Path | None) -> TripAnswer:
-    times = device.trip_time(current_a, path=path)
+    times, blind = device.trip_time(current_a, path=path), _is_blind(device, path)
     energies = device.let_through(current_a) if device.limiting("let_through") else None
     peaks = device.let_through(current_a, quantity="peak") if device.limiting("peak") else None
     return TripAnswer(
         asked=current_a,
-        edges=_edges(device, times, _OF_TIMES, "time", "s"),
+        edges=_not_seen(device, _OF_TIMES, "s") if blind else _edges(device, times, _OF_TIMES, "time", "s"),
         let_through=None if energies is None else _edges(device, energies, _OF_TIMES, "let_through", "A2s"),
         peak=None if peaks is None else _edges(device, peaks, _OF_TIMES, "peak", "A"),
     )
@@ -113,7 +113,13 @@ def _at(device: Device, current_a: float, path: Path | None) -> TripAnswer:
 
 def _for(device: Device, time_s: float, path: Path | None) -> TripAnswer:
     currents = device.trip_current(time_s, path=path)
+    if _is_blind(device, path):
+        return TripAnswer(asked=time_s, edges=_not_seen(device, _OF_CURRENTS, "A"))
     return TripAnswer(asked=time_s, edges=_edges(device, currents, _OF_CURRENTS, "time", "A"))
+
+
+def _is_blind(device: Device, path: Path | None) -> bool:
+    return path == "line_to_neutral" and bool(residual_only(device))
 
 
 def _edges(device: Device, answer: object, names: Mapping[str, Edge], quantity: Quantity, unit: str) -> Edges:
@@ -122,6 +128,13 @@ def _edges(device: Device, answer: object, names: Mapping[str, Edge], quantity: 
         told: EdgeAnswer | None = getattr(answer, name)
         found[name] = None if told is None else estimate(told, unit, reason(device, edge, told, quantity))
     return found
+
+
+def _not_seen(device: Device, names: Mapping[str, Edge], unit: str) -> Edges:
+    """A residual current device asked for a current that comes back through it, whether its sheet is there or not."""
+    words = residual_only(device)
+    seen = Estimate(status="not_seen", value=None, interval=None, unit=unit, reason=words)
+    return {name: None if edge == "mean" else seen for name, edge in names.items()}
 
 
 def _below_least_breaking(device: Device, currents_a: Sequence[float]) -> Sequence[str]:

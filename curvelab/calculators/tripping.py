@@ -3,6 +3,7 @@
 from dataclasses import replace
 
 from curvelab.calculators.estimate import Estimate, estimate
+from curvelab.calculators.facts import rows_of
 from curvelab.calculators.practices import Practice
 from curvelab.calculators.refusals import no_total_time, not_protective, reason
 from curvelab.devices.device import Device
@@ -12,6 +13,10 @@ from curvelab.errors import DeviceError
 _BREAKERS = ("mcb", "rcbo")
 _EARTH: Path = "residual"
 """A fault to earth is seen by elements for residual current and by those for overcurrent."""
+
+_PRODUCT_STANDARDS = ("61008", "61009")
+_SMALL_A = 0.03
+"""Up to this rated residual current a fixed current may take the place of 5 times it."""
 
 LEAST_MEAN_TIME_S = 0.1
 """Mean instantaneous tripping currents say nothing of shorter times."""
@@ -45,7 +50,25 @@ def sure_current(device: Device, time_s: float, breaker_time_s: float | None) ->
         return Estimate(status="not_covered", value=None, interval=None, unit="A", reason=words)
     trips = device.trip_current(left_s, path=_EARTH, meaning=_meaning(breaker_time_s)).trips
     missing = "" if breaker_time_s else no_total_time(device)
-    return estimate(trips, "A", not_protective(device) or missing or reason(device, "slow", trips))
+    found = estimate(trips, "A", not_protective(device) or missing or reason(device, "slow", trips))
+    return found if found.is_known else _by_product_standard(device, left_s) or found
+
+
+def _by_product_standard(device: Device, time_s: float) -> Estimate | None:
+    """The residual current in A for which its product standard allows no longer time; None where it says nothing."""
+    plate, rated_a = device.nameplate, residual_rating_a(device)
+    if rated_a is None or not any(number in (plate.standard or "") for number in _PRODUCT_STANDARDS):
+        return None
+    delay = plate.residual_delay or "general"
+    for row in rows_of("disconnection", "break_times"):
+        if row["delay"] == delay and row["time_s"] <= time_s:
+            least_a = float(row.get("least_a", 0.0)) if rated_a <= _SMALL_A else 0.0
+            words = (
+                f"no sheet is at hand: at most {row['time_s']:g} s at {row['multiple']:g} IΔn by {row['origin'].clause}"
+            )
+            current_a = max(row["multiple"] * rated_a, least_a)
+            return Estimate(status="at_most", value=current_a, interval=None, unit="A", basis="standard", reason=words)
+    return None
 
 
 def overcurrent_alone(device: Device, time_s: float) -> Estimate:

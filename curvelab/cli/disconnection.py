@@ -84,7 +84,8 @@ def disconnection_text(device: Device, answer: Disconnection) -> str:
         _greatest(answer),
     ]
     if answer.fault is not None and answer.time is not None:
-        facts.append(("given loop", f"{answer.fault.words}: trips in {_with_reason(answer.time)}"))
+        time = f"trips in {answer.time.written()}" if answer.time.is_known else f"time {_with_reason(answer.time)}"
+        facts.append(("given loop", f"{answer.fault.words}: {time}"))
     return "\n".join(
         [heading(device), *labelled(facts), *closing_lines(answer.findings, answer.notes, answer.cautions)]
     )

@@ -257,3 +257,28 @@ def test_what_cannot_be_is_refused(words):
 def test_a_measured_loop_needs_its_impedance():
     with pytest.raises(InputError, match="measured"):
         Circumstances(voltage_v=230.0, measured=True)
+
+
+@pytest.mark.parametrize(
+    ("delay", "residual_a", "required_s", "current_a"),
+    [
+        (None, 0.03, 0.4, 0.03),
+        (None, 0.03, 0.2, 0.06),
+        (None, 0.03, 0.04, 0.25),
+        (None, 0.1, 0.04, 0.5),
+        ("S", 0.1, 0.2, 0.2),
+        ("S", 0.1, 0.15, 0.5),
+        ("S", 0.1, 0.04, None),
+    ],
+)
+def test_a_residual_device_without_a_sheet_answers_by_its_product_standard(delay, residual_a, required_s, current_a):
+    # IEC 61008-1 table 1: 0.3, 0.15 and 0.04 s at 1, 2 and 5 IDn (S: 0.5, 0.2, 0.15 s), in an article on trip times.
+    made = device(kind="rcd", standard="IEC 61008-1", rated_residual_current_a=residual_a, residual_delay=delay)
+    trips = asked(made, system="TT", required_s=required_s).trips
+    assert trips.value == (None if current_a is None else pytest.approx(current_a))
+    assert trips.status == ("not_covered" if current_a is None else "at_most")
+    assert current_a is None or trips.basis == "standard"
+
+
+def test_a_residual_device_under_no_known_standard_is_not_covered_without_a_sheet():
+    assert asked(device(kind="rcd", rated_residual_current_a=0.03), system="TT").trips.status == "not_covered"

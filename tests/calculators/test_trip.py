@@ -46,6 +46,9 @@ def test_an_rcd_sees_no_current_that_comes_back_through_it():
     (answer,) = trip_times(rcd(), [500.0], "line_to_neutral").answers
     assert answer.edges["slow"].status == "not_seen"
     assert "residual current only" in answer.edges["slow"].reason
+    bare = device(kind="rcd", rated_residual_current_a=0.03)
+    assert trip_times(bare, [500.0], "line_to_neutral").answers[0].edges["slow"].status == "not_seen"
+    assert trip_currents(rcd(), [0.4], "line_to_neutral").answers[0].edges["trips"].status == "not_seen"
     assert trip_times(rcd(), [0.15]).answers[0].edges["slow"].value == pytest.approx(0.04)
 
 
