@@ -1,54 +1,22 @@
 """Addresses of the library: every question is a GET, read-only, for any program; a review is the one change."""
 
 from collections.abc import Callable, Iterable
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import Any, Literal
 
-from curvelab import __version__
-from curvelab.devices.as_json import currents_json, times_json
+from curvelab.calculators.as_json import trip_json
+from curvelab.calculators.trip import trip_currents, trip_times
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
 from curvelab.library.key import split_key
-from curvelab.library.search import Page, Wanted
 from curvelab.workbench.bench import Bench
-from curvelab.workbench.route import Content, Method, Nothing, Route
+from curvelab.workbench.route import Content, Method, Route
+from curvelab.workbench.settings import settings_by_key, settings_of
 from curvelab.workbench.shapes import Schema
 
 MOST_COMPARED = 8
-MOST_ASKED = 2_000
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class Search:
-    """Which devices: words of key, maker, series, standard and document; what the nameplate says; which page."""
-
-    text: str = ""
-    kind: str | None = None
-    characteristic: str | None = None
-    standard: str | None = None
-    state: str | None = None
-    maker: str | None = None
-    series: str | None = None
-    rated_current: float | None = None
-    rated_from: float | None = None
-    rated_to: float | None = None
-    sort: str = "device_key"
-    page: int = field(default=1, metadata={"minimum": 1})
-    count: int = field(default=50, metadata={"minimum": 1, "maximum": 500})
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class SearchBands:
-    """Devices that surely hold ``holds_a`` for ``for_s``, and surely trip at ``trips_a`` within ``within_s``."""
-
-    holds_a: float | None = None
-    for_s: float | None = None
-    trips_a: float | None = None
-    within_s: float | None = None
-    text: str = ""
-    kind: str | None = None
-    page: int = field(default=1, metadata={"minimum": 1})
-    count: int = field(default=50, metadata={"minimum": 1, "maximum": 500})
+MOST_ASKED = 200
+"""Currents or times in one question; each is answered with its reasons."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -111,67 +79,6 @@ class Review:
     reason: str = ""
 
 
-def version(bench: Bench, _: Nothing) -> dict[str, str]:
-    """Which program and library answer."""
-    return {"version": __version__, "library": bench.library_path.name}
-
-
-def search(bench: Bench, asked: Search) -> dict[str, Any]:
-    """Devices by words and nameplate."""
-    wanted = Wanted(
-        words=asked.text,
-        kind=asked.kind,
-        characteristic=asked.characteristic,
-        standard=asked.standard,
-        state=asked.state,
-        maker=asked.maker,
-        series=asked.series,
-        rated_from_a=asked.rated_from if asked.rated_current is None else asked.rated_current,
-        rated_to_a=asked.rated_to if asked.rated_current is None else asked.rated_current,
-    )
-    falling = asked.sort.startswith("-")
-    sort = {"key": "device_key", "rated_current": "rated_current_a"}.get(name := asked.sort.removeprefix("-"), name)
-    page = Page(sort=sort, falling=falling, first=(asked.page - 1) * asked.count, count=asked.count)
-    from curvelab.workbench.devices import listed  # noqa: PLC0415
-
-    if not bench.library_path.exists():
-        return {"total": 0, "page": asked.page, "devices": []}
-    with bench.reading() as library:
-        found = library.find(wanted, page)
-        return {"total": found.total, "page": asked.page, "devices": listed(library, found.rows)}
-
-
-def search_bands(bench: Bench, asked: SearchBands) -> dict[str, Any]:
-    """Devices by what their bands surely do."""
-    from curvelab.library.bands import BandQuery  # noqa: PLC0415
-    from curvelab.workbench.devices import listed  # noqa: PLC0415
-
-    query = BandQuery(
-        holds=_point(asked.holds_a, asked.for_s, "holds_a", "for_s"),
-        trips=_point(asked.trips_a, asked.within_s, "trips_a", "within_s"),
-    )
-    page = Page(first=(asked.page - 1) * asked.count, count=asked.count)
-    with bench.reading() as library:
-        found = library.find_bands(query, Wanted(words=asked.text, kind=asked.kind), page)
-        return {
-            "total": found.surely,
-            "at_most": found.at_most,
-            "adjustable": found.adjustable,
-            "page": asked.page,
-            "devices": listed(library, found.rows),
-        }
-
-
-def _point(current_a: float | None, time_s: float | None, current: str, time: str) -> Any:
-    from curvelab.library.bands import Point  # noqa: PLC0415
-
-    if current_a is None and time_s is None:
-        return None
-    if current_a is None or time_s is None:
-        raise InputError(f"'{current}' and '{time}' belong together", "Both, or neither")
-    return Point(current_a=current_a, time_s=time_s)
-
-
 def device(bench: Bench, asked: OfDevice) -> dict[str, Any]:
     """A device: nameplate, settings, curves, cautions, findings and limits."""
     from curvelab.workbench.devices import told  # noqa: PLC0415
@@ -198,19 +105,21 @@ def bands(bench: Bench, asked: AtSettings) -> dict[str, Any]:
 
 def trip_time(bench: Bench, asked: AtCurrents) -> dict[str, Any]:
     """Times at currents, with 95 % intervals and status."""
-    return times_json(_at(bench, asked.key, asked.set), asked.current)
+    chosen = device_at(bench, asked.key, asked.set)
+    return trip_json(chosen, trip_times(chosen, _few(asked.current)))
 
 
 def trip_current(bench: Bench, asked: ForTimes) -> dict[str, Any]:
     """Currents for times, with 95 % intervals and status."""
-    return currents_json(_at(bench, asked.key, asked.set), asked.time)
+    chosen = device_at(bench, asked.key, asked.set)
+    return trip_json(chosen, trip_currents(chosen, _few(asked.time)))
 
 
 def findings(bench: Bench, asked: AtSettings) -> dict[str, Any]:
     """The device against its standard, the firm's rules and what is plausible."""
     from curvelab.workbench.devices import found_of  # noqa: PLC0415
 
-    return found_of(_at(bench, asked.key, asked.set), bench.library_path)
+    return found_of(device_at(bench, asked.key, asked.set), bench.library_path)
 
 
 def points_csv(bench: Bench, asked: OfDevice) -> Content:
@@ -245,7 +154,7 @@ def compare(bench: Bench, asked: Compared) -> dict[str, Any]:
 
     if not 2 <= len(asked.key) <= MOST_COMPARED:
         raise InputError(f"{len(asked.key)} devices cannot be compared", f"Two to {MOST_COMPARED}")
-    given = _settings_by_key(asked.key, asked.set)
+    given = settings_by_key(asked.key, asked.set)
     with bench.reading() as library:
         chosen = [library.device(*split_key(key)).at(**given[key]) for key in asked.key]
     return compared(chosen, asked.current)
@@ -261,42 +170,19 @@ def review(bench: Bench, asked: OfDevice, decided: Review) -> dict[str, Any]:
     return {"key": done.key, "revision": done.revision, "before": done.before, "state": done.state}
 
 
-def _at(bench: Bench, key: str, settings: Iterable[str]) -> Device:
+def device_at(bench: Bench, key: str, settings: Iterable[str]) -> Device:
+    """A stored device at settings."""
     with bench.reading() as library:
         return library.device(*split_key(key)).at(**settings_of(settings))
 
 
-def settings_of(texts: Iterable[str]) -> dict[str, float | str]:
-    """Settings as in ``ir=0.8`` or ``ii=off``.
-
-    Raises
-    ------
-    InputError
-        One is not of that form.
-    """
-    settings: dict[str, float | str] = {}
-    for text in texts:
-        name, _, value = text.partition("=")
-        try:
-            settings[name] = value if value == "off" else float(value)
-        except ValueError:
-            raise InputError(f"'{text}' is no setting", "NAME=VALUE, such as ir=0.8 or ii=off") from None
-    return settings
-
-
-def _settings_by_key(keys: Iterable[str], texts: Iterable[str]) -> dict[str, dict[str, float | str]]:
-    given: dict[str, dict[str, float | str]] = {key: {} for key in keys}
-    for text in texts:
-        name, _, value = text.partition("=")
-        key, dot, setting = name.rpartition(".")
-        if not dot or key not in given:
-            raise InputError(f"'{text}' names no device of this comparison", "KEY.NAME=VALUE")
-        given[key] |= settings_of([f"{setting}={value}"])
-    return given
+def _few(values: tuple[float, ...]) -> tuple[float, ...]:
+    if len(values) > MOST_ASKED:
+        raise InputError(f"{len(values)} values are asked at once", f"At most {MOST_ASKED}", "Ask several times")
+    return values
 
 
 _OBJECT: Schema = {"type": "object"}
-_FOUND: Schema = {"type": "object", "required": ["total", "page", "devices"]}
 DEVICE = "/api/devices/{key}"
 
 
@@ -305,9 +191,6 @@ def _route(method: Method, path: str, summary: str, does: Callable[..., Any], **
 
 
 DEVICE_ROUTES = (
-    _route("GET", "/api/version", "Which program and library answer", version),
-    _route("GET", "/api/devices", "Devices by words and nameplate", search, asked=Search, answer=_FOUND),
-    _route("GET", "/api/find-bands", "Devices by what they surely do", search_bands, asked=SearchBands, answer=_FOUND),
     _route("GET", "/api/compare", "Devices side by side", compare, asked=Compared),
     _route("GET", DEVICE, "A device", device, asked=OfDevice),
     _route("GET", f"{DEVICE}/history", "What happened to it", history, asked=OfDevice, answer={"type": "array"}),

@@ -12,7 +12,6 @@ from curvelab.calculators.cautions import cautions_of
 from curvelab.calculators.compare import compare
 from curvelab.calculators.comparison_json import comparison_json
 from curvelab.calculators.stretches import sides_of
-from curvelab.devices.as_json import nameplate_json
 from curvelab.devices.device import Device
 from curvelab.library.library import Library
 from curvelab.library.search import COLUMNS
@@ -52,7 +51,7 @@ def told(library: Library, key: str, revision: int | None) -> dict[str, Any]:
     device = Device(library.record(key, revision))
     revisions = library.history(key)
     own = next(each for each in revisions if each["revision"] == device.revision)
-    plate = nameplate_json(device.nameplate)
+    plate = asdict(device.nameplate)
     findings = review_alone(device, rules_beside(library.path))
     return {
         **_row({name: own[name] for name in COLUMNS}, revisions),

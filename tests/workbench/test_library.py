@@ -98,6 +98,41 @@ def test_a_release_needs_a_second_person(client: TestClient) -> None:
     assert told[-1]["name"] == "Otto Weir"
 
 
+@pytest.mark.parametrize(
+    ("question", "outcome"),
+    [
+        ("/api/devices/riverside-b32/disconnection?voltage_v=230&loop_ohm=0.5", "meets"),
+        ("/api/devices/riverside-b32/withstand?material=copper&insulation=pvc70&least_a=400&greatest_a=3000", None),
+        ("/api/devices/riverside-b32/overload?capacity_a=36&design_a=30", "meets"),
+        ("/api/devices/riverside-b32/breaking?prospective_a=5000&voltage_v=230", "meets"),
+        ("/api/devices/riverside-b32/breaking?prospective_a=9000&voltage_v=230", "fails"),
+        ("/api/discrimination?upstream=riverside-b40&downstream=riverside-b10&up_to_a=100", None),
+    ],
+)
+def test_calculators_answer_as_on_the_command_line(client: TestClient, question: str, outcome: str | None) -> None:
+    told = client.get(question)
+    assert told.status_code == 200, told.text
+    assert told.json()["cautions"]
+    if outcome is not None:
+        assert told.json()["outcome"] == outcome
+
+
+@pytest.mark.parametrize(
+    "question",
+    [
+        "/api/devices/riverside-b32/disconnection",
+        "/api/devices/riverside-b32/disconnection?voltage_v=-230",
+        "/api/devices/riverside-b32/disconnection?voltage_v=nan",
+        "/api/devices/riverside-b32/disconnection?voltage_v=230&system=XX",
+        "/api/devices/riverside-b32/withstand?material=cheese&insulation=pvc70&least_a=400&greatest_a=3000",
+        "/api/devices/riverside-b32/withstand?material=copper&insulation=pvc70&least_a=400&greatest_a=3",
+        "/api/discrimination?upstream=riverside-b40&downstream=riverside-b10&ratio=2",
+    ],
+)
+def test_calculators_refuse_what_cannot_be_asked(client: TestClient, question: str) -> None:
+    assert client.get(question).status_code == 400
+
+
 def test_a_library_that_is_not_there_yet_is_empty(tmp_path: Path) -> None:
     with workbench(tmp_path / "none.sqlite") as client:
         assert client.get("/api/devices").json() == {"total": 0, "page": 1, "devices": []}
