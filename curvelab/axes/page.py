@@ -5,11 +5,9 @@ from dataclasses import dataclass, replace
 import cv2
 import numpy as np
 
-from curvelab.axes.ends import trimmed
 from curvelab.axes.flatten import Flattening, flattening
 from curvelab.axes.marks import pixel_size
 from curvelab.axes.segments import Segments, straight_segments
-from curvelab.axes.strips import strips_of
 from curvelab.axes.tracks import track_lines
 from curvelab.records.arrays import Bytes, Floats
 from curvelab.records.sheet import Pixels, Sheet, Word
@@ -92,7 +90,7 @@ def page_of(sheet: Sheet) -> Page:
         )
     grey = sheet.pixels.grey
     turned: Bytes = np.ascontiguousarray(cv2.transpose(grey))
-    upright, level = (trimmed(image, track_lines(strips_of(image, (0, image.shape[0])))) for image in (grey, turned))
+    upright, level = (track_lines(image) for image in (grey, turned))
     size = (float(grey.shape[1]), float(grey.shape[0]))
     flat = flattening(upright, level, size)
     return Page(

@@ -9,9 +9,10 @@ from dataclasses import dataclass, field
 import numpy as np
 from numpy.typing import NDArray
 
+from curvelab.axes.ends import line_end
 from curvelab.axes.segments import Segments
-from curvelab.axes.strips import STRIP, Strips
-from curvelab.records.arrays import Floats
+from curvelab.axes.strips import STRIP, Strips, strips_of
+from curvelab.records.arrays import Bytes, Floats
 
 LEAST_DARK = 6.0
 """Grey levels by which a line is darker than the paper at least, in one strip."""
@@ -30,6 +31,12 @@ GAP_STRIPS = 3
 
 LEAST_STRIPS = 4
 """Shorter pieces are lettering, as a rule."""
+
+LONG_STRIPS = 8
+"""Strips from which on a piece's ends are looked for to the pixel,"""
+
+AT_END = 6
+"""following the direction of so many strips there."""
 
 OFF, FADED, DARKER = 0.8, 0.2, 2.0
 """Pixels off a piece's own parabola, and shares of its usual darkness, beyond which a strip is not its end.
@@ -77,14 +84,15 @@ class _Active:
         return float(np.median(self.slope[known])) if known.any() else 0.0
 
 
-def track_lines(strips: Strips) -> Segments:
-    """Pieces of lines that run along the strips.
+def track_lines(image: Bytes) -> Segments:
+    """Pieces of lines that run down the rows of an image.
 
-    ``across``, ``first`` and ``last`` are in pixels; ends are known to about a strip.
+    ``across``, ``first`` and ``last`` are in pixels; the ends of long pieces are known to about a pixel.
     """
+    strips = strips_of(image, (0, image.shape[0]))
     strip, place, dark = _peaks(strips)
     number = _linked(strip, place, len(strips.along))
-    return _segments(strips, strip, place, dark, number)
+    return _segments(image, strips, strip, place, dark, number)
 
 
 def track_places(strips: Strips, least: int) -> list[Floats]:
@@ -151,7 +159,7 @@ def _continued(active: _Active, peaks: Floats, strip: int) -> Ints:
     return mine
 
 
-def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: Ints) -> Segments:
+def _segments(image: Bytes, strips: Strips, strip: Ints, place: Floats, dark: Floats, number: Ints) -> Segments:
     """Straight lines through the peaks of each piece that is long enough."""
     count = np.bincount(number)
     along = strips.along[strip]
@@ -174,6 +182,11 @@ def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: 
     # Gaps are allowed, but a piece is there more often than not.
     kept = (count >= LEAST_STRIPS) & (count * STRIP >= 0.5 * (last - first))
     kept &= _beside(strips, strip, place, number) <= BESIDE_DARK * darkness
+    for piece in np.flatnonzero(kept & (count >= LONG_STRIPS)):
+        mine = np.flatnonzero((number == piece) & own)
+        ends = _ends(image, along[mine], place[mine])
+        if ends[1] - ends[0] >= LEAST_STRIPS * STRIP:
+            first[piece], last[piece] = ends[0] + 0.5 * STRIP, ends[1] - 0.5 * STRIP
     centre = 0.5 * (first + last)
     return Segments(
         across=across + lean * (centre - middle),
@@ -183,6 +196,17 @@ def _segments(strips: Strips, strip: Ints, place: Floats, dark: Floats, number: 
         width=np.ones(len(count)),
         darkness=np.clip(darkness / 255.0, 0.0, 1.0),
     ).where(kept)
+
+
+def _ends(image: Bytes, along: Floats, place: Floats) -> tuple[float, float]:
+    """First and last row of a piece, from its strips' places in order."""
+    few = min(AT_END, len(along))
+    ends = []
+    for part, at, direction in ((slice(0, few), along[0], -1), (slice(-few, None), along[-1], 1)):
+        slope, column = np.polyfit(along[part] - at, place[part], 1)
+        end = at + direction * 0.5 * STRIP
+        ends.append(line_end(image, (float(column + slope * (end - at)), float(end)), float(slope), direction))
+    return ends[0], ends[1]
 
 
 def _beside(strips: Strips, strip: Ints, place: Floats, number: Ints) -> Floats:

@@ -24,7 +24,7 @@ LEAST_ALIKE = 0.6
 MOST_PARTS = 1500
 """Beyond this the ink is hatching, whose parts are not joined."""
 
-CLEARLY_NEARER = 0.65
+CLEARLY_NEARER = 0.8
 """Ratio of gaps below which a piece belongs to its level neighbour, whatever the rest of an upright line says."""
 
 BARRED_GAP = 0.3
