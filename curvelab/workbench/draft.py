@@ -123,7 +123,7 @@ class Draft:
             raise InputError(f"This draft has {named}, not '{sheet.file}'", "", "Open that sheet")
 
     def _keep(self, kept: Kept) -> None:
-        disk.write(self.folder, kept)
+        disk.write(self.folder, kept, self._kept)
         self._kept = kept
         self._changed()
 

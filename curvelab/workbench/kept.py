@@ -43,8 +43,16 @@ class Kept:
     history: History
 
 
-def write(folder: Path, kept: Kept) -> None:
-    """Write what has changed.
+def write(folder: Path, kept: Kept, before: Kept | None = None) -> None:
+    """Write what is not there yet.
+
+    Parameters
+    ----------
+    folder : Path
+    kept : Kept
+        What is to hold.
+    before : Kept or None
+        What holds. Steps of its own are there; a worksheet of any other step was left by a crash.
 
     Raises
     ------
@@ -53,10 +61,10 @@ def write(folder: Path, kept: Kept) -> None:
     """
     try:
         (folder / STEPS).mkdir(parents=True, exist_ok=True)
+        known = {step.version for step in before.history.steps} if before else set()
         for step in kept.history.steps:
-            place = folder / STEPS / f"{step.version}.toml"
-            if not place.exists():
-                write_whole(place, step.worksheet.text.encode())
+            if step.version not in known:
+                write_whole(folder / STEPS / f"{step.version}.toml", step.worksheet.text.encode())
         write_whole(folder / RECORD, json.dumps(_json_of(kept), ensure_ascii=False, indent=1).encode())
         write_whole(folder / WORKSHEET, kept.history.worksheet.text.encode())
         _clean(folder, kept.history)
