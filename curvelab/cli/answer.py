@@ -4,7 +4,7 @@ from collections.abc import Sequence
 
 from curvelab.calculators.cautions import Caution
 from curvelab.calculators.estimate import Estimate
-from curvelab.cli.check import findings_table
+from curvelab.cli.findings import findings_table
 from curvelab.cli.output import named
 from curvelab.devices.device import Device
 from curvelab.records.finding import Finding

@@ -7,8 +7,9 @@ from pathlib import Path
 import click
 
 import curvelab
+from curvelab.cli.findings import findings_table
 from curvelab.cli.many import ManyValues, Settings
-from curvelab.cli.output import json_option, library_option, table, write_json
+from curvelab.cli.output import json_option, library_option, write_json
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
 from curvelab.library.key import split_key
@@ -21,7 +22,6 @@ from curvelab.standards.family import doubts_about_family
 from curvelab.standards.review import review
 from curvelab.standards.rules import rules_beside
 from curvelab.standards.scope import unchecked
-from curvelab.units import written_between, written_percent
 
 
 @click.command(cls=ManyValues)
@@ -101,29 +101,3 @@ def check_text(devices: Sequence[Device], findings: Sequence[Finding]) -> str:
     lines = [findings_table(findings)] if findings else []
     lines += [unchecked(device.nameplate) for device in devices if device.key not in checked]
     return "\n".join(lines)
-
-
-def findings_table(findings: Sequence[Finding]) -> str:
-    """Findings as a plain table: requirement, value read with its interval, margin, outcome, what would settle it."""
-    several = len({each.device for each in findings}) > 1
-    heads = ["standard", "clause", "requirement", "read (95 %)", "margin", "outcome", "note"]
-    rows = [
-        [each.standard, each.clause, each.requirement, _read(each), _margin(each), _outcome(each), each.note]
-        for each in findings
-    ]
-    if several:
-        heads.insert(0, "device")
-        rows = [[each.device, *row] for each, row in zip(findings, rows, strict=True)]
-    return table(heads, rows)
-
-
-def _outcome(finding: Finding) -> str:
-    return f"{finding.outcome} (advisory)" if finding.advisory else finding.outcome
-
-
-def _margin(finding: Finding) -> str:
-    return "-" if finding.margin is None else written_percent(finding.margin)
-
-
-def _read(finding: Finding) -> str:
-    return "-" if finding.value is None else written_between(finding.value, finding.interval, finding.unit)

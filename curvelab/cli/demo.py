@@ -8,8 +8,8 @@ import click
 import curvelab
 from curvelab.calculators.stretches import sides_of
 from curvelab.calculators.trip import trip_currents, trip_times
-from curvelab.cli.check import findings_table
 from curvelab.cli.compare import comparison_text
+from curvelab.cli.findings import findings_table
 from curvelab.cli.output import named
 from curvelab.cli.query import answers_text
 from curvelab.devices.device import Device
