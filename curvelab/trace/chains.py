@@ -11,7 +11,8 @@ from scipy.spatial import cKDTree
 
 from curvelab.records.arrays import Floats
 from curvelab.trace.characters import FREE, lettering
-from curvelab.trace.thinning import RING, Mask, ring_codes
+from curvelab.trace.runs import runs_of
+from curvelab.trace.thinning import Mask
 
 MERGED = 20.0
 """Stroke widths over which two lines that cross at 10 degrees print as one."""
@@ -35,8 +36,14 @@ class Chain:
         Median ink along the run.
     width : float
         Median width of the stroke in px.
+    length : float
+        Length along the run in px.
+    onward : bool
+        Whether a line can pass it: it turns back along no axis.
     lettering : bool
         Whether it looks like part of a character.
+    merged : bool
+        Whether two lines arrive at its first junction and two leave its last: it may be both.
     """
 
     points: Floats
@@ -44,25 +51,32 @@ class Chain:
     junctions: tuple[int, int]
     ink: Floats
     width: float
+    length: float
+    onward: bool
     lettering: bool = False
-
-    @property
-    def length(self) -> float:
-        """Length along the run in px."""
-        if len(self.points) < 2:
-            return 1.0
-        return float(np.hypot(*np.diff(self.points, axis=0).T).sum())
-
-    @property
-    def onward(self) -> bool:
-        """Whether a line can pass it: it turns back along no axis."""
-        back = np.maximum.accumulate(self.progress, axis=0) - self.progress
-        return bool(back.max() <= self.slack)
+    merged: bool = False
 
     @property
     def slack(self) -> float:
         """How far, in px, the middle of its stroke may run back against the axes."""
-        return self.width + 2.0
+        return slack_of(self.width)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class ChainTable:
+    """What a choice among all n chains looks at first, in arrays.
+
+    ``low`` and ``high`` are the corners of the box round each chain, (n, 2); ``first`` and ``last`` the progress of its
+    ends, (n, 2); ``length``, ``width`` and ``onward`` those of the chains, (n,).
+    """
+
+    low: Floats
+    high: Floats
+    first: Floats
+    last: Floats
+    length: Floats
+    width: Floats
+    onward: Mask
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -79,11 +93,12 @@ class ChainGraph:
     tips: cKDTree | None
     tip_ends: tuple[tuple[int, int], ...]
     leaving: frozenset[tuple[int, int]]
+    table: ChainTable
 
 
-def is_bridge(chain: Chain) -> bool:
-    """Whether it may be the merged stretch of two crossing lines, which says little of either."""
-    return FREE not in chain.junctions and chain.length <= MERGED * max(chain.width, 1.0)
+def slack_of(width: float) -> float:
+    """How far, in px, the middle of a stroke of that width may run back against the axes."""
+    return width + 2.0
 
 
 def build_graph(
@@ -107,7 +122,7 @@ def build_graph(
     progress_of : callable
         Progress of places along a line, see ``Sense``.
     """
-    runs, junction_count = _runs(skeleton)
+    runs, junction_count = runs_of(skeleton)
     kept: list[Chain] = []
     for pixels, junctions in runs:
         rows, columns = pixels
@@ -118,7 +133,7 @@ def build_graph(
             continue
         points = np.stack([columns, rows], axis=1).astype(np.float64)
         progress = progress_of(points)
-        cuts = _turns(progress, width + 2.0)
+        cuts = _turns(progress, slack_of(width))
         meets = [junctions[0], *range(junction_count, junction_count + len(cuts)), junctions[1]]
         junction_count += len(cuts)
         for k, (low, high) in enumerate(pairwise([0, *cuts, len(points)])):
@@ -132,7 +147,16 @@ def build_graph(
 def _chain(points: Floats, progress: Floats, junctions: tuple[int, int], ink: Floats, width: float) -> Chain:
     if progress[-1].sum() < progress[0].sum():
         points, progress, junctions = points[::-1], progress[::-1], junctions[::-1]
-    return Chain(points=points, progress=progress, junctions=junctions, ink=ink, width=width)
+    back = np.maximum.accumulate(progress, axis=0) - progress
+    return Chain(
+        points=points,
+        progress=progress,
+        junctions=junctions,
+        ink=ink,
+        width=width,
+        length=float(np.hypot(*np.diff(points, axis=0).T).sum()) if len(points) > 1 else 1.0,
+        onward=bool(back.max() <= slack_of(width)),
+    )
 
 
 def _turns(progress: Floats, slack: float) -> list[int]:
@@ -162,10 +186,12 @@ def _graph(chains: list[Chain], junction_count: int, inside: Mask) -> ChainGraph
     for number, side in tips:
         if chains[number].junctions[side] != FREE:
             ends[chains[number].junctions[side]].append((number, side))
+    chains = [replace(chain, merged=_is_merged(number, chain, ends)) for number, chain in enumerate(chains)]
     places = np.array([chains[number].points[-side] for number, side in tips])
     leaving = frozenset(end for end, (x, y) in zip(tips, places.astype(int).tolist(), strict=True) if not deep[y, x])
     return ChainGraph(
         leaving=leaving,
+        table=_table(chains),
         chains=tuple(chains),
         ends=tuple(tuple(meeting) for meeting in ends),
         tips=cKDTree(places) if tips else None,
@@ -173,59 +199,26 @@ def _graph(chains: list[Chain], junction_count: int, inside: Mask) -> ChainGraph
     )
 
 
-Run = tuple[tuple[NDArray[np.intp], NDArray[np.intp]], tuple[int, int]]
+def _is_merged(number: int, chain: Chain, ends: list[list[tuple[int, int]]]) -> bool:
+    """Whether it may be the merged stretch of two crossing lines."""
+    if FREE in chain.junctions or chain.length > MERGED * max(chain.width, 1.0):
+        return False
+    first, last = (ends[junction] for junction in chain.junctions)
+    arriving = sum(side == 1 for other, side in first if other != number)
+    leaving = sum(side == 0 for other, side in last if other != number)
+    return arriving > 1 and leaving > 1
 
 
-def _runs(skeleton: Mask) -> tuple[list[Run], int]:
-    framed = np.pad(skeleton, 1).astype(np.uint8)
-    width = framed.shape[1]
-    flat = framed.ravel()
-    at = np.flatnonzero(flat)
-    codes = ring_codes(flat, at, width)
-    degree = np.bitwise_count(codes)
-    junction_map = np.zeros_like(framed)
-    junction_map.ravel()[at[degree >= 3]] = 1
-    count, labels = cv2.connectedComponents(junction_map, connectivity=8)
-    junction_of = labels.ravel().astype(np.intp) - 1
-    steps = [row * width + column for row, column in RING]
-    neighbours = {
-        int(pixel): [int(pixel) + steps[k] for k in range(8) if code >> k & 1]
-        for pixel, code in zip(at.tolist(), codes.tolist(), strict=True)
-    }
-    junction_pixels = set(at[degree >= 3].tolist())
-    runs: list[Run] = []
-    seen: set[int] = set()
-    starts = at[degree <= 1].tolist()
-    starts += [q for p in sorted(junction_pixels) for q in neighbours[p]]
-    starts += at[degree == 2].tolist()
-    for start in starts:
-        if start in seen or start in junction_pixels:
-            continue
-        run = _follow(start, neighbours, junction_pixels, seen)
-        ends = _run_junctions(run, neighbours, junction_pixels, junction_of)
-        pixels = np.array(run, dtype=np.intp)
-        runs.append(((pixels // width - 1, pixels % width - 1), ends))
-    return runs, count - 1
+def _table(chains: list[Chain]) -> ChainTable:
+    def column(values: list[Floats]) -> Floats:
+        return np.array(values, dtype=np.float64).reshape(-1, 2)
 
-
-def _follow(start: int, neighbours: dict[int, list[int]], junctions: set[int], seen: set[int]) -> list[int]:
-    run = [start]
-    seen.add(start)
-    while True:
-        onward = [q for q in neighbours[run[-1]] if q not in seen and q not in junctions]
-        if not onward:
-            return run
-        run.append(onward[0])
-        seen.add(onward[0])
-
-
-def _run_junctions(
-    run: list[int], neighbours: dict[int, list[int]], junctions: set[int], junction_of: NDArray[np.intp]
-) -> tuple[int, int]:
-    first, last = (
-        list(dict.fromkeys(int(junction_of[q]) for q in neighbours[pixel] if q in junctions))
-        for pixel in (run[0], run[-1])
+    return ChainTable(
+        low=column([chain.points.min(axis=0) for chain in chains]),
+        high=column([chain.points.max(axis=0) for chain in chains]),
+        first=column([chain.progress[0] for chain in chains]),
+        last=column([chain.progress[-1] for chain in chains]),
+        length=np.array([chain.length for chain in chains]),
+        width=np.array([chain.width for chain in chains]),
+        onward=np.array([chain.onward for chain in chains], dtype=bool),
     )
-    if len(run) == 1:
-        last = first[1:]
-    return (first[0] if first else FREE), (last[0] if last else FREE)

@@ -5,6 +5,7 @@ from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
+from scipy.spatial import cKDTree
 
 from curvelab.records.arrays import Floats
 from curvelab.records.trace import Gap
@@ -18,7 +19,9 @@ WORST_SD = 0.8
 SHORTEST_GAP = 8.0
 """px without a place that count as a gap, where kinks and crossings are not the reason."""
 SHORTEST_PIECE = 15.0
-"""px of line between gaps."""
+"""px of line between gaps, where no stroke was walked over."""
+ON_STROKE = 2.5
+"""px from a walked pixel: what lies further off was bridged."""
 DASH_COUNT = 4
 LONGEST_LAG = 40
 
@@ -34,7 +37,7 @@ class Measured:
     """Pairs of neighbouring indices between which the line is not seen."""
 
 
-def keep_seen(centres: Centres, inside: NDArray[np.bool_]) -> Measured | None:
+def keep_seen(centres: Centres, inside: NDArray[np.bool_], walked: Floats) -> Measured | None:
     """Places where the line is seen; None where it hardly is.
 
     Parameters
@@ -42,8 +45,11 @@ def keep_seen(centres: Centres, inside: NDArray[np.bool_]) -> Measured | None:
     centres : Centres
     inside : array of bool
         Nodes inside the plot.
+    walked : array, shape (n, 2)
+        The thinned pixels that were walked over.
     """
     course = centres.course
+    strokes = np.asarray(cKDTree(walked).query(course.places(course.across))[0]) < ON_STROKE
     seen = inside & (centres.amplitude > LEAST_AMPLITUDE)
     kept = seen & ~course.near_kink & (centres.sd < WORST_SD)
     kept &= ~_at_free_end(centres, seen, inside)
@@ -52,7 +58,7 @@ def keep_seen(centres: Centres, inside: NDArray[np.bool_]) -> Measured | None:
     spread, correlation = _spread(centres, kept)
     unseen = np.cumsum(~seen * np.gradient(course.arc))
     index, gaps = _index_and_gaps(kept, unseen, course.arc)
-    scraps = _scraps(index, gaps, course.arc)
+    scraps = _scraps(index, gaps, course.arc, strokes)
     if scraps.any():
         kept[index[scraps]] = False
         index, gaps = _index_and_gaps(kept, unseen, course.arc)
@@ -76,13 +82,16 @@ def _index_and_gaps(
     return index, _without_dashes(gaps, arc[index])
 
 
-def _scraps(index: NDArray[np.intp], gaps: list[tuple[int, int]], arc: Floats) -> NDArray[np.bool_]:
+def _scraps(
+    index: NDArray[np.intp], gaps: list[tuple[int, int]], arc: Floats, strokes: NDArray[np.bool_]
+) -> NDArray[np.bool_]:
     """Places between gaps, or a gap and an end, on too little ink to be the line: pieces of a label in its way."""
     scraps = np.zeros(index.size, dtype=bool)
     starts = [0, *(b for _, b in gaps)]
     ends = [*(a for a, _ in gaps), index.size - 1]
-    for start, end in zip(starts, ends, strict=True):
-        scraps[start : end + 1] = bool(gaps) and arc[index[end]] - arc[index[start]] < SHORTEST_PIECE
+    for start, end in zip(starts, ends, strict=True) if gaps else ():
+        short = arc[index[end]] - arc[index[start]] < SHORTEST_PIECE
+        scraps[start : end + 1] = short and not strokes[index[start : end + 1]].any()
     return scraps
 
 

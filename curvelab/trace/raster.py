@@ -39,7 +39,8 @@ def trace_raster(prepared: Prepared, raster: Raster, guide: Guide) -> tuple[Trac
     window = plot_window(prepared.axes)
     origin = np.array(raster.ink.origin)
     everywhere = raster.pixels.places(centres.course.places(centres.across) + origin)
-    measured = keep_seen(centres, window.holds(everywhere, 0.5 * raster.pixels.size_in_places))
+    inside = window.holds(everywhere, 0.5 * raster.pixels.size_in_places)
+    measured = keep_seen(centres, inside, walk.line)
     if measured is None:
         raise TraceError(
             f"No line can be measured at {written(guide.through[0])}",

@@ -7,7 +7,7 @@ import numpy as np
 from curvelab.errors import TraceError
 from curvelab.records.arrays import Floats
 from curvelab.records.trace import Place
-from curvelab.trace.chains import ChainGraph, is_bridge
+from curvelab.trace.chains import ChainGraph
 
 REACH = 8.0
 """px within which a guide place means a line (a hand-set place scatters by 1.5 to 4 px)."""
@@ -45,15 +45,15 @@ def tint_distance(ink: Floats, wanted: Floats) -> float:
 def chains_near(graph: ChainGraph, place: Floats, wanted: Floats | None) -> list[tuple[float, int]]:
     """(distance in px with what speaks against it, chain) of the chains a place may mean, likeliest first."""
     found = []
-    for number, chain in enumerate(graph.chains):
-        low, high = chain.points.min(axis=0), chain.points.max(axis=0)
-        reach = max(REACH, 1.2 * chain.width)
-        if np.any(place < low - reach) or np.any(place > high + reach):
-            continue
+    table = graph.table
+    reaches = np.maximum(REACH, 1.2 * table.width)
+    about = np.all((place >= table.low - reaches[:, None]) & (place <= table.high + reaches[:, None]), axis=1)
+    for number in np.flatnonzero(about).tolist():
+        chain, reach = graph.chains[number], reaches[number]
         distance = float(np.hypot(*(chain.points - place).T).min())
         if distance > reach or (wanted is not None and tint_distance(chain.ink, wanted) > TINT_TOLERANCE):
             continue
-        found.append((distance + (6.0 if chain.length < STUB else 4.0 if is_bridge(chain) else 0.0), number))
+        found.append((distance + (6.0 if chain.length < STUB else 4.0 if chain.merged else 0.0), number))
     return sorted(found)
 
 

@@ -5,13 +5,15 @@ from dataclasses import dataclass
 import numpy as np
 
 from curvelab.records.arrays import Floats
-from curvelab.trace.chains import MERGED, Chain, ChainGraph, is_bridge
+from curvelab.trace.chains import MERGED, Chain, ChainGraph
 from curvelab.trace.characters import FREE
 from curvelab.trace.heading import Heading, heading
 
 End = tuple[int, int]
 """A chain and the side of it, 0 its first point, 1 its last."""
 
+SHORT_END, SHORT_ARM = 2.0, 4.0
+"""Widths of the line below which a chain with a free end, and one between junctions, are too short to tell."""
 THIN = 3.0
 """px"""
 TINT_SPREAD = 0.2
@@ -20,6 +22,14 @@ TELLING = 8
 """Places beyond a kink from which they alone tell the direction."""
 LETTERING = 6.0
 """Cost of a chain that looks like part of a character."""
+TORN = 1.5
+"""Widths of the line over which its middle line may be torn."""
+LEAST_BREAK = 2.5
+"""px: shortest break of a dashed line."""
+DASHES = 3
+"""Breaks after which a line is dashed."""
+LONG = 40
+"""Places of a chain that alone tells the direction."""
 FRESH = 6
 """Chains that a heading is taken from at most."""
 
@@ -96,6 +106,24 @@ class Track:
         """Where it leaves its last chain."""
         return other(self.entry)
 
+    @property
+    def is_dashed(self) -> bool:
+        """Whether the line has shown enough breaks to be dashed."""
+        return len(self.breaks) >= DASHES
+
+    @property
+    def common_break(self) -> float:
+        """Usual break of a dashed line, px."""
+        return float(np.median(self.breaks))
+
+    @property
+    def state(self) -> tuple[int, int]:
+        """What its way on depends on: its last chain, and where that tells little the last that tells direction."""
+        number = self.entry[0]
+        if not self.merged and len(self.trusted[-1]) >= LONG:
+            return number, number
+        return number, self.root.entry[0] if self.root else number
+
     def entries(self) -> list[End]:
         """Its chains in order, each with the side it is entered at."""
         found: list[End] = []
@@ -104,6 +132,10 @@ class Track:
             found.append(track.entry)
             track = track.before
         return found[::-1]
+
+    def numbers(self) -> frozenset[int]:
+        """Numbers of its chains."""
+        return frozenset(number for number, _ in self.entries())
 
     def steps(self) -> list["Track"]:
         """It and every track before it, the first first."""
@@ -142,6 +174,15 @@ def meeting(graph: ChainGraph, end: End) -> tuple[End, ...]:
     return tuple(e for e in graph.ends[junction] if e[0] != end[0])
 
 
+def touching(graph: ChainGraph, track: Track) -> tuple[End, ...]:
+    """Ends so near a track's end that its stroke may reach them: thinning tears strokes where the grid is taken off."""
+    if graph.tips is None:
+        return ()
+    tip = oriented(graph, track.entry)[-1]
+    near = graph.tips.query_ball_point(tip, TORN * track.line.width + 1.0)
+    return tuple(sorted(graph.tip_ends[k] for k in near if graph.tip_ends[k][0] != track.entry[0]))
+
+
 def line_of(chain: Chain) -> Line:
     """The line a chain belongs to, as far as the chain tells."""
     return Line(ink=chain.ink, width=max(chain.width, 1.0))
@@ -178,13 +219,16 @@ def added(graph: ChainGraph, track: Track, step: Step) -> Track:
         cost=track.cost + step.cost,
         trusted=trusted,
         merged=merged,
-        breaks=(*track.breaks, step.hop)[-8:] if step.hop > 1.0 else track.breaks,
+        breaks=(*track.breaks, step.hop)[-8:] if step.hop > LEAST_BREAK else track.breaks,
     )
 
 
 def tells_direction(chain: Chain, line: Line) -> bool:
-    """Whether a chain is long enough, and not perhaps shared, to say where the line runs."""
-    return not is_bridge(chain) and chain.length > 2.0 * line.width
+    """Whether a chain is long enough, or a dash, and not perhaps shared, to say where the line runs."""
+    if chain.junctions == (FREE, FREE):
+        return True
+    least = SHORT_END if FREE in chain.junctions else SHORT_ARM
+    return not chain.merged and chain.length > least * line.width
 
 
 def look_cost(chain: Chain, line: Line) -> float:
@@ -198,4 +242,5 @@ def look_cost(chain: Chain, line: Line) -> float:
     scale = spread * max(float(line.ink.max()), 0.1)
     tint = float(np.max(np.abs(chain.ink - line.ink))) / scale
     width = (chain.width - line.width) / (0.5 * line.width + 1.0)
-    return min(tint**2, 9.0) + min(width**2, 4.0)
+    share = min(1.0, chain.length / line.look_ahead)
+    return share * (min(tint**2, 9.0) + min(width**2, 4.0))

@@ -8,8 +8,11 @@ import numpy as np
 
 from curvelab.records.arrays import Floats
 from curvelab.trace.chains import ChainGraph
-from curvelab.trace.onward import ACCEPT, LONGEST_HOP, MARGIN, Way, known_before, steps_from
+from curvelab.trace.continuing import ACCEPT, LONGEST_HOP
+from curvelab.trace.gaps import MARGIN
+from curvelab.trace.onward import known_before, steps_from
 from curvelab.trace.track import FRESH, Track, added, begun, line_of, oriented
+from curvelab.trace.way import Way
 
 APART = 3.0
 """px: steps closer than this are one."""
@@ -106,23 +109,23 @@ def _explore(
     order = count()
     queue = [(track.cost, next(order), track) for track in starts]
     heapq.heapify(queue)
-    closed: set[int] = set(taken)
+    closed: set[tuple[int, int]] = set()
     tried: dict[int, list[Track]] = {}
     ends: list[tuple[float, Track]] = []
     for _ in range(MOST_STEPS):
         if not queue or (ends and targets and queue[0][0] >= min(ends, key=_cost)[0]):
             break
         cost, _, track = heapq.heappop(queue)
-        if track.entry[0] in closed and track.before is not None:
+        if track.before is not None and (track.entry[0] in taken or track.state in closed):
             continue
-        closed.add(track.entry[0])
+        closed.add(track.state)
         if track.entry[0] in targets:
             ends.append((cost + targets[track.entry[0]], track))
             continue
         steps = [added(graph, track, step) for step in steps_from(graph, track, way)]
         for onward in steps:
             tried.setdefault(id(onward.root), []).append(onward)
-            if onward.entry[0] not in closed:
+            if onward.state not in closed:
                 heapq.heappush(queue, (onward.cost, next(order), onward))
         if not steps and not targets:
             ends.append((cost + (0.0 if track.end in graph.leaving else END_INSIDE), track))
@@ -173,8 +176,10 @@ def _to_end(
         if track.merged:
             continue
         rivals = [t for t in explored.tried.get(id(track.root), ()) if t.entry[0] not in passed]
-        if any(_rivals(graph, rival, track) for rival in rivals):
-            assert track.before is not None
+        assert track.before is not None
+        if track.step.kink and track.step.hop > SHORTEST_GAP and not start.is_dashed:
+            doubts.append(_tip(graph, track.before))
+        elif any(_rivals(graph, rival, track) for rival in rivals):
             doubts.append(_tip(graph, track.before))
             if track.step.hop > SHORTEST_GAP:
                 return track.before, doubts
@@ -188,6 +193,10 @@ def _rivals(graph: ChainGraph, rival: Track, chosen: Track) -> bool:
     length = int(chosen.line.look_ahead)
     a, b = oriented(graph, rival.entry)[:length], oriented(graph, chosen.entry)[:length]
     beyond = chosen.step.hop + float(np.hypot(*(b[-1] - b[0])))
+    if chosen.before is not None and chosen.step.hop > APART:
+        # what lies on the way over an unseen stretch is no other way
+        tip = np.array(_tip(graph, chosen.before))
+        b = np.concatenate([tip + (b[0] - tip) * np.linspace(0.0, 1.0, int(chosen.step.hop) + 1)[:, None], b])
     apart = np.hypot(*(a[-1] - b).T).min() > APART and np.hypot(*(b[-1] - a).T).min() > APART
     return bool(apart and rival.step.hop < beyond)
 
