@@ -60,8 +60,8 @@ class PowerTable:
             first, last = self.breaks.searchsorted(asked[[0, -1]])
             if asked.size >= _SLICING_PAYS_FROM * (last - first + 1):
                 ends = asked.searchsorted(self.breaks[first:last], side="right").tolist()
-                for row, start, stop in zip(range(first, last + 1), [0, *ends], [*ends, asked.size], strict=True):
-                    self._fill(row, log_asked[start:stop], answers[:, start:stop])
+                rows_asked = zip(range(first, last + 1), [0, *ends], [*ends, asked.size], strict=True)
+                self._fill([one for one in rows_asked if one[1] < one[2]], log_asked, answers)
                 return
         rows = self.breaks.searchsorted(asked)
         for chain, answer in enumerate(answers):
@@ -70,13 +70,16 @@ class PowerTable:
             np.exp(answer, out=answer)
             np.multiply(answer, self.value[chain].take(rows), out=answer)
 
-    def _fill(self, row: int, log_asked: Floats, answers: Floats) -> None:
-        """Answers of numbers that all lie in one row."""
-        for chain, answer in enumerate(answers):
-            np.subtract(log_asked, self.log_anchor[chain, row], out=answer)
-            np.multiply(answer, self.slope[chain, row], out=answer)
-            np.exp(answer, out=answer)
-            np.multiply(answer, self.value[chain, row], out=answer)
+    def _fill(self, rows: list[tuple[int, int, int]], log_asked: Floats, answers: Floats) -> None:
+        """Answers of sorted numbers: those from ``start`` to ``stop`` lie in a row, for all chains at once."""
+        for row, start, stop in rows:
+            here = answers[:, start:stop]
+            np.subtract(log_asked[start:stop], self.log_anchor[:, row : row + 1], out=here)
+            np.multiply(here, self.slope[:, row : row + 1], out=here)
+        np.exp(answers, out=answers)
+        for row, start, stop in rows:
+            here = answers[:, start:stop]
+            np.multiply(here, self.value[:, row : row + 1], out=here)
 
 
 def chain_table(given: Floats, answer: Floats, *, first: bool, clamped: bool = False) -> PowerTable:
