@@ -3,13 +3,12 @@
 import math
 from collections.abc import Callable
 from dataclasses import dataclass, replace
-
-import numpy as np
+from typing import cast
 
 from curvelab.records.answer import EdgeAnswer, Status
+from curvelab.records.limit import interval_of
 from curvelab.units import written_between
 
-REACHED = ("value", "at_least", "at_most")
 _TURNED: dict[Status, Status] = {"at_least": "at_most", "at_most": "at_least"}
 
 
@@ -60,19 +59,16 @@ class Estimate:
         return prefix + written_between(self.value, self.interval, self.unit)
 
 
-def estimate(answer: EdgeAnswer | None, unit: str, reason: str = "", *, index: int | None = None) -> Estimate:
-    """One answer of a device, of an array of them the one at ``index``; ``not_covered`` without such an edge."""
+def estimate(answer: EdgeAnswer | None, unit: str, reason: str = "") -> Estimate:
+    """One answer of a device to one number asked; ``not_covered`` without such an edge."""
     if answer is None:
         return Estimate(status="not_covered", value=None, interval=None, unit=unit, reason=reason)
-    place = 0 if index is None else index
-    value, lower, upper = (float(np.ravel(each)[place]) for each in (answer.value, answer.lower, answer.upper))
-    known = not (math.isnan(lower) or math.isnan(upper))
-    status: Status = str(np.ravel(answer.status)[place])  # type: ignore[assignment]
+    value = float(answer.value)
     return Estimate(
-        status=status,
+        status=cast(Status, answer.status),
         value=None if math.isnan(value) else value,
-        interval=(lower, upper) if known else None,
+        interval=interval_of(answer),
         unit=unit,
         basis=answer.basis,
-        reason="" if status == "value" else reason,
+        reason="" if answer.status == "value" else reason,
     )

@@ -8,7 +8,7 @@ import click
 
 import curvelab
 from curvelab.cli.findings import findings_table
-from curvelab.cli.many import ManyValues, Settings
+from curvelab.cli.many import ManyValues, settings_option
 from curvelab.cli.output import json_option, library_option, write_json
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
@@ -26,9 +26,7 @@ from curvelab.standards.scope import unchecked
 
 @click.command(cls=ManyValues)
 @click.argument("subject", metavar="KEY|WORKSHEET")
-@click.option(
-    "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
-)
+@settings_option
 @click.option(
     "--picture",
     "picture_file",

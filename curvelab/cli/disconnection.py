@@ -1,6 +1,6 @@
 """``curvelab disconnection``: whether a device disconnects a fault in time, and with which greatest loop."""
 
-from typing import get_args
+from typing import Any, get_args
 
 import click
 
@@ -11,7 +11,7 @@ from curvelab.calculators.disconnection import Disconnection, disconnection
 from curvelab.calculators.estimate import Estimate
 from curvelab.calculators.practices import DEFAULT_PRACTICE, Circuit, System, touch_limit
 from curvelab.cli.answer import closing_lines, exit_status, heading, labelled
-from curvelab.cli.many import ManyValues, Settings
+from curvelab.cli.many import ManyValues, settings_option
 from curvelab.cli.output import json_option, library_option, write_json
 from curvelab.devices.device import Device
 from curvelab.library.key import split_key
@@ -45,9 +45,7 @@ FIGURES = 5
     help="iec60364, bs7671 or asnzs3000: how the greatest loop is reckoned.",
 )
 @click.option("--breaker-time", "breaker_time_s", type=float, metavar="S", help="Of the breaker a relay acts on.")
-@click.option(
-    "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
-)
+@settings_option
 @library_option
 @json_option
 def command(
@@ -55,10 +53,10 @@ def command(
     settings: tuple[tuple[str, float | str], ...],
     library_file: str | None,
     json_file: str | None,
-    **circumstances: object,
+    **circumstances: Any,
 ) -> int:
     """Whether KEY disconnects a fault to earth in the required time, and the greatest loop impedance for it."""
-    asked = Circumstances(**circumstances)  # type: ignore[arg-type]
+    asked = Circumstances(**circumstances)
     with curvelab.open_library(library_file, create=False) as library:
         device = library.device(*split_key(key)).at(**dict(settings))
     answer = disconnection(device, asked)

@@ -1,5 +1,7 @@
 """``curvelab discrimination``: up to which current only the downstream one of two devices acts."""
 
+from typing import Any
+
 import click
 
 import curvelab
@@ -46,12 +48,12 @@ def command(
     settings: tuple[tuple[str, float | str], ...],
     library_file: str | None,
     json_file: str | None,
-    **between: object,
+    **between: Any,
 ) -> int:
     """Up to which current only DOWNSTREAM acts and UPSTREAM does not; currents are counted at DOWNSTREAM."""
     keys = (upstream_key, downstream_key)
     given = settings_by_key(keys, settings)
-    transformer = _transformer(**between)  # type: ignore[arg-type]
+    transformer = _transformer(**between)
     with curvelab.open_library(library_file, create=False) as library:
         upstream, downstream = (library.device(*split_key(key)).at(**given[key]) for key in keys)
     answer = discrimination(upstream, downstream, up_to_a, transformer)

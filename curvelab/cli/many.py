@@ -68,3 +68,8 @@ class Settings(click.ParamType[Any]):
             return name, float(number)
         except ValueError:
             self.fail(f"'{number}' in '{value}' is neither a number nor 'off'.", param, ctx)
+
+
+settings_option = click.option(
+    "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
+)

@@ -6,7 +6,7 @@ import curvelab
 from curvelab.calculators.as_json import overload_json
 from curvelab.calculators.overload import Load, Overload, overload, written_conventional
 from curvelab.cli.answer import closing_lines, exit_status, heading, labelled
-from curvelab.cli.many import ManySettings, Settings
+from curvelab.cli.many import ManySettings, settings_option
 from curvelab.cli.output import json_option, library_option, write_json
 from curvelab.devices.device import Device
 from curvelab.library.key import split_key
@@ -22,9 +22,7 @@ from curvelab.units import written_current
 @click.option(
     "--conventional-time", "conventional_time_s", type=float, metavar="S", help="In place of the tabulated time."
 )
-@click.option(
-    "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
-)
+@settings_option
 @library_option
 @json_option
 def command(

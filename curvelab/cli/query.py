@@ -10,7 +10,7 @@ from curvelab.calculators.as_json import trip_json
 from curvelab.calculators.refusals import not_protective
 from curvelab.calculators.trip import Edges, TripAnswer, TripAnswers, trip_currents, trip_times
 from curvelab.cli.answer import closing_lines, heading
-from curvelab.cli.many import ManyValues, Settings
+from curvelab.cli.many import ManyValues, settings_option
 from curvelab.cli.output import json_option, library_option, table, write_json
 from curvelab.devices.device import Device
 from curvelab.devices.question import Path
@@ -30,9 +30,7 @@ LIMITING = {"let-through": lambda answer: answer.let_through, "cut-off": lambda 
 @click.option(
     "--path", type=click.Choice(get_args(Path)), help="How the current comes back [default: as the device sees it]."
 )
-@click.option(
-    "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
-)
+@settings_option
 @library_option
 @json_option
 def command(

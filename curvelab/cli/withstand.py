@@ -8,7 +8,7 @@ from curvelab.calculators.conductors import USES, conductor_of
 from curvelab.calculators.energy import Way
 from curvelab.calculators.withstand import Faults, Stress, Withstand, withstand
 from curvelab.cli.answer import closing_lines, exit_status, heading, labelled
-from curvelab.cli.many import ManySettings, Settings
+from curvelab.cli.many import ManySettings, settings_option
 from curvelab.cli.output import json_option, library_option, table, write_json
 from curvelab.devices.device import Device
 from curvelab.library.key import split_key
@@ -31,9 +31,7 @@ _WAYS = {
     "--current", "currents", type=float, nargs=2, required=True, metavar="MIN MAX", help="Prospective fault currents."
 )
 @click.option("--breaker-time", "breaker_time_s", type=float, metavar="S", help="Of the breaker a relay acts on.")
-@click.option(
-    "--set", "settings", type=Settings(), multiple=True, metavar="NAME=VALUE...", help="Settings, e.g. ir=0.8."
-)
+@settings_option
 @library_option
 @json_option
 def command(

@@ -9,200 +9,96 @@ from curvelab.cli.main import run
 
 SITE = "handbook of an invented pumping station"
 
-B32 = f"""
-format = 1
-[[curves]]
-edge = "fast"
-meaning = "clearing"
-points = [[36.2, 9000], [64, 20], [96, 5], [96, 0.01], [1000, 0.008]]
-source = "{SITE}"
-[[curves]]
-edge = "slow"
-meaning = "clearing"
-points = [[44.8, 7000], [64, 110], [160, 9], [160, 0.09], [1000, 0.02]]
-source = "{SITE}"
-[[devices]]
+
+def curve(edge: str, points: list[list[float]], **words: str) -> str:
+    """One typed curve of a worksheet; a word that is no text is given as TOML, as ``at="{ tr = 8 }"``."""
+    told = {"edge": edge, "points": points, "source": SITE, **words}
+    lines = [f"{key} = {value}" if key in ("points", "at") else f'{key} = "{value}"' for key, value in told.items()]
+    return "\n".join(["[[curves]]", *lines])
+
+
+def worksheet(plate: str, *curves: str, axis: str = "") -> str:
+    """A worksheet of typed curves, its currents or energies in the unit of one axis."""
+    return "\n".join(["format = 1", axis, *curves, "[[devices]]", plate])
+
+
+IN_RATED, IN_RESIDUAL = (f'[axes.current]\nunit = "{unit}"' for unit in ("xIn", "xIdn"))
+IN_A2S = '[axes.let_through]\nunit = "A2s"'
+
+B32 = """
 key = "hall-b32"
 kind = "mcb"
 characteristic = "B"
 standard = "IEC 60898-1"
 rated_current_a = 32
 """
-
-C20 = f"""
-format = 1
-[axes.current]
-unit = "xIn"
-[[curves]]
-edge = "fast"
-meaning = "clearing"
-points = [[1.13, 9000], [2.55, 10], [5, 2], [5, 0.01], [50, 0.008]]
-source = "{SITE}"
-[[curves]]
-edge = "slow"
-meaning = "clearing"
-points = [[1.45, 3500], [2.55, 60], [10, 3], [10, 0.05], [50, 0.02]]
-source = "{SITE}"
-[[devices]]
-key = "hall-c20"
-kind = "mcb"
-characteristic = "C"
-standard = "IEC 60898-1"
-rated_current_a = 20
-"""
-
-RCD = f"""
-format = 1
-[axes.current]
-unit = "xIdn"
-[[curves]]
-edge = "fast"
-element = "residual"
-points = [[0.5, 0.3], [0.5, 0.02], [500, 0.01]]
-source = "{SITE}"
-[[curves]]
-edge = "slow"
-element = "residual"
-points = [[1, 0.3], [2, 0.15], [5, 0.04], [500, 0.04]]
-source = "{SITE}"
-[[devices]]
+C20 = B32.replace("b32", "c20").replace('"B"', '"C"').replace("= 32", "= 20")
+C16 = C20.replace("c20", "c16").replace("= 20", "= 16")
+C16 += 'breaking = [ { quantity = "Icn", value_a = 10000, voltage_v = 230 } ]'
+RCD = """
 key = "hall-rcd30"
 kind = "rcd"
 standard = "IEC 61008-1"
 rated_current_a = 40
 rated_residual_current_a = 0.03
 """
-
+GG100 = """
+key = "hall-gg100"
+kind = "fuse"
+characteristic = "gG"
+standard = "IEC 60269-2"
+rated_current_a = 100
+tolerance_current = [-0.1, 0.1]
+breaking = [ { quantity = "Icu", value_a = 80000, voltage_v = 400 } ]
+"""
+MCCB = """
+key = "hall-q250"
+kind = "mccb"
+rated_current_a = 250
+breaking = [ { quantity = "Icu", value_a = 36000 } ]
+[devices.settings]
+ir = { from = 0.4, to = 1.0, base = "xIn" }
+tr = { steps = [2, 4, 8] }
+ii = { from = 2, to = 10, base = "xIn", off = true }
+"""
 SWITCH = """
-format = 1
-[[devices]]
 key = "hall-isolator"
 kind = "switch"
 rated_current_a = 63
 """
+C_FAST = curve("fast", [[1.13, 9000], [2.55, 10], [5, 2], [5, 0.01], [500, 0.008]], meaning="clearing")
+C_SLOW = curve("slow", [[1.45, 3500], [2.55, 60], [10, 3], [10, 0.05], [500, 0.02]], meaning="clearing")
+LONG_TIME = {"meaning": "clearing", "element": "overload", "base": "xIr", "at": "{ tr = 8 }"}
+AT_ONCE = {"meaning": "clearing", "element": "instantaneous", "base": "xIi"}
 
-C16 = f"""
-format = 1
-[axes.current]
-unit = "xIn"
-[[curves]]
-edge = "fast"
-meaning = "clearing"
-points = [[1.13, 9000], [2.55, 10], [5, 2], [5, 0.01], [500, 0.008]]
-source = "{SITE}"
-[[curves]]
-edge = "slow"
-meaning = "clearing"
-points = [[1.45, 3500], [2.55, 60], [10, 3], [10, 0.05], [500, 0.02]]
-source = "{SITE}"
-[[devices]]
-key = "hall-c16"
-kind = "mcb"
-characteristic = "C"
-standard = "IEC 60898-1"
-rated_current_a = 16
-breaking = [ {{ quantity = "Icn", value_a = 10000, voltage_v = 230 }} ]
-"""
-
-C16_LET_THROUGH = f"""
-format = 1
-[axes.let_through]
-unit = "A2s"
-[[curves]]
-edge = "slow"
-meaning = "clearing"
-points = [[100, 300], [10000, 30000]]
-source = "{SITE}"
-[[devices]]
-key = "hall-c16"
-kind = "mcb"
-characteristic = "C"
-standard = "IEC 60898-1"
-rated_current_a = 16
-breaking = [ {{ quantity = "Icn", value_a = 10000, voltage_v = 230 }} ]
-"""
-
-GG100 = f"""
-format = 1
-[[curves]]
-edge = "mean"
-meaning = "pre_arcing"
-points = [[500, 1.6], [1000, 0.1], [1200, 0.0482253086]]
-source = "{SITE}"
-[[devices]]
-key = "hall-gg100"
-kind = "fuse"
-characteristic = "gG"
-standard = "IEC 60269-2"
-rated_current_a = 100
-tolerance_current = [-0.1, 0.1]
-breaking = [ {{ quantity = "Icu", value_a = 80000, voltage_v = 400 }} ]
-"""
-
-GG100_ENERGY = f"""
-format = 1
-[axes.let_through]
-unit = "A2s"
-[[curves]]
-edge = "mean"
-meaning = "pre_arcing"
-points = [[1000, 12000], [80000, 12000]]
-source = "{SITE}"
-[[devices]]
-key = "hall-gg100"
-kind = "fuse"
-characteristic = "gG"
-standard = "IEC 60269-2"
-rated_current_a = 100
-tolerance_current = [-0.1, 0.1]
-breaking = [ {{ quantity = "Icu", value_a = 80000, voltage_v = 400 }} ]
-"""
-
-MCCB = f"""
-format = 1
-[[curves]]
-edge = "fast"
-meaning = "clearing"
-element = "overload"
-base = "xIr"
-points = [[1.05, 7000], [6, 6], [12, 1.5]]
-at = {{ tr = 8 }}
-source = "{SITE}"
-[[curves]]
-edge = "slow"
-meaning = "clearing"
-element = "overload"
-base = "xIr"
-points = [[1.2, 7000], [6, 8], [12, 2]]
-at = {{ tr = 8 }}
-source = "{SITE}"
-[[curves]]
-edge = "fast"
-meaning = "clearing"
-element = "instantaneous"
-base = "xIi"
-points = [[0.8, 1], [0.8, 0.01], [40, 0.01]]
-source = "{SITE}"
-[[curves]]
-edge = "slow"
-meaning = "clearing"
-element = "instantaneous"
-base = "xIi"
-points = [[1.2, 1], [1.2, 0.04], [40, 0.04]]
-source = "{SITE}"
-[[devices]]
-key = "hall-q250"
-kind = "mccb"
-rated_current_a = 250
-breaking = [ {{ quantity = "Icu", value_a = 36000 }} ]
-[devices.settings]
-ir = {{ from = 0.4, to = 1.0, base = "xIn" }}
-tr = {{ steps = [2, 4, 8] }}
-ii = {{ from = 2, to = 10, base = "xIn", off = true }}
-"""
-
-SHEETS = {"b32": B32, "c20": C20, "rcd": RCD, "switch": SWITCH, "c16": C16, "c16-let-through": C16_LET_THROUGH}
-SHEETS |= {"gg100": GG100, "gg100-energy": GG100_ENERGY, "q250": MCCB}
+SHEETS = {
+    "b32": worksheet(
+        B32,
+        curve("fast", [[36.2, 9000], [64, 20], [96, 5], [96, 0.01], [1000, 0.008]], meaning="clearing"),
+        curve("slow", [[44.8, 7000], [64, 110], [160, 9], [160, 0.09], [1000, 0.02]], meaning="clearing"),
+    ),
+    "c20": worksheet(C20, C_FAST, C_SLOW, axis=IN_RATED),
+    "c16": worksheet(C16, C_FAST, C_SLOW, axis=IN_RATED),
+    "c16-let-through": worksheet(C16, curve("slow", [[100, 300], [10_000, 30_000]], meaning="clearing"), axis=IN_A2S),
+    "rcd": worksheet(
+        RCD,
+        curve("fast", [[0.5, 0.3], [0.5, 0.02], [500, 0.01]], element="residual"),
+        curve("slow", [[1, 0.3], [2, 0.15], [5, 0.04], [500, 0.04]], element="residual"),
+        axis=IN_RESIDUAL,
+    ),
+    "switch": worksheet(SWITCH),
+    "gg100": worksheet(GG100, curve("mean", [[500, 1.6], [1000, 0.1], [1200, 0.0482253086]], meaning="pre_arcing")),
+    "gg100-energy": worksheet(
+        GG100, curve("mean", [[1000, 12_000], [80_000, 12_000]], meaning="pre_arcing"), axis=IN_A2S
+    ),
+    "q250": worksheet(
+        MCCB,
+        curve("fast", [[1.05, 7000], [6, 6], [12, 1.5]], **LONG_TIME),
+        curve("slow", [[1.2, 7000], [6, 8], [12, 2]], **LONG_TIME),
+        curve("fast", [[0.8, 1], [0.8, 0.01], [40, 0.01]], **AT_ONCE),
+        curve("slow", [[1.2, 1], [1.2, 0.04], [40, 0.04]], **AT_ONCE),
+    ),
+}
 
 
 @pytest.fixture(scope="module")
