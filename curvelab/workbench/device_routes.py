@@ -1,8 +1,10 @@
 """Addresses of the library: every question is a GET, read-only, for any program; a review is the one change."""
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 from typing import Any, Literal
+
+from starlette.responses import Response, StreamingResponse
 
 from curvelab.calculators.as_json import trip_json
 from curvelab.calculators.trip import trip_currents, trip_times
@@ -131,12 +133,19 @@ def points_csv(bench: Bench, asked: OfDevice) -> Content:
         return table_of(library.record(key, revision))
 
 
-def export(bench: Bench, asked: OfDevice) -> Content:
-    """All that is stored of it, in the library's open form."""
+def export(bench: Bench, asked: OfDevice) -> Response:
+    """All that is stored of it, in the library's open form, line by line: sheets are in it and may be large."""
     key, _ = split_key(asked.key)
     with bench.reading() as library:
-        text = "".join(library.exported([key]))
-    return Content(data=text.encode(), media="application/jsonl", name=f"{key}.jsonl")
+        library.history(key)
+    headers = {"content-disposition": f'attachment; filename="{key}.jsonl"'}
+    return StreamingResponse(_exported(bench, key), media_type="application/jsonl", headers=headers)
+
+
+def _exported(bench: Bench, key: str) -> Iterator[bytes]:
+    with bench.reading() as library:
+        for line in library.exported([key]):
+            yield line.encode()
 
 
 def overlay(bench: Bench, asked: OfReading) -> Content:
