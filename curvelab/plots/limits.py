@@ -19,6 +19,7 @@ SIZE = 13.0
 """Of the bracket, in points."""
 SETTLED = ("meets", "not covered")
 """Outcomes that need no second look; the others are named beside the limit."""
+RESIDUAL = "xIdn"
 MULTIPLE_OF = {
     "xIn": r"$I_\mathrm{n}$",
     "xIr": r"$I_\mathrm{r}$",
@@ -86,6 +87,9 @@ def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
     current, own_base = (finding.limit, finding.unit) if finding.unit in BASES else (finding.current, finding.base)
     time_s = finding.time_s if of_current else finding.limit
     if finding.permitted is None or current is None or own_base is None or time_s is None:
+        return None
+    if RESIDUAL in (own_base, base) and own_base not in (base, "A"):
+        # A residual current and a load current are no two places on one axis.
         return None
     scale = units_per_unit(subject, own_base, base)
     if scale is None:

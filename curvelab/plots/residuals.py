@@ -6,8 +6,9 @@ import numpy as np
 from matplotlib import rc_context
 from matplotlib.axes import Axes as Canvas
 from matplotlib.figure import Figure
+from matplotlib.ticker import NullFormatter
 
-from curvelab.plots.ink import GRAPHITE, INK, LINE_STYLE, MAJOR, MINOR, PAPER, QUIET, STYLE, WARM
+from curvelab.plots.ink import GRAPHITE, INK, LINE_STYLE, MAJOR, MINOR, PAPER, QUIET, STYLE, device_ink
 from curvelab.plots.ticks import current_label, value_label
 from curvelab.records.arrays import Floats
 from curvelab.records.axes import Axes, GridLine
@@ -49,48 +50,42 @@ def _panels(figure: Figure, count: int, free: tuple[float, float]) -> list[Canva
 def _draw_axis(panel: Canvas, axes: Axes, name: str, unit: str) -> None:
     axis = axes.current if name == "current" else axes.value
     lines: list[GridLine] = [line for line in axes.grid if line.axis == name]
-    words = "current axis" if name == "current" else f"{axis.quantity.replace('_', '-')} axis"
-    title = f"Grid lines of the {words}: measured less fitted" if lines else f"Marks of the {words}: given less fitted"
+    what = "Grid lines of the {} axis: measured less fitted" if lines else "Marks of the {} axis: given less fitted"
     values = np.array([line.value for line in lines] or [axis.value_of(mark) for mark in axis.marks])
     found = grid_residuals(axes, lines) if lines else np.array([mark.residual or 0.0 for mark in axis.marks])
     reach = COVERAGE_FACTOR * np.array([line.sd / np.sqrt(len(line.points)) for line in lines] or np.zeros(values.size))
-    if axis.scale == "log":
-        panel.set_xscale("log")
     panel.errorbar(values, found, yerr=reach, fmt="o", markersize=3.2, color=INK, linewidth=0.7, capsize=1.5)
-    _finish(panel, found, title, unit)
-    label = (
-        (lambda value, _: current_label(value, axis.base))
-        if name == "current"
-        else (lambda value, _: value_label(value, axis.quantity))
-    )
-    panel.xaxis.set_major_formatter(label)
-    panel.xaxis.set_minor_formatter(lambda _value, _place: "")
+    _scale(panel, axes, name)
+    _finish(panel, found, what.format(axis.quantity.replace("_", "-")), unit)
     rms = float(np.sqrt(np.mean(found**2))) if found.size else 0.0
-    panel.text(
-        1,
-        1.03,
-        f"{values.size} of them, RMS {rms:.3f} {unit}",
-        fontsize=7,
-        color=QUIET,
-        ha="right",
-        transform=panel.transAxes,
+    words, place = f"{values.size} of them, RMS {rms:.3f} {unit}", panel.transAxes
+    panel.text(1, 1.03, words, fontsize=7, color=QUIET, ha="right", transform=place)
+
+
+def _scale(panel: Canvas, axes: Axes, name: str) -> None:
+    """The panel's level axis is that of the plot, from one of its sides to the other."""
+    axis, index = (axes.current, 0) if name == "current" else (axes.value, 1)
+    x0, y0, x1, y1 = axes.frame
+    ends = axes.values([(x0, y0), (x1, y0), (x0, y1), (x1, y1)])[index]
+    panel.set_xscale(axis.scale)
+    panel.set_xlim(ends.min(), ends.max())
+    panel.xaxis.set_major_formatter(
+        lambda value, _: value_label(value, axis.quantity) if index else current_label(value, axis.base)
     )
+    panel.xaxis.set_minor_formatter(NullFormatter())
 
 
 def _draw_curves(panel: Canvas, axes: Axes, traced: Sequence[ReadCurve], unit: str) -> None:
-    panel.set_xscale("log")
     everything = []
     for index, read in enumerate(traced):
         distances = curve_distances(axes, read)
         everything.append(distances)
-        colour = (INK, WARM, GRAPHITE, "#54398a")[index % 4]
+        colour = device_ink(index).colour
         panel.plot(read.current, distances, ".", markersize=1.4, color=colour, alpha=0.55, zorder=2)
         panel.plot([], [], color=colour, linestyle=LINE_STYLE[read.curve.edge], label=_curve_words(read))
+    _scale(panel, axes, "current")
     _finish(panel, np.concatenate(everything), "Places of the lines: distance from the fitted curve", unit)
-    panel.xaxis.set_major_formatter(lambda value, _: current_label(value, axes.current.base))
-    panel.xaxis.set_minor_formatter(lambda _value, _place: "")
-    legend = panel.legend(frameon=False, fontsize=7, loc="upper left", bbox_to_anchor=(0, -0.1), ncols=4, borderpad=0)
-    legend.set_in_layout(False)
+    panel.legend(frameon=False, fontsize=7, loc="upper left", bbox_to_anchor=(0, -0.1), ncols=4, borderpad=0)
 
 
 def _curve_words(read: ReadCurve) -> str:

@@ -148,3 +148,13 @@ def test_what_cannot_be_drawn_is_refused_and_nothing_written(tmp_path):
     with pytest.raises(InputError, match="cannot be written"):
         draw_bands([mcb()], tmp_path / "absent" / "one.png")
     assert list(tmp_path.iterdir()) == []
+
+
+def test_limits_of_load_currents_are_not_drawn_beside_residual_currents():
+    curve = Curve(
+        element="residual", edge="slow", meaning="clearing", base="xIdn", parts=(typed_part([1.0, 50.0], [0.3, 0.04]),)
+    )
+    plate = Nameplate(key="riverside-b16", kind="rcbo", rated_current_a=16.0, rated_residual_current_a=0.03)
+    residual = replace(FINDINGS[0], base="xIdn", current=1.0, limit=0.3)
+    figure = bands_figure([DeviceRecord(nameplate=plate, curves=(curve,))], findings=(FINDINGS[1], residual))
+    assert [text.split(" ")[0] for text in texts(figure)] == ["1"]
