@@ -15,7 +15,8 @@ STEP = 1e-9
 SLIVER = 1e-8
 """Relative width to which a change is found; a span no wider is the two sides of one tabulated step."""
 
-_PIECES, _ROUNDS = 16, 5
+_PIECES, _ROUNDS, _APART = 16, 5, 1.05
+"""Where something changes, and between places further apart than the ratio, so many pieces are looked at."""
 
 Codes = NDArray[np.int8]
 CodeAt = Callable[[Floats], Codes]
