@@ -37,7 +37,7 @@ def estimate_json(found: Estimate | None) -> Json | None:
 
 
 def trip_json(device: Device, answers: TripAnswers) -> Json:
-    """Times in s at currents in A, or currents for times, in the order asked; ``base`` is that of the currents."""
+    """Times in s at currents, or currents for times, in the order asked; ``base`` is that of the currents."""
     asked = "current" if answers.of_times else "time"
     return {
         "format": FORMAT,
@@ -45,7 +45,7 @@ def trip_json(device: Device, answers: TripAnswers) -> Json:
         "revision": device.revision,
         "state": device.state,
         "settings": dict(device.settings),
-        "base": "A",
+        "base": answers.base,
         "answers": [
             {
                 asked: answer.asked,

@@ -44,3 +44,20 @@ def transformer_of(ratio: float, connection: str) -> Transformer:
         raise InputError(f"The connection '{connection}' is not known", f"Known: {', '.join(known)}")
     faults = (FaultFactor(fault=row["fault"], factor=row["factor"], origin=row["origin"]) for row in rows)
     return Transformer(ratio=ratio, connection=connection, faults=tuple(faults))
+
+
+def transformer_between(ratio: float | None, connection: str | None) -> Transformer | None:
+    """The transformer where both are given; None where none is.
+
+    Raises
+    ------
+    InputError
+        One is missing, or `transformer_of` refuses them.
+    """
+    if ratio is None and connection is None:
+        return None
+    if ratio is None or connection is None:
+        raise InputError(
+            "A transformer has a ratio and a connection", "A ratio, and one such as Dyn", "Give both, or none"
+        )
+    return transformer_of(ratio, connection)

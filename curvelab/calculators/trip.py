@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from curvelab.calculators.cautions import Caution, cautions_of, least_breaking_current_a
 from curvelab.calculators.estimate import Estimate, estimate
 from curvelab.calculators.refusals import reason, residual_only
+from curvelab.devices.bases import amperes
 from curvelab.devices.device import Device, Quantity
 from curvelab.devices.meaning import TOTAL
 from curvelab.devices.question import Path
@@ -26,7 +27,7 @@ Edges = Mapping[str, Estimate | None]
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class TripAnswer:
-    """What a device does at one current in A, or which currents in A go with one time in s.
+    """What a device does at one current, or which currents go with one time in s.
 
     ``let_through`` in A2s and ``peak`` in A at a current are None where the device has no such sheet.
     """
@@ -52,17 +53,21 @@ class TripAnswer:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class TripAnswers:
-    """Answers of one device in the order asked; ``of_times`` where currents were asked and times are answered."""
+    """Answers of one device in the order asked; ``of_times`` where currents were asked and times are answered.
+
+    ``base`` is what the currents are counted in.
+    """
 
     device: str
+    base: str
     of_times: bool
     answers: tuple[TripAnswer, ...]
     notes: tuple[str, ...]
     cautions: tuple[Caution, ...]
 
 
-def trip_times(device: Device, currents_a: Sequence[float], path: Path | None = None) -> TripAnswers:
-    """Times at currents, and let-through energies and cut-off currents where the device has their sheets.
+def trip_times(device: Device, currents: Sequence[float], path: Path | None = None, base: str = "A") -> TripAnswers:
+    """Times at currents in a base, and let-through energies and cut-off currents where the device has their sheets.
 
     Raises
     ------
@@ -71,15 +76,16 @@ def trip_times(device: Device, currents_a: Sequence[float], path: Path | None = 
     """
     return TripAnswers(
         device=device.key,
+        base=base,
         of_times=True,
-        answers=tuple(_at(device, each, path) for each in currents_a),
-        notes=(*_on_meaning(device, path), *_below_least_breaking(device, currents_a)),
+        answers=tuple(_at(device, each, path, base) for each in currents),
+        notes=(*_on_meaning(device, path), *_below_least_breaking(device, currents, base)),
         cautions=cautions_of(device),
     )
 
 
-def trip_currents(device: Device, times_s: Sequence[float], path: Path | None = None) -> TripAnswers:
-    """Currents for times: which surely trip by then, which surely hold.
+def trip_currents(device: Device, times_s: Sequence[float], path: Path | None = None, base: str = "A") -> TripAnswers:
+    """Currents in a base for times: which surely trip by then, which surely hold.
 
     Raises
     ------
@@ -88,8 +94,9 @@ def trip_currents(device: Device, times_s: Sequence[float], path: Path | None = 
     """
     return TripAnswers(
         device=device.key,
+        base=base,
         of_times=False,
-        answers=tuple(_for(device, each, path) for each in times_s),
+        answers=tuple(_for(device, each, path, base) for each in times_s),
         notes=tuple(_on_meaning(device, path)),
         cautions=cautions_of(device),
     )
@@ -99,23 +106,23 @@ def _drawn(edges: Edges | None) -> list[Estimate]:
     return [] if edges is None else [each for each in edges.values() if each is not None]
 
 
-def _at(device: Device, current_a: float, path: Path | None) -> TripAnswer:
-    times, blind = device.trip_time(current_a, path=path), _is_blind(device, path)
-    energies = device.let_through(current_a) if device.limiting("let_through") else None
-    peaks = device.let_through(current_a, quantity="peak") if device.limiting("peak") else None
+def _at(device: Device, current: float, path: Path | None, base: str) -> TripAnswer:
+    times, blind = device.trip_time(current, base, path=path), _is_blind(device, path)
+    energies = device.let_through(current, base) if device.limiting("let_through") else None
+    peaks = device.let_through(current, base, quantity="peak") if device.limiting("peak") else None
     return TripAnswer(
-        asked=current_a,
+        asked=current,
         edges=_not_seen(device, _OF_TIMES, "s") if blind else _edges(device, times, _OF_TIMES, "time", "s"),
         let_through=None if energies is None else _edges(device, energies, _OF_TIMES, "let_through", "A2s"),
         peak=None if peaks is None else _edges(device, peaks, _OF_TIMES, "peak", "A"),
     )
 
 
-def _for(device: Device, time_s: float, path: Path | None) -> TripAnswer:
-    currents = device.trip_current(time_s, path=path)
+def _for(device: Device, time_s: float, path: Path | None, base: str) -> TripAnswer:
+    currents = device.trip_current(time_s, base, path=path)
     if _is_blind(device, path):
-        return TripAnswer(asked=time_s, edges=_not_seen(device, _OF_CURRENTS, "A"))
-    return TripAnswer(asked=time_s, edges=_edges(device, currents, _OF_CURRENTS, "time", "A"))
+        return TripAnswer(asked=time_s, edges=_not_seen(device, _OF_CURRENTS, base))
+    return TripAnswer(asked=time_s, edges=_edges(device, currents, _OF_CURRENTS, "time", base))
 
 
 def _is_blind(device: Device, path: Path | None) -> bool:
@@ -137,10 +144,14 @@ def _not_seen(device: Device, names: Mapping[str, Edge], unit: str) -> Edges:
     return {name: None if edge == "mean" else seen for name, edge in names.items()}
 
 
-def _below_least_breaking(device: Device, currents_a: Sequence[float]) -> Sequence[str]:
+def _below_least_breaking(device: Device, currents: Sequence[float], base: str) -> Sequence[str]:
     least_a = least_breaking_current_a(device)
-    below = [] if least_a is None else [each for each in currents_a if each < least_a]
-    return [f"At {written_current(each, 'A')} it may melt and not break." for each in below]
+    if least_a is None:
+        return []
+    one_a = amperes(device.nameplate, device.settings, base)
+    return [
+        f"At {written_current(each, base)} it may melt and not break." for each in currents if each * one_a < least_a
+    ]
 
 
 def _on_meaning(device: Device, path: Path | None) -> Sequence[str]:

@@ -8,13 +8,12 @@ import curvelab
 from curvelab.calculators.as_json import discrimination_json
 from curvelab.calculators.discrimination import Case, Discrimination, discrimination
 from curvelab.calculators.in_series import State
-from curvelab.calculators.transformer import Transformer, transformer_of
+from curvelab.calculators.transformer import transformer_between
 from curvelab.cli.answer import closing_lines, exit_status, heading
 from curvelab.cli.compare import settings_by_key
 from curvelab.cli.many import ManySettings, Settings
 from curvelab.cli.output import json_option, library_option, table, write_json
 from curvelab.devices.device import Device
-from curvelab.errors import InputError
 from curvelab.library.key import split_key
 from curvelab.units import written_current
 
@@ -53,7 +52,7 @@ def command(
     """Up to which current only DOWNSTREAM acts and UPSTREAM does not; currents are counted at DOWNSTREAM."""
     keys = (upstream_key, downstream_key)
     given = settings_by_key(keys, settings)
-    transformer = _transformer(**between)
+    transformer = transformer_between(**between)
     with curvelab.open_library(library_file, create=False) as library:
         upstream, downstream = (library.device(*split_key(key)).at(**given[key]) for key in keys)
     answer = discrimination(upstream, downstream, up_to_a, transformer)
@@ -63,14 +62,6 @@ def command(
         click.echo(discrimination_text(upstream, downstream, answer))
     held = bool(answer.cases) and all(case.holding.up_to.is_known for case in answer.cases)
     return exit_status(answer.findings, ()) if held else 1
-
-
-def _transformer(ratio: float | None, connection: str | None) -> Transformer | None:
-    if (ratio is None) != (connection is None):
-        raise InputError(
-            "A transformer has a ratio and a connection", "--ratio N --connection Dyn", "Give both, or none"
-        )
-    return None if ratio is None or connection is None else transformer_of(ratio, connection)
 
 
 def discrimination_text(upstream: Device, downstream: Device, answer: Discrimination) -> str:

@@ -1,7 +1,7 @@
 """``curvelab query``: what a stored device does at a current, or which currents go with a time."""
 
 from collections.abc import Callable
-from typing import get_args
+from typing import Any, get_args
 
 import click
 
@@ -15,7 +15,7 @@ from curvelab.cli.output import json_option, library_option, table, write_json
 from curvelab.devices.device import Device
 from curvelab.devices.question import Path
 from curvelab.library.key import split_key
-from curvelab.units import written_current, written_time
+from curvelab.units import BASES, written_current, written_time
 
 HEADINGS = {"trips": "surely trips from", "holds": "surely holds up to"}
 
@@ -25,11 +25,12 @@ LIMITING = {"let-through": lambda answer: answer.let_through, "cut-off": lambda 
 
 @click.command(cls=ManyValues)
 @click.argument("key")
-@click.option("--current", "currents", type=float, multiple=True, metavar="A...", help="Prospective currents in A.")
+@click.option("--current", "currents", type=float, multiple=True, metavar="A...", help="Prospective currents.")
 @click.option("--time", "times", type=float, multiple=True, metavar="S...", help="Times in s.")
 @click.option(
     "--path", type=click.Choice(get_args(Path)), help="How the current comes back [default: as the device sees it]."
 )
+@click.option("--base", type=click.Choice(BASES), default="A", show_default=True, help="What currents are counted in.")
 @settings_option
 @library_option
 @json_option
@@ -37,10 +38,10 @@ def command(
     key: str,
     currents: tuple[float, ...],
     times: tuple[float, ...],
-    path: Path | None,
     settings: tuple[tuple[str, float | str], ...],
     library_file: str | None,
     json_file: str | None,
+    **asked: Any,
 ) -> int:
     """Trip times of KEY at currents, or its currents for times; KEY@3 asks revision 3.
 
@@ -52,7 +53,7 @@ def command(
         raise click.UsageError("Give either --current A... or --time S....")
     with curvelab.open_library(library_file, create=False) as library:
         device = library.device(*split_key(key)).at(**dict(settings))
-    answers = trip_times(device, currents, path) if currents else trip_currents(device, times, path)
+    answers = trip_times(device, currents, **asked) if currents else trip_currents(device, times, **asked)
     if json_file:
         write_json(trip_json(device, answers), json_file)
     if json_file != "-":
@@ -81,7 +82,7 @@ def _table(answers: TripAnswers, edges_of: Callable[[TripAnswer], Edges | None],
 
 
 def _asked(asked: float, answers: TripAnswers) -> str:
-    return written_current(asked, "A") if answers.of_times else written_time(asked)
+    return written_current(asked, answers.base) if answers.of_times else written_time(asked)
 
 
 def _cells(edges: Edges, names: list[str]) -> list[str]:

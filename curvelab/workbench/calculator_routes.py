@@ -11,9 +11,8 @@ from curvelab.calculators.conductors import conductor_of
 from curvelab.calculators.disconnection import disconnection
 from curvelab.calculators.discrimination import discrimination
 from curvelab.calculators.overload import Load, overload
-from curvelab.calculators.transformer import Transformer, transformer_of
+from curvelab.calculators.transformer import transformer_between
 from curvelab.calculators.withstand import Faults, withstand
-from curvelab.errors import InputError
 from curvelab.library.key import split_key
 from curvelab.workbench.bench import Bench
 from curvelab.workbench.device_routes import DEVICE, device_at
@@ -97,15 +96,8 @@ def discriminates(bench: Bench, asked: InSeries) -> dict[str, Any]:
     given = settings_by_key(keys, asked.set)
     with bench.reading() as library:
         upstream, downstream = (library.device(*split_key(key)).at(**given[key]) for key in keys)
-    return as_json.discrimination_json(discrimination(upstream, downstream, asked.up_to_a, _transformer(asked)))
-
-
-def _transformer(asked: InSeries) -> Transformer | None:
-    if asked.ratio is None and asked.connection is None:
-        return None
-    if asked.ratio is None or asked.connection is None:
-        raise InputError("A transformer has a ratio and a connection", "", "Give both, or none")
-    return transformer_of(asked.ratio, asked.connection)
+    transformer = transformer_between(asked.ratio, asked.connection)
+    return as_json.discrimination_json(discrimination(upstream, downstream, asked.up_to_a, transformer))
 
 
 def _route(path: str, summary: str, does: Callable[..., Any], asked: type) -> Route:

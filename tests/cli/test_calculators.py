@@ -330,7 +330,7 @@ def test_a_transformer_between_them(capsys):
     ("words", "said"),
     [
         ("discrimination hall-q250 hall-c16", "Its settings"),
-        ("discrimination hall-gg100 hall-c16 --ratio 27.5", "--connection"),
+        ("discrimination hall-gg100 hall-c16 --ratio 27.5", "Give both, or none"),
         ("discrimination hall-gg100 hall-c16 --ratio 27.5 --connection Abc", "Dyn"),
         ("discrimination hall-gg100 hall-c16 --up-to -5", "positive"),
         ("discrimination hall-gg100", "DOWNSTREAM"),
@@ -356,6 +356,18 @@ def test_a_query_at_a_current_shows_the_let_through_energy(capsys):
     assert [each["let_through"]["slow"]["value"] for each in answer["answers"]] == pytest.approx([600.0, 9000.0])
     assert answer["answers"][0]["peak"] is None
     assert "let-through slow" in printed(capsys, "query hall-c16 --current 200 3000")
+
+
+@pytest.mark.usefixtures("site")
+def test_currents_are_counted_in_any_base(capsys):
+    status, answer = answered(capsys, "query hall-b32 --current 5 --base xIn")
+    assert (status, answer["base"], answer["answers"][0]["slow"]["value"]) == (0, "xIn", pytest.approx(9.0))
+    assert answered(capsys, "query hall-b32 --time 0.4 --base xIn")[1]["answers"][0]["trips"]["value"] == 5.0
+    at_settings = "query hall-q250 --current 6 --base xIr --set ir=0.8 tr=4 ii=10"
+    # 8 s at 6 Ir and tr = 8: half of it at tr = 4.
+    assert answered(capsys, at_settings)[1]["answers"][0]["slow"]["value"] == pytest.approx(4.0)
+    assert "5 xIn" in printed(capsys, "query hall-b32 --time 0.4 --base xIn")
+    assert "no rated_residual_current_a" in refused(capsys, "query hall-b32 --current 5 --base xIdn")
 
 
 @pytest.mark.usefixtures("site")
