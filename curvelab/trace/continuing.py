@@ -53,7 +53,7 @@ def smooth_step(graph: ChainGraph, onward: Heading, entry: End, track: Track, ho
     count = int(np.searchsorted(run, line.look_ahead, side="right"))
     cost = _deviation(onward, places[:count], run[:count], track)
     if hop > 1.0 and cost > ACCEPT:
-        straight = _up_to_corner(places[:count])
+        straight = up_to_corner(places[:count])
         if run[straight - 1] > max(SHORT_LEG * line.width, SHORTEST_LEG):
             cost = min(cost, CORNER + _deviation(onward, places[:straight], run[:straight], track))
     return Step(
@@ -73,7 +73,7 @@ def _deviation(onward: Heading, places: Floats, run: Floats, track: Track) -> fl
     return max(0.0, float(np.average(deviation, weights=1.0 + run / track.line.look_ahead)) - 1.0)
 
 
-def _up_to_corner(places: Floats) -> int:
+def up_to_corner(places: Floats) -> int:
     """Number of places up to the one furthest from the chord."""
     chord = places[-1] - places[0]
     offset = places - places[0]

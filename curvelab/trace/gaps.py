@@ -2,9 +2,10 @@
 
 import numpy as np
 
+from curvelab.records.arrays import Floats
 from curvelab.trace.chains import ChainGraph
 from curvelab.trace.characters import FREE
-from curvelab.trace.continuing import ACCEPT, SOLE, hop_reach, longest_dash, smooth_step
+from curvelab.trace.continuing import ACCEPT, SHORTEST_LEG, SOLE, hop_reach, longest_dash, smooth_step, up_to_corner
 from curvelab.trace.heading import Heading, heading
 from curvelab.trace.track import End, Step, Track, meeting, oriented
 from curvelab.trace.turning import SHORT_HOP
@@ -71,9 +72,18 @@ def _faces(graph: ChainGraph, entry: End, onward: Heading, track: Track, hop: fl
     if track.is_dashed and not guided and chain.length > longest_dash(track):
         return False
     # what is left of a grid line bends a dash: its direction says little
-    dash = track.is_dashed and chain.length < longest_dash(track)
-    back = None if dash else heading(oriented(graph, entry)[::-1])
+    if track.is_dashed and chain.length < longest_dash(track):
+        return True
+    places = oriented(graph, entry)[: int(track.line.look_ahead)]
+    corner = up_to_corner(places)
+    cornered = corner > SHORTEST_LEG and _points_at(places[:corner], onward.tip)
+    return cornered or _points_at(places, onward.tip)
+
+
+def _points_at(places: Floats, tip: Floats) -> bool:
+    """Whether a line followed back comes out at a place; too few places do not say."""
+    back = heading(places[::-1])
     if back is None:
         return True
-    ahead, aside = back.frame(onward.tip[None])
+    ahead, aside = back.frame(tip[None])
     return bool(ahead[0] > 0 and abs(aside[0]) <= ASIDE * back.spread(ahead)[0])
