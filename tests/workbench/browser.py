@@ -25,7 +25,7 @@ ARGUMENTS = (
     "--disable-sync",
 )
 SHEETS = Path(__file__).parents[2] / "demo_curves" / "sheets"
-LONGEST_MS = 30_000
+LONGEST_MS = 60_000
 THREADS = dict.fromkeys(("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS"), "1")
 
 DROP = """([name, data]) => {

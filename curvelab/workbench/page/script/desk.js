@@ -68,6 +68,7 @@ export class Desk {
     if (!state) return;
     this.node.classList.toggle("stale", Boolean(state.stale));
     this.node.dataset.work = state.work.state;
+    this.node.dataset.reading = state.reading_version;
     this.node.classList.toggle("no-sheet", !state.sheet);
     this.strip.update();
     this.sheet.update();
@@ -117,7 +118,7 @@ export class Desk {
   }
 
   #ownFindings() {
-    const findings = this.draft.reading?.findings ?? [];
+    const { findings = [] } = this.draft.state ?? {};
     const key = this.#shownKey(findings.map((each) => each.device));
     return findings.filter((each) => each.device === key);
   }
@@ -196,10 +197,12 @@ export class Desk {
   // Drawers. -------------------------------------------------------------------------------------------------------
 
   showWorksheet() {
+    if (!this.draft.state) return;
     toggleDrawer("worksheet", "Worksheet", () => this.text.build());
   }
 
   showHistory() {
+    if (!this.draft.state) return;
     toggleDrawer("history", "What was done", () => historyList(this.draft));
   }
 

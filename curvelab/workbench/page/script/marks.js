@@ -21,7 +21,8 @@ export class Marks {
     for (const axis of ["current", "time", "let_through", "peak"]) {
       const given = state?.data?.axes?.[axis]?.marks ?? [];
       const read = reading?.axes?.[axis];
-      given.forEach((mark, index) => marks.push({ axis, index, at: mark.at, value: mark.value, unit: mark.unit ?? state.data.axes[axis].unit ?? read?.unit ?? "", direction: read?.direction ?? (axis === "current" ? "x" : "y") }));
+      const told = !state.read_from_sheet.includes(`axes.${axis}.marks`);
+      given.forEach((mark, index) => marks.push({ axis, index, told, at: mark.at, value: mark.value, unit: mark.unit ?? state.data.axes[axis].unit ?? read?.unit ?? "", direction: read?.direction ?? (axis === "current" ? "x" : "y") }));
     }
     return marks;
   }
@@ -50,7 +51,7 @@ export class Marks {
   #handle(mark) {
     const words = written(mark);
     const name = `Mark ${words} on the ${axisName(mark.axis)} axis. Arrow keys move it, Enter says its value, Delete takes it away.`;
-    const node = button("", null, { class: `mark along-${mark.direction}`, "aria-label": name, "data-focus": `mark-${mark.axis}-${mark.index}` });
+    const node = button("", null, { class: `mark along-${mark.direction} ${mark.told ? "told" : ""}`, "aria-label": name, "data-focus": `mark-${mark.axis}-${mark.index}` });
     node.append(el("span", { class: "mark-words", "aria-hidden": "true" }, words));
     const handle = { node, mark: { ...mark, at: [...mark.at] } };
     node.addEventListener("pointerdown", (event) => this.#drag(handle, event));

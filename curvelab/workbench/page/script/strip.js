@@ -103,7 +103,7 @@ function freshKey(devices) {
 }
 
 const FIELDS = [
-  { name: "key", label: "Key", size: 20, hint: "its name in the library" },
+  { name: "key", label: "Key", size: 24, hint: "its name in the library" },
   { name: "kind", label: "Kind", options: KINDS },
   { name: "characteristic", label: "Characteristic", size: 8, options: CHARACTERISTICS },
   { name: "rated_current_a", label: "Rated current, A", size: 8, number: true },
