@@ -1,6 +1,7 @@
 """``curvelab library evidence``: what led to a device, written out and read again."""
 
 import tempfile
+from collections.abc import Iterator
 from pathlib import Path
 
 import click
@@ -12,6 +13,10 @@ from curvelab.library.key import split_key
 from curvelab.reading.rerun import differences, rerun
 from curvelab.reading.restore import restored
 from curvelab.records.evidence import StoredReading
+from curvelab.records.reading import ReadCurve
+
+LEAST_SHARE = 0.01
+"""Of the variance: causes below it are not listed."""
 
 
 @click.command("evidence")
@@ -35,6 +40,9 @@ def evidence_command(key: str, output: str | None, again: bool, library_file: st
     differs = False
     for number, stored in enumerate(evidence.readings, start=1):
         click.echo(f"Reading {number}: {_told(stored)}")
+        for read in stored.reading.curves:
+            for line in _fitted(read):
+                click.echo(f"  {line}")
         if output:
             _write(stored, Path(output) / f"{evidence.key}-{evidence.revision}-reading-{number}")
         if again:
@@ -49,6 +57,21 @@ def _told(stored: StoredReading) -> str:
     kept = "" if stored.source or not sheet else ", its bytes were not kept"
     counts = f"{len(reading.curves)} curves, {len(reading.findings)} findings, {len(reading.warnings)} warnings"
     return f"{source}{kept}, {counts}"
+
+
+def _fitted(read: ReadCurve) -> Iterator[str]:
+    """The published forms that a line follows, and what its uncertainty is made of; nothing for typed points."""
+    if read.fit is None:
+        return
+    name = f"{read.curve.element} {read.curve.edge}" + (f" '{read.label}'" if read.label else "")
+    for form in read.fit.forms:
+        said = form.name if form.is_claimed else f"{form.name} or {', '.join(form.rivals)}"
+        values = ", ".join(f"{each.name} {each.value:.5g} ({each.sd:.2%})" for each in form.parameters)
+        span = f"{form.from_current:.4g} to {form.to_current:.4g} {read.curve.base}"
+        yield f"{name}: {said}, {values}, {span}"
+    budget = read.fit.budget
+    parts = [f"{each.cause} {each.share:.0%}" for each in budget.contributions if each.share >= LEAST_SHARE]
+    yield f"{name}: standard uncertainty {budget.total:.2g} along the normal; of its variance {', '.join(parts)}"
 
 
 def _write(stored: StoredReading, folder: Path) -> None:

@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.interpolate import BSpline, splev
+from scipy.interpolate import splev
 
 from curvelab.fit.noise import TUKEY, Noise
 from curvelab.fit.smooth import DEGREE, design, fit_smooth, uniform_knots
@@ -142,12 +142,11 @@ def _spline(data: _Data, extent: Extent) -> Stretch:
     knots = uniform_knots(extent.start, extent.end, intervals)
     step = (extent.end - extent.start) / intervals
     basis = design(data.u, knots)
-    slopes = BSpline.design_matrix(data.u, knots[1:-1], DEGREE - 1).toarray()
     slope, robust = np.zeros_like(data.u), data.kept.astype(float)
     for remaining in reversed(range(PASSES if extent.settled else PASSES - 1)):
         monotone = extent.settled and remaining == 0
         smooth = fit_smooth(basis, data.v, data.weight(slope, robust), step if monotone else np.inf)
-        slope = np.clip(slopes @ (np.diff(smooth.coefficients) / step), -1.0, 1.0)
+        slope = np.clip(splev(data.u, (knots, smooth.coefficients, DEGREE), der=1), -1.0, 1.0)
         residual = data.residual(basis @ smooth.coefficients, slope)
         robust = data.robust(residual)
     return Stretch(
