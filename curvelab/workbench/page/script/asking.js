@@ -2,6 +2,7 @@
 
 import { get, part, query } from "./api.js";
 import { button, el, field, fill } from "./dom.js";
+import { questionsOf } from "./questions.js";
 import { attempt } from "./say.js";
 import { current, EDGES, time, withInterval } from "./words.js";
 
@@ -27,6 +28,7 @@ export class Asking {
       el("form", { class: "ask", onsubmit: (event) => this.#ask(event, "trip-time", "current", "time") }, number("Time at, A", "current"), el("button", { type: "submit" }, "Ask")),
       el("form", { class: "ask", onsubmit: (event) => this.#ask(event, "trip-current", "time", "current") }, number("Current for, s", "time"), el("button", { type: "submit" }, "Ask")),
       this.answer,
+      questionsOf(this.key, () => this.#given()),
     );
   }
 

@@ -5,9 +5,10 @@ import { BandPane } from "./band-pane.js";
 import { bandsOf, togetherOf } from "./bands-of.js";
 import { button, el, fill } from "./dom.js";
 import { attempt } from "./say.js";
-import { current, time } from "./words.js";
+import { current, plain, time, withInterval } from "./words.js";
 
 const ROWS = 12;
+const amperes = (value, figures) => current(value, "A", figures);
 
 export class Comparison {
   constructor() {
@@ -18,21 +19,34 @@ export class Comparison {
     this.node = el("section", { class: "comparison", "aria-label": "Side by side" }, this.head, this.pane.node, this.words, this.hint);
   }
 
-  async show(keys, clear) {
+  /** Show devices in their order; `order` is called with another one, empty for none. */
+  async show(keys, order) {
     this.node.hidden = !keys.length;
     const enough = keys.length > 1;
     this.node.classList.toggle("waiting-for-more", !enough);
     this.hint.textContent = enough ? "" : "Tick one more device to see both side by side.";
     if (!enough) return;
     const asked = (this.asked = String(keys));
-    fill(this.head, el("h2", {}, "Side by side"), keys.map((key, index) => el("span", { class: "subject" }, el("span", { class: `letter d${index + 1}` }, "ABCDEFGH"[index]), key)), button("Clear", clear, { class: "plain" }));
+    fill(this.head, el("h2", {}, "Side by side"), keys.map((key, index) => el("span", { class: "subject" }, el("span", { class: `letter d${index + 1}` }, "ABCDEFGH"[index]), key)), el("span", { class: "acts" }, keys.length === 2 && button("Swap", () => order([...keys].reverse()), { class: "plain" }), button("Clear", () => order([]), { class: "plain" })));
     const answers = await attempt(() => Promise.all(keys.map((key) => bandsOf(key))));
     if (!answers || asked !== this.asked) return;
     this.pane.show(togetherOf(answers, keys));
     const compared = await attempt(() => get(query("/compare", { key: keys })));
+    const series = compared && keys.length === 2 && (await get(query("/discrimination", { upstream: keys[0], downstream: keys[1] })).catch(() => null));
     if (asked !== this.asked) return;
-    fill(this.words, compared ? [sentences(compared), differences(compared)] : el("p", { class: "hint" }, "These cannot be compared as they are; the line above says why."));
+    fill(this.words, compared ? [series && inSeries(series), sentences(compared), differences(compared)] : el("p", { class: "hint" }, "These cannot be compared as they are; the line above says why."));
   }
+}
+
+/** How far the downstream device trips alone, for each kind of fault. */
+function inSeries({ upstream, downstream, cases, notes }) {
+  const told = cases.map(({ fault, holds_from_a: from, holds_up_to: { status, value, interval }, beyond }) => {
+    const name = fault[0].toUpperCase() + fault.slice(1);
+    if (value === null) return `${name}: it is ${status.replaceAll("_", " ")} whether ${downstream} trips alone.`;
+    const [end, spread] = withInterval(value, interval, amperes);
+    return `${name}: ${downstream} trips alone${from ? ` from ${current(from)}` : ""} ${status === "at_least" ? "at least up to" : "up to"} ${end}${spread && ` (${spread})`}${beyond ? `; beyond that it is ${beyond.replaceAll("_", " ")}` : ""}.`;
+  });
+  return el("div", { class: "sentences" }, el("h3", {}, `${upstream} upstream, ${downstream} downstream`), told.map((each) => el("p", {}, each)), notes.map((note) => el("p", { class: "hint" }, plain(note))));
 }
 
 function sentences({ pairs }) {
@@ -47,8 +61,8 @@ function sentence(pair) {
 
 function reach(first, other, { status, from, up_to: upTo, interval }) {
   if (from === null || upTo === null) return "";
-  const spread = interval ? ` (${current(interval[0])} to ${current(interval[1])})` : "";
-  return `${first} clears before ${other} may act from ${current(from)} ${status === "at_least" ? "at least up to" : "up to"} ${current(upTo)}${spread}.`;
+  const [end, spread] = withInterval(upTo, interval, amperes);
+  return `${first} clears before ${other} may act from ${current(from)} ${status === "at_least" ? "at least up to" : "up to"} ${end}${spread && ` (${spread})`}.`;
 }
 
 function differences({ devices, current: currents, times, pairs }) {

@@ -130,9 +130,9 @@ export class Library {
 
   #compare() {
     this.node.classList.toggle("comparing", this.chosen.length > 1);
-    return this.comparison.show(this.chosen, () => {
-      this.chosen = [];
-      keepPlace({ with: null });
+    return this.comparison.show(this.chosen, (keys) => {
+      this.chosen = keys;
+      keepPlace({ with: keys.join(",") });
       this.#draw();
       this.#compare();
     });

@@ -3,7 +3,7 @@
 import { get, part, post, remove } from "./api.js";
 import { button, el, fill } from "./dom.js";
 import { attempt, said } from "./say.js";
-import { takeDemo, takeFile } from "./take-in.js";
+import { takeDemo, takeFiles } from "./take-in.js";
 import { moment } from "./words.js";
 
 const KINDS = ".png,.jpg,.jpeg,.tif,.tiff,.bmp,.webp,.pdf,.svg,.toml";
@@ -11,7 +11,7 @@ const STATES = { reading: "being read", ready: "read", failed: "needs help", can
 
 export class Start {
   constructor() {
-    this.file = el("input", { type: "file", accept: KINDS, class: "unseen", id: "file", onchange: () => this.file.files[0] && takeFile(this.file.files[0]) });
+    this.file = el("input", { type: "file", accept: KINDS, class: "unseen", id: "file", multiple: true, onchange: () => takeFiles([...this.file.files]) });
     this.drafts = el("section", { class: "start-part", "aria-labelledby": "on-desk" });
     this.demos = el("section", { class: "start-part", "aria-labelledby": "demo-sheets" });
     const welcome = el(
@@ -26,6 +26,11 @@ export class Start {
   async open() {
     document.title = "curvelab";
     await Promise.all([this.#drafts(), this.#demos()]);
+  }
+
+  /** The address changed, and this view stays: something was put on the desk. */
+  turned() {
+    return this.#drafts();
   }
 
   async #drafts() {

@@ -5,16 +5,29 @@ import { attempt, hush, said } from "./say.js";
 
 const MOST_BYTES = 200 * 1024 * 1024;
 
-async function opened(path, bytes) {
+async function begun(path, bytes) {
   said("Opening the sheet.");
   const state = await attempt(() => (bytes ? postBytes(path, bytes) : post(path)));
   hush();
+  return state;
+}
+
+async function opened(path, bytes) {
+  const state = await begun(path, bytes);
   if (state) location.hash = `#/sheet/${encodeURIComponent(state.id)}`;
 }
 
-export function takeFile(file) {
+function taken(file, take) {
   if (file.size > MOST_BYTES) return said(`${file.name} is larger than 200 MB. Give the page with the curve alone.`);
-  return opened(query("/drafts", { name: file.name || "pasted.png" }), file);
+  return take(query("/drafts", { name: file.name || "pasted.png" }), file);
+}
+
+/** One file goes on the desk; several are all begun, and listed where one comes in. */
+export async function takeFiles(files) {
+  if (files.length === 1) return taken(files[0], opened);
+  for (const file of files) await taken(file, begun);
+  if (files.length) location.hash = "#/?new";
+  return undefined;
 }
 
 export const takeDemo = (name) => opened(query("/drafts", { demo: name }));
@@ -41,13 +54,12 @@ export function watchDrops() {
     event.preventDefault();
     depth = 0;
     body.classList.remove("dropping");
-    const [file] = event.dataTransfer.files;
-    if (file) takeFile(file);
+    takeFiles([...event.dataTransfer.files]);
   });
   document.addEventListener("paste", (event) => {
-    const file = [...(event.clipboardData?.files ?? [])][0];
-    if (!file) return;
+    const files = [...(event.clipboardData?.files ?? [])];
+    if (!files.length) return;
     event.preventDefault();
-    takeFile(file);
+    takeFiles(files);
   });
 }

@@ -94,6 +94,8 @@ export function quantity(value, name, figures) {
 export function byUnit(value, unit, figures) {
   if (unit === "ratio") return rounded(value, figures ?? FIGURES);
   if (unit === "A2s") return energy(value, figures);
+  if (unit === "ohm") return `${rounded(value, figures ?? FIGURES)}${SPACE}Ω`;
+  if (unit === "mm2") return `${rounded(value, figures ?? FIGURES)}${SPACE}mm²`;
   return unit === "s" ? time(value, figures) : current(value, unit, figures);
 }
 
@@ -104,11 +106,11 @@ export function figuresFor(value, lower, upper) {
   return Math.min(Math.max(FIGURES, 2 - Math.floor(Math.log10(half / Math.abs(value)))), MOST_FIGURES);
 }
 
-/** `write(value)` and its interval as two strings. */
+/** A value in three figures and its interval in as many as show it, as two strings. */
 export function withInterval(value, interval, write) {
   if (!interval || interval.some((each) => each === null || !Number.isFinite(each))) return [write(value), ""];
   const figures = figuresFor(value, ...interval);
-  return [write(value, figures), `${write(interval[0], figures)} to ${write(interval[1], figures)}`];
+  return [write(value), `${write(interval[0], figures)} to ${write(interval[1], figures)}`];
 }
 
 export function percent(share) {
@@ -132,9 +134,10 @@ export function count(number, one, many = `${one}s`) {
   return `${number}${SPACE}${number === 1 ? one : many}`;
 }
 
-/** What the process writes for a base, as engineers write it: 5 xIn is 5 In. */
+/** What the process writes in plain letters, as engineers write it: 5 xIn is 5 In, A2s is A²s. */
 export function plain(text) {
-  return text.replace(/\bxI(n|r|sd|i|g|dn)\b/g, (_, name) => (name === "dn" ? "IΔn" : `I${name}`));
+  const squared = text.replace(/\bA2s\b/g, "A²s").replace(/\bk2S2\b/g, "k²S²").replace(/\bI2t\b/g, "I²t").replace(/ x 10\^3/g, " × 10³");
+  return squared.replace(/\bxI(n|r|sd|i|g|dn)\b/g, (_, name) => (name === "dn" ? "IΔn" : `I${name}`));
 }
 
 /** A moment as a person writes it, short if it is today. */
