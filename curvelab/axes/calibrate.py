@@ -4,7 +4,7 @@ from dataclasses import replace
 
 from curvelab.axes.bending import bending_doubts
 from curvelab.axes.choose import checked_plot
-from curvelab.axes.decide import check_read_marks
+from curvelab.axes.decide import fitting_axes
 from curvelab.axes.entries import checked_axes
 from curvelab.axes.find import FoundAxes, Words, find_axes, is_open
 from curvelab.axes.finish import finished_axes
@@ -50,7 +50,9 @@ def calibrate(
     calibrated, doubts = finished_axes(sheet, axes, grid)
     automatic = not current.marks and not (value and value.marks)
     if automatic:
-        check_read_marks(calibrated, pixel_size(sheet))
+        fitting = fitting_axes(calibrated, pixel_size(sheet))
+        if fitting != (calibrated.current, calibrated.value):
+            calibrated, doubts = finished_axes(sheet, fitting, grid)
     bent = bending_doubts(calibrated, sheet.pixels.size_in_places) if sheet.pixels else ()
     return replace(calibrated, automatic=automatic, plot=found.plot), (*found.warnings, *warnings, *doubts, *bent)
 

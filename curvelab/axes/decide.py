@@ -1,12 +1,12 @@
 """Whether what was read of an axis is sure enough: taken, taken with a warning, or refused."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from curvelab.axes.consensus import Ruling
 from curvelab.axes.entries import mark_text, table_name
 from curvelab.axes.naming import Naming
 from curvelab.errors import AxesError
-from curvelab.records.axes import Axes
+from curvelab.records.axes import Axes, Axis
 from curvelab.records.warning import ReadingWarning
 from curvelab.units import CURRENT_UNITS, VALUE_UNITS
 
@@ -27,6 +27,12 @@ LEAST_TITLE, SURE_TITLE = 0.3, 0.55
 
 FURTHEST = 3.0
 """Pixels by which a mark that was read may lie off the map: it stood on a line that was seen."""
+
+LEAST_FITTING = 0.7
+"""Share of an axis's marks that lie so, and"""
+
+MOST_RMS = 0.12
+"""pixels that the grid's lines lie off the map by at most (root mean square), where some marks do not."""
 
 MARKS_FIX = "marks = [{ at = [x, y], value = ... }, ...]"
 
@@ -101,25 +107,40 @@ def decided_ruling(quantity: str, direction: str, best: Ruling | None) -> tuple[
     return best, tuple(doubts)
 
 
-def check_read_marks(axes: Axes, pixel: float) -> None:
-    """Refuse axes whose lines were read but do not fit one map.
+def fitting_axes(axes: Axes, pixel: float) -> tuple[Axis, Axis]:
+    """Both axes with the marks that were read and lie on the map; a few lines may have been taken for others.
 
     Raises
     ------
     AxesError
-        A mark that was read lies off where the map has its value.
+        Too many lie off, too few are left, or some do where the grid's lines do not fit the map well either.
     """
+    kept = tuple(_fitting(axis, pixel) for axis in (axes.current, axes.value))
+    all_fit = kept == (axes.current, axes.value)
+    well = axes.grid_residual_rms is not None and axes.grid_residual_rms <= MOST_RMS * pixel
+    if not all_fit and not well:
+        raise _not_smooth(axes, pixel)
+    for whole, part in zip((axes.current, axes.value), kept, strict=True):
+        if len(part.marks) < max(LEAST_VALUES, LEAST_FITTING * len(whole.marks)):
+            raise _not_smooth(axes, pixel)
+    return kept[0], kept[1]
+
+
+def _fitting(axis: Axis, pixel: float) -> Axis:
+    return replace(axis, marks=tuple(mark for mark in axis.marks if abs(mark.residual or 0.0) <= FURTHEST * pixel))
+
+
+def _not_smooth(axes: Axes, pixel: float) -> AxesError:
     off, axis, mark = max(
         ((abs(mark.residual or 0.0), axis, mark) for axis in (axes.current, axes.value) for mark in axis.marks),
         key=lambda each: each[0],
     )
-    if off > FURTHEST * pixel:
-        raise AxesError(
-            f"The lines read along {table_name(axis.quantity)} do not fit one smooth map: "
-            f"{mark_text(mark)} lies {off:.3g} off",
-            f"Every line within {FURTHEST * pixel:.3g}",
-            f"Give a flat scan, or marks in {table_name('current')} and {table_name(axes.value.quantity)}",
-        )
+    return AxesError(
+        f"The lines read along {table_name(axis.quantity)} do not fit one smooth map: "
+        f"{mark_text(mark)} lies {off:.3g} off",
+        f"Every line within {FURTHEST * pixel:.3g}",
+        f"Give a flat scan, or marks in {table_name('current')} and {table_name(axes.value.quantity)}",
+    )
 
 
 def _doubtful_unit(quantity: str, naming: Naming) -> ReadingWarning:

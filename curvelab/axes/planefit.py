@@ -32,6 +32,9 @@ SETTLED = 1e-9
 
 QUADRATIC = ((2, 0), (1, 1), (0, 2))
 CUBIC = (*QUADRATIC, (3, 0), (2, 1), (1, 2), (0, 3))
+CURL = ((2, 0), (0, 2), (3, 0), (0, 3))
+WAVE = (*CURL, (4, 0), (0, 4))
+"""Paper that bulges along one side or both: every line shows the whole of it, so that a few lines are enough."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -79,6 +82,7 @@ class Fitted:
     kept: NDArray[np.bool_]
     line_sd: tuple[float, float]
     criterion: float
+    model: "Model"
 
     @property
     def residual_rms(self) -> float:
@@ -88,25 +92,43 @@ class Fitted:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Model:
-    """Terms of a map and the fewest lines an axis needs for them."""
+    """Terms of a map and the fewest lines an axis needs for them.
+
+    ``bowed`` says that all lines of an axis bend alike along themselves, and stay apart as they were.
+    """
 
     projective: bool
     powers: tuple[tuple[int, int], ...]
     lines: int
+    bowed: bool = False
 
-    @property
-    def free(self) -> NDArray[np.int64]:
-        """Indices of the fitted parameters."""
-        terms = 2 * len(self.powers)
-        return np.concatenate([np.arange(8 if self.projective else 6), np.arange(8, 8 + terms)])
+    def free(self, start: PlaneMap) -> NDArray[np.int64]:
+        """Indices of the fitted parameters; ``start`` tells which way each axis runs."""
+        terms = len(self.powers)
+        warp = [
+            8 + axis * terms + k
+            for axis, (by_x, by_y) in enumerate((start.projective[1:3], start.projective[4:6]))
+            for k, power in enumerate(self.powers)
+            if not self.bowed or power[0 if abs(by_x) >= abs(by_y) else 1] == 0
+        ]
+        return np.concatenate([np.arange(8 if self.projective else 6), np.array(warp, dtype=np.int64)])
 
 
 AFFINE = Model(projective=False, powers=(), lines=0)
-RICHER = (
-    Model(projective=True, powers=(), lines=5),
+SIMPLE = (
+    Model(projective=True, powers=(), lines=4),
+    Model(projective=True, powers=CURL, lines=4, bowed=True),
     Model(projective=False, powers=QUADRATIC, lines=6),
+)
+"""What is tried at first beside the affine map."""
+
+RICHER = (
+    *SIMPLE,
+    Model(projective=True, powers=WAVE, lines=4, bowed=True),
+    Model(projective=True, powers=CURL, lines=8),
     Model(projective=False, powers=CUBIC, lines=10),
 )
+"""Those after the simple ones are tried where a simple one is better than the affine map."""
 
 
 def affine_map(centre: Floats, reach: float, rows: Floats) -> PlaneMap:
@@ -152,6 +174,8 @@ def fit_plane(
     fewest = min(int(np.sum(problem.line_axis[problem.estimated] == axis)) for axis in (0, 1))
     for model in models:
         if fewest < model.lines:
+            continue
+        if model not in SIMPLE and best.model is AFFINE:
             break
         try:
             trial = problem.solved(start, model)
@@ -197,41 +221,42 @@ class _Problem:
 
     def solved(self, start: PlaneMap, model: Model) -> Fitted:
         """Fit one model: variances, steps and outlying lines in turn until they settle."""
-        size = 8 + 2 * len(model.powers)
+        size, free = 8 + 2 * len(model.powers), model.free(start)
         affine = np.where(np.arange(8) < 6, start.projective, 0.0)
         plane = replace(start, projective=affine, powers=model.powers, warp=np.zeros((2, len(model.powers))))
         kept = np.ones(len(self.line_axis), dtype=bool)
-        residual, rows = self._linear(plane, model)
+        residual, rows = self._linear(plane, free)
         line_sd, place_sd = self._variances(residual, kept, 0)
         for _ in range(ROUNDS):
             for _ in range(STEPS):
-                weighted, design = self._whitened(residual, rows, kept, line_sd, place_sd, plane, model)
+                weighted, design = self._whitened(residual, rows, kept, line_sd, place_sd, plane, free)
                 step, _ = _solution(weighted, design)
-                plane = _moved(plane, model, -step)
-                residual, rows = self._linear(plane, model)
+                plane = _moved(plane, free, -step)
+                residual, rows = self._linear(plane, free)
                 if np.abs(step).max() < SETTLED:
                     break
             kept = self._kept(residual)
-            line_sd, place_sd = self._variances(residual, kept, len(model.free))
-        weighted, design = self._whitened(residual, rows, kept, line_sd, place_sd, plane, model)
+            line_sd, place_sd = self._variances(residual, kept, len(free))
+        weighted, design = self._whitened(residual, rows, kept, line_sd, place_sd, plane, free)
         _, inverse = _solution(weighted, design)
         covariance = np.zeros((size, size))
-        covariance[np.ix_(model.free, model.free)] = inverse
+        covariance[np.ix_(free, free)] = inverse
         return Fitted(
             map=replace(plane, covariance=covariance),
             residuals=self._line_means(residual),
             kept=kept,
             line_sd=(float(line_sd[0]), float(line_sd[1])),
-            criterion=self._criterion(weighted, kept, line_sd, place_sd, len(model.free)),
+            criterion=self._criterion(weighted, kept, line_sd, place_sd, len(free)),
+            model=model,
         )
 
-    def _linear(self, plane: PlaneMap, model: Model) -> tuple[Floats, Floats]:
+    def _linear(self, plane: PlaneMap, free: NDArray[np.int64]) -> tuple[Floats, Floats]:
         """Distance of each place across its line from where the map has it, and its derivative by the parameters."""
         axis = self.line_axis[self.owner]
         each = np.arange(len(axis))
         steepness = np.linalg.norm(plane.jacobian(self.points)[each, axis], axis=1)
         residual = (plane.scaled(self.points)[each, axis] - self.line_scaled[self.owner]) / steepness
-        return residual, plane.sensitivity(self.points)[each, axis][:, model.free] / steepness[:, None]
+        return residual, plane.sensitivity(self.points)[each, axis][:, free] / steepness[:, None]
 
     def _line_means(self, residual: Floats) -> Floats:
         means: Floats = np.bincount(self.owner, residual, len(self.line_axis)) / self.counts
@@ -267,7 +292,7 @@ class _Problem:
         line_sd: Floats,
         place_sd: Floats,
         plane: PlaneMap,
-        model: Model,
+        free: NDArray[np.int64],
     ) -> tuple[Floats, Floats]:
         """Residuals and derivatives with unit covariance: (I + r 11')^(-1/2) = I + (1/sqrt(1 + n r) - 1) 11'/n."""
         whole, single = self._sds(line_sd, place_sd)
@@ -277,7 +302,7 @@ class _Problem:
         )
         shrink = 1 / np.sqrt(1 + self.counts * (whole / single) ** 2) - 1
         both = (both + (shrink[:, None] * means)[self.owner])[kept[self.owner]]
-        tilted = [_tilt_row(plane, model, tilt) for tilt in self.tilts]
+        tilted = [_tilt_row(plane, free, tilt) for tilt in self.tilts]
         both = np.vstack([both, *tilted]) if tilted else both
         return both[:, 0], both[:, 1:]
 
@@ -316,19 +341,19 @@ def _solution(weighted: Floats, design: Floats) -> tuple[Floats, Floats]:
     return root @ (q.T @ weighted), root @ root.T
 
 
-def _moved(plane: PlaneMap, model: Model, step: Floats) -> PlaneMap:
+def _moved(plane: PlaneMap, free: NDArray[np.int64], step: Floats) -> PlaneMap:
     vector = np.concatenate([plane.projective, plane.warp.ravel()])
-    vector[model.free] += step
-    return replace(plane, projective=vector[:8], warp=vector[8:].reshape(2, len(model.powers)))
+    vector[free] += step
+    return replace(plane, projective=vector[:8], warp=vector[8:].reshape(2, len(plane.powers)))
 
 
-def _tilt_row(plane: PlaneMap, model: Model, tilt: Tilt) -> Floats:
+def _tilt_row(plane: PlaneMap, free: NDArray[np.int64], tilt: Tilt) -> Floats:
     """Whitened (residual, derivatives) of the slope of an axis's lines at the centre."""
     row = _lean(plane, tilt.axis)
     if tilt.square:
         # Turned lines of the two axes lean by opposite slopes.
         row = row + _lean(plane, 1 - tilt.axis)
-    whitened: Floats = row[np.concatenate([[0], 1 + model.free])] / tilt.sd
+    whitened: Floats = row[np.concatenate([[0], 1 + free])] / tilt.sd
     return whitened
 
 
