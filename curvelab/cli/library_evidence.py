@@ -2,6 +2,7 @@
 
 import tempfile
 from collections.abc import Iterator
+from dataclasses import replace
 from pathlib import Path
 
 import click
@@ -12,8 +13,9 @@ from curvelab.errors import InputError
 from curvelab.library.key import split_key
 from curvelab.reading.rerun import differences, rerun
 from curvelab.reading.restore import restored
+from curvelab.records.device import DeviceRecord
 from curvelab.records.evidence import StoredReading
-from curvelab.records.reading import ReadCurve
+from curvelab.records.reading import ReadCurve, Reading
 
 LEAST_SHARE = 0.01
 """Of the variance: causes below it are not listed."""
@@ -22,7 +24,7 @@ LEAST_SHARE = 0.01
 @click.command("evidence")
 @click.argument("key")
 @click.option(
-    "--output", type=click.Path(file_okay=False), help="Write sheets, worksheets and overlays to this folder."
+    "--output", type=click.Path(file_okay=False), help="Write sheets, worksheets, overlays and bands to this folder."
 )
 @click.option("--rerun", "again", is_flag=True, help="Read again with this version and list what differs.")
 @library_option
@@ -33,6 +35,7 @@ def evidence_command(key: str, output: str | None, again: bool, library_file: st
     """
     with curvelab.open_library(library_file, create=False) as library:
         evidence = library.evidence(*split_key(key))
+        device = library.record(evidence.key, evidence.revision)
     click.echo(
         f"{evidence.key}@{evidence.revision} ({evidence.state}), {evidence.at}, curvelab {evidence.program_version}"
     )
@@ -44,7 +47,7 @@ def evidence_command(key: str, output: str | None, again: bool, library_file: st
             for line in _fitted(read):
                 click.echo(f"  {line}")
         if output:
-            _write(stored, Path(output) / f"{evidence.key}-{evidence.revision}-reading-{number}")
+            _write(stored, device, Path(output) / f"{evidence.key}-{evidence.revision}-reading-{number}")
         if again:
             differs |= _differs(stored)
     return 1 if differs else 0
@@ -74,9 +77,10 @@ def _fitted(read: ReadCurve) -> Iterator[str]:
     yield f"{name}: standard uncertainty {budget.total:.2g} along the normal; of its variance {', '.join(parts)}"
 
 
-def _write(stored: StoredReading, folder: Path) -> None:
-    """The sheet's file and worksheet as they were, and the overlay."""
+def _write(stored: StoredReading, device: DeviceRecord, folder: Path) -> None:
+    """The sheet's file and worksheet as they were, the overlay, and the stored band drawn back over the sheet."""
     # A picture needs the plotting library; the rest starts without it.
+    from curvelab.plots.on_sheet import draw_on_sheet  # noqa: PLC0415
     from curvelab.plots.overlay import draw_overlay  # noqa: PLC0415
 
     try:
@@ -88,8 +92,20 @@ def _write(stored: StoredReading, folder: Path) -> None:
     if stored.reading.worksheet.text:
         write_text(stored.reading.worksheet.text, str(folder / "worksheet.toml"))
     if stored.source is not None:
-        draw_overlay(restored(stored, folder), folder / "overlay.png")
+        reading = restored(stored, folder)
+        draw_overlay(reading, folder / "overlay.png")
+        own = _of_sheet(device, reading)
+        if reading.axes is not None and any(each.quantity == reading.axes.value.quantity for each in own.curves):
+            draw_on_sheet(reading, [own], folder / "band.png")
     click.echo(f"  written to {folder}")
+
+
+def _of_sheet(device: DeviceRecord, reading: Reading) -> DeviceRecord:
+    """The device with the curves of the reading's sheet alone."""
+    sha256 = reading.sheet.sha256 if reading.sheet else None
+    return replace(
+        device, curves=tuple(curve for curve in device.curves if curve.sheet and curve.sheet.sha256 == sha256)
+    )
 
 
 def _differs(stored: StoredReading) -> bool:

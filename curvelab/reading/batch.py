@@ -17,6 +17,8 @@ from curvelab.worksheets.read import read_worksheet
 
 SHEETS = frozenset({".png", ".jpg", ".jpeg", ".tif", ".tiff", ".bmp", ".webp", ".pdf", ".svg"})
 WORKSHEET = ".toml"
+DONE = "curvelab-done.jsonl"
+"""The list of what is done; a folder that holds it is one of results."""
 
 
 def _read_only(mapping: dict[Any, Any]) -> MappingProxyType[Any, Any]:
@@ -81,9 +83,10 @@ Engine: TypeAlias = Callable[[Work, list[Job]], Iterator[tuple[Job, Outcome | No
 def jobs_in(folder: Path, results: Path) -> list[Job]:
     """Every worksheet, and every page of every sheet that no worksheet speaks of, in the order of their names.
 
-    Looks into the folders within; leaves out hidden ones and that of the results.
+    Looks into the folders within; leaves out hidden ones and those of results, of this run and of others.
     """
-    files = [path for path in sorted(folder.rglob("*")) if _is_read(path, folder, results)]
+    left_out = {results, *(path.parent for path in folder.rglob(DONE))}
+    files = [path for path in sorted(folder.rglob("*")) if _is_read(path, folder, left_out)]
     worksheets = [path for path in files if path.suffix.lower() == WORKSHEET]
     spoken_of = {page for path in worksheets for page in _pages_of(path)}
     found: list[Job] = []
@@ -98,10 +101,11 @@ def jobs_in(folder: Path, results: Path) -> list[Job]:
     return found
 
 
-def _is_read(path: Path, folder: Path, results: Path) -> bool:
+def _is_read(path: Path, folder: Path, left_out: set[Path]) -> bool:
     parts = path.relative_to(folder).parts
     hidden = any(part.startswith(".") for part in parts)
-    return path.suffix.lower() in SHEETS | {WORKSHEET} and not hidden and results not in path.parents and path.is_file()
+    is_left_out = hidden or not left_out.isdisjoint(path.parents)
+    return path.suffix.lower() in SHEETS | {WORKSHEET} and not is_left_out and path.is_file()
 
 
 def _count(path: Path) -> int:

@@ -8,9 +8,7 @@ from pathlib import Path
 from typing import Any, BinaryIO
 
 from curvelab.errors import InputError
-from curvelab.reading.batch import Entry, Job, Outcome
-
-NAME = "done.jsonl"
+from curvelab.reading.batch import DONE, Entry, Job, Outcome
 
 
 class Journal:
@@ -50,7 +48,7 @@ class Journal:
             for name, content in outcome.contents.items():
                 self._write(self._folder / name, content)
             self._folder.mkdir(parents=True, exist_ok=True)
-            with (self._folder / NAME).open("a+b") as file:
+            with (self._folder / DONE).open("a+b") as file:
                 file.write(b"\n" * self._is_cut_off(file) + json.dumps(line).encode("ascii") + b"\n")
         except OSError as error:
             raise InputError(
@@ -74,7 +72,7 @@ class Journal:
     def _lines(self) -> Iterator[tuple[tuple[str, int, str], tuple[Entry, ...]]]:
         """Lines of this library; one that was cut off when the batch was stopped is passed over."""
         try:
-            lines = (self._folder / NAME).read_text(encoding="utf-8").splitlines()
+            lines = (self._folder / DONE).read_text(encoding="utf-8").splitlines()
         except OSError:
             return
         for line in lines:

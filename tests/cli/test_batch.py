@@ -16,7 +16,7 @@ from PIL import Image
 import curvelab
 from curvelab.cli import batch
 from curvelab.cli.main import run
-from curvelab.reading.journal import NAME
+from curvelab.reading.batch import DONE
 from tests.cli.test_commands import B32, FUSE
 
 ROOT = Path(__file__).parents[2]
@@ -112,7 +112,7 @@ def test_results_and_readings_go_where_they_are_asked_to(folder, tmp_path, capsy
     assert run(["digitise", str(folder), "--output", str(tmp_path / "out"), "--json", "-"]) == 2
     readings = json.loads(capsys.readouterr().out)
     assert [reading["bands"][0]["device"] for reading in readings] == ["hall-b32", "hall-gg100"]
-    assert (tmp_path / "out" / NAME).exists()
+    assert (tmp_path / "out" / DONE).exists()
     assert not (folder / batch.RESULTS).exists()
 
 
@@ -172,7 +172,7 @@ def test_an_empty_folder_and_options_of_the_other_kind_are_refused(tmp_path, fol
 @pytest.mark.skipif(sys.platform == "win32", reason="Windows has no such signal")
 def test_processes_do_the_work_and_a_kill_in_the_midst_loses_little(folder):
     command = [sys.executable, "-m", "curvelab", "digitise", str(folder)]
-    done = folder / batch.RESULTS / NAME
+    done = folder / batch.RESULTS / DONE
     for number in range(2):
         (folder / f"more-{number}.toml").write_text(FUSE.replace("hall-gg100", f"hall-{number}"), encoding="utf-8")
     with subprocess.Popen(command, cwd=ROOT, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL) as process:

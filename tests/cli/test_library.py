@@ -129,7 +129,7 @@ def test_evidence_of_a_read_sheet(tmp_path: Path, capsys: pytest.CaptureFixture[
     assert "residual fast: standard uncertainty" in out or "whole fast: standard uncertainty" in out
     assert "calibration" in out
     written = {path.name for path in (tmp_path / "out").rglob("*") if path.is_file()}
-    assert written == {"worksheet.toml", "overlay.png", "rcd-general.png"}
+    assert written == {"worksheet.toml", "overlay.png", "band.png", "rcd-general.png"}
 
 
 @pytest.mark.parametrize(

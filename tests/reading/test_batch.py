@@ -9,9 +9,9 @@ import pytest
 from PIL import Image
 
 from curvelab.errors import InputError
-from curvelab.reading.batch import Job, failed, jobs_in
+from curvelab.reading.batch import DONE, Job, failed, jobs_in
 from curvelab.reading.engines import cluster, processes
-from curvelab.reading.journal import NAME, Journal
+from curvelab.reading.journal import Journal
 from tests.reading.batch_work import deadly, quick
 from tests.reading.example import reading
 
@@ -56,6 +56,13 @@ def test_results_are_not_read_again(folder):
     assert all("results" not in each.source for each in jobs_in(folder, results))
 
 
+def test_results_of_another_run_are_not_read_either(folder):
+    other = folder / "sub" / "elsewhere"
+    Journal(other).add(quick(job()))
+    Image.new("L", (20, 10), 255).save(other / "b.png.overlay.png")
+    assert all("elsewhere" not in each.source for each in jobs_in(folder, folder / "results"))
+
+
 def test_a_key_follows_the_bytes_of_sheet_and_worksheet(folder):
     def keys():
         return {(each.source, each.page): each.key for each in jobs_in(folder, folder / "results")}
@@ -90,8 +97,8 @@ def test_a_line_cut_off_by_a_stop_costs_that_page_alone(tmp_path):
     journal = Journal(tmp_path)
     journal.add(quick(job("a.png")))
     journal.add(quick(job("b.png")))
-    text = (tmp_path / NAME).read_text(encoding="utf-8")
-    (tmp_path / NAME).write_text(text[:-30], encoding="utf-8")
+    text = (tmp_path / DONE).read_text(encoding="utf-8")
+    (tmp_path / DONE).write_text(text[:-30], encoding="utf-8")
     again = Journal(tmp_path)
     assert again.entries(job("a.png")) is not None
     assert again.entries(job("b.png")) is None
@@ -100,7 +107,7 @@ def test_a_line_cut_off_by_a_stop_costs_that_page_alone(tmp_path):
 def test_what_follows_a_cut_off_line_is_kept_too(tmp_path):
     journal = Journal(tmp_path)
     journal.add(quick(job("a.png")))
-    (tmp_path / NAME).write_text('{"source": "b', encoding="utf-8")
+    (tmp_path / DONE).write_text('{"source": "b', encoding="utf-8")
     Journal(tmp_path).add(quick(job("c.png")))
     assert Journal(tmp_path).entries(job("c.png")) is not None
 
