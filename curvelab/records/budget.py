@@ -3,12 +3,12 @@
 from dataclasses import dataclass
 from typing import Literal
 
-Cause = Literal["calibration", "warp", "snapping", "trace", "correlation", "smoothing", "edge", "tabulation"]
+Cause = Literal["calibration", "snapping", "warp", "trace", "correlation", "smoothing", "edge", "tabulation"]
 
 CAUSES: tuple[tuple[Cause, str, bool], ...] = (
     ("calibration", "Axes: where the grid lines and marks were measured", True),
-    ("warp", "Axes: bends of the sheet beyond the map", True),
     ("snapping", "Axes: grid lines drawn on whole pixels", True),
+    ("warp", "Axes: bends of the sheet beyond the map, other at every place", False),
     ("trace", "Trace: scatter of single places across the line", False),
     ("correlation", "Fit: what neighbouring errors being alike adds to the scatter", False),
     ("smoothing", "Fit: what the model may have smoothed away", False),
@@ -37,8 +37,8 @@ class UncertaintyBudget:
     """
 
     calibration: float
-    warp: float
     snapping: float
+    warp: float
     trace: float
     correlation: float
     smoothing: float
@@ -48,7 +48,7 @@ class UncertaintyBudget:
     @property
     def common(self) -> float:
         """What all curves of the sheet share."""
-        return _root_sum(self.calibration, self.warp, self.snapping)
+        return _root_sum(self.calibration, self.snapping)
 
     @property
     def total(self) -> float:
