@@ -14,6 +14,7 @@ from types import FrameType
 import uvicorn
 
 from curvelab.errors import InputError
+from curvelab.workbench.allocation import return_large_blocks
 from curvelab.workbench.app import application
 from curvelab.workbench.bench import Bench
 from curvelab.workbench.guard import Door, loopback_door, with_port
@@ -52,6 +53,7 @@ def serve(wanted: Wanted, say: Callable[[str], None]) -> None:
     address = _address(wanted.host, port, door.token)
     for line in _told(wanted, address, door):
         say(line)
+    return_large_blocks()
     bench = Bench(wanted.library)
     app = application(bench, door)
     config = uvicorn.Config(
