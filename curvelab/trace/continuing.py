@@ -51,11 +51,11 @@ def smooth_step(graph: ChainGraph, onward: Heading, entry: End, track: Track, ho
     places = oriented(graph, entry)
     run = np.r_[0.0, np.cumsum(np.hypot(*np.diff(places, axis=0).T))]
     count = int(np.searchsorted(run, line.look_ahead, side="right"))
-    cost = _deviation(onward, places[:count], run[:count], track)
+    cost = deviation(onward, places[:count], run[:count], track)
     if hop > 1.0 and cost > ACCEPT:
         straight = up_to_corner(places[:count])
         if run[straight - 1] > max(SHORT_LEG * line.width, SHORTEST_LEG):
-            cost = min(cost, CORNER + _deviation(onward, places[:straight], run[:straight], track))
+            cost = min(cost, CORNER + deviation(onward, places[:straight], run[:straight], track))
     return Step(
         entry=entry,
         cost=cost + look_cost(chain, line) + _break_cost(track, float(run[-1]), hop),
@@ -64,13 +64,13 @@ def smooth_step(graph: ChainGraph, onward: Heading, entry: End, track: Track, ho
     )
 
 
-def _deviation(onward: Heading, places: Floats, run: Floats, track: Track) -> float:
+def deviation(onward: Heading, places: Floats, run: Floats, track: Track) -> float:
     """Mean squared deviation from the continuation in its standard deviations, beyond what chance gives."""
     ahead, aside = onward.frame(places)
-    deviation = np.minimum((aside / onward.spread(ahead)) ** 2, CAP)
+    squared = np.minimum((aside / onward.spread(ahead)) ** 2, CAP)
     # a stroke that turns back is no continuation, however close it lies
-    deviation = np.where(ahead < -track.line.width - 2.0, CAP, deviation)
-    return max(0.0, float(np.average(deviation, weights=1.0 + run / track.line.look_ahead)) - 1.0)
+    squared = np.where(ahead < -track.line.width - 2.0, CAP, squared)
+    return max(0.0, float(np.average(squared, weights=1.0 + run / track.line.look_ahead)) - 1.0)
 
 
 def up_to_corner(places: Floats) -> int:

@@ -17,6 +17,8 @@ LONGEST_GUIDED = 400.0
 """px bridged between two guide places."""
 FAR_DASH, FAR_LINE = 0.18, 0.5
 """Least length beyond an unseen stretch, relative to it, of a dash and of a line."""
+SCRAP = 8.0
+"""Stroke widths of a chain that may be left over from the grid."""
 TOUCHING = 4.0
 """px: what lies beyond so short a break need not face the line."""
 ASIDE = 3.0
@@ -45,7 +47,9 @@ def over_gap(graph: ChainGraph, onward: Heading, track: Track, way: Way) -> list
         return steps if len(steps) == 1 and steps[0].cost <= SOLE else []
     best = min(step.cost for step in fair)
     first = min((step for step in fair if step.cost <= best + MARGIN), key=lambda step: step.hop)
-    limit = first.hop + graph.chains[first.entry[0]].length
+    length = graph.chains[first.entry[0]].length
+    # what may be a scrap hides nothing beyond it
+    limit = first.hop + length if track.is_dashed or length > SCRAP * width else np.inf
     return [step for step in fair if step.hop < limit]
 
 

@@ -1,11 +1,11 @@
 """The grid as a known nuisance: its predicted ink, from the lines the axes were calibrated on."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from curvelab.records.arrays import Floats
-from curvelab.records.axes import GridLine
+from curvelab.records.axes import Axes, GridLine
 from curvelab.records.sheet import Pixels
 from curvelab.trace.ink import Image, Ink
 
@@ -13,10 +13,17 @@ BIN = 0.25
 """Width in px of the bins a line's profile is measured in."""
 BINS = np.arange(-8.0, 8.0 + BIN / 2, BIN)
 """Distances in px a profile is kept at."""
+NEAR_WHOLE = 1e-6
 QUANTILE = 0.12
 TWO_LEVEL_QUANTILE = 0.85
 QUANTILE_OFFSET = 1.175
 """A low quantile along the line passes over curves that cross or follow it; in noise it lies 1.175 sd low."""
+USUAL, HIDDEN = 0.6, 0.3
+"""A line's usual ink along it, and the share of that beneath which nothing of the line is seen."""
+SHORTEST_HIDDEN, WHOLE = 24, 0.9
+"""px of a stretch that hides a line, and the share of it without ink."""
+MOSTLY_HIDDEN = 0.7
+"""A line that is seen along less than the rest is left as it is."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -46,6 +53,26 @@ class _Course:
     outermost: bool
 
 
+def grid_lines(axes: Axes) -> tuple[GridLine, ...]:
+    """The axes' grid lines without those that stand in one decade alone: upright or level curves taken for the grid."""
+    kept = []
+    for line in axes.grid:
+        values = [other.value for other in axes.grid if other.axis == line.axis]
+        scale = (axes.current if line.axis == "current" else axes.value).scale
+        if scale != "log" or _repeats(line.value, np.array(values)):
+            kept.append(line)
+    return tuple(kept)
+
+
+def _repeats(value: float, others: Floats) -> bool:
+    """Whether a value is a whole multiple of a power of ten, or other decades have a line there too."""
+    scaled = value / 10.0 ** np.floor(np.log10(value))
+    if abs(scaled - np.round(scaled)) < NEAR_WHOLE:
+        return True
+    decades = [value * 10.0**k for k in range(-12, 13) if k and others.min() <= value * 10.0**k <= others.max()]
+    return not decades or any(np.isclose(decade, others, rtol=1e-3).any() for decade in decades)
+
+
 def predict_grid(ink: Ink, pixels: Pixels, grid: tuple[GridLine, ...]) -> GridInk:
     """Ink of every grid line as its own mean profile predicts it, the larger where lines cross."""
     values = {axis: [line.value for line in grid if line.axis == axis] for axis in ("current", "value")}
@@ -54,6 +81,8 @@ def predict_grid(ink: Ink, pixels: Pixels, grid: tuple[GridLine, ...]) -> GridIn
         course = _course(ink, pixels, line, line.value in (min(values[line.axis]), max(values[line.axis])))
         if course is not None:
             courses.append(course)
+    if not ink.two_level:
+        courses = [_seen_part(ink, course) for course in courses]
     profiles = [_profile(ink, course) for course in courses]
     limit = _common_limit(courses, profiles) if ink.two_level else np.ones(BINS.size)
     predicted = np.zeros(ink.dark.shape, dtype=np.float32)
@@ -85,6 +114,24 @@ def _course(ink: Ink, pixels: Pixels, line: GridLine, outermost: bool) -> _Cours
     if not inside.any():
         return None
     return _Course(along=positions[inside], centre=centre[inside], reach=reach, vertical=vertical, outermost=outermost)
+
+
+def _seen_part(ink: Ink, course: _Course) -> _Course:
+    """The line without stretches that a label or a box hides: there its ink is not to be expected."""
+    dark = ink.dark if course.vertical else ink.dark.T
+    columns = np.clip(np.round(course.centre).astype(int)[:, None] + np.array([-1, 0, 1]), 0, dark.shape[1] - 1)
+    level = dark[course.along.astype(int)[:, None], columns].max(axis=1)
+    usual = float(np.quantile(level, USUAL))
+    bare = (level < max(HIDDEN * usual, 2.0 * ink.noise)).astype(np.float64)
+    # hidden: bare over a whole stretch, and everything within that stretch
+    width = min(SHORTEST_HIDDEN, level.size)
+    whole = np.convolve(bare, np.ones(width), mode="valid") >= WHOLE * width
+    hidden = np.zeros(level.size, dtype=bool)
+    for start in np.flatnonzero(whole):
+        hidden[start : start + width] |= bare[start : start + width] > 0
+    if not hidden.any() or hidden.mean() > MOSTLY_HIDDEN:
+        return course
+    return replace(course, along=course.along[~hidden], centre=course.centre[~hidden])
 
 
 def _pixels_along(course: _Course, breadth: int) -> tuple[np.ndarray, np.ndarray]:

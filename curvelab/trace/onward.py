@@ -2,10 +2,13 @@
 
 from dataclasses import replace
 
+import numpy as np
+
 from curvelab.trace.chains import ChainGraph
-from curvelab.trace.continuing import ACCEPT, smooth_step
+from curvelab.trace.continuing import ACCEPT, deviation, smooth_step
 from curvelab.trace.gaps import over_gap
-from curvelab.trace.track import FRESH, Step, Track, added, meeting, touching
+from curvelab.trace.heading import heading
+from curvelab.trace.track import FRESH, LONG, Step, Track, added, look_cost, meeting, oriented, touching
 from curvelab.trace.turning import kinked_unseen, next_dash, turning
 from curvelab.trace.way import Way
 
@@ -22,7 +25,7 @@ def steps_from(graph: ChainGraph, track: Track, way: Way) -> list[Step]:
         return []
     joined = meeting(graph, track.end)
     near = way.at_junction(graph, track, joined or touching(graph, track))
-    steps = [smooth_step(graph, onward, entry, track, 0.0) for entry in near]
+    steps = [_either_way(graph, track, smooth_step(graph, onward, entry, track, 0.0)) for entry in near]
     going = [step for step in steps if step.cost <= ACCEPT]
     clear = not track.is_dashed and any(
         step.cost < CLEAR and graph.chains[step.entry[0]].length > CLEAR_STROKES * track.line.width for step in going
@@ -39,6 +42,19 @@ def steps_from(graph: ChainGraph, track: Track, way: Way) -> list[Step]:
     if not (way.guided or going or turns or beyond):
         turns = kinked_unseen(graph, onward, track, way)
     return [*going, *turns, *beyond]
+
+
+def _either_way(graph: ChainGraph, track: Track, step: Step) -> Step:
+    """The step at no more cost than the line has as the continuation of the chain, followed back."""
+    if step.cost <= ACCEPT or not step.trusted or graph.chains[step.entry[0]].length < LONG:
+        return step
+    back = heading(oriented(graph, step.entry)[::-1])
+    if back is None:
+        return step
+    walked = track.walked()[: -int(track.line.look_ahead) : -1]
+    run = np.r_[0.0, np.cumsum(np.hypot(*np.diff(walked, axis=0).T))]
+    cost = deviation(back, walked, run, track) + look_cost(graph.chains[step.entry[0]], track.line)
+    return replace(step, cost=min(step.cost, cost))
 
 
 def known_before(graph: ChainGraph, start: Track, most: int = FRESH) -> Track:

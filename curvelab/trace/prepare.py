@@ -5,7 +5,7 @@ import numpy as np
 from curvelab.errors import TraceError
 from curvelab.records.axes import Axes
 from curvelab.records.sheet import Pixels, Sheet
-from curvelab.trace.gridmodel import predict_grid
+from curvelab.trace.gridmodel import grid_lines, predict_grid
 from curvelab.trace.ink import read_ink
 from curvelab.trace.prepared import Prepared, Raster
 from curvelab.trace.sense import Sense
@@ -39,7 +39,7 @@ def prepare(sheet: Sheet, axes: Axes) -> Prepared:
 
 def _raster(pixels: Pixels, axes: Axes) -> Raster:
     ink = read_ink(pixels, axes)
-    grid = predict_grid(ink, pixels, axes.grid)
+    grid = predict_grid(ink, pixels, grid_lines(axes))
     corners = pixels.columns_rows(plot_window(axes).corners()) - np.array(ink.origin)
     inside = plot_area(ink.dark.shape, corners)
     sense = Sense(axes=axes, pixels=pixels, origin=ink.origin)

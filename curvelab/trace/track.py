@@ -148,10 +148,13 @@ class Track:
 
     def onward(self) -> Heading | None:
         """Its continuation from the places that tell its direction."""
+        return heading(self.walked())
+
+    def walked(self) -> Floats:
+        """The places that tell its direction, without the last ones, which a junction's ink may have pulled aside."""
         history = np.concatenate(self.trusted)
-        # a junction's ink may have pulled the last ones aside
         pulled = int(np.ceil(0.7 * self.line.width))
-        return heading(history[:-pulled] if len(history) > 4 * pulled + 8 else history)
+        return history[:-pulled] if len(history) > 4 * pulled + 8 else history
 
 
 def oriented(graph: ChainGraph, entry: End) -> Floats:

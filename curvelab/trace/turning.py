@@ -40,7 +40,8 @@ MOST_JOINED = 6
 
 def turning(graph: ChainGraph, track: Track, steps: list[Step], way: Way, *, alone: bool) -> list[Step]:
     """Steps round a corner: on the way to a guide place any, else the one that no other line goes on to."""
-    claimed = [is_claimed(graph, step.entry, track.line) for step in steps]
+    own = track.numbers()
+    claimed = [is_claimed(graph, step.entry, track.line, own) for step in steps]
     if way.guided:
         return [
             replace(step, kink=True, cost=min(step.cost, SOLE) + CLAIMED * taken)
@@ -73,7 +74,7 @@ def next_dash(graph: ChainGraph, onward: Heading, track: Track, way: Way) -> lis
     dashes = []
     for distance, entry in nearest if way.guided else nearest[:1]:
         smooth = smooth_step(graph, onward, entry, track, distance)
-        claimed = is_claimed(graph, entry, track.line)
+        claimed = is_claimed(graph, entry, track.line, track.numbers())
         if claimed and not way.guided:
             continue
         cost = max(ACCEPT, min(smooth.cost, SOLE)) + PER_PX * distance + CLAIMED * claimed
@@ -106,14 +107,14 @@ def _legs(onward: Heading, back: Heading) -> tuple[float, float] | None:
     return (here, there) if min(here, there) > -LEAST_BEHIND else None
 
 
-def is_claimed(graph: ChainGraph, entry: End, line: Line) -> bool:
-    """Whether another chain at the crossing continues this one smoothly."""
+def is_claimed(graph: ChainGraph, entry: End, line: Line, own: frozenset[int]) -> bool:
+    """Whether a chain at the crossing that is not among the ``own`` continues this one smoothly."""
     back = heading(oriented(graph, entry)[::-1])
     if back is None:
         return False
     least = THINNER * graph.chains[entry[0]].width
     for rival in _arms(graph, entry, line):
-        if graph.chains[rival[0]].width < least:
+        if rival[0] in own or graph.chains[rival[0]].width < least:
             continue
         ahead, aside = back.frame(oriented(graph, rival)[: int(line.look_ahead)])
         if np.mean(np.minimum((aside / back.spread(ahead)) ** 2, CAP)) < ACCEPT and ahead[-1] > 0:

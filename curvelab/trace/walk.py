@@ -8,7 +8,7 @@ import numpy as np
 
 from curvelab.records.arrays import Floats
 from curvelab.trace.chains import ChainGraph
-from curvelab.trace.continuing import ACCEPT, LONGEST_HOP
+from curvelab.trace.continuing import ACCEPT, LONGEST_HOP, USUAL_BREAK
 from curvelab.trace.gaps import MARGIN
 from curvelab.trace.onward import known_before, steps_from
 from curvelab.trace.track import FRESH, Track, added, begun, line_of, oriented
@@ -147,8 +147,10 @@ def _goes_on(tried: dict[int, list[Track]], track: Track) -> bool:
 
 def _is_doubtful(track: Track) -> bool:
     """Whether only the guide places make the line take this step."""
-    hop = track.step.hop
-    return track.step.cost > 2.0 * ACCEPT or (hop > SHORTEST_GAP and track.step.cost >= ACCEPT) or hop > LONGEST_HOP
+    step, before = track.step, track.before
+    if before is not None and before.is_dashed and step.hop <= USUAL_BREAK * before.common_break:
+        return step.cost > 2.0 * ACCEPT
+    return step.cost > 2.0 * ACCEPT or (step.hop > SHORTEST_GAP and step.cost >= ACCEPT) or step.hop > LONGEST_HOP
 
 
 def _exchanged(explored: Explored) -> bool:
