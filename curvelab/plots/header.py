@@ -73,7 +73,8 @@ def _about(subject: Subject) -> str:
     words = [description(subject.plate)]
     if curve.conditions.start:
         words.append(f"{curve.conditions.start} start")
-    words += [f"{name} = {value:g}" for name, value in sorted(curve.at.items())]
+    shared = set(curve.at.items()).intersection(*(each.at.items() for each in subject.curves))
+    words += [f"{name} = {value:g}" for name, value in sorted(shared)]
     return ", ".join(words)
 
 

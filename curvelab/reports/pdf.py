@@ -31,6 +31,8 @@ KEEP = 34.0
 """A heading needs so much room beneath it, in mm."""
 BETWEEN = 4.0
 """Between columns, in mm."""
+SIGNED = 12.0
+"""Height in mm of a line to sign on."""
 WHOLE, AFTER = 8, 14.0
 """A paragraph of up to so many lines is kept whole, with so much room in mm for the beginning of what follows."""
 LABEL_SHARE = 0.38
@@ -172,10 +174,9 @@ def _(block: Plate, pages: Pages) -> None:
 
 @_set_block.register
 def _(block: Signatures, pages: Pages) -> None:
-    height = 15.0
-    pages.need(height * len(block.roles))
+    pages.need(SIGNED * len(block.roles))
     for role in block.roles:
-        pages.y += height
+        pages.y += SIGNED
         pages.write(LEFT, pages.y, role, BODY, colour=QUIET)
         for name, start, end in (("name", 45.0, 100.0), ("date", 104.0, 132.0), ("signature", 136.0, WIDTH - RIGHT)):
             pages.rule(pages.y, GRAPHITE, 0.5, (start, end))

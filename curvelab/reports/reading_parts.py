@@ -122,8 +122,10 @@ def _mark_rows(axis: Axis) -> Iterator[Row]:
 
 def budget_section(case: Case) -> Section | None:
     """What contributes how much to each curve's uncertainty, at five of its points."""
-    known = [curve for curve in case.record.curves if any(np.isfinite(part.sd_common).any() for part in curve.parts)]
-    typed = len(case.record.curves) - len(known)
+    # What is declared about a line has that line's uncertainty.
+    read = [curve for curve in case.record.curves if curve.basis != "declared"]
+    known = [curve for curve in read if any(np.isfinite(part.sd_common).any() for part in curve.parts)]
+    typed = len(read) - len(known)
     blocks: list[Block] = []
     if known:
         blocks += [Paragraph(words=EXPLAINED), _budget_table(known)]
@@ -134,7 +136,7 @@ def budget_section(case: Case) -> Section | None:
     if lines:
         blocks += [Paragraph(words=LINES_EXPLAINED), Table(columns=LINE_COLUMNS, rows=tuple(lines))]
     if typed:
-        words = f"Of {typed} of the {len(case.record.curves)} curves no uncertainty is known: their points were typed."
+        words = f"Of {typed} of the {len(read)} lines no uncertainty is known: their points were typed."
         blocks.append(Paragraph(words=words, look="open"))
     return Section(heading="Uncertainty budget", blocks=tuple(blocks)) if blocks else None
 

@@ -11,6 +11,7 @@ from curvelab.plots.subject import description
 from curvelab.reports.case import Case
 from curvelab.reports.device_parts import curves_section, device_section, sources_section
 from curvelab.reports.document import Document, Free, Plate, Section
+from curvelab.reports.forms import forms_section
 from curvelab.reports.reading_parts import axes_section, budget_section, residuals_section, sheets_section
 from curvelab.reports.review_parts import (
     cautions_section,
@@ -39,6 +40,7 @@ def review_document(case: Case) -> Document:
         findings_section(case),
         warnings_section(case),
         budget_section(case),
+        forms_section(case),
         axes_section(case),
         cautions_section(case),
         history_section(case),
