@@ -22,6 +22,8 @@ from curvelab.workbench.guard import Door, loopback_door, with_port
 LOOPBACK = "127.0.0.1"
 KEEP_ALIVE_S = 75
 """How long a connection waits for the next question; a person thinks in between."""
+WAITING = 256
+"""Connections that may wait to be taken."""
 GRACE_S = 2
 """How long requests that are being answered may take once the server is to stop."""
 
@@ -99,10 +101,14 @@ def _listening(wanted: Wanted) -> socket.socket:
         family = socket.getaddrinfo(wanted.host, wanted.port, type=socket.SOCK_STREAM)[0][0]
         # Named, the protocol lets the event loop send small answers at once.
         listening = socket.socket(family, socket.SOCK_STREAM, socket.IPPROTO_TCP)
-        listening.setsockopt(socket.SOL_SOCKET, socket.SO_REUSEADDR, 1)
-        listening.bind((wanted.host, wanted.port))
-        listening.listen(256)
-    except (OSError, OverflowError) as error:
+        try:
+            listening.setsockopt(socket.SOL_SOCKET, socket.SO_REUSEADDR, 1)
+            listening.bind((wanted.host, wanted.port))
+            listening.listen(WAITING)
+        except BaseException:
+            listening.close()
+            raise
+    except (OSError, UnicodeError) as error:
         reason = getattr(error, "strerror", None) or str(error)
         raise InputError(
             f"Cannot serve at {wanted.host}, port {wanted.port}: {reason}", "", "Choose another port with --port"
