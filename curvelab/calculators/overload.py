@@ -1,7 +1,7 @@
 """Protection of a conductor against overload: IB <= In <= Iz, and I2 <= 1.45 Iz from the device's own band."""
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import isfinite
 
 from curvelab.calculators.cautions import BACK_UP, Caution, cautions_of
@@ -137,9 +137,17 @@ def _tripping(device: Device, time_s: float | None, row: Row | None, set_a: floa
     found = estimate(trips, "A", no_total_time(device) or reason(device, "slow", trips))
     if found.is_known or row is None or set_a is None:
         return found
-    words = f"{row['multiple']:g} In by {row['origin'].clause}; the band does not say: {found.reason}"
     value = row["multiple"] * set_a
+    if _is_later(device, time_s, value):
+        return replace(found, reason=f"{found.reason}, and they lie beyond {row['multiple']:g} In")
+    words = f"{row['multiple']:g} In by {row['origin'].clause}; the band does not say: {found.reason}"
     return Estimate(status="at_most", value=value, interval=None, unit="A", basis="standard", reason=words)
+
+
+def _is_later(device: Device, time_s: float, current_a: float) -> bool:
+    """Whether what comes before the current is off, as melting does, already needs a larger current by that time."""
+    before = device.trip_current(time_s, path="line_to_neutral").trips
+    return before is not None and bool(before.value > current_a * (1 + 1e-9))
 
 
 def _factor() -> tuple[float, Origin]:

@@ -55,9 +55,13 @@ def sure_current(device: Device, time_s: float, breaker_time_s: float | None) ->
 
 
 def _by_product_standard(device: Device, time_s: float) -> Estimate | None:
-    """The residual current in A for which its product standard allows no longer time; None where it says nothing."""
+    """The residual current in A for which its product standard allows no longer time.
+
+    None where the standard says nothing, and for a device that has a sheet: that may show it to be slower.
+    """
     plate, rated_a = device.nameplate, residual_rating_a(device)
-    if rated_a is None or not any(number in (plate.standard or "") for number in _PRODUCT_STANDARDS):
+    drawn = any(curve.quantity == "time" for curve in device.record.curves)
+    if drawn or rated_a is None or not any(number in (plate.standard or "") for number in _PRODUCT_STANDARDS):
         return None
     delay = plate.residual_delay or "general"
     for row in rows_of("disconnection", "break_times"):

@@ -282,3 +282,9 @@ def test_a_residual_device_without_a_sheet_answers_by_its_product_standard(delay
 
 def test_a_residual_device_under_no_known_standard_is_not_covered_without_a_sheet():
     assert asked(device(kind="rcd", rated_residual_current_a=0.03), system="TT").trips.status == "not_covered"
+
+
+def test_a_residual_device_with_a_sheet_is_never_taken_by_its_product_standard():
+    slow = line("slow", [(1, 0.5), (500, 0.25)], base="xIdn", element="residual")
+    made = device(slow, kind="rcd", standard="IEC 61008-1", rated_residual_current_a=0.03)
+    assert asked(made, system="TT").trips.status == "not_covered"

@@ -12,9 +12,9 @@ def outcomes(answer):
 
 
 def fuse(meaning="operating", characteristic="gG", rated_a=100.0, **fields):
-    # 150 A at 2 h.
-    points = [(140, 10_000), (150, 7200), (1000, 0.4)]
-    slow = line("slow", points, base="A", meaning=meaning, **fields)
+    # 1.5 In at 2 h.
+    points = [(1.4, 10_000), (1.5, 7200), (1.55, 3600), (10, 0.4)]
+    slow = line("slow", points, meaning=meaning, **fields)
     return device(slow, key="fuse", kind="fuse", characteristic=characteristic, rated_current_a=rated_a)
 
 
@@ -118,3 +118,15 @@ def test_a_b32_from_its_own_slow_edge():
 def test_numbers_that_cannot_be_are_refused():
     with pytest.raises(InputError, match="capacity_a"):
         Load(capacity_a=0.0)
+
+
+def test_a_late_fuse_is_not_taken_by_its_standard():
+    late = device(
+        line("slow", [(180, 7200), (1000, 0.4)], base="A", meaning="pre_arcing"),
+        kind="fuse",
+        characteristic="gG",
+        rated_current_a=100.0,
+    )
+    answer = overload(late, Load(capacity_a=200.0))
+    assert answer.trips.status == "not_covered"
+    assert "beyond 1.6 In" in answer.trips.reason
