@@ -28,6 +28,9 @@ CROSSING_REACH = 0.02
 APPROACH = 2e-3
 """Decades within which two stretches must come of each other to be tried again."""
 
+SHARP = 0.3
+"""Radians of a corner that candidates, significant as they are, need no further test for."""
+
 REFINEMENTS = 3
 """Rounds in which kinks move to crossings and the points near them are shared out again, at most."""
 
@@ -161,7 +164,8 @@ def _needed(
 ) -> tuple[list[float], list[Stretch]]:
     """Merge neighbours, weakest corner first, while the Bayes information criterion falls."""
     kinks, stretches = list(kinks), list(stretches)
-    settled: set[float] = set()
+    turns = {kink: _turn(stretches[k], stretches[k + 1], kink) for k, kink in enumerate(kinks)}
+    settled = {kink for kink, turn in turns.items() if turn > SHARP}
     while True:
         open_kinks = [k for k in range(len(kinks)) if kinks[k] not in settled]
         if not open_kinks:
