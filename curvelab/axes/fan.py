@@ -16,6 +16,12 @@ ENDS = 4.0
 BETTER = 1.1
 """Ratio of the lengths that follow a fan and that are parallel, from which on lines fan out."""
 
+CLOSER = 0.4
+"""Share of that within which a line counts in the last fit."""
+
+FEWEST = 4
+"""Lines without which a fan is not told from parallel lines."""
+
 MOST_LINES = 80
 """Lines whose pairs are tried as fans; the longest."""
 
@@ -65,26 +71,40 @@ def fanned(at: Floats, lean: Floats, length: Floats, sd: float) -> Fan:
     lean, length, sd
         As for ``parallel``.
     """
-    best = parallel(lean, length, sd)
-    if len(at) < 2:
-        return best
+    allowed = _allowed(length, sd)
+    members = parallel(lean, length, sd).members
+    rival = _paired(at, lean, length, allowed)
+    if rival is not None and rival @ length > BETTER * float(members @ length):
+        members = rival
+    fan = _fitted(at, lean, length, members)
+    for share in (1.0, CLOSER):
+        members = np.abs(lean - fan.at(at)) <= share * allowed
+        fan = _fitted(at, lean, length, members)
+    return Fan(slope=fan.slope, growth=fan.growth, members=np.abs(lean - fan.at(at)) <= allowed)
+
+
+def _paired(at: Floats, lean: Floats, length: Floats, allowed: Floats) -> NDArray[np.bool_] | None:
+    """The lines of the fan through a pair that most length follows."""
     longest = np.argsort(-length, kind="stable")[:MOST_LINES]
     low, high = (longest[part] for part in np.triu_indices(len(longest), 1))
-    far = np.abs(at[high] - at[low]) > APART * max(float(np.ptp(at)), sd)
+    far = np.abs(at[high] - at[low]) > APART * np.ptp(at) if len(low) else np.zeros(0, dtype=bool)
+    if not far.any():
+        return None
     low, high = low[far], high[far]
-    if not len(low):
-        return best
-    allowed = _allowed(length, sd)
     growth = (lean[high] - lean[low]) / (at[high] - at[low])
     slope = lean[low] - growth * at[low]
-    votes = (np.abs(lean - slope[:, None] - growth[:, None] * at) <= allowed) @ length
-    k = int(np.argmax(votes))
-    if votes[k] < BETTER * float(length[best.members].sum()):
-        return best
-    members = np.abs(lean - slope[k] - growth[k] * at) <= allowed
-    fitted, constant = np.polyfit(at[members], lean[members], 1, w=length[members] ** 1.5)
-    fan = Fan(slope=float(constant), growth=float(fitted), members=members)
-    return Fan(slope=fan.slope, growth=fan.growth, members=np.abs(lean - fan.at(at)) <= allowed)
+    near = np.abs(lean - slope[:, None] - growth[:, None] * at) <= allowed
+    followed: NDArray[np.bool_] = near[int(np.argmax(near @ length))]
+    return followed
+
+
+def _fitted(at: Floats, lean: Floats, length: Floats, members: NDArray[np.bool_]) -> Fan:
+    """Least squares through some lines; without growth where they are too few."""
+    if members.sum() < FEWEST or np.ptp(at[members]) == 0:
+        slope = float(np.average(lean[members], weights=length[members] ** 3)) if members.any() else 0.0
+        return Fan(slope=slope, growth=0.0, members=members)
+    growth, constant = np.polyfit(at[members], lean[members], 1, w=length[members] ** 1.5)
+    return Fan(slope=float(constant), growth=float(growth), members=members)
 
 
 def _allowed(length: Floats, sd: float) -> Floats:
