@@ -9,6 +9,7 @@ from curvelab.calculators.refusals import no_total_time, not_protective, reason
 from curvelab.devices.device import Device
 from curvelab.devices.question import Path
 from curvelab.errors import DeviceError
+from curvelab.units import written_current
 
 _BREAKERS = ("mcb", "rcbo")
 _EARTH: Path = "residual"
@@ -112,6 +113,11 @@ def _mean_current(device: Device, time_s: float, practice: Practice) -> Estimate
     if multiple is not None and plate.rated_current_a is not None and time_s >= LEAST_MEAN_TIME_S:
         words = f"mean tripping current {multiple:g} In of type {plate.characteristic}, {practice.origin.clause}"
         value = multiple * plate.rated_current_a
+        holds = device.trip_current(time_s).holds
+        if holds is not None and holds.value > value * (1 + 1e-9):
+            held = written_current(float(holds.value), "A")
+            words = f"the sheet shows that it surely holds up to {held}, above the {words}"
+            return Estimate(status="not_covered", value=None, interval=None, unit="A", reason=words)
         return Estimate(status="value", value=value, interval=None, unit="A", basis="standard", reason=words)
     mean = device.trip_current(time_s, meaning="clearing").mean
     found = estimate(mean, "A", not_protective(device) or f"'{device.key}' has no mean line of operating times there")

@@ -288,3 +288,15 @@ def test_a_residual_device_with_a_sheet_is_never_taken_by_its_product_standard()
     slow = line("slow", [(1, 0.5), (500, 0.25)], base="xIdn", element="residual")
     made = device(slow, kind="rcd", standard="IEC 61008-1", rated_residual_current_a=0.03)
     assert asked(made, system="TT").trips.status == "not_covered"
+
+
+def test_a_mean_factor_is_refused_where_the_sheet_shows_the_device_to_hold_there():
+    late = device(
+        line("fast", [(1.13, 9000), (8, 2), (8, 0.01), (50, 0.008)]),
+        line("slow", [(1.45, 3500), (14, 3), (14, 0.05), (50, 0.02)]),
+        characteristic="C",
+        rated_current_a=20.0,
+    )
+    answer = asked(late, practice="asnzs3000", loop_ohm=1.0)
+    assert "surely holds up to 160 A" in answer.trips.reason
+    assert only(answer).outcome == "not covered"
