@@ -96,7 +96,7 @@ def test_a_device_is_asked_and_answers_with_its_interval(screen: Screen) -> None
     screen.goto("#/device/riverside-b32")
     screen.page.get_by_label("Current for, s").fill("0.4")
     screen.page.get_by_label("Current for, s").press("Enter")
-    answer = screen.page.locator(".answer")
+    answer = screen.page.locator(".answer").first
     answer.locator("dd").first.wait_for()
     assert "151.0" in answer.inner_text()
 
@@ -106,3 +106,15 @@ def test_exports_are_files(screen: Screen) -> None:
     with screen.page.expect_download() as kept:
         screen.page.get_by_role("link", name="Points as a table (CSV)").click()
     assert kept.value.suggested_filename.endswith(".csv")
+
+
+def test_questions_of_a_calculator_are_answered_beside_the_device(screen: Screen) -> None:
+    """0.95 x 230 V / 151 A, as the practice has it."""
+    screen.goto("#/device/riverside-b32")
+    screen.page.get_by_text("Disconnects a fault in time?").click()
+    screen.page.get_by_label("Loop, Ω").fill("1.30")
+    screen.page.get_by_label("Loop, Ω").press("Enter")
+    answer = screen.page.locator("details[open] .answer")
+    answer.locator(".finding").first.wait_for()
+    assert "1.45\u00a0Ω" in answer.inner_text()
+    assert "meets" in answer.inner_text()

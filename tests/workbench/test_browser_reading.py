@@ -238,3 +238,19 @@ def test_two_tabs_see_each_other_and_a_late_step_is_told_politely(bench: Workben
     told(other, "another tab")
     assert other.page.locator('[data-focus="strip-series"]').input_value() == "Newer"
     assert other.state()["data"]["devices"][0]["maker"] != "Late"
+
+
+def test_entries_that_are_alike_are_accepted_together(bench: Workbench) -> None:
+    """Twelve lines, each broken by its printed rating."""
+    screen = bench.screen()
+    screen.demo("fuse-gg-family")
+    screen.read()
+    assert len(screen.open_texts) == 12
+    screen.page.keyboard.press("n")
+    screen.page.locator(".entry.here .answers > button", has_text="reason").click()
+    screen.page.get_by_label("Reason").fill("The printed rating stands in the line")
+    screen.page.get_by_label("Your name").fill("Ada Reader")
+    screen.page.get_by_label("and 11 others like it").check()
+    screen.page.get_by_role("button", name="Accept", exact=True).click()
+    may_store(screen)
+    assert len(screen.state()["data"]["accepted"]) == 1

@@ -50,9 +50,9 @@ export class BandPane {
   }
 
   drawWithin(context, frame) {
-    const several = this.subjects.length > 1;
+    const several = this.subjects.some((subject) => subject.letter) && this.subjects.length > 1;
     for (const subject of this.subjects) {
-      const look = { colour: this.ink(subject.colour), hatch: several ? subject.index : 0 };
+      const look = { colour: this.ink(subject.colour), hatch: several ? subject.index : 0, faint: subject.faint };
       for (const band of subject.bands) drawBand(context, frame, band, look);
     }
     drawLimits(context, frame, this.limits, this.ink, this.chosen);

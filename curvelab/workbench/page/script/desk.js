@@ -1,5 +1,6 @@
 // The desk: one sheet being read. The strip on top, the sheet left, what is open in the middle, the twin right.
 
+import { edgesOf } from "./bands.js";
 import { Cursor } from "./cursor.js";
 import { el, fill, settled } from "./dom.js";
 import { Draft } from "./draft.js";
@@ -109,6 +110,17 @@ export class Desk {
     return bands.filter((band) => band.device === key);
   }
 
+  /** Bands of the other devices on the sheet, each form once: a series has one band for all. */
+  otherBands() {
+    const shown = this.shownBands();
+    const seen = new Set(shown.map(formOf));
+    return (this.draft.reading?.bands ?? []).filter((band) => {
+      const form = formOf(band);
+      if (seen.has(form) || band.base !== shown[0]?.base) return false;
+      return seen.add(form);
+    });
+  }
+
   #shownKey(keys) {
     const device = this.shownDevice;
     if (!device?.key || keys.includes(device.key)) return device?.key ?? keys[0];
@@ -130,6 +142,9 @@ export class Desk {
 
   choose(index) {
     this.chosen = index;
+    const { data } = this.draft.state ?? {};
+    const device = data?.devices?.findIndex((each) => each.key === data.curves?.[index]?.device) ?? -1;
+    if (device >= 0 && device !== this.strip.index) this.strip.turnTo(device);
     this.parts.update();
     this.sheet.canvas.redraw();
   }
@@ -210,6 +225,11 @@ export class Desk {
     this.sheet.giveUp();
     this.choose(null);
   }
+}
+
+/** What tells one band's lines from another's: where each begins and ends. */
+function formOf(band) {
+  return JSON.stringify(edgesOf(band).map(([edge, { parts }]) => [edge, parts[0].current[0], parts.at(-1).current.at(-1)]));
 }
 
 function viewFrom({ x, y, z }) {

@@ -87,12 +87,16 @@ export class OpenList {
     const value = answer.asks === "value";
     const input = el("input", { type: "text", autocomplete: "off", required: true, "aria-label": value ? "Value" : "Reason", placeholder: value ? "Value" : "Reason", "data-focus": `asked-${entry.id}` });
     const name = value ? null : nameField();
+    const alike = value ? 0 : this.entries.filter((each) => each.code === entry.code && each.at).length - 1;
+    const all = alike > 0 && el("input", { type: "checkbox" });
     const submit = async (event) => {
       event.preventDefault();
       const text = input.value.trim();
       const given = value ? valueInto(answer.change, typedNumber(text) ?? text) : { reason: text, name: ownName(name.input.value) };
       if (!text || (name && !given.name)) return said(value ? "Say a value." : "Say a reason and your name.");
-      if (await this.desk.draft.change({ ...answer.change, ...given })) this.asking = null;
+      const { at, ...everywhere } = answer.change;
+      const change = all?.checked ? everywhere : answer.change;
+      if (await this.desk.draft.change({ ...change, ...given })) this.asking = null;
       return this.update();
     };
     const cancel = (event) => {
@@ -101,7 +105,7 @@ export class OpenList {
       this.asking = null;
       this.update();
     };
-    return el("form", { class: "asked", onsubmit: submit, onkeydown: cancel }, input, name?.node, el("button", { type: "submit", class: "strong" }, value ? "Say so" : "Accept"));
+    return el("form", { class: "asked", onsubmit: submit, onkeydown: cancel }, input, name?.node, all && el("label", { class: "check" }, all, `and ${count(alike, "other", "others")} like it`), el("button", { type: "submit", class: "strong" }, value ? "Say so" : "Accept"));
   }
 
   goTo(entry) {

@@ -98,7 +98,7 @@ function drawHumanTimes(context, frame, ink) {
 
 export function drawBand(context, frame, band, look) {
   clipped(context, frame, () => {
-    if (band.fast && band.slow) {
+    if (band.fast && band.slow && !look.faint) {
       const outline = between(frame, band);
       area(context, outline, { colour: look.colour, alpha: 0.1 });
       if (look.hatch) area(context, outline, { colour: hatching(context, look.colour, look.hatch), alpha: 0.5 });
@@ -106,8 +106,8 @@ export function drawBand(context, frame, band, look) {
     for (const [edge, curve] of edgesOf(band)) {
       for (const part of curve.parts) {
         const points = pixelsOf(frame, part);
-        area(context, halo(frame, part, points), { colour: look.colour, alpha: 0.28 });
-        stroke(context, points, { colour: look.colour, width: LINE_WIDTH[edge], dash: LINE_DASH[edge] });
+        if (!look.faint) area(context, halo(frame, part, points), { colour: look.colour, alpha: 0.28 });
+        stroke(context, points, { colour: look.colour, width: LINE_WIDTH[edge], dash: LINE_DASH[edge], alpha: look.faint ? 0.4 : 1 });
       }
     }
   });

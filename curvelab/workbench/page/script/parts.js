@@ -46,13 +46,19 @@ export class Parts {
     const here = desk.chosen === index;
     const meaning = MEANINGS[read?.meaning ?? entry?.meaning] ?? "meaning not said";
     const element = read?.element ?? entry?.element ?? "whole";
+    const keys = this.#keys();
+    const of = entry?.device ?? read?.device;
     const go = button("", () => desk.choose(here ? null : index), { class: "row-go", "aria-pressed": here, "data-focus": `line-${index}` });
     go.append(
       el("span", { class: `stroke ${edge ?? "none"}` }),
       el("span", {}, `${EDGES[edge] ?? "Which edge?"}${element === "whole" ? "" : `, ${ELEMENTS[element] ?? element}`}`),
-      el("small", {}, read ? meaning : "not followed"),
+      el("small", {}, read ? (keys.length > 1 && of ? of : meaning) : "not followed"),
     );
     return el("li", { class: here ? "here" : "" }, go, here && this.#lineForm(index, entry ?? {}, read));
+  }
+
+  #keys() {
+    return (this.desk.draft.state.data?.devices ?? []).map((device) => device.key);
   }
 
   #lineForm(index, entry, read) {
@@ -60,7 +66,7 @@ export class Parts {
     const set = (fields) => draft.change({ kind: "set-curve", curve: index, fields });
     const pick = (name, words, value) =>
       field(name[0].toUpperCase() + name.slice(1), el("select", { "data-focus": `line-${index}-${name}`, onchange: (event) => set({ [name]: event.target.value || null }) }, !value && el("option", { value: "" }, "—"), Object.entries(words).map(([key, text]) => el("option", { value: key, selected: key === value }, text))));
-    const keys = (draft.state.data?.devices ?? []).map((device) => device.key);
+    const keys = this.#keys();
     const places = entry.through?.length ?? 0;
     return el(
       "div",

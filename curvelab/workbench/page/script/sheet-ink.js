@@ -54,7 +54,7 @@ export function drawTraces(context, view, curves, ink, chosen) {
     const { x, y } = curve.points;
     const points = [];
     const lone = chosen !== null && (curve.entry ?? index) !== chosen;
-    const look = { colour: ink("on-paper"), width: TRACE_WIDTH[curve.edge] ?? 1, dash: LINE_DASH[curve.edge] ?? [], alpha: lone ? 0.35 : 1 };
+    const look = { colour: ink("trace"), width: TRACE_WIDTH[curve.edge] ?? 1, dash: LINE_DASH[curve.edge] ?? [], alpha: lone ? 0.35 : 1 };
     const breaks = new Set(gapStarts(curve));
     for (let k = 0; k < x.length; k += 1) {
       if (x[k] === null) continue;

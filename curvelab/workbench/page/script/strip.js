@@ -35,12 +35,12 @@ export class Strip {
   }
 
   #which(devices) {
-    const pick = el("select", { "data-focus": "strip-which", onchange: (event) => this.#turnTo(Number(event.target.value)) });
-    pick.append(...devices.map((device, index) => el("option", { value: index, selected: index === this.index }, `${index + 1} of ${devices.length}`)));
+    const pick = el("select", { "data-focus": "strip-which", onchange: (event) => this.turnTo(Number(event.target.value)) });
+    pick.append(...devices.map((device, index) => el("option", { value: index, selected: index === this.index }, device.key)));
     return field("Device", pick);
   }
 
-  #turnTo(index) {
+  turnTo(index) {
     this.index = index;
     this.update();
     this.desk.refresh();
@@ -49,7 +49,7 @@ export class Strip {
   #adding(devices) {
     if (!devices.length) return null;
     return button("Another device", async () => {
-      if (await this.desk.draft.change({ kind: "set-device", device: null, fields: { key: freshKey(devices), kind: devices[0].kind } })) this.#turnTo(devices.length);
+      if (await this.desk.draft.change({ kind: "set-device", device: null, fields: { key: freshKey(devices), kind: devices[0].kind } })) this.turnTo(devices.length);
     }, { class: "plain strip-add", "data-focus": "strip-add" });
   }
 

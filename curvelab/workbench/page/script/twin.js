@@ -19,7 +19,8 @@ export class TwinPane extends BandPane {
     const bands = this.desk.shownBands();
     const limits = this.desk.shownLimits();
     const axes = plane ? [axisOf("current", plane.current), axisOf(plane.quantity, plane.value)] : typedAxes(bands[0]?.base ?? "A");
-    this.show({ subjects: [{ bands, colour: "ink", index: 0 }], limits, axes, full: plane ? plane.extent : spanOfScaled(bands, limits) });
+    const subjects = [{ bands: this.desk.otherBands(), colour: "quiet", faint: true, index: 0 }, { bands, colour: "ink", index: 0 }];
+    this.show({ subjects, limits, axes, full: plane ? plane.extent : spanOfScaled(bands, limits) });
     this.empty.textContent = this.full || reading ? "" : "The band appears here as soon as the axes are known.";
   }
 
