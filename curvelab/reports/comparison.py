@@ -201,7 +201,7 @@ def _bands(case: PairCase) -> Section:
         "Grey: undecided for this pair. The strip says who surely clears first. Nothing is drawn beyond what the "
         "sheets show."
     )
-    return Section(heading="Both bands", blocks=(Plate(make=partial(_figure, case), caption=caption),))
+    return Section(heading="Both bands", blocks=(Plate(make=partial(_figure, case), caption=caption, hatched=True),))
 
 
 def _figure(case: PairCase, free: Free) -> Figure:

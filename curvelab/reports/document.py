@@ -60,10 +60,15 @@ class Table:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Plate:
-    """A picture on a page of its own; ``make`` draws it as an A4 figure. ``caption`` says what it shows."""
+    """A picture on a page of its own.
+
+    ``make`` draws it as an A4 figure, ``caption`` says what it shows. One that is ``hatched`` is kept as pixels where
+    another program prints it: browsers lose fine hatching on the way to the printer.
+    """
 
     make: Callable[[Free], Figure]
     caption: str
+    hatched: bool = False
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

@@ -1,13 +1,15 @@
 """A document as one HTML file with everything in it: pictures inline, style inline, nothing fetched."""
 
 import re
+from base64 import b64encode
 from functools import singledispatch
 from html import escape
-from io import StringIO
+from io import BytesIO
 from string import Template
 from typing import Any
 
 from matplotlib import rc_context
+from matplotlib.figure import Figure
 
 from curvelab.plots.ink import STYLE
 from curvelab.plots.save import METADATA
@@ -16,6 +18,7 @@ from curvelab.reports.html_page import PAGE
 
 DRAWN: dict[Any, Any] = {"svg.fonttype": "path"}
 """Letters of pictures as outlines: they stand as drawn whatever fonts the reader has."""
+DPI = 200
 _NAMED = re.compile(r'(\bid="|url\(#|href="#)')
 
 
@@ -76,15 +79,27 @@ def _row(table: Table, row: Row) -> str:
 
 @_block.register
 def _(block: Plate, name: str) -> str:
-    content = StringIO()
-    block.make((0.0, 0.0)).savefig(
-        content, format="svg", metadata=METADATA["svg"], bbox_inches="tight", pad_inches=0.04
-    )
-    svg = content.getvalue()
+    figure, caption = block.make((0.0, 0.0)), _words(block.caption)
+    picture = _pixels(figure, caption) if block.hatched else _strokes(figure, caption, name)
+    return f"<figure>{picture}<figcaption>{caption}</figcaption></figure>"
+
+
+def _drawn(figure: Figure, ending: str) -> bytes:
+    """The figure without the paper about it."""
+    content = BytesIO()
+    figure.savefig(content, format=ending, dpi=DPI, metadata=METADATA[ending], bbox_inches="tight", pad_inches=0.04)
+    return content.getvalue()
+
+
+def _pixels(figure: Figure, caption: str) -> str:
+    return f'<img alt="{caption}" src="data:image/png;base64,{b64encode(_drawn(figure, "png")).decode("ascii")}">'
+
+
+def _strokes(figure: Figure, caption: str, name: str) -> str:
+    svg = _drawn(figure, "svg").decode("utf-8")
     # Names in it hold within one picture; beside others in one page they need to differ.
-    picture = _NAMED.sub(rf"\g<1>{name}-", svg[svg.index("<svg") :])
-    caption = _words(block.caption)
-    return f'<figure role="img" aria-label="{caption}">{picture}<figcaption>{caption}</figcaption></figure>'
+    named = _NAMED.sub(rf"\g<1>{name}-", svg[svg.index("<svg") :])
+    return named.replace("<svg", f'<svg role="img" aria-label="{caption}"', 1)
 
 
 @_block.register

@@ -80,3 +80,9 @@ def test_a_printed_page_is_a4_with_its_number(review):
     assert re.search(r"@page \{\s+size: A4", review)
     assert 'content: "Page " counter(page) " of " counter(pages)' in review
     assert '@top-left { content: "riverside-b16@1"' in review
+
+
+def test_hatching_is_kept_as_pixels_for_browsers_that_print():
+    text = html_text(comparison_document(pair_case()))
+    assert "<pattern" not in text
+    assert text.count('src="data:image/png;base64,') == 1
