@@ -66,7 +66,8 @@ def _fitted(read: ReadCurve) -> Iterator[str]:
     """The published forms that a line follows, and what its uncertainty is made of; nothing for typed points."""
     if read.fit is None:
         return
-    name = f"{read.curve.element} {read.curve.edge}" + (f" '{read.label}'" if read.label else "")
+    drawn = "".join(f" {setting}={value:g}" for setting, value in sorted(read.curve.at.items()))
+    name = f"{read.curve.element} {read.curve.edge}{drawn}" + (f" '{read.label}'" if read.label else "")
     for form in read.fit.forms:
         said = form.name if form.is_claimed else f"{form.name} or {', '.join(form.rivals)}"
         values = ", ".join(f"{each.name} {each.value:.5g} ({each.sd:.2%})" for each in form.parameters)

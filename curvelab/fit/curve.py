@@ -166,7 +166,7 @@ def _piece(stretch: Stretch, start: float, end: float) -> Piece:
         degree=stretch.degree,
         knots=stretch.knots,
         coefficients=stretch.coefficients,
-        covariance=stretch.covariance,
+        covariance=0.5 * (stretch.covariance + stretch.covariance.T),
     )
 
 

@@ -181,9 +181,15 @@ def _form_values(form: PublishedForm) -> tuple[object, ...]:
 
 
 def fit_as_json(fit: CurveFit) -> str:
-    """The model without its tabulated form, which is the curve itself, and without its forms, which have rows."""
+    """The model without its tabulated form, which is the curve itself, and without its forms, which have rows.
+
+    Of a covariance the lower triangle is written, row by row.
+    """
     said = _plain(replace(fit, parts=(), forms=()))
     del said["parts"], said["forms"]
+    for piece, known in zip(said["pieces"], fit.pieces, strict=True):
+        if known.covariance.ndim == 2:
+            piece["covariance"] = _plain(known.covariance[np.tril_indices(len(known.covariance))])
     return json.dumps(said, separators=(",", ":"), allow_nan=False)
 
 

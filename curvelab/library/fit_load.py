@@ -37,6 +37,11 @@ def fit_from_json(text: str, forms: tuple[PublishedForm, ...]) -> CurveFit:
 
 def _piece(said: Mapping[str, Any]) -> Piece:
     arrays = {name: np.array(said[name], dtype=np.float64) for name in ("knots", "coefficients", "covariance")}
+    size = len(arrays["coefficients"])
+    if len(arrays["covariance"]) != size:
+        lower = np.zeros((size, size))
+        lower[np.tril_indices(size)] = arrays["covariance"]
+        arrays["covariance"] = lower + np.tril(lower, -1).T
     return Piece(**{**said, **arrays})
 
 

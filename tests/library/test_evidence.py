@@ -8,7 +8,9 @@ import numpy as np
 import pytest
 
 from curvelab.errors import NotFoundError
+from curvelab.fit.curve import fit_curve
 from curvelab.library.library import Library, open_library
+from tests.fit.drawn_points import drawn, thermal_drop_floor
 from tests.library.devices import breaker, curve
 from tests.reading.example import reading as full_reading
 from tests.reading.example import typed_reading
@@ -52,6 +54,20 @@ def test_a_reading_comes_back_bit_for_bit(library: Library, given: Any) -> None:
     assert [(one.code, one.text, one.at) for one in found.warnings] == [
         (one.code, one.text, one.at) for one in given.warnings
     ]
+
+
+def test_a_fitted_model_comes_back_bit_for_bit(library: Library) -> None:
+    given = full_reading()
+    fit = fit_curve(drawn(thermal_drop_floor(), np.random.default_rng(1)))
+    first = given.curves[0]
+    read = dataclasses.replace(first, fit=fit, curve=dataclasses.replace(first.curve, parts=fit.parts))
+    device = dataclasses.replace(given.devices[0], curves=(read.curve,))
+    library.store(dataclasses.replace(given, curves=(read,), devices=(device,)))
+    (stored,) = library.evidence(device.nameplate.key).readings
+    assert plain(stored.reading.curves[0].fit) == plain(fit)
+    assert [form.name for form in fit.forms] == ["thermal replica, cold", "definite time"]
+    rows = library.open().execute("SELECT name, parameter, value FROM curve_forms ORDER BY form, parameter").fetchall()
+    assert rows == [(form.name, each.name, each.value) for form in fit.forms for each in form.parameters]
 
 
 def test_curves_carried_forward_bring_their_reading(library: Library) -> None:
