@@ -4,17 +4,15 @@ from collections.abc import Sequence
 from typing import Any, TypeAlias
 
 from curvelab.calculators.breaking import BreakingAnswer
-from curvelab.calculators.cautions import Caution
+from curvelab.calculators.cautions import Caution, cautions_json
 from curvelab.calculators.disconnection import Disconnection
 from curvelab.calculators.discrimination import Case, Discrimination
 from curvelab.calculators.estimate import Estimate
 from curvelab.calculators.facts import Origin
 from curvelab.calculators.in_series import State
 from curvelab.calculators.overload import Overload
-from curvelab.calculators.trip import Edges, TripAnswers
 from curvelab.calculators.verdict import worst
 from curvelab.calculators.withstand import Withstand
-from curvelab.devices.device import Device
 from curvelab.records.finding import Finding, finding_json
 
 Json: TypeAlias = dict[str, Any]
@@ -33,45 +31,6 @@ def estimate_json(found: Estimate | None) -> Json | None:
         "unit": found.unit,
         "basis": found.basis,
         "reason": found.reason,
-    }
-
-
-def trip_json(device: Device, answers: TripAnswers) -> Json:
-    """Times in s at currents, or currents for times, in the order asked; ``base`` is that of the currents."""
-    asked = "current" if answers.of_times else "time"
-    return {
-        "format": FORMAT,
-        "device": device.key,
-        "revision": device.revision,
-        "state": device.state,
-        "settings": dict(device.settings),
-        "base": answers.base,
-        "answers": [
-            {
-                asked: answer.asked,
-                **_edges(answer.edges),
-                "let_through": None if answer.let_through is None else _edges(answer.let_through),
-                "peak": None if answer.peak is None else _edges(answer.peak),
-                "reasons": list(answer.reasons),
-            }
-            for answer in answers.answers
-        ],
-        "notes": list(answers.notes),
-        "cautions": _cautions(answers.cautions),
-    }
-
-
-def _edges(edges: Edges) -> Json:
-    return {
-        name: None
-        if found is None
-        else {
-            "status": found.status,
-            "value": found.value,
-            "interval": list(found.interval) if found.interval else None,
-            "basis": found.basis,
-        }
-        for name, found in edges.items()
     }
 
 
@@ -213,12 +172,8 @@ def _judged(findings: Sequence[Finding], cautions: Sequence[Caution]) -> Json:
     return {
         "outcome": worst(findings),
         "findings": [finding_json(finding) for finding in findings],
-        "cautions": _cautions(cautions),
+        "cautions": cautions_json(cautions),
     }
-
-
-def _cautions(cautions: Sequence[Caution]) -> list[Json]:
-    return [{"code": caution.code, "text": caution.text} for caution in cautions]
 
 
 def _origin(origin: Origin | None) -> Json:

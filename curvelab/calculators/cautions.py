@@ -1,6 +1,6 @@
 """Cautions of an answer: short, present, never in place of local rules, the maker's data or a licensed person."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 from curvelab.calculators.facts import rows_of
@@ -43,10 +43,10 @@ def least_breaking_current_a(device: Device) -> float | None:
     stated = [entry.value_a for entry in plate.breaking if entry.quantity == "Imin"]
     if stated:
         return max(stated)
-    usual = [row for row in rows_of("selectivity", "back_up") if row["characteristic"] == plate.characteristic]
-    if plate.kind != "fuse" or plate.rated_current_a is None or not usual:
+    if plate.kind != "fuse" or plate.rated_current_a is None:
         return None
-    return float(usual[0]["multiple"]) * plate.rated_current_a
+    usual = [row for row in rows_of("selectivity", "back_up") if row["characteristic"] == plate.characteristic]
+    return float(usual[0]["multiple"]) * plate.rated_current_a if usual else None
 
 
 def _of_device(device: Device) -> Iterator[Caution]:
@@ -71,3 +71,8 @@ def _overload(devices: tuple[Device, ...]) -> Iterator[Caution]:
 def _reclosing(devices: tuple[Device, ...]) -> Iterator[Caution]:
     if any(device.nameplate.kind in _BREAKERS for device in devices):
         yield Caution(code="re-closing", text=_RECLOSE)
+
+
+def cautions_json(cautions: Sequence[Caution]) -> list[dict[str, str]]:
+    """Cautions as JSON objects."""
+    return [{"code": caution.code, "text": caution.text} for caution in cautions]

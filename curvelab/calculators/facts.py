@@ -1,6 +1,5 @@
 """Facts of installation rules from the tables in ``database/installation``, each with clause, source and confidence."""
 
-import tomllib
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import lru_cache
@@ -43,6 +42,9 @@ def rows_of(subject: str, table: str) -> tuple[Row, ...]:
     StandardError
         A row does not say where it is from.
     """
+    # Most questions to a device need no table; asking starts without the parser.
+    import tomllib  # noqa: PLC0415
+
     file = shipped("database") / FOLDER / f"{subject}.toml"
     content = tomllib.loads(file.read_text(encoding="utf-8"))
     return tuple(

@@ -6,9 +6,9 @@ from typing import Any, get_args
 import click
 
 import curvelab
-from curvelab.calculators.as_json import trip_json
 from curvelab.calculators.refusals import not_protective
 from curvelab.calculators.trip import Edges, TripAnswer, TripAnswers, trip_currents, trip_times
+from curvelab.calculators.trip_json import trip_json
 from curvelab.cli.answer import closing_lines, heading
 from curvelab.cli.many import ManyValues, settings_option
 from curvelab.cli.output import json_option, library_option, table, write_json

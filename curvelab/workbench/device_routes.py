@@ -6,8 +6,8 @@ from typing import Any, Literal
 
 from starlette.responses import Response, StreamingResponse
 
-from curvelab.calculators.as_json import trip_json
 from curvelab.calculators.trip import trip_currents, trip_times
+from curvelab.calculators.trip_json import trip_json
 from curvelab.devices.device import Device
 from curvelab.errors import InputError
 from curvelab.library.key import split_key
