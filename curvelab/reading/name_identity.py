@@ -1,7 +1,7 @@
 """Whose each line is: characteristic, rating, settings and state, by its words and by the lines drawn like it."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,6 +18,8 @@ FEWEST_NUMBERS = 3
 """Labels from which the order of their numbers tells their lines."""
 DEAREST = 3.5
 """Heights that a label stands away from its line at most."""
+EDGES = 2
+"""Lines of one band: more lines that are drawn alike are several bands."""
 PLACED = 3.0
 """Heights that it is worth to give a further label its line."""
 CLEARER = 0.25
@@ -114,9 +116,8 @@ def _by_numbers(
             for row, column in match.items():
                 label = whose[row, column]
                 said = Said(ratings=(label.amount,)) if what == "number" else label.said
-                clear = len(match) == len(lines) or _is_clear(gains[row], column)
-                phrase = label.phrase if clear else replace(label.phrase, confidence=0.0)
-                result[id(label.phrase)] = (lines[column], said, phrase)
+                if len(match) == len(lines) or _is_clear(gains[row], column):
+                    result[id(label.phrase)] = (lines[column], said, label.phrase)
     return result
 
 
@@ -179,9 +180,10 @@ def identities(
     own = [identity_of(one.said) for one in said]
     result = list(own)
     for number, line in enumerate(lines):
-        if own[number] is None:
-            alike = {own[k] for k, other in enumerate(lines) if own[k] is not None and drawn_alike(line, other)}
-            result[number] = next(iter(alike)) if len(alike) == 1 else None
+        alike = [k for k, other in enumerate(lines) if drawn_alike(line, other)]
+        known = {own[k] for k in alike if own[k] is not None}
+        if own[number] is None and len(known) == 1 and len(alike) <= EDGES:
+            result[number] = next(iter(known))
     if None in result and any(own):
         _pair(result, own, order)
     _left_over(result, lines, characteristics)

@@ -20,7 +20,10 @@ WORDS = frozenset(
     """.split()  # noqa: SIM905
 )
 LEAST_LETTERS = 5
+_ALIKE = str.maketrans({"l": "i", "1": "i", "|": "i", "j": "i", "0": "o", "ö": "o", "ä": "a", "ü": "u", "é": "e"})
+"""Characters that readers of pixels take for one another, as one of them."""
 _LONG = tuple(sorted(word for word in WORDS if len(word) >= LEAST_LETTERS))
+_SHAPES = {word: word.translate(_ALIKE) for word in _LONG}
 _TOKEN = re.compile(r"[A-Za-zÄÖÜäöüéèß|0-9][A-Za-zÄÖÜäöüéèß|0-9-]{3,}")
 
 
@@ -31,15 +34,18 @@ def respelt(text: str) -> str:
 
 @lru_cache(maxsize=1024)
 def _nearest(token: str) -> str:
-    letters = sum(c.isalpha() for c in token)
-    plain = token.replace("I", "l").replace("|", "l").replace("rn", "m") if token[1:] != token[1:].upper() else token
-    for word in (token.lower(), plain.lower()):
-        if word in WORDS:
-            return token if word == token.lower() else word
-    if letters < LEAST_LETTERS or 2 * letters < len(token):
+    lower = token.lower()
+    if lower in WORDS:
+        return token
+    if sum(c.isalpha() for c in token) < max(LEAST_LETTERS, 0.5 * len(token)):
         return token
     allowed = 1 if len(token) < 8 else 2
-    near = [(distance(token.lower(), word), word) for word in _LONG if abs(len(word) - len(token)) <= allowed]
+    shapes = {lower.translate(_ALIKE), lower.replace("rn", "m").translate(_ALIKE)}
+    near = [
+        (min(distance(shape, known) for shape in shapes), word)
+        for word, known in _SHAPES.items()
+        if abs(len(known) - len(token)) <= allowed
+    ]
     close = sorted(one for one in near if one[0] <= allowed)
     if not close or (len(close) > 1 and close[1][0] == close[0][0]):
         return token

@@ -8,27 +8,30 @@ from curvelab.errors import TraceError
 from curvelab.records.arrays import Floats
 from curvelab.records.sheet import Word
 from curvelab.records.trace import Trace
-from curvelab.records.warning import ReadingWarning
 from curvelab.trace.cover import Cover
 from curvelab.trace.found import FoundLine, FoundLines, ShortLine
 from curvelab.trace.furniture import furniture
 from curvelab.trace.guide import Guide
 from curvelab.trace.hatching import hatch_lines
 from curvelab.trace.joining import successions
-from curvelab.trace.judge import Judge, length_of
+from curvelab.trace.judge import Judge
 from curvelab.trace.prepared import Prepared, Raster
 from curvelab.trace.raster import trace_raster
-from curvelab.trace.seeds import BROKEN, Seed, places_of, seeds_of, short_line, walked
+from curvelab.trace.seeds import BROKEN, Seed, pins, places_of, seeds_of, short_line, walked
 from curvelab.trace.walk import Walk
 
 MOST_TRIED = 80
 """Chains followed on one plot."""
-FEWEST_BREAKS = 5
-"""Breaks from which a line is dashed."""
+FEWEST_BREAKS, BREAK = 5, 3.0
+"""Breaks from which a line is dashed, and how many usual steps between places make a break."""
 FAINT, WIDE = 0.18, 5.0
 """Ink, and px of width, below and beyond which a line is a scrap of a tinted area."""
 SHARED = 0.2
 """Share of a line along others from which it may be a mixture of them."""
+SAME = 0.95
+"""Share of a traced line along a walked one from which it is the same."""
+EXPLAINED = 0.98
+"""Share of a line along others from which it is none of its own."""
 MOST_PASSED = 3
 """Such lines through one chain that are walked."""
 OWN = 0.12
@@ -40,6 +43,7 @@ class _Straight:
     """A straight line that was walked and not measured: what it is depends on the others."""
 
     seed: Seed
+    walk: Walk
     places: Floats
 
 
@@ -48,6 +52,7 @@ class _Doubtful:
     """A line that runs along others for a good part: it may have left its own line for one of theirs."""
 
     seed: Seed
+    walk: Walk
     places: Floats
     doubts: int
     shared: float
@@ -75,10 +80,10 @@ class _Finder:
         if verdict != "curve":
             self.put_aside(seed, walk, places, straight=verdict == "straight")
         elif (share := self.cover.share(places)) > SHARED:
-            self.doubtful.append(_Doubtful(seed=seed, places=places, doubts=len(walk.doubts), shared=share))
+            self.doubtful.append(_Doubtful(seed=seed, walk=walk, places=places, doubts=len(walk.doubts), shared=share))
             self.cover.add_line(seed.points, 0.0)
         else:
-            self.follow(seed)
+            self.follow(seed, walk)
 
     def put_aside(self, seed: Seed, walk: Walk, places: Floats, *, straight: bool) -> None:
         """What is no curve, or may be one only if nothing else explains it."""
@@ -86,23 +91,46 @@ class _Finder:
         if short is not None:
             self.short_lines.append(short)
         if straight:
-            self.straights.append(_Straight(seed=seed, places=places))
+            self.straights.append(_Straight(seed=seed, walk=walk, places=places))
         self.cover.add_line(places, 0.0)
 
-    def follow(self, seed: Seed, *, straight: bool = False) -> None:
-        """Trace the line of a seed, and keep it where it is measured to be a curve, or straight as was known."""
-        guide = Guide(through=(seed.middle,))
+    def follow(self, seed: Seed, walk: Walk, *, straight: bool = False) -> None:
+        """Trace a walked line, and keep it where it is measured to be a curve, or straight as was known."""
+        traced = self.traced(seed, walk)
+        if traced is None:
+            self.cover.add_line(seed.points, 0.0)
+            return
+        self.cover.add(traced.trace)
+        verdict = self.judge.verdict(traced.trace.places, traced.trace.width)
+        if verdict == "straight" and not straight:
+            self.straights.append(_Straight(seed=seed, walk=walk, places=traced.trace.places))
+        elif verdict in ("curve", "straight") and not self.is_tint(traced.trace):
+            self.lines.append(traced)
+
+    def traced(self, seed: Seed, walk: Walk) -> FoundLine | None:
+        """The walked line as a guide leads to it: one place, or where that means another line, several."""
+        line = self.guided(Guide(through=(seed.middle,)))
+        if line is None or not self.is_along(line, walk):
+            pinned = self.guided(Guide(through=pins(self.raster, walk)))
+            line = pinned if pinned is not None and (line is None or self.is_along(pinned, walk)) else line
+        return line and replace(line, dashed=is_broken(walk.line))
+
+    def guided(self, guide: Guide) -> FoundLine | None:
+        """The line a guide leads to; None where there is none."""
         try:
             trace, doubts = trace_raster(self.prepared, self.raster, guide)
         except TraceError:
-            self.cover.add_line(seed.points, 0.0)
-            return
-        self.cover.add(trace)
-        verdict = self.judge.verdict(trace.places, trace.width)
-        if verdict == "straight" and not straight:
-            self.straights.append(_Straight(seed=seed, places=trace.places))
-        elif verdict in ("curve", "straight") and not self.is_tint(trace):
-            self.lines.append(_found(trace, guide, doubts))
+            return None
+        return FoundLine(
+            trace=replace(trace, origin="found"), guide=guide, dashed=is_broken(trace.places), warnings=doubts
+        )
+
+    def is_along(self, line: FoundLine, walk: Walk) -> bool:
+        """Whether a traced line is the walked one."""
+        size = self.raster.pixels.size_in_places
+        cover = Cover(spacing=size, slack=4.0 * size)
+        cover.add_line(places_of(self.raster, walk.line), line.trace.width)
+        return cover.share(line.trace.places) > SAME
 
     def is_tint(self, trace: Trace) -> bool:
         """Whether it is a scrap of a tinted area."""
@@ -121,7 +149,7 @@ class _Finder:
         hatching = hatch_lines([straight.places for straight in self.straights])
         for straight, hatched in zip(self.straights, hatching, strict=True):
             if not hatched and not self.judge.is_furniture(straight.places):
-                self.follow(straight.seed, straight=True)
+                self.follow(straight.seed, straight.walk, straight=True)
 
     def settle_doubtful(self) -> None:
         """Of lines that run along others those stay that have a stretch of their own."""
@@ -130,22 +158,41 @@ class _Finder:
             cover = Cover(spacing=size, slack=2.5 * size)
             for other in self.lines:
                 cover.add(other.trace)
-            if cover.share(line.places) < 1.0 - OWN:
-                self.follow(line.seed)
+            if cover.share(line.places) >= 1.0 - OWN:
+                continue
+            traced = self.traced(line.seed, line.walk)
+            if traced is not None and cover.share(traced.trace.places) < 1.0 - OWN:
+                self.lines.append(traced)
 
     def join_parts(self) -> None:
         """Make one of lines that go on from one another, where the tracer too finds a way from one to the other."""
         for one, other in successions([line.trace for line in self.lines], self.judge.side):
             first, second = self.lines[one], self.lines[other]
-            guide = Guide(through=(*first.guide.through, *second.guide.through))
-            try:
-                trace, doubts = trace_raster(self.prepared, self.raster, guide)
-            except TraceError:
+            joined = self.guided(Guide(through=(*first.guide.through, *second.guide.through)))
+            if joined is None:
                 continue
             self.lines = [line for line in self.lines if line not in (first, second)]
-            self.lines.append(_found(trace, guide, doubts))
+            self.lines.append(joined)
             self.join_parts()
             return
+
+    def drop_mixtures(self) -> None:
+        """Leave out lines of which the others together explain everything: parts of one, or mixtures of several."""
+        while len(self.lines) > 1:
+            shares = [self.explained(number) for number in range(len(self.lines))]
+            worst = int(np.argmax(shares))
+            if shares[worst] < EXPLAINED:
+                return
+            del self.lines[worst]
+
+    def explained(self, number: int) -> float:
+        """Share of a line that lies along the others."""
+        size = self.raster.pixels.size_in_places
+        cover = Cover(spacing=size, slack=1.5 * size)
+        for other, line in enumerate(self.lines):
+            if other != number:
+                cover.add(line.trace)
+        return cover.share(self.lines[number].trace.places)
 
 
 def find_on_raster(prepared: Prepared, raster: Raster, words: tuple[Word, ...]) -> FoundLines:
@@ -162,16 +209,12 @@ def find_on_raster(prepared: Prepared, raster: Raster, words: tuple[Word, ...]) 
     finder.settle_straights()
     finder.settle_doubtful()
     finder.join_parts()
+    finder.drop_mixtures()
     return FoundLines(lines=tuple(finder.lines), short_lines=tuple(finder.short_lines), warnings=())
 
 
-def _found(trace: Trace, guide: Guide, doubts: tuple[ReadingWarning, ...]) -> FoundLine:
-    return FoundLine(trace=replace(trace, origin="found"), guide=guide, dashed=is_dashed(trace), warnings=doubts)
-
-
-def is_dashed(trace: Trace) -> bool:
-    """Whether a line is printed in dashes: its places come in pieces with regular breaks."""
-    steps = np.hypot(*np.diff(trace.places, axis=0).T)
-    usual = float(np.median(steps))
-    breaks = steps[steps > 3.0 * usual]
-    return bool(len(breaks) >= FEWEST_BREAKS and breaks.sum() > BROKEN * length_of(trace.places))
+def is_broken(places: Floats) -> bool:
+    """Whether a line is printed in dashes: it comes in pieces with breaks between them."""
+    steps = np.hypot(*np.diff(places, axis=0).T)
+    breaks = steps[steps > BREAK * np.median(steps)]
+    return bool(len(breaks) >= FEWEST_BREAKS and breaks.sum() > BROKEN * steps.sum())

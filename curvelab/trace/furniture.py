@@ -14,7 +14,7 @@ LARGEST_BOX = 0.35
 """Share of the plot."""
 RECTANGULAR = 0.93
 """Least share of its own bounding rectangle that a box fills."""
-RIM = 4
+RIM = 5
 """px: a box's own stroke lies within this of its inside."""
 SURE_WORD = 0.5
 """Confidence from which what looks like a word is one."""
@@ -41,7 +41,7 @@ def is_word(word: Word) -> bool:
 
 def _boxes(raster: Raster) -> list[Floats]:
     """Corners of every rectangle enclosed by strokes that has further strokes inside."""
-    strokes = cv2.dilate(raster.skeleton.astype(np.uint8), np.ones((3, 3), dtype=np.uint8))
+    strokes = cv2.dilate(raster.skeleton.astype(np.uint8), np.ones((5, 5), dtype=np.uint8))
     empty = ((strokes == 0) & raster.inside).astype(np.uint8)
     count, labels, stats, _ = cv2.connectedComponentsWithStats(empty, connectivity=4)
     largest = LARGEST_BOX * float(raster.inside.sum())

@@ -12,7 +12,7 @@ from curvelab.trace.window import PlotWindow, plot_window
 
 Verdict = Literal["curve", "straight", "scrap", "grid"]
 
-LEAST_LENGTH = 0.08
+LEAST_LENGTH = 0.12
 """Shortest curve, relative to the plot's smaller side."""
 STRAIGHT = 0.006
 """Largest distance from the chord, relative to its length, of a straight line."""

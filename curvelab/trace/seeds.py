@@ -6,9 +6,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from curvelab.records.arrays import Floats
+from curvelab.records.trace import Place
 from curvelab.trace.chains import Chain
 from curvelab.trace.found import ShortLine
 from curvelab.trace.judge import bow, length_of
+from curvelab.trace.layers import layer_of
 from curvelab.trace.onward import known_before
 from curvelab.trace.prepared import Raster
 from curvelab.trace.thinning import Mask
@@ -23,6 +25,8 @@ SHORT_STRAIGHT = 1.5
 """px: largest distance of a short line's middle from its chord."""
 SHORTEST_LINE = 10.0
 """px"""
+MOST_PINS = 5
+"""Places that a guide to an ambiguous line has."""
 BROKEN = 0.12
 """Share of a line without ink from which it is dashed."""
 
@@ -33,7 +37,7 @@ class Seed:
 
     number: int
     points: Floats
-    middle: tuple[float, float]
+    middle: Place
     furniture: bool
 
 
@@ -53,7 +57,7 @@ def seeds_of(raster: Raster, furniture: Mask) -> Iterator[Seed]:
         )
 
 
-def _rounded(raster: Raster, chain: Chain) -> tuple[float, float]:
+def _rounded(raster: Raster, chain: Chain) -> Place:
     """The middle of a chain as a worksheet writes it."""
     x, y = places_of(raster, chain.points[len(chain.points) // 2][None])[0]
     return round(float(x), 1), round(float(y), 1)
@@ -65,8 +69,22 @@ def places_of(raster: Raster, points: Floats) -> Floats:
 
 
 def walked(raster: Raster, number: int) -> Walk:
-    """The line a chain is part of, over the chains alone."""
-    return walk_on(raster.graph, known_before(raster.graph, begun(raster.graph, (number, 0), 0.0)), ())
+    """The line a chain is part of, over the chains of its own ink and print alone."""
+    graph = layer_of(raster.graph, number)
+    return walk_on(graph, known_before(graph, begun(graph, (number, 0), 0.0)), ())
+
+
+def pins(raster: Raster, walk: Walk) -> tuple[Place, ...]:
+    """Places that hold a guide to a walked line: the middles of its longest chains along it."""
+    chains = [raster.graph.chains[number] for number in walk.chains]
+    order = np.array([chain.progress.mean(axis=0).sum() for chain in chains])
+    share = (order - order.min()) / max(float(np.ptp(order)), 1e-9)
+    chosen = []
+    for k in range(MOST_PINS):
+        near = [n for n in range(len(chains)) if k / MOST_PINS <= share[n] <= (k + 1) / MOST_PINS]
+        if near:
+            chosen.append(max(near, key=lambda n: chains[n].length))
+    return tuple(_rounded(raster, chains[n]) for n in sorted(set(chosen), key=lambda n: order[n]))
 
 
 def short_line(raster: Raster, walk: Walk) -> ShortLine | None:
