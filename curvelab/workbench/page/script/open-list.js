@@ -34,7 +34,7 @@ export class OpenList {
     const { work } = this.desk.draft.state;
     const many = this.entries.length;
     const words = many ? count(many, "thing still open", "things still open") : work.state === "ready" ? "Nothing is open" : "Reading";
-    const hint = many ? "Each is settled by one or two answers, or accepted with a reason." : work.state === "ready" ? "Look once over both views, then store." : "What is open appears here.";
+    const hint = many ? "Each is settled by one or two answers, or accepted with a reason." : work.state === "ready" ? "Look it over once more, then store." : "What is open appears here.";
     return [el("div", { role: "status" }, el("h2", { class: many ? "warm" : "" }, words)), el("p", { class: "hint" }, hint)];
   }
 
@@ -113,6 +113,8 @@ export class OpenList {
     this.asking = null;
     this.desk.opened = entry;
     if (entry.curve !== null && entry.curve !== undefined) this.desk.choose(entry.curve);
+    const device = entry.answers.map((answer) => answer.change?.device).find(Number.isInteger);
+    if (device !== undefined) this.desk.strip.turnTo(device);
     const place = entry.at ?? (entry.box && [(entry.box[0] + entry.box[2]) / 2, (entry.box[1] + entry.box[3]) / 2]);
     if (place) this.desk.sheet.goTo(place);
     this.update();

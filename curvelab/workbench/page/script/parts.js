@@ -30,13 +30,14 @@ export class Parts {
     this.shown = told;
     const rows = Math.max(curves.length, found.length);
     const lines = Array.from({ length: rows }, (_, index) => this.#line(index, curves[index], found.find(([entry]) => entry === index)?.[1]));
-    const empty = el("p", { class: "hint" }, "Click a line on the sheet: it is followed from there.");
+    const axes = AXES.filter((axis) => reading?.axes?.[axis] || state.data?.axes?.[axis]);
+    const empty = el("p", { class: "hint" }, state.sheet ? "Click a line on the sheet: it is followed from there." : "This device has no curve.");
     fill(
       this.node,
       el("h2", {}, "Lines"),
       rows ? el("ul", { class: "rows" }, lines) : empty,
-      el("h2", {}, "Axes"),
-      el("ul", { class: "rows" }, AXES.filter((axis) => reading?.axes?.[axis] || state.data?.axes?.[axis]).map((axis) => this.#axis(axis))),
+      axes.length > 0 && el("h2", {}, "Axes"),
+      axes.length > 0 && el("ul", { class: "rows" }, axes.map((axis) => this.#axis(axis))),
     );
   }
 

@@ -7,7 +7,7 @@ import { takeDemo, takeFiles } from "./take-in.js";
 import { moment } from "./words.js";
 
 const KINDS = ".png,.jpg,.jpeg,.tif,.tiff,.bmp,.webp,.pdf,.svg,.toml";
-const STATES = { reading: "being read", ready: "read", failed: "needs help", cancelled: "stopped" };
+const STATES = { reading: "being read", ready: "read", failed: "needs help", cancelled: "stopped", closed: "as you left it" };
 
 export class Start {
   constructor() {

@@ -46,9 +46,18 @@ const HUMAN_TIMES = [[60, "1 min"], [300, "5 min"], [1200, "20 min"], [3600, "1 
 /** Long times as people say them, within a range of seconds. */
 export const humanTimes = (low, high) => HUMAN_TIMES.filter(([seconds]) => seconds >= low && seconds <= high);
 
+/** 10⁴, 2·10⁴: the axis's name says of what. */
+function powerOfTen(value) {
+  const power = Math.floor(Math.log10(value) + 1e-9);
+  const step = Number((value / 10 ** power).toPrecision(4));
+  const raised = [...String(power)].map((digit) => (digit === "-" ? "⁻" : "⁰¹²³⁴⁵⁶⁷⁸⁹"[digit])).join("");
+  return step === 1 ? `10${raised}` : `${step}·10${raised}`;
+}
+
 function labelOf(axis, value) {
   const figures = 6;
   if (axis.quantity === "time") return value > 0.95 ? `${byUnit(value, "ratio", figures)}\u00a0s` : `${byUnit(value * 1000, "ratio", figures)}\u00a0ms`;
+  if (axis.quantity === "let_through") return powerOfTen(value);
   if (axis.quantity !== "current") return quantity(value, axis.quantity, figures);
   return axis.base === "A" ? current(value, "A", figures) : current(value, axis.base, figures).split("\u00a0")[0];
 }

@@ -21,7 +21,7 @@ export class TwinPane extends BandPane {
     const axes = plane ? [axisOf("current", plane.current), axisOf(plane.quantity, plane.value)] : typedAxes(bands[0]?.base ?? "A");
     const subjects = [{ bands: this.desk.otherBands(), colour: "quiet", faint: true, index: 0 }, { bands, colour: "ink", index: 0 }];
     this.show({ subjects, limits, axes, full: plane ? plane.extent : spanOfScaled(bands, limits) });
-    this.empty.textContent = this.full || reading ? "" : "The band appears here as soon as the axes are known.";
+    this.empty.textContent = this.full ? "" : reading ? "There is no curve to draw." : "The band appears here as soon as the axes are known.";
   }
 
   drawWithin(context, frame) {

@@ -17,7 +17,7 @@ export const BASE_NAMES = {
   xIdn: "Multiple of rated residual current IΔn",
 };
 
-export const QUANTITY_NAMES = { time: "Time", let_through: "Let-through energy I²t", peak: "Cut-off current (peak)" };
+export const QUANTITY_NAMES = { time: "Time", let_through: "Let-through energy I²t in A²s", peak: "Cut-off current (peak)" };
 
 export const EDGES = { fast: "Fast", slow: "Slow", mean: "Mean" };
 
