@@ -119,3 +119,25 @@ def test_marks_alone_need_a_tilt_and_state_their_scatter() -> None:
     at_mark = fitted.map.covariance_at([[0.0, 700.0]])[0, 0, 0] ** 0.5
     assert at_mark == pytest.approx(0.7 / 333.3, rel=0.1)
     assert fitted.map.places([[0.0, 0.0]])[0] == pytest.approx([0.0, 712.5], abs=0.5)
+
+
+def test_bowed_paper_shows_itself_in_a_few_lines() -> None:
+    """Four lines an axis tell a bulge of 6 px along both sides, seen at an angle; places between them are right."""
+    truth = turned(0.01, (0.03, -0.02))
+    waves = np.array([0.012, 0.009])
+
+    def bowed(places: np.ndarray) -> np.ndarray:
+        shares = (places - CENTRE) / REACH
+        return places + REACH * waves * np.cos(1.5 * shares[:, ::-1])
+
+    lines = []
+    for axis in (0, 1):
+        for scaled in (0.0, 0.7, 1.4, 2.0) if axis == 0 else (-1.0, 0.0, 1.0, 1.5):
+            pairs = np.full((10, 2), scaled)
+            pairs[:, 1 - axis] = np.linspace(0.0, 1.8, 10)
+            lines.append(Line(axis=axis, scaled=scaled, points=bowed(truth.places(pairs))))
+    fitted = fit_plane(START, lines, SCATTER)
+    between = np.array([[0.3, 0.4], [1.1, 1.2], [1.7, 0.7]])
+    off = fitted.map.scaled(bowed(truth.places(between))) - between
+    assert fitted.model.bowed
+    assert np.abs(off).max() < 0.0013  # 0.3 % of a value

@@ -92,3 +92,10 @@ def test_decades_are_exact(digit: int, decade: int) -> None:
 )
 def test_units(text: str, unit: str | None) -> None:
     assert unit_of(text) == unit
+
+
+@pytest.mark.parametrize(("text", "value", "unit"), [("IOO", 100.0, None), ("O.I", 0.1, None), ("5oo ms", 500.0, "ms")])
+def test_digits_that_look_like_letters_are_a_doubtful_number(text: str, value: float, unit: str | None) -> None:
+    (number,) = number_of(text)
+    assert (number.value, number.unit) == (value, unit)
+    assert number.weight < 1.0

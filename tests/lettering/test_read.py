@@ -46,6 +46,20 @@ def test_numbers_on_a_line_are_words_of_their_own() -> None:
     ]
 
 
+def test_numbers_with_units_and_close_numbers_stand_apart() -> None:
+    assert texts(written(("50 A", (20, 40)), ("100 A", (105, 40)))) == ["50 A", "100 A"]
+    assert sorted(texts(written(("100", (20, 40)), ("200", (84, 40))))) == ["100", "200"]
+
+
+def test_ticks_are_no_ones() -> None:
+    image = written(("10", (300, 120)))
+    pen = ImageDraw.Draw(image)
+    pen.line([(20, 90), (680, 90)], fill=20, width=3)
+    for x in range(40, 680, 60):
+        pen.line([(x, 78), (x, 90)], fill=20, width=2)
+    assert texts(image) == ["10"]
+
+
 def test_a_title_stays_together_whichever_way_it_is_turned() -> None:
     page = written(("Current in A", (20, 60)))
     assert texts(page) == ["Current in A"]

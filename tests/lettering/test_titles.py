@@ -80,3 +80,12 @@ def test_lost_spaces_are_put_back(text: str, unit: str) -> None:
     title = title_of(text)
     assert title is not None
     assert title.unit == unit
+
+
+@pytest.mark.parametrize(
+    ("text", "unit"), [("Mu]tip]e of setting current Ir", "xIr"), ("Pr0spective Current A", "A"), ("Zeit [min]", "min")]
+)
+def test_strokes_and_zeros_within_words_are_letters(text: str, unit: str) -> None:
+    title = title_of(text)
+    assert title is not None
+    assert title.unit == unit
