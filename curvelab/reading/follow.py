@@ -34,14 +34,18 @@ def follow_curves(
     TraceError
         No line where an entry's guide says; the message names the entry.
     """
-    prepared = remember("page", (sheet, axes), lambda: prepare(sheet, axes))
+
+    def traced(guide: Guide) -> tuple[Trace, tuple[ReadingWarning, ...]]:
+        prepared = remember("page", (sheet, axes), lambda: prepare(sheet, axes))
+        return trace_guided(prepared, guide)
+
     followed = []
     warnings: list[ReadingWarning] = []
     for number, entry in enumerate(entries, start=1):
         watch("Tracing curves", (number - 1) / len(entries))
         guide = Guide(through=entry.through, colour=entry.colour, avoid=entry.avoid)
         try:
-            trace, doubts = remember("trace", (prepared, guide), partial(trace_guided, prepared, guide))
+            trace, doubts = remember("trace", (sheet, axes, guide), partial(traced, guide))
         except TraceError as error:
             raise TraceError(f"[[curves]] {number}: {error.problem}", error.expected, error.fix) from error
         followed.append(Followed(entry=entry, trace=trace))

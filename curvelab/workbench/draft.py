@@ -98,9 +98,16 @@ class Draft:
             It cannot be written.
         """
         with self._changing:
+            self._take_from_others()
             if base_version != self.history.version:
                 raise Conflict("The worksheet was changed elsewhere", self.history.version)
             self._keep(replace(self._kept, history=self._changed_history(change), changed=_now()))
+            self._worker.want(self.history.worksheet)
+
+    def _take_from_others(self) -> None:
+        """Another process that serves the same library may have changed the draft."""
+        if disk.version_of(self.folder) != self.history.version:
+            self._kept = disk.read(self.folder)
             self._worker.want(self.history.worksheet)
 
     def _changed_history(self, change: Change) -> History:

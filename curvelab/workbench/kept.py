@@ -82,14 +82,32 @@ def read(folder: Path) -> Kept:
     LibraryError
         It is not there, or not as it was written.
     """
+    told = _record(folder)
     try:
-        told = json.loads((folder / RECORD).read_bytes())
         steps = tuple(_step(folder, each) for each in told["steps"])
         sheet = told["sheet"] and SheetFile(**told["sheet"])
         history = History(version=int(told["version"]), position=int(told["position"]), steps=steps)
         return Kept(name=told["name"], changed=told["changed"], sheet=sheet, history=history)
     except (OSError, ValueError, KeyError, TypeError) as error:
-        raise LibraryError(f"The draft in {folder} cannot be read: {error}", "", "Read its sheet again") from error
+        raise _unreadable(folder, error) from error
+
+
+def version_of(folder: Path) -> int:
+    """The version that holds on the disk, perhaps written by another process; errors as for `read`."""
+    return int(_record(folder)["version"])
+
+
+def _record(folder: Path) -> dict[str, Any]:
+    try:
+        told: dict[str, Any] = json.loads((folder / RECORD).read_bytes())
+        int(told["version"])
+    except (OSError, ValueError, KeyError, TypeError) as error:
+        raise _unreadable(folder, error) from error
+    return told
+
+
+def _unreadable(folder: Path, error: Exception) -> LibraryError:
+    return LibraryError(f"The draft in {folder} cannot be read: {error}", "", "Read its sheet again")
 
 
 def _step(folder: Path, told: dict[str, Any]) -> Step:

@@ -10,11 +10,17 @@ Result = TypeVar("Result")
 CAPACITY = {"axes": 4, "trace": 60, "fit": 60, "check": 60}
 """Results of a station kept of one page; of all others one, as a page prepared for tracing is large."""
 
-PAGES = 3
+PAGES = 4
 """Pages kept, those used last."""
 
-MOST_PIXELS = 20_000_000
+MOST_PIXELS = 60_000_000
 """Of all pages kept together; the page in use is kept whatever its size."""
+
+HEAVY = ("page", "picture", "lines")
+"""Stations whose results take many bytes a pixel; traces and fits are small, and last longer."""
+
+MOST_HEAVY_PIXELS = 20_000_000
+"""Of all pages that are kept with them: two of A4 at 300 dots an inch."""
 
 
 class PageMemory:
@@ -52,6 +58,13 @@ class PageMemory:
             sheets = [sheet for sheet in self._kept["sheet"].values() if sheet.pixels]
         return sum(int(sheet.pixels.grey.size) for sheet in sheets)
 
+    def lighten(self) -> None:
+        """Forget what takes much memory and can be made again; what was traced with it stays."""
+        with self._changing:
+            for station in HEAVY:
+                for result in [*self._kept.pop(station, {}).values()]:
+                    self._forget(result)
+
     def _forget(self, result: Any) -> None:
         """Forget everything that was made from a result, or from a part of it."""
         gone = {id(result), *map(id, result if isinstance(result, tuple) else ())}
@@ -72,9 +85,14 @@ class Pages:
         with self._lock:
             memory = self._kept.pop(page, None) or PageMemory()
             self._kept[page] = memory
-            while len(self._kept) > PAGES or self._are_many():
+            while len(self._kept) > PAGES or (len(self._kept) > 1 and self._pixels() > MOST_PIXELS):
                 self._kept.popitem(last=False)
+            pixels = memory.pixels
+            for other in [*reversed(self._kept.values())][1:]:
+                pixels += other.pixels
+                if pixels > MOST_HEAVY_PIXELS:
+                    other.lighten()
             return memory
 
-    def _are_many(self) -> bool:
-        return len(self._kept) > 1 and sum(each.pixels for each in self._kept.values()) > MOST_PIXELS
+    def _pixels(self) -> int:
+        return sum(each.pixels for each in self._kept.values())

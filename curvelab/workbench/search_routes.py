@@ -5,7 +5,7 @@ from typing import TYPE_CHECKING, Any
 
 from curvelab import __version__
 from curvelab.errors import InputError
-from curvelab.library.search import Page, Wanted
+from curvelab.library.search import MOST_COUNTED, Page, Wanted
 from curvelab.workbench.bench import Bench
 from curvelab.workbench.route import Nothing, Route
 from curvelab.workbench.shapes import Schema
@@ -71,10 +71,11 @@ def search(bench: Bench, asked: Search) -> dict[str, Any]:
     from curvelab.workbench.devices import listed  # noqa: PLC0415
 
     if not bench.library_path.exists():
-        return {"total": 0, "page": asked.page, "devices": []}
+        return {"total": 0, "more": False, "page": asked.page, "devices": []}
     with bench.reading() as library:
         found = library.find(wanted, page)
-        return {"total": found.total, "page": asked.page, "devices": listed(library, found.rows)}
+        more = found.total == MOST_COUNTED
+        return {"total": found.total, "more": more, "page": asked.page, "devices": listed(library, found.rows)}
 
 
 def search_bands(bench: Bench, asked: SearchBands) -> dict[str, Any]:

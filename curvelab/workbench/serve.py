@@ -2,6 +2,7 @@
 
 import ipaddress
 import logging
+import os
 import secrets
 import socket
 import threading
@@ -102,7 +103,9 @@ def _listening(wanted: Wanted) -> socket.socket:
         # Named, the protocol lets the event loop send small answers at once.
         listening = socket.socket(family, socket.SOCK_STREAM, socket.IPPROTO_TCP)
         try:
-            listening.setsockopt(socket.SOL_SOCKET, socket.SO_REUSEADDR, 1)
+            if os.name == "posix":
+                # A port just left may be used again at once; elsewhere the option would let two servers share one.
+                listening.setsockopt(socket.SOL_SOCKET, socket.SO_REUSEADDR, 1)
             listening.bind((wanted.host, wanted.port))
             listening.listen(WAITING)
         except BaseException:

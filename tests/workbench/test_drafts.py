@@ -243,3 +243,18 @@ def test_a_new_line_is_named_in_one_answer(client: TestClient) -> None:
     change = entry["answers"][texts.index("The slow edge, clearing")]["change"]
     state = changed(client, state, **change)
     assert state["can_store"], state["open"]
+
+
+def test_two_processes_on_one_library_do_not_overwrite_each_other(tmp_path: Path) -> None:
+    library = tmp_path / "firm.sqlite"
+    with workbench(library) as one, workbench(library) as other:
+        state = opened(one, "isolator")
+        seen = read_through(other, other.get(f"/api/drafts/{state['id']}").json())
+        changed(one, state, kind="set-device", device=0, fields={"maker": "Millrace"})
+        body = {
+            "base_version": seen["version"],
+            "change": {"kind": "set-device", "device": 0, "fields": {"maker": "Weir"}},
+        }
+        assert other.post(f"/api/drafts/{state['id']}/changes", json=body).status_code == 409
+        again = read_through(other, other.get(f"/api/drafts/{state['id']}").json())
+        assert "Millrace" in again["worksheet"]

@@ -135,7 +135,7 @@ def test_calculators_refuse_what_cannot_be_asked(client: TestClient, question: s
 
 def test_a_library_that_is_not_there_yet_is_empty(tmp_path: Path) -> None:
     with workbench(tmp_path / "none.sqlite") as client:
-        assert client.get("/api/devices").json() == {"total": 0, "page": 1, "devices": []}
+        assert client.get("/api/devices").json() == {"total": 0, "more": False, "page": 1, "devices": []}
         assert not (tmp_path / "none.sqlite").exists()
 
 

@@ -38,6 +38,16 @@ def test_what_hangs_on_a_forgotten_result_is_forgotten_with_it() -> None:
     assert memory("trace", (page, "guide"), lambda: (Made(), "doubts")) is not trace
 
 
+def test_a_page_is_lightened_without_its_traces() -> None:
+    memory, sheet = PageMemory(), Made()
+    page, picture = memory("page", (sheet,), Made), memory("picture", (sheet,), Made)
+    trace = memory("trace", (sheet, "guide"), Made)
+    memory.lighten()
+    assert memory("trace", (sheet, "guide"), Made) is trace
+    assert memory("page", (sheet,), Made) is not page
+    assert memory("picture", (sheet,), Made) is not picture
+
+
 def test_each_station_keeps_so_many() -> None:
     memory = PageMemory()
     kept = [memory("axes", (number,), Made) for number in range(CAPACITY["axes"] + 1)]
@@ -80,10 +90,10 @@ def test_two_who_want_the_same_wait_for_one() -> None:
 def test_the_pages_used_last_are_kept() -> None:
     pages = Pages()
     first = pages.memory("a")
-    for name in "bcd"[: PAGES - 1]:
+    for name in "bcdxyz"[: PAGES - 1]:
         pages.memory(name)
     assert pages.memory("a") is first
-    for name in "efg"[:PAGES]:
+    for name in "efghij"[:PAGES]:
         pages.memory(name)
     assert pages.memory("a") is not first
 
