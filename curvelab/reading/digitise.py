@@ -12,6 +12,7 @@ from curvelab.reading.assemble import assemble, owned
 from curvelab.reading.check import checked
 from curvelab.reading.find import find_curves, with_found
 from curvelab.reading.follow import follow_curves, open_edges
+from curvelab.reading.form_doubts import form_doubts
 from curvelab.reading.model import fitted_curves, typed_curves
 from curvelab.reading.remember import Remember, anew
 from curvelab.reading.said_forms import with_said_forms
@@ -99,6 +100,7 @@ def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, re
         warnings = doubts + more_doubts + open_edges(followed)
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     curves = with_said_forms(curves, worksheet.devices)
+    warnings += form_doubts(curves, worksheet.devices)
     devices, device_doubts = assemble(worksheet, curves)
     return Reading(
         worksheet=worksheet,

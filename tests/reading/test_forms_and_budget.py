@@ -8,6 +8,7 @@ import pytest
 
 from curvelab.reading.digitise import digitise
 from curvelab.reading.fit_json import fit_json
+from curvelab.reading.form_doubts import form_doubts
 from curvelab.reading.points import edge_sd, fit_points
 from curvelab.reading.said_forms import with_said_forms
 from curvelab.reading.warp import warp_sd
@@ -48,6 +49,28 @@ def test_the_sheets_words_tell_two_names_of_one_line_apart():
     assert form.parameters[0] == VERY_INVERSE.parameters[0]
     for characteristic in ("IEC very inverse", None, "IEC extremely inverse"):
         assert said(characteristic) == VERY_INVERSE
+
+
+def doubts(characteristic, tms, edge="mean"):
+    read = read_curve(edge, SLOW)
+    at = {"tms": tms}
+    read = dataclasses.replace(
+        read,
+        fit=dataclasses.replace(read.fit, forms=(VERY_INVERSE,)),
+        curve=dataclasses.replace(read.curve, at=at),
+    )
+    plate = Nameplate(key="riverside-b16", kind="relay", characteristic=characteristic)
+    return [doubt.code for doubt in form_doubts([read], [DeviceEntry(nameplate=plate)])]
+
+
+def test_a_curve_of_another_form_or_setting_than_the_worksheet_says_is_doubted():
+    found = VERY_INVERSE.parameters[1].value
+    assert doubts("IEC very inverse", found * 1.01) == []
+    assert doubts("IEC long-time inverse", found) == []
+    assert doubts("as printed", found) == []
+    assert doubts("IEC very inverse", found * 2.0) == ["form-setting"]
+    assert doubts("IEC very inverse", found * 1.05, edge="slow") == []
+    assert doubts("IEC inverse", found) == ["form-characteristic"]
 
 
 def test_a_sheet_read_end_to_end_names_its_relay_curves_and_their_settings(tmp_path):
