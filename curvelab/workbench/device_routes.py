@@ -157,6 +157,23 @@ def overlay(bench: Bench, asked: OfReading) -> Content:
     return overlay_of(evidence, asked.reading)
 
 
+def report_pdf(bench: Bench, asked: AtSettings) -> Content:
+    """The review document as PDF."""
+    return _report(bench, asked, "pdf")
+
+
+def report_html(bench: Bench, asked: AtSettings) -> Content:
+    """The review document as HTML."""
+    return _report(bench, asked, "html")
+
+
+def _report(bench: Bench, asked: AtSettings, ending: str) -> Content:
+    from curvelab.workbench.documents import report_of  # noqa: PLC0415
+
+    with bench.reading() as library:
+        return report_of(library, asked.key, settings_of(asked.set), ending)
+
+
 def compare(bench: Bench, asked: Compared) -> dict[str, Any]:
     """Devices side by side: times, who is surely first, up to which current."""
     from curvelab.workbench.devices import compared  # noqa: PLC0415
@@ -210,5 +227,7 @@ DEVICE_ROUTES = (
     _route("GET", f"{DEVICE}/points.csv", "Its points as a table", points_csv, asked=OfDevice, media="text/csv"),
     _route("GET", f"{DEVICE}/export.jsonl", "All that is stored", export, asked=OfDevice, media="application/jsonl"),
     _route("GET", f"{DEVICE}/overlay.png", "A reading over its sheet", overlay, asked=OfReading, media="image/png"),
+    _route("GET", f"{DEVICE}/report.pdf", "To review and sign", report_pdf, asked=AtSettings, media="application/pdf"),
+    _route("GET", f"{DEVICE}/report.html", "To review and sign", report_html, asked=AtSettings, media="text/html"),
     _route("POST", f"{DEVICE}/review", "Decide about a revision", review, asked=OfDevice, body=Review),
 )

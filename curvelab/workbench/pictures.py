@@ -10,7 +10,7 @@ from curvelab.records.evidence import Evidence
 from curvelab.workbench.failures import Unknown
 from curvelab.workbench.route import Content
 
-_drawing = threading.Lock()
+drawing = threading.Lock()
 """The plotting library's settings are global to the process, so pictures are drawn one at a time."""
 
 
@@ -26,7 +26,7 @@ def overlay_of(evidence: Evidence, number: int) -> Content:
     """
     if not 1 <= number <= len(evidence.readings):
         raise Unknown(f"'{evidence.key}' has {len(evidence.readings)} readings, no reading {number}")
-    with tempfile.TemporaryDirectory() as folder, _drawing:
+    with tempfile.TemporaryDirectory() as folder, drawing:
         picture = Path(folder) / "overlay.png"
         draw_overlay(restored(evidence.readings[number - 1], Path(folder) / "sheet"), picture)
         return Content(data=picture.read_bytes(), media="image/png")

@@ -16,8 +16,8 @@ from tests.workbench.served import opened, workbench
 
 EXAMPLES = 4
 """Requests an operation and way of drawing."""
-SLOW = "overlay.png"
-"""Drawing a picture takes a second; it has a test of its own."""
+SLOW = ("overlay.png", "report.pdf", "report.html")
+"""Drawing takes seconds; they have tests of their own."""
 
 
 def broken_by(schemathesis: Any, library: Path) -> list[str]:

@@ -86,6 +86,15 @@ def test_the_overlay_of_a_revision_can_be_seen(client: TestClient) -> None:
     assert client.get("/api/devices/riverside-b32@1/overlay.png?reading=2").status_code == 404
 
 
+def test_the_review_document_is_to_keep(client: TestClient) -> None:
+    document = client.get("/api/devices/riverside-b32/report.pdf")
+    assert document.content.startswith(b"%PDF")
+    assert document.headers["content-disposition"].startswith("attachment")
+    page = client.get("/api/devices/riverside-b32@1/report.html")
+    assert page.headers["content-disposition"].startswith("attachment")
+    assert "riverside-b32" in page.text
+
+
 def test_a_release_needs_a_second_person(client: TestClient) -> None:
     review = "/api/devices/riverside-b16/review"
     assert client.post(review, json={"to": "checked", "name": "Ida Brook"}).status_code == 200
