@@ -1,6 +1,7 @@
 """Which stretches of ink are explained already: they lie along lines that were traced."""
 
 import numpy as np
+from numpy.typing import NDArray
 from scipy.spatial import cKDTree
 
 from curvelab.records.arrays import Floats
@@ -34,7 +35,11 @@ class Cover:
 
     def share(self, places: Floats) -> float:
         """Which share of a stretch's places is explained."""
+        return float(self.near(places).mean())
+
+    def near(self, places: Floats) -> NDArray[np.bool_]:
+        """Which places are explained."""
         near = np.zeros(len(places), dtype=bool)
         for tree, reach in self._lines:
             near |= tree.query(places, distance_upper_bound=reach)[0] <= reach
-        return float(near.mean())
+        return near

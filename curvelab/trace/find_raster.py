@@ -7,14 +7,16 @@ import numpy as np
 from curvelab.errors import TraceError
 from curvelab.records.arrays import Floats
 from curvelab.records.sheet import Word
-from curvelab.records.trace import Trace
+from curvelab.records.trace import Place, Trace
+from curvelab.records.warning import ReadingWarning
+from curvelab.trace.areas import bare_edges
 from curvelab.trace.cover import Cover
 from curvelab.trace.found import FoundLine, FoundLines, ShortLine
 from curvelab.trace.furniture import furniture
 from curvelab.trace.guide import Guide
 from curvelab.trace.hatching import hatch_lines
 from curvelab.trace.joining import successions
-from curvelab.trace.judge import Judge
+from curvelab.trace.judge import LEAST_LENGTH, Judge
 from curvelab.trace.prepared import Prepared, Raster
 from curvelab.trace.raster import trace_raster
 from curvelab.trace.seeds import BROKEN, Seed, pins, places_of, seeds_of, short_line, walked
@@ -70,6 +72,7 @@ class _Finder:
         self.doubtful: list[_Doubtful] = []
         self.short_lines: list[ShortLine] = []
         self.straights: list[_Straight] = []
+        self.unexplained: list[Place] = []
 
     def try_seed(self, seed: Seed) -> None:
         """Follow the line a seed is part of, and keep it where it may be a curve."""
@@ -92,13 +95,16 @@ class _Finder:
             self.short_lines.append(short)
         if straight:
             self.straights.append(_Straight(seed=seed, walk=walk, places=places))
+        elif self.judge.is_odd(places) and not seed.furniture:
+            self.unexplained.append(seed.middle)
         self.cover.add_line(places, 0.0)
 
     def follow(self, seed: Seed, walk: Walk, *, straight: bool = False) -> None:
         """Trace a walked line, and keep it where it is measured to be a curve, or straight as was known."""
         traced = self.traced(seed, walk)
         if traced is None:
-            self.cover.add_line(seed.points, 0.0)
+            self.cover.add_line(places_of(self.raster, walk.line), 0.0)
+            self.unexplained.append(seed.middle)
             return
         self.cover.add(traced.trace)
         verdict = self.judge.verdict(traced.trace.places, traced.trace.width)
@@ -176,6 +182,17 @@ class _Finder:
             self.join_parts()
             return
 
+    def add_areas(self) -> None:
+        """The edges of filled areas along which no line is drawn."""
+        for place in bare_edges(self.raster, self.cover, LEAST_LENGTH * self.judge.side):
+            if self.cover.holds(np.array([place])):
+                continue
+            line = self.guided(Guide(through=(place,)))
+            if line is not None:
+                self.cover.add(line.trace)
+                if self.judge.verdict(line.trace.places, line.trace.width) == "curve":
+                    self.lines.append(line)
+
     def drop_mixtures(self) -> None:
         """Leave out lines of which the others together explain everything: parts of one, or mixtures of several."""
         while len(self.lines) > 1:
@@ -210,7 +227,20 @@ def find_on_raster(prepared: Prepared, raster: Raster, words: tuple[Word, ...]) 
     finder.settle_doubtful()
     finder.join_parts()
     finder.drop_mixtures()
-    return FoundLines(lines=tuple(finder.lines), short_lines=tuple(finder.short_lines), warnings=())
+    finder.add_areas()
+    return FoundLines(
+        lines=tuple(finder.lines),
+        short_lines=tuple(finder.short_lines),
+        warnings=tuple(map(_unexplained, finder.unexplained)),
+    )
+
+
+def _unexplained(place: Place) -> ReadingWarning:
+    return ReadingWarning(
+        code="line-unexplained",
+        text="What looks like a line here is not read as a curve: give it an entry in [[curves]] if it is one",
+        at=place,
+    )
 
 
 def is_broken(places: Floats) -> bool:

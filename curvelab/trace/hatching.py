@@ -5,9 +5,9 @@ import numpy as np
 from curvelab.records.arrays import Floats
 
 ALIKE_DEG = 3.0
-FEWEST = 4
+FEWEST = 5
 """Lines from which a group is a hatching."""
-EVEN = 0.25
+EVEN = 0.12
 """Largest deviation of a spacing from the usual one, relative to it, or from a multiple of it."""
 EVEN_SHARE = 0.7
 

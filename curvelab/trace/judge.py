@@ -56,6 +56,10 @@ class Judge:
         """Whether a straight line inside the plot is as short as a leader or an arrow."""
         return not self.at_frame(places).any() and length_of(places) < LONGEST_FURNITURE * self.side
 
+    def is_odd(self, places: Floats) -> bool:
+        """Whether a long line along an axis lies where no grid line is usually drawn: a limit, or part of a curve."""
+        return length_of(places) > LONGEST_FURNITURE * self.side and self._on_grid(places) < 1.0 - MOSTLY
+
     def at_frame(self, places: Floats) -> NDArray[np.bool_]:
         """Whether the line's start and end lie at the frame."""
         result: NDArray[np.bool_] = self.window.depth(places[[0, -1]]) < AT_FRAME * self.side
