@@ -86,7 +86,6 @@ def test_what_a_file_says_is_text_and_nothing_else(screen: Screen) -> None:
         box = screen.page.locator(f'[data-focus="strip-{name}"]')
         box.fill(HOSTILE)
         box.press("Tab")
-        screen.read()
     screen.page.get_by_label("Stored by").fill(HOSTILE)
     screen.page.get_by_role("button", name="Store").click()
     screen.page.locator(".stored a").first.click()

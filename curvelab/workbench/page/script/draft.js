@@ -81,6 +81,14 @@ export class Draft extends EventTarget {
     return true;
   }
 
+  /** Resolves once every change is made and the newest worksheet read, or reading has ended otherwise. */
+  async settled() {
+    await this.queue;
+    while (this.state.work.state === "reading") {
+      await new Promise((done) => this.addEventListener("state", done, { once: true }));
+    }
+  }
+
   undo() {
     return this.state.can_undo ? this.change({ kind: "undo" }) : said("There is nothing to undo.");
   }

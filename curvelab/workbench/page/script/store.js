@@ -30,12 +30,15 @@ export class Store {
   async #submit(event) {
     event.preventDefault();
     const { draft } = this.desk;
+    const author = ownName(this.name.input.value);
+    this.button.disabled = true;
+    // What was typed last may still be on its way.
+    await draft.settled();
     if (!draft.state.can_store) {
+      this.button.disabled = false;
       said(this.why.textContent);
       return void this.desk.openList.step(1);
     }
-    const author = ownName(this.name.input.value);
-    this.button.disabled = true;
     const answer = await attempt(() => post(`${draft.path}/store`, { author, note: this.note.value.trim() }));
     this.button.disabled = false;
     if (!answer) return;
