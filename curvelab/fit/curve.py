@@ -10,7 +10,7 @@ from curvelab.errors import FitError
 from curvelab.fit.corners import corner_kinks, kinks_of
 from curvelab.fit.exact import corners_of, kept_samples, points_piece
 from curvelab.fit.gaps import gap_at, runs_of
-from curvelab.fit.hypotheses import forms_of, stretches_of, strokes_of
+from curvelab.fit.hypotheses import forms_of
 from curvelab.fit.kinks import kink_candidates
 from curvelab.fit.noise import Noise
 from curvelab.fit.rotate import unrotated
@@ -19,6 +19,7 @@ from curvelab.fit.smooth import design, fit_smooth, uniform_knots
 from curvelab.fit.strand import Strand, strand_of
 from curvelab.fit.stretch import Stretch
 from curvelab.fit.tabulate import budget_of, part_of, sampled
+from curvelab.fit.tested import stretches_of, strokes_of
 from curvelab.records.arrays import Floats
 from curvelab.records.fit import CurveFit, FitGap, Piece
 from curvelab.records.points import FitPoints
