@@ -16,7 +16,7 @@ from curvelab.errors import InputError
 from curvelab.workbench.bench import Bench
 from curvelab.workbench.changes import Change
 from curvelab.workbench.failures import Busy
-from curvelab.workbench.route import Content, Method, Nothing, Route, body_of, bounded_body, written
+from curvelab.workbench.route import Method, Nothing, Route, body_of, bounded_body, written
 from curvelab.workbench.shapes import Schema
 
 if TYPE_CHECKING:
@@ -75,47 +75,6 @@ class Changed:
 
     base_version: int
     change: Change
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class Tile:
-    """One tile of a page."""
-
-    id: str
-    level: int
-    column: int
-    row: int
-    page: int | None = None
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class Cut:
-    """The surroundings of a place, ``radius`` in the sheet's unit, ``zoom`` pixels a pixel."""
-
-    id: str
-    x: float
-    y: float
-    radius: float = 40.0
-    zoom: float = 2.0
-    page: int | None = None
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class AtPlace:
-    """A place on the sheet."""
-
-    id: str
-    x: float
-    y: float
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class AtValues:
-    """A current in the axis's base and a value in its base unit."""
-
-    id: str
-    current: float
-    time: float
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -233,39 +192,9 @@ def store(bench: Bench, asked: OfDraft, signed: Signed) -> dict[str, Any]:
     return {"devices": [{"key": each.key, "revision": each.revision, "changed": each.changed} for each in stored]}
 
 
-def tile(bench: Bench, asked: Tile) -> Content:
-    """One tile of the sheet's picture."""
-    pyramid = bench.drafts.draft(asked.id).pyramid(asked.page)
-    return Content(data=pyramid.tile(asked.level, asked.column, asked.row), media="image/png", lasting=True)
-
-
-def cut(bench: Bench, asked: Cut) -> Content:
-    """The surroundings of a place, cut from the sheet."""
-    if not (0 < asked.radius <= 10_000 and 0 < asked.zoom <= 64):
-        raise InputError(f"A cut of radius {asked.radius:g} and zoom {asked.zoom:g} cannot be made", "Both positive")
-    pyramid = bench.drafts.draft(asked.id).pyramid(asked.page)
-    picture = pyramid.around((asked.x, asked.y), asked.radius, asked.zoom)
-    return Content(data=picture, media="image/png", lasting=True)
-
-
-def locate(bench: Bench, asked: AtPlace) -> dict[str, Any]:
-    """What a place on the sheet means, and the curve nearest to it there."""
-    from curvelab.workbench.places import located  # noqa: PLC0415
-
-    return located(bench.drafts.draft(asked.id), (asked.x, asked.y))
-
-
-def place(bench: Bench, asked: AtValues) -> dict[str, Any]:
-    """Where on the sheet a current and a value are."""
-    from curvelab.workbench.places import placed  # noqa: PLC0415
-
-    return placed(bench.drafts.draft(asked.id), asked.current, asked.time)
-
-
 DRAFT = "/api/drafts/{id}"
 
 _STATE: Schema = {"type": "object", "required": ["id", "version", "tick", "work", "worksheet", "open", "can_store"]}
-_IMAGE = "image/png"
 
 
 def _route(method: Method, path: str, summary: str, does: Callable[..., Any], **more: Any) -> Route:
@@ -285,10 +214,4 @@ DRAFT_ROUTES = (
     _route("POST", f"{DRAFT}/cancel", "Stop reading", cancel, asked=OfDraft, answer=_STATE),
     _route("POST", f"{DRAFT}/read", "Read what was stopped", read_again, asked=OfDraft, answer=_STATE),
     _route("POST", f"{DRAFT}/store", "Store the devices", store, asked=OfDraft, body=Signed, answer={"type": "object"}),
-    _route(
-        "GET", f"{DRAFT}/tiles/{{level}}/{{column}}/{{row}}.png", "A tile of the sheet", tile, asked=Tile, media=_IMAGE
-    ),
-    _route("GET", f"{DRAFT}/cut.png", "The surroundings of a place", cut, asked=Cut, media=_IMAGE),
-    _route("GET", f"{DRAFT}/locate", "What a place means", locate, asked=AtPlace, answer={"type": "object"}),
-    _route("GET", f"{DRAFT}/place", "Where values are", place, asked=AtValues, answer={"type": "object"}),
 )

@@ -91,6 +91,8 @@ class Drafts:
         entry = SheetEntry(file=file, page=new.page, plot=new.plot, sha256=sheet.sha256)
         said = _with_sheet(worksheet or Worksheet(), entry)
         draft = self._begun(new, SheetFile(file=file, sha256=sheet.sha256, pages=sheet.pages), said)
+        kept = replace(sheet, file=str(draft.folder / file))
+        draft.memory()("sheet", (file, new.page, sheet.sha256), lambda: kept)
         draft.read()
         return draft
 
