@@ -46,31 +46,37 @@ def search_lines(look: Look, strips: Strips, plane: PlaneMap, scaled: Floats, re
     spacing = np.abs(np.diff(paths.mean(axis=1)))
     room = np.minimum(np.append(spacing, np.inf), np.insert(spacing, 0, np.inf))
     least = max(LEAST_DARK, ABOVE_NOISE * strips.noise)
-    found = []
-    for value, path, space in zip(scaled, paths, room, strict=True):
-        across, dark = _darkest(strips, path, min(reach, 0.45 * space))
-        good = dark > max(least, FAINT * float(np.median(dark)))
-        good &= near_straight(strips.along, across - path, good, STRAIGHT)
-        if np.sum(good) >= max(LEAST_STRIPS, LEAST_SHARE * len(path)):
-            points = _summary(look.places(across[good], strips.along[good]))
-            found.append(Found(scaled=float(value), points=points, dark=float(np.median(dark[good]))))
-    return found
+    across, dark = _darkest(strips, paths, np.minimum(reach, 0.45 * room))
+    good = dark > np.maximum(least, FAINT * np.median(dark, axis=1))[:, None]
+    good &= near_straight(strips.along, across - paths, good, STRAIGHT)
+    enough = good.sum(axis=1) >= max(LEAST_STRIPS, LEAST_SHARE * paths.shape[1])
+    return [
+        Found(
+            scaled=float(scaled[k]),
+            points=_summary(look.places(across[k, good[k]], strips.along[good[k]])),
+            dark=float(np.median(dark[k, good[k]])),
+        )
+        for k in np.flatnonzero(enough)
+    ]
 
 
-def _darkest(strips: Strips, path: Floats, reach: float) -> tuple[Floats, Floats]:
-    """Place and darkness of the darkest pixel near the path in each strip, refined by a parabola.
+def _darkest(strips: Strips, paths: Floats, reach: Floats) -> tuple[Floats, Floats]:
+    """Place and darkness of the darkest pixel near each path in each strip, refined by a parabola; shapes (n, m).
 
     A pixel at the window's end that leads up to something darker outside belongs to another line: darkness 0.
     """
     width = strips.dark.shape[1]
-    window = np.arange(-int(np.ceil(reach)), int(np.ceil(reach)) + 1)
-    columns = np.clip(np.rint(path).astype(np.int64)[:, None] + window, 1, width - 2)
-    rows = np.arange(len(path))
-    best = columns[rows, np.argmax(strips.dark[rows[:, None], columns], axis=1)]
+    widest = int(np.ceil(reach.max()))
+    window = np.arange(-widest, widest + 1)
+    columns = np.clip(np.rint(paths).astype(np.int64)[..., None] + window, 1, width - 2)
+    rows = np.arange(paths.shape[1])
+    levels = strips.dark[rows[None, :, None], columns]
+    levels = np.where(np.abs(window) <= np.ceil(reach)[:, None, None], levels, -np.inf)
+    best = np.take_along_axis(columns, np.argmax(levels, axis=2)[..., None], axis=2)[..., 0]
     left, top, right = (strips.dark[rows, best + k].astype(np.float64) for k in (-1, 0, 1))
     peak = (top >= left) & (top >= right) & (left + right < 2 * top)
     shift = 0.5 * (left - right) / np.where(peak, left - 2 * top + right, 1.0)
-    return np.where(peak, best + shift, path), np.where(peak, top, 0.0)
+    return np.where(peak, best + shift, paths), np.where(peak, top, 0.0)
 
 
 def _summary(points: Floats) -> Floats:

@@ -21,19 +21,36 @@ def fitted_offsets(along: Floats, offset: Floats, weight: Floats) -> Floats:
 
 
 def near_straight(along: Floats, offset: Floats, good: NDArray[np.bool_], tolerance: float) -> NDArray[np.bool_]:
-    """Places within ``tolerance`` of the straight line of least absolute deviation through the good ones.
+    """Places within ``tolerance`` of each row's straight line of least absolute deviation through its good ones.
 
-    Iteratively reweighted least squares; false where fewer than two places are good.
+    Iteratively reweighted least squares, for all rows at once; false where fewer than two places of a row are good.
+
+    Parameters
+    ----------
+    along : array, shape (m,)
+    offset, good : array, shape (n, m)
+    tolerance : float
     """
-    if np.sum(good) < 2:
-        return np.zeros(len(along), dtype=bool)
     weight = good.astype(np.float64)
-    residual = np.zeros(len(along))
+    residual = np.zeros(offset.shape)
     for _ in range(STEPS):
-        residual = np.abs(offset - fitted_offsets(along, offset, weight))
+        residual = np.abs(offset - _row_lines(along, offset, weight))
         weight = good / np.maximum(residual, 0.05)
-    near: NDArray[np.bool_] = residual <= tolerance
+    near: NDArray[np.bool_] = (residual <= tolerance) & (good.sum(axis=1, keepdims=True) >= 2)
     return near
+
+
+def _row_lines(along: Floats, offset: Floats, weight: Floats) -> Floats:
+    """Weighted least-squares straight line of each row, at every place."""
+    total = np.maximum(weight.sum(axis=1), 1e-12)
+    middle, mean = (weight @ along) / total, np.einsum("ij,ij->i", weight, offset) / total
+    run = along[None, :] - middle[:, None]
+    weighted = weight * run
+    spread = np.einsum("ij,ij->i", weighted, run)
+    rise = np.einsum("ij,ij->i", weighted, offset - mean[:, None])
+    slope = np.divide(rise, spread, out=np.zeros_like(rise), where=spread > 0)
+    lines: Floats = mean[:, None] + slope[:, None] * run
+    return lines
 
 
 def agreeing(
