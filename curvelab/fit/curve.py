@@ -71,7 +71,7 @@ def _fit_exact(strand: Strand) -> CurveFit:
     corners = [corners_of(run) for run in runs]
     samples = [kept_samples(run, indices) for run, indices in zip(runs, corners, strict=True)]
     if 2 * sum(len(indices) for indices in corners) > MOST_NUMBERS and len(runs) == 1:
-        off = EXACT_ENOUGH / 3.0
+        off = EXACT_ENOUGH / 4.0
         smooth = _segments(
             replace(strand, sd=np.maximum(strand.sd, off), edge=np.hypot(strand.edge, off)), MOST_NUMBERS
         )

@@ -11,7 +11,7 @@ from curvelab.records.trace import Trace
 
 LN10 = float(np.log(10.0))
 
-MIDDLE_OF_STROKE = 0.003
+MIDDLE_OF_STROKE = 0.002
 """Of a stroke's width: standard deviation of its middle, as scans and renderers leave it."""
 
 EDGE_OF_AREA = 0.1 / 3.0**0.5
