@@ -38,7 +38,7 @@ WHOLE, AFTER = 8, 14.0
 LABEL_SHARE = 0.38
 """Of a column of facts, for their names."""
 COLOURS: dict[Look, str] = {"plain": GRAPHITE, "open": WARM, "quiet": QUIET}
-PLATE_FREE = ((TOP + 6.0) / HEIGHT, (BOTTOM + 7.0) / HEIGHT)
+PLATE_FREE = ((TOP + 6.0) / HEIGHT, (BOTTOM + 9.5) / HEIGHT)
 
 
 def pdf_bytes(document: Document) -> bytes:
