@@ -10,7 +10,7 @@ from matplotlib.path import Path
 from curvelab.plots.ink import GRAPHITE, PAPER, QUIET, WARM
 from curvelab.plots.subject import Subject, units_per_unit
 from curvelab.records.finding import Finding
-from curvelab.units import BASES, written, written_current
+from curvelab.units import written, written_current
 
 LEG = 0.55
 CLOSE, LINE = 0.25, 9.0
@@ -82,12 +82,10 @@ def _are_close(one: Limit, other: Limit) -> bool:
 
 
 def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
-    # The limit of an energy at a time is one of the current there.
-    of_current = finding.unit == "A2s" or finding.unit in BASES
-    current, own_base = (finding.limit, finding.unit) if finding.unit in BASES else (finding.current, finding.base)
-    time_s = finding.time_s if of_current else finding.limit
-    if finding.permitted is None or current is None or own_base is None or time_s is None:
+    place = finding.on_plot
+    if place is None:
         return None
+    current, own_base = place.current, place.base
     if RESIDUAL in (own_base, base) and own_base not in (base, "A"):
         # A residual current and a load current are no two places on one axis.
         return None
@@ -99,7 +97,9 @@ def _limit(finding: Finding, subject: Subject, base: str) -> Limit | None:
         words = written(finding.limit, "A2s").replace("A2s", r"$\mathrm{A^2s}$")
     if finding.outcome not in SETTLED:
         words = f"{words}, {finding.outcome}{' (advisory)' if finding.advisory else ''}"
-    return Limit(finding=finding, of_current=of_current, current=current * scale, time_s=time_s, words=words)
+    return Limit(
+        finding=finding, of_current=place.of_current, current=current * scale, time_s=place.time_s, words=words
+    )
 
 
 def draw_limit(axes: Axes, limit: Limit) -> None:

@@ -3,6 +3,8 @@
 from dataclasses import dataclass
 from typing import Any, Literal
 
+from curvelab.units import BASES
+
 Outcome = Literal["meets", "fails", "undecided", "at limit", "not covered"]
 
 
@@ -43,6 +45,27 @@ class Finding:
             return None
         above = self.value / self.limit - 1
         return above if self.permitted == "at_least" else -above
+
+    @property
+    def on_plot(self) -> "LimitPlace | None":
+        """Where its limit lies on a time-current plot; None where it has no place there."""
+        # The limit of an energy at a time is one of the current there.
+        of_current = self.unit == "A2s" or self.unit in BASES
+        current, base = (self.limit, self.unit) if self.unit in BASES else (self.current, self.base)
+        time_s = self.time_s if of_current else self.limit
+        if self.permitted is None or current is None or base is None or time_s is None:
+            return None
+        return LimitPlace(of_current=of_current, current=current, base=base, time_s=time_s)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class LimitPlace:
+    """The place of a limit, of the current or of the time there; the current is counted in ``base``."""
+
+    of_current: bool
+    current: float
+    base: str
+    time_s: float
 
 
 def finding_json(finding: Finding) -> dict[str, Any]:

@@ -3,11 +3,13 @@
 from collections.abc import Iterable
 from typing import Any
 
-from curvelab.devices.bases import amperes
-from curvelab.errors import DeviceError
-from curvelab.records.device import DeviceRecord
+from curvelab.records.curve import Curve
+from curvelab.records.device import DeviceRecord, Nameplate
 from curvelab.records.finding import Finding
-from curvelab.units import BASES, written
+from curvelab.units import written
+from curvelab.workbench.amperes import amperes_per_unit
+
+RESIDUAL = "xIdn"
 
 
 def drawn_limits(devices: Iterable[DeviceRecord], findings: Iterable[Finding]) -> list[dict[str, Any]]:
@@ -18,30 +20,33 @@ def drawn_limits(devices: Iterable[DeviceRecord], findings: Iterable[Finding]) -
 
 
 def _drawn(record: DeviceRecord, finding: Finding) -> dict[str, Any] | None:
-    # The limit of an energy at a time is one of the current there.
-    of_current = finding.unit == "A2s" or finding.unit in BASES
-    current, own_base = (finding.limit, finding.unit) if finding.unit in BASES else (finding.current, finding.base)
-    time_s = finding.time_s if of_current else finding.limit
+    place = finding.on_plot
     curves = [curve for curve in record.curves if curve.quantity == "time"]
-    if finding.permitted is None or current is None or own_base is None or time_s is None or not curves:
+    if place is None or not curves:
         return None
-    base, at = curves[0].base, curves[0].at
-    try:
-        scale = (
-            1.0 if own_base == base else amperes(record.nameplate, at, own_base) / amperes(record.nameplate, at, base)
-        )
-    except DeviceError:
+    # A device may have lines in several bases: its limits go with those counted in their own.
+    drawn = next((curve for curve in curves if curve.base == place.base), curves[0])
+    scale = _units_per_unit(record.nameplate, drawn, place.base)
+    if scale is None:
         return None
     return {
         "device": finding.device,
         "text": finding.requirement,
-        "multiple": written(current, own_base),
-        "current": current * scale,
-        "base": base,
-        "time": time_s,
-        "of": "current" if of_current else "time",
+        "multiple": written(place.current, place.base),
+        "current": place.current * scale,
+        "base": drawn.base,
+        "time": place.time_s,
+        "of": "current" if place.of_current else "time",
         "side": finding.permitted,
         "outcome": finding.outcome,
         "advisory": finding.advisory,
         "rule": finding.rule,
     }
+
+
+def _units_per_unit(plate: Nameplate, drawn: Curve, base: str) -> float | None:
+    """Units of a curve's base in one unit of another; a residual current is no load current."""
+    if base == drawn.base:
+        return 1.0
+    own, of_curve = (amperes_per_unit(plate, drawn.at, each) for each in (base, drawn.base))
+    return None if RESIDUAL in (base, drawn.base) or own is None or of_curve is None else own / of_curve

@@ -11,6 +11,9 @@ from curvelab.errors import InputError
 
 Schema: TypeAlias = dict[str, Any]
 
+LARGEST = 1e100
+"""No quantity is larger, and what is reckoned from it is still a number."""
+
 SHOWN = 60
 """Longest part of a wrong value that a message repeats."""
 
@@ -23,7 +26,7 @@ _PLAIN: Mapping[Any, Schema] = {
     Any: {},
 }
 _EXPECTED: Mapping[Any, str] = {
-    float: "a finite number",
+    float: f"a number of at most {LARGEST:g}",
     int: "a whole number",
     str: "a text",
     bool: "true or false",
@@ -107,7 +110,7 @@ def _plain_of(kind: Any, given: Any, place: str) -> Any:
             number = float(given)
         except OverflowError:
             number = math.inf
-        if math.isfinite(number):
+        if abs(number) <= LARGEST:
             return number
     elif kind is int and isinstance(given, int) and not isinstance(given, bool):
         if abs(given) < 2**31:

@@ -132,6 +132,7 @@ def test_calculators_answer_as_on_the_command_line(client: TestClient, question:
         "/api/devices/riverside-b32/disconnection",
         "/api/devices/riverside-b32/disconnection?voltage_v=-230",
         "/api/devices/riverside-b32/disconnection?voltage_v=nan",
+        "/api/devices/riverside-b32/overload?capacity_a=1.7e308",
         "/api/devices/riverside-b32/disconnection?voltage_v=230&system=XX",
         "/api/devices/riverside-b32/withstand?material=cheese&insulation=pvc70&least_a=400&greatest_a=3000",
         "/api/devices/riverside-b32/withstand?material=copper&insulation=pvc70&least_a=400&greatest_a=3",
