@@ -5,7 +5,7 @@ from dataclasses import dataclass, replace
 
 from curvelab.axes.choose import chosen_plot, plots_of
 from curvelab.axes.consensus import rule
-from curvelab.axes.decide import decided_ruling, decided_unit, units_like
+from curvelab.axes.decide import SURE_TITLE, decided_ruling, decided_unit, units_like
 from curvelab.axes.labels import Label, labels_beside, labels_in
 from curvelab.axes.marking import marks_of
 from curvelab.axes.naming import Naming, best_pair, namings, with_units
@@ -29,6 +29,12 @@ BAND = 0.11
 
 INTO = 0.012
 """The same into the plot: numbers touch the frame."""
+
+USUAL_BANDS = 2
+"""Rectangles about a plot, of those in which lettering is looked for, where it stands as a rule."""
+
+ENOUGH_NUMBERS = 3
+"""Numbers along an axis with which others need not be looked for."""
 
 SCALES: tuple[Scale, ...] = ("log", "linear")
 
@@ -96,12 +102,26 @@ class _View:
 
     @classmethod
     def of(cls, page: Page, plot: Plot, sheet: Sheet, read: Words) -> "_View":
+        """With the words below and at the left; those above and at the right are read where these do not tell all."""
         seen = (seen_lines(plot, 0, page.sd), seen_lines(plot, 1, page.sd))
         lean = max(abs(lines.slope) for lines in seen)
         areas = tuple(page.area(box) for box in _bands(plot, page.size, lean))
-        words = [page.word(word) for word in read(sheet, areas)]
-        labels = (labels_beside(words, plot, seen, 0), labels_beside(words, plot, seen, 1))
-        return cls(page=page, plot=plot, words=words, seen=seen, labels=labels)
+
+        def view(words: list[Word]) -> _View:
+            labels = (labels_beside(words, plot, seen, 0), labels_beside(words, plot, seen, 1))
+            return cls(page=page, plot=plot, words=words, seen=seen, labels=labels)
+
+        usual = view([page.word(word) for word in read(sheet, areas[:USUAL_BANDS])])
+        if usual.is_complete:
+            return usual
+        return view([*usual.words, *(page.word(word) for word in read(sheet, areas[USUAL_BANDS:]))])
+
+    @property
+    def is_complete(self) -> bool:
+        """Whether both axes have numbers enough and titles that are sure."""
+        sure = [naming for naming in namings(self.words, self.plot) if naming.confidence >= SURE_TITLE]
+        quantities = {naming.title.quantity == "current" for naming in sure}
+        return len(quantities) == 2 and all(len(beside) >= ENOUGH_NUMBERS for beside in self.labels)
 
     def named(self, current: AxisEntry, value: AxisEntry | None) -> tuple[int, tuple[Naming | None, Naming | None]]:
         """The direction of the current axis on the page and the titles of both axes."""

@@ -3,7 +3,7 @@
 From the Debian packages fonts-liberation, fonts-freefont-ttf, fonts-croscore, fonts-open-sans, fonts-roboto-unhinted,
 fonts-roboto-slab, fonts-lato, fonts-crosextra-carlito, fonts-crosextra-caladea, fonts-cantarell, fonts-linuxlibertine,
 fonts-osifont, fonts-play, fonts-cabin, fonts-karla, fonts-go, fonts-hack, fonts-anonymous-pro, fonts-oxygen,
-fonts-urw-base35, fonts-texgyre, fonts-sil-gentiumplus, fonts-dosis, fonts-mplus, fonts-junction, fonts-lmodern.
+fonts-urw-base35, fonts-texgyre, fonts-sil-gentiumplus, fonts-dosis, fonts-mplus, fonts-junction.
 The faces that matplotlib ships are held out: the demo sheets and the benchmark print with them.
 """
 
@@ -20,7 +20,7 @@ TRAINED = (
     "RobotoSlab", "Lato-Regular", "Lato-Bold", "Lato-Light", "Lato-Medium", "Caladea", "LinLibertine",
     "LinBiolinum", "osifont",
     "Cabin", "Karla-", "Go-", "AnonymousPro", "Oxygen", "Nimbus", "URWGothic", "C059", "P052", "texgyre",
-    "GentiumPlus-", "mplus-1", "lmroman10-regular", "lmsans10-regular", "lmroman8-regular",
+    "GentiumPlus-", "mplus-1",
 )  # fmt: skip
 CALIBRATED = ("Carlito", "Cantarell", "Play-", "Hack-", "Dosis-", "Junction", "mplus-2m")
 UNSEEN = ("DejaVuSans", "DejaVuSerif", "DejaVuSansMono", "DejaVuSans-Bold", "STIXGeneral", "STIXGeneralBol")
