@@ -8,11 +8,12 @@ from matplotlib.figure import Figure
 from curvelab import __version__
 from curvelab.plots.bands import bands_figure
 from curvelab.plots.subject import description
+from curvelab.reports.budget import budget_section
 from curvelab.reports.case import Case
 from curvelab.reports.device_parts import curves_section, device_section, sources_section
 from curvelab.reports.document import Document, Free, Plate, Section
 from curvelab.reports.forms import forms_section
-from curvelab.reports.reading_parts import axes_section, budget_section, residuals_section, sheets_section
+from curvelab.reports.reading_parts import axes_section, residuals_section, sheets_section
 from curvelab.reports.review_parts import (
     cautions_section,
     findings_section,
