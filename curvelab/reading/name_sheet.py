@@ -9,6 +9,8 @@ from curvelab.reading.said import Said, said_by, without
 
 LONGEST_NAME = 6
 """Words up to which a line of text may name a device; longer ones explain."""
+SURE = 0.5
+"""Confidence from which words about the whole sheet are taken without a warning."""
 FEWEST_WORDS = 4
 """Words from which a text within the plot explains something; shorter ones belong to a line."""
 NAMES = ("kind", "characteristic", "characteristics", "ratings", "rating_range", "residual_current_a", "residual_delay")
@@ -16,10 +18,11 @@ NAMES = ("kind", "characteristic", "characteristics", "ratings", "rating_range",
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class SheetSaid:
-    """The sheet's title, and what it says of every line."""
+    """The sheet's title, what it says of every line, and words that name a device and may be misread."""
 
     title: str
     said: Said
+    doubtful: tuple[Phrase, ...]
 
 
 def inside(phrase: Phrase, frame: Box) -> bool:
@@ -44,7 +47,18 @@ def sheet_said(phrases: Sequence[Phrase], frame: Box) -> SheetSaid:
     notes = [one for one in phrases if inside(one, frame) and len(one.text.split()) >= FEWEST_WORDS]
     title = above[0] if above else max(beside, key=lambda one: one.height, default=None)
     spoken = [*_of(above, explains=False), *_of(beside, explains=True), *_of(notes, explains=True)]
-    return SheetSaid(title=title.text if title else "", said=reduce(Said.over, spoken, Said()))
+    named = [one for one in around if one.confidence < SURE and _names(one)]
+    return SheetSaid(title=title.text if title else "", said=reduce(Said.over, spoken, Said()), doubtful=tuple(named))
+
+
+def _names(phrase: Phrase) -> bool:
+    """Whether words say which type, rated current or setting a device has, so that one wrong letter matters."""
+    said = said_by(phrase.text)
+    return bool(said.characteristics or said.ratings or said.residual_current_a) and not _explains(phrase)
+
+
+def _explains(phrase: Phrase) -> bool:
+    return len(phrase.text.split()) > LONGEST_NAME or phrase.text.rstrip().endswith(".")
 
 
 def _by_height(phrase: Phrase) -> tuple[float, float]:
@@ -61,6 +75,6 @@ def _of(phrases: Sequence[Phrase], *, explains: bool) -> Iterator[Said]:
         said = without(said_by(phrase.text), "number")
         if explains:
             said = without(said, "element", "edge", "settings")
-            if len(phrase.text.split()) > LONGEST_NAME or phrase.text.rstrip().endswith("."):
+            if _explains(phrase):
                 said = without(said, *NAMES)
         yield said

@@ -106,6 +106,14 @@ class _Namer:
                         at=at,
                     )
                 )
+        for phrase in self.sheet.doubtful if not self.given else ():
+            self.warnings.append(
+                ReadingWarning(
+                    code="label-doubtful",
+                    text=f"Words that name the device were read as '{phrase.text}': check them on the sheet",
+                    at=phrase.middle,
+                )
+            )
         for device in self.devices if not self.given else ():
             plate = device.nameplate
             if plate.rated_current_a is None and plate.kind not in ("relay", "rcd"):

@@ -17,8 +17,9 @@ ONE_WORD, ONE_LINE = 0.2, 0.75
 SAME_BASE = 0.35
 """Distance of their middles, relative to their height, of words in one line."""
 SAME_HEIGHT = 1.45
-LEAST_CONFIDENCE = 0.3
-"""A word read with less says nothing."""
+LEAST_CONFIDENCE, LEAST_OF_LONG = 0.3, 0.05
+"""A word read with less says nothing; of one with a long run of letters enough is right to know it."""
+_LONG = re.compile(r"[^\W\d_]{5,}")
 DASHES = "-–—_.·' \"|"
 
 
@@ -41,7 +42,7 @@ class Phrase:
 def phrases_of(words: Iterable[Word]) -> tuple[Phrase, ...]:
     """Lines of text, top to bottom; words that say nothing (dashes of a line, doubtful readings) left out."""
     apart = (piece for word in words for piece in _labels_apart(word))
-    left = [word for word in apart if word.confidence >= LEAST_CONFIDENCE and any(c.isalnum() for c in word.text)]
+    left = [word for word in apart if _is_readable(word)]
     level = sorted((word for word in left if word.turned_deg % 360 == 0), key=lambda word: (word.box[0], word.box[1]))
     lines: list[list[Word]] = []
     for word in level:
@@ -52,6 +53,11 @@ def phrases_of(words: Iterable[Word]) -> tuple[Phrase, ...]:
             line.append(word)
     turned = [[word] for word in left if word.turned_deg % 360 != 0]
     return tuple(sorted(map(_phrase, [*lines, *turned]), key=lambda one: (one.box[1], one.box[0])))
+
+
+def _is_readable(word: Word) -> bool:
+    least = LEAST_OF_LONG if _LONG.search(word.text) else LEAST_CONFIDENCE
+    return word.confidence >= least and any(letter.isalnum() for letter in word.text)
 
 
 def _labels_apart(word: Word) -> Iterator[Word]:

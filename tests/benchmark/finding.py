@@ -162,7 +162,7 @@ def _warned(reading: Reading, number: int) -> bool:
     for warning in reading.warnings:
         if warning.code in ABOUT_SHEET:
             continue
-        if warning.at is None or trace is None:
+        if warning.at is None or trace is None or warning.text.startswith("Words that name"):
             return True
         if np.hypot(*(trace.places - np.array(warning.at)).T).min() < 15.0:
             return True

@@ -265,7 +265,7 @@ def relay(rng: np.random.Generator) -> Wording:
         subtitle="",
         words={f"tms {tms}": style.format(tms) for tms in steps},
         looks={f"tms {tms}": 0 for tms in steps},
-        how=_pick(rng, ("on", "beside")),
+        how=_pick(rng, ("on", "beside")) if len(steps) == 3 else "on",
     )
 
 
