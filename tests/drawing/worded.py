@@ -336,6 +336,8 @@ def _labels(
     if text is None or wording.how in ("legend", "none"):
         return ()
     along = float(rng.uniform(0.3, 0.6)) if len(wording.words) < 3 else 0.08 + 0.055 * (number % 5)
+    if curve.at:
+        along = 0.45 + 0.07 * number  # a relay's lines lie apart where they run flat
     if wording.how == "on":
         return (CurveLabel(text=text, along=along, offset_pt=(0, 0), boxed=True, size_pt=size),)
     if len(wording.words) > 2:
