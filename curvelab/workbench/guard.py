@@ -5,6 +5,7 @@ a name it lets point at this computer is not the ``Host`` that is served.
 """
 
 import hmac
+import ipaddress
 from collections.abc import Iterable
 from dataclasses import dataclass
 from http.cookies import CookieError, SimpleCookie
@@ -96,7 +97,7 @@ class Guard:
 
     def _refuse_strangers(self, method: str, headers: Headers) -> None:
         hosts = headers.getlist("host")
-        if len(hosts) != 1 or hosts[0].lower() not in self._door.hosts:
+        if len(hosts) != 1 or not self._is_ours(hosts[0].lower()):
             raise Refused("This address is not the workbench's", "", "Use the address it printed when it started")
         origin = headers.get("origin")
         if origin is not None and origin.lower() != f"http://{hosts[0].lower()}":
@@ -105,6 +106,10 @@ class Guard:
             raise Refused("A page from elsewhere may not use the workbench")
         if method not in SAFE and headers.get(HEADER) != "1":
             raise Refused("A change needs the header X-Curvelab: 1", "", "Send it with the request")
+
+    def _is_ours(self, host: str) -> bool:
+        """Whether a host is served; beyond loopback any number of an address is, as no name can be made to mean it."""
+        return host in self._door.hosts or (self._door.token is not None and _is_number(host))
 
     def _let_in(self, scope: Scope, headers: Headers) -> Response | None:
         """Beyond loopback each request shows the token; an address that carries it is turned into a cookie."""
@@ -120,6 +125,16 @@ class Guard:
         if not _same(given, self._door.token):
             raise Refused("The workbench needs its token", "", "Open the address it printed when it started")
         return None
+
+
+def _is_number(host: str) -> bool:
+    """Whether a host is the number of an address, with its port."""
+    name, _, port = host.rpartition(":")
+    try:
+        ipaddress.ip_address(name.removeprefix("[").removesuffix("]"))
+    except ValueError:
+        return False
+    return port.isascii() and port.isdigit()
 
 
 def _cookie(headers: Headers) -> str:

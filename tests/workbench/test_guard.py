@@ -156,3 +156,13 @@ def test_beyond_loopback_a_token_is_needed(guarded: TestClient) -> None:
 )
 def test_what_counts_as_this_computer(host: str, here: bool) -> None:
     assert is_loopback(host) is here
+
+
+def test_beyond_loopback_it_is_asked_by_any_of_its_numbers(guarded: TestClient) -> None:
+    """Which of them a person types is not known; a name that points here is still refused."""
+    token = {"Authorization": "Bearer a-long-token"}
+    for host in (f"192.0.2.7:{PORT}", f"[2001:db8::1]:{PORT}"):
+        assert guarded.get("/api/version", headers={**token, "Host": host}).status_code == 200
+        assert guarded.get("/api/version", headers={"Host": host}).status_code == 403
+    for host in (f"evil.example:{PORT}", "192.0.2.7.evil.example:1", "192.0.2.7", ":80"):
+        assert guarded.get("/api/version", headers={**token, "Host": host}).status_code == 403
