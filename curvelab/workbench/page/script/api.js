@@ -7,7 +7,10 @@ export class Refusal extends Error {
   }
 
   get line() {
-    return [this.problem, this.expected && `Expected: ${this.expected}`, this.fix].filter(Boolean).map(sentence).join(" ");
+    return [this.problem, this.expected && `Expected: ${this.expected}`, this.fix]
+      .filter(Boolean)
+      .map(sentence)
+      .join(" ");
   }
 }
 
@@ -36,10 +39,14 @@ async function send(method, path, { body, signal, raw } = {}) {
     answer = await fetch(`/api${path}`, { method, headers, signal, body: raw ? body : body && JSON.stringify(body) });
   } catch (error) {
     if (error.name === "AbortError") throw error;
-    throw new Refusal(0, { problem: "The workbench process does not answer", fix: "Start curvelab workbench again; nothing is lost" });
+    throw new Refusal(0, {
+      problem: "The workbench process does not answer",
+      fix: "Start curvelab workbench again; nothing is lost",
+    });
   }
   const json = answer.headers.get("Content-Type")?.includes("json") ? await answer.json().catch(() => null) : null;
-  if (!answer.ok) throw new Refusal(answer.status, json?.error ?? { problem: `The process refused with status ${answer.status}` });
+  if (!answer.ok)
+    throw new Refusal(answer.status, json?.error ?? { problem: `The process refused with status ${answer.status}` });
   return json;
 }
 

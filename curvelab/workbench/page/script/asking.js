@@ -17,23 +17,45 @@ export class Asking {
   }
 
   update(device) {
-    const number = (label, name) => field(label, el("input", { type: "text", inputmode: "decimal", size: 7, name, autocomplete: "off" }));
-    this.settings = (device.settings ?? []).map((setting) => ({ name: setting.name, input: el("input", { type: "text", size: 5, placeholder: rangeOf(setting), autocomplete: "off" }) }));
+    const number = (label, name) =>
+      field(label, el("input", { type: "text", inputmode: "decimal", size: 7, name, autocomplete: "off" }));
+    this.settings = (device.settings ?? []).map((setting) => ({
+      name: setting.name,
+      input: el("input", { type: "text", size: 5, placeholder: rangeOf(setting), autocomplete: "off" }),
+    }));
     const curves = device.curves.some((curve) => curve.quantity === "time");
     if (!curves) return fill(this.node);
     return fill(
       this.node,
       el("h2", {}, "Ask"),
-      this.settings.length > 0 && el("form", { class: "row-form", onsubmit: (event) => this.#set(event) }, this.settings.map(({ name, input }) => field(name, input)), el("div", { class: "row-acts" }, button("Set", null, { type: "submit" }))),
-      el("form", { class: "ask", onsubmit: (event) => this.#ask(event, "trip-time", "current", "time") }, number("Time at, A", "current"), el("button", { type: "submit" }, "Ask")),
-      el("form", { class: "ask", onsubmit: (event) => this.#ask(event, "trip-current", "time", "current") }, number("Current for, s", "time"), el("button", { type: "submit" }, "Ask")),
+      this.settings.length > 0 &&
+        el(
+          "form",
+          { class: "row-form", onsubmit: (event) => this.#set(event) },
+          this.settings.map(({ name, input }) => field(name, input)),
+          el("div", { class: "row-acts" }, button("Set", null, { type: "submit" })),
+        ),
+      el(
+        "form",
+        { class: "ask", onsubmit: (event) => this.#ask(event, "trip-time", "current", "time") },
+        number("Time at, A", "current"),
+        el("button", { type: "submit" }, "Ask"),
+      ),
+      el(
+        "form",
+        { class: "ask", onsubmit: (event) => this.#ask(event, "trip-current", "time", "current") },
+        number("Current for, s", "time"),
+        el("button", { type: "submit" }, "Ask"),
+      ),
       this.answer,
       questionsOf(this.key, () => this.#given()),
     );
   }
 
   #given() {
-    return this.settings.filter(({ input }) => input.value.trim()).map(({ name, input }) => `${name}=${input.value.trim()}`);
+    return this.settings
+      .filter(({ input }) => input.value.trim())
+      .map(({ name, input }) => `${name}=${input.value.trim()}`);
   }
 
   #set(event) {
@@ -45,22 +67,37 @@ export class Asking {
     event.preventDefault();
     const value = new FormData(event.target).get(name).trim().replace(",", ".");
     if (!value) return;
-    const answer = await attempt(() => get(query(`/devices/${part(this.key)}/${path}`, { [name]: value, set: this.#given() })));
+    const answer = await attempt(() =>
+      get(query(`/devices/${part(this.key)}/${path}`, { [name]: value, set: this.#given() })),
+    );
     if (answer) fill(this.answer, lines(answer, of));
   }
 }
 
-const TOLD = { fast: EDGES.fast, slow: EDGES.slow, mean: EDGES.mean, trips: "Surely trips from", holds: "Surely holds up to" };
+const TOLD = {
+  fast: EDGES.fast,
+  slow: EDGES.slow,
+  mean: EDGES.mean,
+  trips: "Surely trips from",
+  holds: "Surely holds up to",
+};
 
 function lines(answer, of) {
   const write = of === "time" ? time : (value, figures) => current(value, "A", figures);
   const [told] = answer.answers;
-  const rows = Object.entries(TOLD).filter(([name]) => told[name]).map(([name, words]) => {
-    const { status, value, interval: ends } = told[name];
-    if (value === null) return el("div", {}, el("dt", {}, words), el("dd", {}, status.replaceAll("_", " ")));
-    const [shown, interval] = withInterval(value, ends, write);
-    return el("div", {}, el("dt", {}, words), el("dd", {}, el("b", {}, `${SIGNS[status] ?? ""}${shown}`), interval && el("small", {}, ` ${interval}`)));
-  });
+  const rows = Object.entries(TOLD)
+    .filter(([name]) => told[name])
+    .map(([name, words]) => {
+      const { status, value, interval: ends } = told[name];
+      if (value === null) return el("div", {}, el("dt", {}, words), el("dd", {}, status.replaceAll("_", " ")));
+      const [shown, interval] = withInterval(value, ends, write);
+      return el(
+        "div",
+        {},
+        el("dt", {}, words),
+        el("dd", {}, el("b", {}, `${SIGNS[status] ?? ""}${shown}`), interval && el("small", {}, ` ${interval}`)),
+      );
+    });
   return el("dl", { class: "answers-told" }, rows);
 }
 

@@ -1,15 +1,22 @@
 // Bands of one device or several on one pair of exact axes, with a window that is moved by hand and keys.
 
 import { spanOf } from "./bands.js";
+import { drawBand, drawTag } from "./band-ink.js";
 import { el } from "./dom.js";
+import { drawLimits } from "./limit-ink.js";
 import { Canvas, inks } from "./paint.js";
-import { drawBand, drawCross, drawLimits, drawPaper, drawTag, Frame } from "./paper.js";
+import { drawCross, drawPaper, Frame } from "./paper.js";
 import { windowGestures } from "./window-gestures.js";
 
 export class BandPane {
   constructor(label) {
     const words = `${label} Arrow keys move the cross, plus and minus zoom, zero shows all.`;
-    this.canvasNode = el("canvas", { tabindex: 0, role: "application", "aria-roledescription": "bands", "aria-label": words });
+    this.canvasNode = el("canvas", {
+      tabindex: 0,
+      role: "application",
+      "aria-roledescription": "bands",
+      "aria-label": words,
+    });
     this.empty = el("p", { class: "pane-empty" });
     this.node = el("section", { class: "pane twin-pane", "aria-label": label }, this.canvasNode, this.empty);
     this.ink = inks(this.canvasNode);
@@ -88,7 +95,10 @@ export class BandPane {
   stepped([dx, dy]) {
     const frame = this.frame();
     const [x, y] = this.cross();
-    const at = [Math.min(frame.left + frame.wide, Math.max(frame.left, x + dx)), Math.min(frame.top + frame.high, Math.max(frame.top, y + dy))];
+    const at = [
+      Math.min(frame.left + frame.wide, Math.max(frame.left, x + dx)),
+      Math.min(frame.top + frame.high, Math.max(frame.top, y + dy)),
+    ];
     this.moveTo(frame.valuesAt(at), "keys");
   }
 
@@ -131,7 +141,9 @@ export function spanOfScaled(bands, limits = []) {
   const span = spanOf(bands);
   if (!span) return null;
   for (const limit of limits) {
-    [limit.current, limit.time].forEach((value, i) => (span[i] = [Math.min(span[i][0], value), Math.max(span[i][1], value)]));
+    [limit.current, limit.time].forEach(
+      (value, i) => (span[i] = [Math.min(span[i][0], value), Math.max(span[i][1], value)]),
+    );
   }
   return span.map(([low, high]) => [Math.log10(low) - 0.12, Math.log10(high) + 0.12]);
 }

@@ -20,11 +20,24 @@ export function togetherOf(answers, keys, limits = []) {
   const subjects = answers.map((answer, index) => {
     const bands = answer.bands.filter((band) => quantityOfBand(band) === quantity);
     const perUnit = (band) => band.amperes_per_unit ?? (band.base === "xIn" ? answer.rated_current_a : null);
-    return { key: keys[index], letter: LETTERS[index], index, colour: `d${index + 1}`, bands: shared === "A" ? inAmperes(bands, perUnit).filter((band) => band.base === "A") : bands };
+    return {
+      key: keys[index],
+      letter: LETTERS[index],
+      index,
+      colour: `d${index + 1}`,
+      bands: shared === "A" ? inAmperes(bands, perUnit).filter((band) => band.base === "A") : bands,
+    };
   });
   const drawn = subjects.flatMap((subject) => subject.bands);
   const own = quantity === "time" ? limits.filter((limit) => limit.base === shared) : [];
-  return { subjects, limits: own, axes: typedAxes(shared ?? "A", quantity), full: spanOfScaled(drawn, own), quantity, base: shared ?? "A" };
+  return {
+    subjects,
+    limits: own,
+    axes: typedAxes(shared ?? "A", quantity),
+    full: spanOfScaled(drawn, own),
+    quantity,
+    base: shared ?? "A",
+  };
 }
 
 function quantityOfBand(band) {

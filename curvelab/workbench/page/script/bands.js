@@ -1,6 +1,6 @@
 // Answers of a band's edges: between its points a straight line in log current and log value, nothing beyond them.
 
-export const EDGE_ORDER = ["fast", "slow", "mean"];
+const EDGE_ORDER = ["fast", "slow", "mean"];
 const NORMAL_95 = 1.959964;
 
 export const quantityOf = (part) => ["time", "let_through", "peak"].find((name) => part[name]) ?? "time";
@@ -42,7 +42,11 @@ function within(part, logCurrent, side) {
   if (!answers.length) return null;
   const chosen = answers.reduce((one, other) => ((side === "fast") === other.value < one.value ? other : one));
   const spread = chosen.sd === null ? null : Math.exp(NORMAL_95 * chosen.sd);
-  return { value: chosen.value, interval: spread ? [chosen.value / spread, chosen.value * spread] : null, status: "value" };
+  return {
+    value: chosen.value,
+    interval: spread ? [chosen.value / spread, chosen.value * spread] : null,
+    status: "value",
+  };
 }
 
 /** Index of the first element that is at least `value`. */
@@ -58,7 +62,10 @@ function firstAtLeast(sorted, value) {
 
 /** Lowest and highest current and value over bands: [[lo, hi], [lo, hi]], or null. */
 export function spanOf(bands) {
-  const span = [[Infinity, -Infinity], [Infinity, -Infinity]];
+  const span = [
+    [Infinity, -Infinity],
+    [Infinity, -Infinity],
+  ];
   for (const band of bands) {
     for (const [, edge] of edgesOf(band)) {
       for (const part of edge.parts) {
@@ -81,7 +88,10 @@ export function inAmperes(bands, perUnit) {
     const factor = band.base === "A" ? 1 : perUnit(band);
     if (!factor) return band;
     const scaled = (edge) =>
-      edge && { ...edge, parts: edge.parts.map((part) => ({ ...part, current: part.current.map((value) => value * factor) })) };
+      edge && {
+        ...edge,
+        parts: edge.parts.map((part) => ({ ...part, current: part.current.map((value) => value * factor) })),
+      };
     return { ...band, base: "A", fast: scaled(band.fast), slow: scaled(band.slow), mean: scaled(band.mean) };
   });
 }

@@ -1,13 +1,12 @@
 // The desk: one sheet being read. The strip on top, the sheet left, what is open in the middle, the twin right.
 
-import { edgesOf } from "./bands.js";
 import { Cursor } from "./cursor.js";
 import { el, fill, settled } from "./dom.js";
 import { Draft } from "./draft.js";
 import { drawerIs, refreshDrawer, toggleDrawer } from "./drawer.js";
 import { findingsList, summary } from "./findings.js";
 import { historyList } from "./history.js";
-import { isOf, limitsOf } from "./limits.js";
+import { isOf } from "./limits.js";
 import { OpenList } from "./open-list.js";
 import { pagesOf } from "./pages.js";
 import { Parts } from "./parts.js";
@@ -16,8 +15,10 @@ import { Progress } from "./progress.js";
 import { keepPlace } from "./route.js";
 import { said } from "./say.js";
 import { SheetPane } from "./sheet.js";
+import { Shown } from "./shown.js";
 import { Store } from "./store.js";
 import { Strip } from "./strip.js";
+import { Together } from "./together.js";
 import { TwinPane } from "./twin.js";
 import { WorksheetText } from "./worksheet.js";
 
@@ -30,8 +31,10 @@ export class Desk {
     this.bare = false;
     this.wantedView = viewFrom(place);
     this.strip = new Strip(this);
+    this.shown = new Shown(this.draft, () => this.strip.index);
     this.sheet = new SheetPane(this);
     this.twin = new TwinPane(this);
+    this.together = new Together(this.draft, this.sheet, this.twin);
     this.openList = new OpenList(this);
     this.parts = new Parts(this);
     this.progress = new Progress(this.draft);
@@ -40,7 +43,15 @@ export class Desk {
     this.findings = el("section", { class: "checks", "aria-label": "Checks" });
     this.pages = el("div", { class: "pages" });
     this.sheet.node.append(this.pages);
-    const middle = el("section", { class: "middle", "aria-label": "What was read" }, this.progress.node, this.openList.node, this.store.node, this.parts.node, this.findings);
+    const middle = el(
+      "section",
+      { class: "middle", "aria-label": "What was read" },
+      this.progress.node,
+      this.openList.node,
+      this.store.node,
+      this.parts.node,
+      this.findings,
+    );
     const views = el("div", { class: "views" }, this.sheet.node, middle, this.twin.node);
     this.name = el("h1", { class: "unseen" }, "Sheet");
     this.node = el("div", { class: "desk" }, this.name, this.strip.node, views);
@@ -85,59 +96,23 @@ export class Desk {
   }
 
   #checks() {
-    const findings = this.#ownFindings();
+    const findings = this.shown.findings;
     const told = JSON.stringify(findings);
     if (told === this.findingsShown) return;
     this.findingsShown = told;
-    fill(this.findings, el("h2", {}, "Checks"), findings.length > 0 && el("p", { class: "hint" }, `${summary(findings)}.`), findingsList(findings, (finding) => this.#look(finding)));
+    fill(
+      this.findings,
+      el("h2", {}, "Checks"),
+      findings.length > 0 && el("p", { class: "hint" }, `${summary(findings)}.`),
+      findingsList(findings, (finding) => this.#look(finding)),
+    );
   }
 
   #look(finding) {
     this.twin.chosen = finding;
-    const limit = this.shownLimits().find((each) => isOf(each, finding));
+    const limit = this.shown.limits.find((each) => isOf(each, finding));
     if (limit) this.cursor.atValues([limit.current, limit.time], "finding");
     else this.twin.canvas.redraw();
-  }
-
-  get shownDevice() {
-    return this.draft.state?.data?.devices?.[this.strip.index] ?? null;
-  }
-
-  /** Bands of the device the strip shows; of the first of a series. */
-  shownBands() {
-    const bands = this.draft.reading?.bands ?? [];
-    const key = this.#shownKey(bands.map((band) => band.device));
-    return bands.filter((band) => band.device === key);
-  }
-
-  /** Bands of the other devices on the sheet, each form once: a series has one band for all. */
-  otherBands() {
-    const shown = this.shownBands();
-    const seen = new Set(shown.map(formOf));
-    return (this.draft.reading?.bands ?? []).filter((band) => {
-      const form = formOf(band);
-      if (seen.has(form) || band.base !== shown[0]?.base) return false;
-      return seen.add(form);
-    });
-  }
-
-  #shownKey(keys) {
-    const device = this.shownDevice;
-    if (!device?.key || keys.includes(device.key)) return device?.key ?? keys[0];
-    const rating = device.ratings?.[0];
-    const own = rating === undefined ? null : device.key.replace("{rating}", String(rating));
-    return keys.includes(own) ? own : keys[0];
-  }
-
-  #ownFindings() {
-    const { findings = [] } = this.draft.state ?? {};
-    const key = this.#shownKey(findings.map((each) => each.device));
-    return findings.filter((each) => each.device === key);
-  }
-
-  shownLimits() {
-    const { limits = [] } = this.draft.state ?? {};
-    return limitsOf(limits, this.#shownKey(limits.map((each) => each.device)));
   }
 
   choose(index) {
@@ -174,42 +149,15 @@ export class Desk {
     this.plate.update();
   }
 
-  // The views move together. ---------------------------------------------------------------------------------------
-
   sheetMoved() {
     this.remember?.();
-    const { plane } = this.draft;
-    if (!plane || this.leading) return;
-    const [x0, y0, x1, y1] = this.sheet.view.box;
-    const [fx0, fy0, fx1, fy1] = plane.frame;
-    const seen = [Math.max(x0, fx0), Math.max(y0, fy0), Math.min(x1, fx1), Math.min(y1, fy1)];
-    if (seen[2] - seen[0] < 1e-6 || seen[3] - seen[1] < 1e-6) return;
-    const corners = [[seen[0], seen[1]], [seen[2], seen[3]], [seen[0], seen[3]], [seen[2], seen[1]]].map((place) => plane.scaled(place));
-    const whole = x0 <= fx0 && y0 <= fy0 && x1 >= fx1 && y1 >= fy1;
-    this.twin.follow(whole ? null : [0, 1].map((i) => [Math.min(...corners.map((each) => each[i])), Math.max(...corners.map((each) => each[i]))]));
-  }
-
-  twinMoved(window, full) {
-    const { plane } = this.draft;
-    if (!plane || !this.sheet.view?.width) return;
-    const whole = window.every(([low, high], i) => high - low > 0.999 * (full[i][1] - full[i][0]));
-    const corners = window[0].flatMap((u) => window[1].map((v) => plane.placeOfScaled([u, v]))).filter(Boolean);
-    if (!corners.length) return;
-    this.leading = true;
-    if (whole) this.sheet.whole();
-    else {
-      this.sheet.view.show([...[0, 1].map((i) => Math.min(...corners.map((each) => each[i]))), ...[0, 1].map((i) => Math.max(...corners.map((each) => each[i])))], 0);
-      this.sheet.moved();
-    }
-    this.leading = false;
+    this.together?.sheetMoved();
   }
 
   #remember() {
     const { view } = this.sheet;
     if (view?.width) keepPlace({ x: view.x.toFixed(1), y: view.y.toFixed(1), z: view.scale.toPrecision(6) });
   }
-
-  // Drawers. -------------------------------------------------------------------------------------------------------
 
   showWorksheet() {
     if (!this.draft.state) return;
@@ -222,14 +170,9 @@ export class Desk {
   }
 
   giveUp() {
-    this.sheet.giveUp();
+    this.sheet.acts.giveUp();
     this.choose(null);
   }
-}
-
-/** What tells one band's lines from another's: where each begins and ends. */
-function formOf(band) {
-  return JSON.stringify(edgesOf(band).map(([edge, { parts }]) => [edge, parts[0].current[0], parts.at(-1).current.at(-1)]));
 }
 
 function viewFrom({ x, y, z }) {

@@ -1,7 +1,5 @@
 // Elements are made here and nowhere else: text always goes in as text, so nothing a file says becomes markup.
 
-const SVG = "http://www.w3.org/2000/svg";
-
 function dress(node, attributes, children) {
   for (const [name, value] of Object.entries(attributes ?? {})) {
     if (value === null || value === undefined || value === false) continue;
@@ -18,16 +16,14 @@ export function el(name, attributes, ...children) {
   return dress(document.createElement(name), attributes, children);
 }
 
-export function svg(name, attributes, ...children) {
-  return dress(document.createElementNS(SVG, name), attributes, children);
-}
-
 /** Replace what `parent` holds; focus stays where it was if an element with the same data-focus is there again. */
 export function fill(parent, ...children) {
   const held = parent.contains(document.activeElement) ? document.activeElement : null;
   const name = held?.closest("[data-focus]")?.dataset.focus;
   const typed = held && "value" in held ? held.value : null;
-  parent.replaceChildren(...children.flat(Infinity).filter((child) => child instanceof Node || typeof child === "string"));
+  parent.replaceChildren(
+    ...children.flat(Infinity).filter((child) => child instanceof Node || typeof child === "string"),
+  );
   const again = name && parent.querySelector(`[data-focus="${CSS.escape(name)}"]`);
   if (!again) return;
   if (typed !== null && again.tagName === "INPUT" && again.type === "text") again.value = typed;
@@ -49,18 +45,5 @@ export function settled(act, wait) {
   return (...given) => {
     clearTimeout(timer);
     timer = setTimeout(() => act(...given), wait);
-  };
-}
-
-/** A call of `act` at most once a frame. */
-export function eachFrame(act) {
-  let due = false;
-  return () => {
-    if (due) return;
-    due = true;
-    requestAnimationFrame(() => {
-      due = false;
-      act();
-    });
   };
 }

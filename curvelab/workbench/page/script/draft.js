@@ -69,9 +69,11 @@ export class Draft extends EventTarget {
       this.#take(await post(query(`${this.path}/changes`, { have: this.state.reading_version }), body));
     } catch (error) {
       if (!(error instanceof Refusal)) throw error;
-      if (error.status !== 409) return refused(error), false;
+      if (error.status !== 409) return (refused(error), false);
       this.#take(await get(this.path));
-      said("This sheet was changed in another tab. What you see now is the newest state; please do your last step again.");
+      said(
+        "This sheet was changed in another tab. What you see now is the newest state; please do your last step again.",
+      );
       return false;
     }
     const last = this.state.history[this.state.position];

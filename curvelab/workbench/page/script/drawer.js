@@ -10,7 +10,12 @@ export function toggleDrawer(name, title, build, opener = document.activeElement
   closeDrawer();
   if (was === name) return null;
   const body = el("div", { class: "drawer-body" });
-  const head = el("header", {}, el("h2", { id: "drawer-title" }, title), button("Close", closeDrawer, { class: "plain" }));
+  const head = el(
+    "header",
+    {},
+    el("h2", { id: "drawer-title" }, title),
+    button("Close", closeDrawer, { class: "plain" }),
+  );
   const node = el("aside", { class: `drawer ${name}`, "aria-labelledby": "drawer-title", tabindex: -1 }, head, body);
   node.addEventListener("keydown", (event) => {
     if (event.key !== "Escape") return;

@@ -5,8 +5,8 @@ const WHEEL = 0.0018;
 const STEP = 1.35;
 const ARROWS = { ArrowLeft: [-1, 0], ArrowRight: [1, 0], ArrowUp: [0, -1], ArrowDown: [0, 1] };
 
-/** Wire a canvas to its pane: view, moved(), pointed(pixel), passes(pixel), not(pixel), leaveOut(box), say(pixel). */
-export function gesturesOn(canvas, pane) {
+/** Wire a canvas to its pane (what moves the view and the cross) and to what a person says there. */
+export function gesturesOn(canvas, pane, acts) {
   const fingers = new Map();
   let press = null;
   let clicked = 0;
@@ -29,7 +29,7 @@ export function gesturesOn(canvas, pane) {
     if (!press || !fingers.has(event.pointerId)) return pane.pointed(at, event.shiftKey);
     if (!press.moved && Math.hypot(at[0] - press.from[0], at[1] - press.from[1]) < SLACK) return undefined;
     press.moved = true;
-    if (press.box) pane.boxing(press.from, at);
+    if (press.box) acts.boxing(press.from, at);
     else pane.panned(at[0] - press.last[0], at[1] - press.last[1]);
     press.last = at;
     return undefined;
@@ -51,27 +51,31 @@ export function gesturesOn(canvas, pane) {
     fingers.delete(event.pointerId);
     const held = press;
     press = null;
-    if (!held || event.type === "pointercancel") return pane.boxing(null);
+    if (!held || event.type === "pointercancel") return acts.boxing(null);
     const at = pixel(event);
-    if (held.moved) return held.box ? pane.leaveOut(held.from, at) : undefined;
+    if (held.moved) return held.box ? acts.leaveOut(held.from, at) : undefined;
     if (event.button !== 0) return undefined;
     // The second click of a double-click asks for a value; the first has already been taken as a click on a line.
     if (event.timeStamp - clicked < 350) {
       clicked = 0;
-      return pane.say(at);
+      return acts.say(at);
     }
     clicked = event.timeStamp;
-    return event.shiftKey ? pane.not(at) : pane.passes(at);
+    return event.shiftKey ? acts.not(at) : acts.passes(at);
   };
   canvas.addEventListener("pointerup", release);
   canvas.addEventListener("pointercancel", release);
   canvas.addEventListener("pointerleave", () => press || pane.left());
 
-  canvas.addEventListener("wheel", (event) => {
-    event.preventDefault();
-    const lines = event.deltaMode === 1 ? 16 : 1;
-    pane.zoomed(Math.exp(-event.deltaY * lines * WHEEL * (event.ctrlKey ? 4 : 1)), pixel(event));
-  }, { passive: false });
+  canvas.addEventListener(
+    "wheel",
+    (event) => {
+      event.preventDefault();
+      const lines = event.deltaMode === 1 ? 16 : 1;
+      pane.zoomed(Math.exp(-event.deltaY * lines * WHEEL * (event.ctrlKey ? 4 : 1)), pixel(event));
+    },
+    { passive: false },
+  );
 
   canvas.addEventListener("keydown", (event) => {
     if (event.ctrlKey || event.metaKey || event.altKey) return;
@@ -81,9 +85,9 @@ export function gesturesOn(canvas, pane) {
     else if (event.key === "+" || event.key === "=") pane.zoomed(STEP, cross);
     else if (event.key === "-") pane.zoomed(1 / STEP, cross);
     else if (event.key === "0") pane.whole();
-    else if (event.key === "Enter") event.shiftKey ? pane.not(cross) : pane.passes(cross);
-    else if (event.key === "v") pane.say(cross);
-    else if (event.key === "b") pane.corner(cross);
+    else if (event.key === "Enter") event.shiftKey ? acts.not(cross) : acts.passes(cross);
+    else if (event.key === "v") acts.say(cross);
+    else if (event.key === "b") acts.corner(cross);
     else return;
     event.preventDefault();
     event.stopPropagation();

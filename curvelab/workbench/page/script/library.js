@@ -26,13 +26,39 @@ export class Library {
   constructor(values) {
     this.wanted = { text: "", kind: "", state: "", sort: "key", page: "1", ...values };
     this.chosen = (values.with ?? "").split(",").filter(Boolean).slice(0, MOST);
-    this.search = el("input", { type: "search", id: "search", placeholder: "Key, maker, series, standard", autocomplete: "off", value: this.wanted.text, oninput: settled(() => this.#filter({ text: this.search.value }), 180) });
-    const pick = (name, words) => el("select", { onchange: (event) => this.#filter({ [name]: event.target.value }) }, el("option", { value: "" }, "any"), words.map((word) => el("option", { value: word, selected: word === this.wanted[name] }, word)));
+    this.search = el("input", {
+      type: "search",
+      id: "search",
+      placeholder: "Key, maker, series, standard",
+      autocomplete: "off",
+      value: this.wanted.text,
+      oninput: settled(() => this.#filter({ text: this.search.value }), 180),
+    });
+    const pick = (name, words) =>
+      el(
+        "select",
+        { onchange: (event) => this.#filter({ [name]: event.target.value }) },
+        el("option", { value: "" }, "any"),
+        words.map((word) => el("option", { value: word, selected: word === this.wanted[name] }, word)),
+      );
     this.sum = el("p", { class: "hint", role: "status" });
     this.table = el("div", { class: "table-part", tabindex: 0, role: "region", "aria-label": "Devices" });
     this.comparison = new Comparison();
-    const filters = el("form", { class: "filters", role: "search", onsubmit: (event) => event.preventDefault() }, field("Find", this.search), field("Kind", pick("kind", Object.keys(KINDS))), field("State", pick("state", STATES)), this.sum);
-    this.node = el("div", { class: "library" }, el("h1", { class: "unseen" }, "Library"), el("div", { class: "library-left" }, filters, this.table), this.comparison.node);
+    const filters = el(
+      "form",
+      { class: "filters", role: "search", onsubmit: (event) => event.preventDefault() },
+      field("Find", this.search),
+      field("Kind", pick("kind", Object.keys(KINDS))),
+      field("State", pick("state", STATES)),
+      this.sum,
+    );
+    this.node = el(
+      "div",
+      { class: "library" },
+      el("h1", { class: "unseen" }, "Library"),
+      el("div", { class: "library-left" }, filters, this.table),
+      this.comparison.node,
+    );
   }
 
   async open() {
@@ -71,12 +97,45 @@ export class Library {
     const filtered = this.wanted.text || this.wanted.kind || this.wanted.state;
     this.sum.textContent = total ? count(total, "device") : "";
     if (!total) return void fill(this.table, this.#empty(filtered));
-    fill(this.table, el("table", {}, el("thead", {}, el("tr", {}, el("th", { scope: "col" }, el("span", { class: "unseen" }, "Side by side")), COLUMNS.map((column) => this.#head(column)))), el("tbody", {}, devices.map((device) => this.#row(device)))), total > PAGE && this.#pages(total));
+    fill(
+      this.table,
+      el(
+        "table",
+        {},
+        el(
+          "thead",
+          {},
+          el(
+            "tr",
+            {},
+            el("th", { scope: "col" }, el("span", { class: "unseen" }, "Side by side")),
+            COLUMNS.map((column) => this.#head(column)),
+          ),
+        ),
+        el(
+          "tbody",
+          {},
+          devices.map((device) => this.#row(device)),
+        ),
+      ),
+      total > PAGE && this.#pages(total),
+    );
   }
 
   #empty(filtered) {
-    if (filtered) return el("div", { class: "empty" }, el("p", {}, "No device is like that."), button("Show all", () => (location.hash = "#/library", location.reload())));
-    return el("div", { class: "empty" }, el("p", {}, "The library is empty. Read a sheet and store it; a demo sheet will do."), el("a", { href: "#/" }, "Open a sheet"));
+    if (filtered)
+      return el(
+        "div",
+        { class: "empty" },
+        el("p", {}, "No device is like that."),
+        button("Show all", () => ((location.hash = "#/library"), location.reload())),
+      );
+    return el(
+      "div",
+      { class: "empty" },
+      el("p", {}, "The library is empty. Read a sheet and store it; a demo sheet will do."),
+      el("a", { href: "#/" }, "Open a sheet"),
+    );
   }
 
   #head([column, words]) {
@@ -84,16 +143,33 @@ export class Library {
     const falling = this.wanted.sort === `-${column}`;
     const here = falling || this.wanted.sort === column;
     const turn = () => this.#filter({ sort: here && !falling ? `-${column}` : column });
-    return el("th", { scope: "col", "aria-sort": here ? (falling ? "descending" : "ascending") : null }, button(words, turn, { class: "plain sort", "data-focus": `sort-${column}` }), here && el("span", { "aria-hidden": "true" }, falling ? " ↓" : " ↑"));
+    return el(
+      "th",
+      { scope: "col", "aria-sort": here ? (falling ? "descending" : "ascending") : null },
+      button(words, turn, { class: "plain sort", "data-focus": `sort-${column}` }),
+      here && el("span", { "aria-hidden": "true" }, falling ? " ↓" : " ↑"),
+    );
   }
 
   #row(device) {
     const { key } = device;
     const place = this.chosen.findIndex((each) => each.split("@")[0] === key);
-    const tick = el("input", { type: "checkbox", checked: place >= 0, "aria-label": `Side by side: ${key}`, "data-focus": `tick-${key}`, onchange: (event) => this.#tick(key, event.target.checked) });
+    const tick = el("input", {
+      type: "checkbox",
+      checked: place >= 0,
+      "aria-label": `Side by side: ${key}`,
+      "data-focus": `tick-${key}`,
+      onchange: (event) => this.#tick(key, event.target.checked),
+    });
     const rated = device.rated_current_a !== null ? current(device.rated_current_a) : "";
-    const residual = device.rated_residual_current_a !== null && device.rated_residual_current_a !== undefined ? current(device.rated_residual_current_a) : "";
-    const letter = place >= 0 && this.chosen.length > 1 ? el("span", { class: `letter d${place + 1}`, "aria-hidden": "true" }, "ABCDEFGH"[place]) : null;
+    const residual =
+      device.rated_residual_current_a !== null && device.rated_residual_current_a !== undefined
+        ? current(device.rated_residual_current_a)
+        : "";
+    const letter =
+      place >= 0 && this.chosen.length > 1
+        ? el("span", { class: `letter d${place + 1}`, "aria-hidden": "true" }, "ABCDEFGH"[place])
+        : null;
     return el(
       "tr",
       { class: place >= 0 ? "here" : "" },
@@ -114,7 +190,13 @@ export class Library {
     const page = Number(this.wanted.page);
     const last = Math.ceil(total / PAGE);
     const to = (number) => () => this.#filter({ page: String(number) });
-    return el("nav", { class: "table-pages", "aria-label": "Pages of the table" }, button("Before", to(page - 1), { disabled: page <= 1, "data-focus": "table-before" }), el("span", {}, `${page} of ${last}`), button("Next", to(page + 1), { disabled: page >= last, "data-focus": "table-next" }));
+    return el(
+      "nav",
+      { class: "table-pages", "aria-label": "Pages of the table" },
+      button("Before", to(page - 1), { disabled: page <= 1, "data-focus": "table-before" }),
+      el("span", {}, `${page} of ${last}`),
+      button("Next", to(page + 1), { disabled: page >= last, "data-focus": "table-next" }),
+    );
   }
 
   #tick(key, on) {

@@ -6,19 +6,30 @@ const SETTLED = ["meets", "not covered"];
 
 /** The limits of one device, as the process places them, with what is written beside each. */
 export function limitsOf(limits, device) {
-  return limits.filter((limit) => limit.device === device).map((limit) => {
-    const settled = SETTLED.includes(limit.outcome) || limit.advisory;
-    const words = plain(limit.multiple);
-    return { ...limit, settled, words: settled ? words : `${words}, ${limit.outcome}` };
-  });
+  return limits
+    .filter((limit) => limit.device === device)
+    .map((limit) => {
+      const settled = SETTLED.includes(limit.outcome) || limit.advisory;
+      const words = plain(limit.multiple);
+      return { ...limit, settled, words: settled ? words : `${words}, ${limit.outcome}` };
+    });
 }
 
 export const isOf = (limit, finding) =>
-  finding !== null && limit.rule === finding.rule && limit.device === finding.device && limit.side === finding.permitted && limit.text === finding.requirement;
+  finding !== null &&
+  limit.rule === finding.rule &&
+  limit.device === finding.device &&
+  limit.side === finding.permitted &&
+  limit.text === finding.requirement;
 
 /** The bracket's corners and where its words go, in pixels about its place. */
 export function bracketOf({ of, side }, size = 7) {
-  const down = [[-size, size * 0.6], [-size, 0], [size, 0], [size, size * 0.6]];
+  const down = [
+    [-size, size * 0.6],
+    [-size, 0],
+    [size, 0],
+    [size, size * 0.6],
+  ];
   const turns = {
     current: { at_most: ([x, y]) => [-y, x], at_least: ([x, y]) => [y, x] },
     time: { at_most: (corner) => corner, at_least: ([x, y]) => [x, -y] },

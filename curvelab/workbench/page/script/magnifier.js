@@ -24,7 +24,12 @@ export class Magnifier {
       context.lineWidth = 1;
       context.beginPath();
       const half = SIZE / 2;
-      for (const [dx, dy] of [[1, 0], [-1, 0], [0, 1], [0, -1]]) {
+      for (const [dx, dy] of [
+        [1, 0],
+        [-1, 0],
+        [0, 1],
+        [0, -1],
+      ]) {
         context.moveTo(half + 6 * dx, half + 6 * dy);
         context.lineTo(half + 60 * dx, half + 60 * dy);
       }

@@ -22,7 +22,17 @@ export class Marks {
       const given = state?.data?.axes?.[axis]?.marks ?? [];
       const read = reading?.axes?.[axis];
       const told = !state.read_from_sheet.includes(`axes.${axis}.marks`);
-      given.forEach((mark, index) => marks.push({ axis, index, told, at: mark.at, value: mark.value, unit: mark.unit ?? state.data.axes[axis].unit ?? read?.unit ?? "", direction: read?.direction ?? (axis === "current" ? "x" : "y") }));
+      given.forEach((mark, index) =>
+        marks.push({
+          axis,
+          index,
+          told,
+          at: mark.at,
+          value: mark.value,
+          unit: mark.unit ?? state.data.axes[axis].unit ?? read?.unit ?? "",
+          direction: read?.direction ?? (axis === "current" ? "x" : "y"),
+        }),
+      );
     }
     return marks;
   }
@@ -33,7 +43,10 @@ export class Marks {
     if (text !== this.shown) {
       this.shown = text;
       this.handles = marks.map((mark) => this.#handle(mark));
-      fill(this.node, this.handles.map((each) => each.node));
+      fill(
+        this.node,
+        this.handles.map((each) => each.node),
+      );
     }
     this.place();
   }
@@ -51,7 +64,11 @@ export class Marks {
   #handle(mark) {
     const words = written(mark);
     const name = `Mark ${words} on the ${axisName(mark.axis)} axis. Arrow keys move it, Enter says its value, Delete takes it away.`;
-    const node = button("", null, { class: `mark along-${mark.direction} ${mark.told ? "told" : ""}`, "aria-label": name, "data-focus": `mark-${mark.axis}-${mark.index}` });
+    const node = button("", null, {
+      class: `mark along-${mark.direction} ${mark.told ? "told" : ""}`,
+      "aria-label": name,
+      "data-focus": `mark-${mark.axis}-${mark.index}`,
+    });
     node.append(el("span", { class: "mark-words", "aria-hidden": "true" }, words));
     const handle = { node, mark: { ...mark, at: [...mark.at] } };
     node.addEventListener("pointerdown", (event) => this.#drag(handle, event));
@@ -93,14 +110,18 @@ export class Marks {
     const { mark } = handle;
     const arrow = ARROWS[event.key];
     if (arrow) {
-      const step = (event.shiftKey ? 10 : 1) / Math.max(1, this.pane.view.scale / this.pane.view.unitPixels) / this.pane.view.unitPixels;
+      const step =
+        (event.shiftKey ? 10 : 1) /
+        Math.max(1, this.pane.view.scale / this.pane.view.unitPixels) /
+        this.pane.view.unitPixels;
       mark.at = mark.at.map((each, i) => each + arrow[i] * step);
       this.place();
       this.pane.glass(mark.at);
       clearTimeout(handle.timer);
       handle.timer = setTimeout(() => this.#commit(handle), REST_MS);
     } else if (event.key === "Enter") this.pane.askMark(mark);
-    else if (event.key === "Delete" || event.key === "Backspace") this.pane.draft.change({ kind: "remove-mark", axis: mark.axis, index: mark.index });
+    else if (event.key === "Delete" || event.key === "Backspace")
+      this.pane.draft.change({ kind: "remove-mark", axis: mark.axis, index: mark.index });
     else return;
     event.preventDefault();
     event.stopPropagation();
@@ -108,7 +129,12 @@ export class Marks {
 
   async #commit(handle) {
     const { axis, index, at } = handle.mark;
-    const kept = await this.pane.draft.change({ kind: "move-mark", axis, index, at: at.map((each) => Number(each.toFixed(2))) });
+    const kept = await this.pane.draft.change({
+      kind: "move-mark",
+      axis,
+      index,
+      at: at.map((each) => Number(each.toFixed(2))),
+    });
     if (!kept) {
       this.shown = "";
       this.update();

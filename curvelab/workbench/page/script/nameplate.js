@@ -15,8 +15,20 @@ const FIELDS = [
 ];
 
 export function platesOf({ nameplate }) {
-  const told = FIELDS.filter(([name]) => nameplate[name] !== null && nameplate[name] !== undefined && nameplate[name] !== "");
-  const breaking = (nameplate.breaking ?? []).map((each) => [each.quantity, `${current(each.value_a)}${each.voltage_v ? ` at ${each.voltage_v}\u00a0V` : ""}`]);
-  const rows = [...told.map(([name, label, write]) => [label, write ? write(nameplate[name]) : nameplate[name]]), ...breaking];
-  return el("dl", { class: "plates" }, rows.map(([label, value]) => el("div", {}, el("dt", {}, label), el("dd", {}, String(value)))));
+  const told = FIELDS.filter(
+    ([name]) => nameplate[name] !== null && nameplate[name] !== undefined && nameplate[name] !== "",
+  );
+  const breaking = (nameplate.breaking ?? []).map((each) => [
+    each.quantity,
+    `${current(each.value_a)}${each.voltage_v ? ` at ${each.voltage_v}\u00a0V` : ""}`,
+  ]);
+  const rows = [
+    ...told.map(([name, label, write]) => [label, write ? write(nameplate[name]) : nameplate[name]]),
+    ...breaking,
+  ];
+  return el(
+    "dl",
+    { class: "plates" },
+    rows.map(([label, value]) => el("div", {}, el("dt", {}, label), el("dd", {}, String(value)))),
+  );
 }

@@ -27,25 +27,54 @@ export class OpenList {
     const text = JSON.stringify([this.entries, this.at, this.asking, state.work.state, state.can_store]);
     if (text === this.shown) return;
     this.shown = text;
-    fill(this.node, this.#head(), el("ol", {}, this.entries.map((entry) => this.#entry(entry))));
+    fill(
+      this.node,
+      this.#head(),
+      el(
+        "ol",
+        {},
+        this.entries.map((entry) => this.#entry(entry)),
+      ),
+    );
   }
 
   #head() {
     const { work } = this.desk.draft.state;
     const many = this.entries.length;
-    const words = many ? count(many, "thing still open", "things still open") : work.state === "ready" ? "Nothing is open" : "Reading";
-    const hint = many ? "Each is settled by one or two answers, or accepted with a reason." : work.state === "ready" ? "Look it over once more, then store." : "What is open appears here.";
-    return [el("div", { role: "status" }, el("h2", { class: many ? "warm" : "" }, words)), el("p", { class: "hint" }, hint)];
+    const words = many
+      ? count(many, "thing still open", "things still open")
+      : work.state === "ready"
+        ? "Nothing is open"
+        : "Reading";
+    const hint = many
+      ? "Each is settled by one or two answers, or accepted with a reason."
+      : work.state === "ready"
+        ? "Look it over once more, then store."
+        : "What is open appears here.";
+    return [
+      el("div", { role: "status" }, el("h2", { class: many ? "warm" : "" }, words)),
+      el("p", { class: "hint" }, hint),
+    ];
   }
 
   #entry(entry) {
     const here = entry.id === this.at;
-    const go = button("", () => this.goTo(entry), { class: "entry-go", "data-focus": `open-${entry.id}`, "aria-expanded": here });
+    const go = button("", () => this.goTo(entry), {
+      class: "entry-go",
+      "data-focus": `open-${entry.id}`,
+      "aria-expanded": here,
+    });
     const cut = this.#cut(entry);
     if (cut) go.append(cut);
     go.append(el("span", { class: "entry-text" }, plain(entry.text)));
     const own = entry.answers.map((answer, index) => this.#answer(entry, answer, index));
-    const strip = entry.kind === "device" && !own.length && button("Fill in what is marked above", () => this.desk.strip.begin(), { class: "strong", "data-focus": `answer-${entry.id}-0` });
+    const strip =
+      entry.kind === "device" &&
+      !own.length &&
+      button("Fill in what is marked above", () => this.desk.strip.begin(), {
+        class: "strong",
+        "data-focus": `answer-${entry.id}-0`,
+      });
     const answers = here && el("div", { class: "answers" }, own, strip);
     return el("li", { class: here ? "entry here" : "entry" }, go, answers);
   }
@@ -55,7 +84,13 @@ export class OpenList {
     const { draft } = this.desk;
     const perUnit = draft.state.sheet?.pixels?.per_unit ?? 1;
     const [x, y] = entry.at;
-    const path = query(`/api/drafts/${part(draft.id)}/cut.png`, { x, y, radius: (CUT.radius / perUnit).toFixed(1), zoom: CUT.zoom, page: draft.state.sheet?.page });
+    const path = query(`/api/drafts/${part(draft.id)}/cut.png`, {
+      x,
+      y,
+      radius: (CUT.radius / perUnit).toFixed(1),
+      zoom: CUT.zoom,
+      page: draft.state.sheet?.page,
+    });
     return el("img", { src: path, alt: "", class: "cut", width: 64, height: 64, loading: "lazy" });
   }
 
@@ -79,20 +114,29 @@ export class OpenList {
 
   async #byPlace(answer, entry) {
     if (entry.curve !== null && entry.curve !== undefined) this.desk.choose(entry.curve);
-    const at = await this.desk.sheet.nextPlace();
+    const at = await this.desk.sheet.acts.nextPlace();
     if (at) await this.desk.draft.change({ ...answer.change, at });
   }
 
   #asked(entry, answer) {
     const value = answer.asks === "value";
-    const input = el("input", { type: "text", autocomplete: "off", required: true, "aria-label": value ? "Value" : "Reason", placeholder: value ? "Value" : "Reason", "data-focus": `asked-${entry.id}` });
+    const input = el("input", {
+      type: "text",
+      autocomplete: "off",
+      required: true,
+      "aria-label": value ? "Value" : "Reason",
+      placeholder: value ? "Value" : "Reason",
+      "data-focus": `asked-${entry.id}`,
+    });
     const name = value ? null : nameField();
     const alike = value ? 0 : this.entries.filter((each) => each.code === entry.code && each.at).length - 1;
     const all = alike > 0 && el("input", { type: "checkbox" });
     const submit = async (event) => {
       event.preventDefault();
       const text = input.value.trim();
-      const given = value ? valueInto(answer.change, typedNumber(text) ?? text) : { reason: text, name: ownName(name.input.value) };
+      const given = value
+        ? valueInto(answer.change, typedNumber(text) ?? text)
+        : { reason: text, name: ownName(name.input.value) };
       if (!text || (name && !given.name)) return said(value ? "Say a value." : "Say a reason and your name.");
       const { at, ...everywhere } = answer.change;
       const change = all?.checked ? everywhere : answer.change;
@@ -105,7 +149,14 @@ export class OpenList {
       this.asking = null;
       this.update();
     };
-    return el("form", { class: "asked", onsubmit: submit, onkeydown: cancel }, input, name?.node, all && el("label", { class: "check" }, all, `and ${count(alike, "other", "others")} like it`), el("button", { type: "submit", class: "strong" }, value ? "Say so" : "Accept"));
+    return el(
+      "form",
+      { class: "asked", onsubmit: submit, onkeydown: cancel },
+      input,
+      name?.node,
+      all && el("label", { class: "check" }, all, `and ${count(alike, "other", "others")} like it`),
+      el("button", { type: "submit", class: "strong" }, value ? "Say so" : "Accept"),
+    );
   }
 
   goTo(entry) {

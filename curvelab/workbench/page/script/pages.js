@@ -12,10 +12,23 @@ export function pagesOf(node, draft) {
   fill(
     node,
     many && [
-      button("‹", () => to(sheet.page - 1), { "aria-label": "Page before", disabled: sheet.page <= 1, "data-focus": "page-before" }),
+      button("‹", () => to(sheet.page - 1), {
+        "aria-label": "Page before",
+        disabled: sheet.page <= 1,
+        "data-focus": "page-before",
+      }),
       el("span", {}, `Page ${sheet.page} of ${sheet.pages}`),
-      button("›", () => to(sheet.page + 1), { "aria-label": "Next page", disabled: sheet.page >= sheet.pages, "data-focus": "page-next" }),
+      button("›", () => to(sheet.page + 1), {
+        "aria-label": "Next page",
+        disabled: sheet.page >= sheet.pages,
+        "data-focus": "page-next",
+      }),
     ],
-    plots.map(({ plot }) => button(`Plot ${plot}`, () => draft.change({ kind: "plot", plot }), { "aria-pressed": plot === sheet.plot, "data-focus": `plot-${plot}` })),
+    plots.map(({ plot }) =>
+      button(`Plot ${plot}`, () => draft.change({ kind: "plot", plot }), {
+        "aria-pressed": plot === sheet.plot,
+        "data-focus": `plot-${plot}`,
+      }),
+    ),
   );
 }

@@ -70,6 +70,18 @@ export function stroke(context, points, { colour, width = 1, dash = [], alpha = 
   context.restore();
 }
 
+/** A straight line from (x0, y0) to (x1, y1). */
+export function line(context, [x0, y0, x1, y1], look) {
+  stroke(
+    context,
+    [
+      [x0, y0],
+      [x1, y1],
+    ],
+    look,
+  );
+}
+
 export function area(context, points, { colour, alpha = 1 }) {
   if (points.length < 3) return;
   context.save();

@@ -5,7 +5,13 @@ import { el, field } from "./dom.js";
 const KEPT = "curvelab-name";
 
 export function nameField(label = "Your name") {
-  const input = el("input", { type: "text", autocomplete: "name", required: true, maxlength: 120, value: localStorage.getItem(KEPT) ?? "" });
+  const input = el("input", {
+    type: "text",
+    autocomplete: "name",
+    required: true,
+    maxlength: 120,
+    value: localStorage.getItem(KEPT) ?? "",
+  });
   return { node: field(label, input), input };
 }
 

@@ -100,8 +100,16 @@ export class Plane {
   /** Scaled [lowest, highest] of both axes over the plot. */
   get extent() {
     const [x0, y0, x1, y1] = this.frame;
-    const corners = [[x0, y0], [x1, y0], [x0, y1], [x1, y1]].map((place) => this.scaled(place));
-    return [0, 1].map((i) => [Math.min(...corners.map((each) => each[i])), Math.max(...corners.map((each) => each[i]))]);
+    const corners = [
+      [x0, y0],
+      [x1, y0],
+      [x0, y1],
+      [x1, y1],
+    ].map((place) => this.scaled(place));
+    return [0, 1].map((i) => [
+      Math.min(...corners.map((each) => each[i])),
+      Math.max(...corners.map((each) => each[i])),
+    ]);
   }
 
   inside([x, y], margin = 0) {

@@ -28,7 +28,7 @@ export class Plate {
   }
 
   #lines({ values, place, from, near }, { plane }) {
-    const base = plane?.base ?? this.desk.shownBands()[0]?.base ?? "A";
+    const base = plane?.base ?? this.desk.shown.bands[0]?.base ?? "A";
     const name = plane?.quantity ?? "time";
     const deviation = place && plane?.deviation(place);
     const write = [(value) => current(value, base), (value) => quantity(value, name)];
@@ -37,9 +37,23 @@ export class Plate {
       const half = deviation ? NORMAL_95 * deviation[i] : null;
       return figure(write[i](value), half === null ? null : log ? 10 ** half - 1 : half / value);
     });
-    const rows = [el("div", { class: "plate-here" }, here.map((each) => el("span", {}, each)))];
+    const rows = [
+      el(
+        "div",
+        { class: "plate-here" },
+        here.map((each) => el("span", {}, each)),
+      ),
+    ];
     for (const [edge, answer] of this.#answers(values[0])) {
-      rows.push(el("div", { class: "plate-edge" }, el("span", { class: `stroke ${edge}` }), el("span", {}, EDGES[edge]), el("span", {}, said(answer, write[1]))));
+      rows.push(
+        el(
+          "div",
+          { class: "plate-edge" },
+          el("span", { class: `stroke ${edge}` }),
+          el("span", {}, EDGES[edge]),
+          el("span", {}, said(answer, write[1])),
+        ),
+      );
     }
     if (place && from === "sheet") {
       const act = near ? `Click: this ${EDGES[near.curve.edge]?.toLowerCase() ?? ""} line passes here` : null;
@@ -50,7 +64,7 @@ export class Plate {
 
   #answers(at) {
     const seen = new Map();
-    for (const band of this.desk.shownBands()) {
+    for (const band of this.desk.shown.bands) {
       for (const [edge, curve] of edgesOf(band)) {
         const answer = valueAt(curve, at, edge);
         if (!seen.get(edge)) seen.set(edge, answer);

@@ -21,7 +21,12 @@ export class Progress {
     clearTimeout(this.timer);
     this.since = null;
     this.node.hidden = work.state !== "cancelled";
-    if (!this.node.hidden) fill(this.node, el("span", {}, "Reading was stopped."), button("Read on", () => attempt(() => post(`${this.draft.path}/read`)), { class: "plain" }));
+    if (!this.node.hidden)
+      fill(
+        this.node,
+        el("span", {}, "Reading was stopped."),
+        button("Read on", () => attempt(() => post(`${this.draft.path}/read`)), { class: "plain" }),
+      );
     return undefined;
   }
 
@@ -33,7 +38,12 @@ export class Progress {
     if (this.since) return;
     this.since = Date.now();
     this.timer = setTimeout(() => {
-      fill(this.node, this.stage, this.bar, button("Stop", () => attempt(() => post(`${this.draft.path}/cancel`)), { class: "plain" }));
+      fill(
+        this.node,
+        this.stage,
+        this.bar,
+        button("Stop", () => attempt(() => post(`${this.draft.path}/cancel`)), { class: "plain" }),
+      );
       this.node.hidden = false;
     }, QUIET_MS);
   }

@@ -23,13 +23,31 @@ const QUESTIONS = [
     fields: [
       { name: "area_mm2", words: "Area, mm²" },
       { name: "material", words: "Material", of: ["copper", "aluminium"] },
-      { name: "insulation", words: "Insulation", of: ["pvc70", "pvc90", "xlpe90", "rubber60", "mineral70", "mineral105"] },
+      {
+        name: "insulation",
+        words: "Insulation",
+        of: ["pvc70", "pvc90", "xlpe90", "rubber60", "mineral70", "mineral105"],
+      },
       { name: "least_a", words: "Least fault, A" },
       { name: "greatest_a", words: "Greatest fault, A" },
     ],
   },
-  { path: "overload", words: "Protects a line against overload?", fields: [{ name: "design_a", words: "Design current, A" }, { name: "capacity_a", words: "Line carries, A" }] },
-  { path: "breaking", words: "Breaks the short circuit?", fields: [{ name: "prospective_a", words: "Prospective, A" }, { name: "voltage_v", words: "Voltage, V", first: "230" }] },
+  {
+    path: "overload",
+    words: "Protects a line against overload?",
+    fields: [
+      { name: "design_a", words: "Design current, A" },
+      { name: "capacity_a", words: "Line carries, A" },
+    ],
+  },
+  {
+    path: "breaking",
+    words: "Breaks the short circuit?",
+    fields: [
+      { name: "prospective_a", words: "Prospective, A" },
+      { name: "voltage_v", words: "Voltage, V", first: "230" },
+    ],
+  },
 ];
 
 const FIGURES = {
@@ -48,25 +66,51 @@ const FIGURES = {
 export function questionsOf(key, settings) {
   return QUESTIONS.map((question) => {
     const answer = el("div", { class: "answer", role: "status" });
-    const form = el("form", { class: "question", onsubmit: (event) => ask(event, key, question, settings(), answer) }, question.fields.map(input), el("button", { type: "submit" }, "Ask"));
+    const form = el(
+      "form",
+      { class: "question", onsubmit: (event) => ask(event, key, question, settings(), answer) },
+      question.fields.map(input),
+      el("button", { type: "submit" }, "Ask"),
+    );
     return el("details", {}, el("summary", {}, question.words), form, answer);
   });
 }
 
 function input({ name, words, of, first }) {
-  if (of) return field(words, el("select", { name }, of.map((each) => el("option", { value: each }, each))));
-  return field(words, el("input", { type: "text", inputmode: "decimal", name, autocomplete: "off", value: first ?? "" }));
+  if (of)
+    return field(
+      words,
+      el(
+        "select",
+        { name },
+        of.map((each) => el("option", { value: each }, each)),
+      ),
+    );
+  return field(
+    words,
+    el("input", { type: "text", inputmode: "decimal", name, autocomplete: "off", value: first ?? "" }),
+  );
 }
 
 async function ask(event, key, { path }, settings, node) {
   event.preventDefault();
-  const asked = Object.fromEntries([...new FormData(event.target)].map(([name, value]) => [name, value.trim().replace(",", ".")]));
+  const asked = Object.fromEntries(
+    [...new FormData(event.target)].map(([name, value]) => [name, value.trim().replace(",", ".")]),
+  );
   const answer = await attempt(() => get(query(`/devices/${part(key)}/${path}`, { ...asked, set: settings })));
-  if (answer) fill(node, figures(answer), answer.findings.length > 0 && findingsList(answer.findings), (answer.notes ?? []).map((note) => el("p", { class: "hint" }, plain(String(note.text ?? note)))));
+  if (answer)
+    fill(
+      node,
+      figures(answer),
+      answer.findings.length > 0 && findingsList(answer.findings),
+      (answer.notes ?? []).map((note) => el("p", { class: "hint" }, plain(String(note.text ?? note)))),
+    );
 }
 
 function figures(answer) {
-  const rows = Object.entries(FIGURES).filter(([name]) => answer[name]?.status).map(([name, words]) => el("div", {}, el("dt", {}, words), el("dd", {}, figure(answer[name]))));
+  const rows = Object.entries(FIGURES)
+    .filter(([name]) => answer[name]?.status)
+    .map(([name, words]) => el("div", {}, el("dt", {}, words), el("dd", {}, figure(answer[name]))));
   return el("dl", { class: "answers-told" }, rows);
 }
 

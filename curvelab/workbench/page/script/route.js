@@ -3,7 +3,11 @@
 export function here() {
   const [path, search] = location.hash.replace(/^#\/?/, "").split("?");
   const [view = "", ...rest] = path.split("/");
-  return { view: view || "start", rest: rest.map(decoded), values: Object.fromEntries(new URLSearchParams(search ?? "")) };
+  return {
+    view: view || "start",
+    rest: rest.map(decoded),
+    values: Object.fromEntries(new URLSearchParams(search ?? "")),
+  };
 }
 
 function decoded(text) {
@@ -18,7 +22,8 @@ function decoded(text) {
 export function keepPlace(values) {
   const [path, search] = location.hash.split("?");
   const kept = new URLSearchParams(search ?? "");
-  for (const [name, value] of Object.entries(values)) value === null || value === "" ? kept.delete(name) : kept.set(name, value);
+  for (const [name, value] of Object.entries(values))
+    value === null || value === "" ? kept.delete(name) : kept.set(name, value);
   const text = kept.toString();
   history.replaceState(null, "", `${path || "#/"}${text ? `?${text}` : ""}`);
 }

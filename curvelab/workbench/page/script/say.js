@@ -23,7 +23,9 @@ export function hush() {
 /** Show a refusal: what is wrong, what was expected, what to do. It stays until it is closed or something succeeds. */
 export function refused(error) {
   const place = document.getElementById("refused");
-  const [first, ...rest] = error.line ? [error.problem, error.expected && `Expected: ${error.expected}`, error.fix] : [String(error.message ?? error)];
+  const [first, ...rest] = error.line
+    ? [error.problem, error.expected && `Expected: ${error.expected}`, error.fix]
+    : [String(error.message ?? error)];
   fill(
     place,
     el("strong", {}, ended(first)),

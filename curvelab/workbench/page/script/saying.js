@@ -10,7 +10,12 @@ const AXES = ["current", "time", "let_through", "peak"];
 export class Saying {
   constructor(pane) {
     this.pane = pane;
-    this.node = el("form", { class: "saying", hidden: true, "aria-label": "Say the value of a mark", onsubmit: (event) => this.#submit(event) });
+    this.node = el("form", {
+      class: "saying",
+      hidden: true,
+      "aria-label": "Say the value of a mark",
+      onsubmit: (event) => this.#submit(event),
+    });
     this.node.addEventListener("keydown", (event) => {
       if (event.key !== "Escape") return;
       event.stopPropagation();
@@ -24,10 +29,20 @@ export class Saying {
     this.mark = mark;
     const known = this.pane.draft.plane?.quantity;
     const axes = AXES.filter((axis) => axis === "current" || axis === (known ?? "time"));
-    this.axis = el("select", {}, axes.map((axis) => el("option", { value: axis, selected: axis === mark.axis }, `${axisName(axis)} axis`)));
+    this.axis = el(
+      "select",
+      {},
+      axes.map((axis) => el("option", { value: axis, selected: axis === mark.axis }, `${axisName(axis)} axis`)),
+    );
     this.axis.disabled = mark.index !== null;
     this.axis.addEventListener("change", () => (this.unit.textContent = this.#unit()));
-    this.value = el("input", { type: "text", inputmode: "decimal", autocomplete: "off", size: 7, value: mark.value ?? "" });
+    this.value = el("input", {
+      type: "text",
+      inputmode: "decimal",
+      autocomplete: "off",
+      size: 7,
+      value: mark.value ?? "",
+    });
     this.unit = el("span", { class: "unit" }, this.#unit());
     fill(
       this.node,

@@ -1,6 +1,6 @@
 // What curvelab draws over the sheet: hairlines where it believes the grid is, the lines it traced, and what it was told.
 
-import { area, LINE_DASH, stroke, words } from "./paint.js";
+import { area, LINE_DASH, stroke } from "./paint.js";
 
 const TRACE_WIDTH = { fast: 1, slow: 2, mean: 1.4 };
 const STEPS = 8;
@@ -46,7 +46,12 @@ export function drawPicture(context, tiles, view) {
 }
 
 export function drawGrid(context, view, grid, ink) {
-  for (const line of grid) stroke(context, line.map((each) => view.toScreen(each)), { colour: ink("on-paper"), width: 0.6, alpha: 0.55 });
+  for (const line of grid)
+    stroke(
+      context,
+      line.map((each) => view.toScreen(each)),
+      { colour: ink("on-paper"), width: 0.6, alpha: 0.55 },
+    );
 }
 
 export function drawTraces(context, view, curves, ink, chosen) {
@@ -54,7 +59,12 @@ export function drawTraces(context, view, curves, ink, chosen) {
     const { x, y } = curve.points;
     const points = [];
     const lone = chosen !== null && (curve.entry ?? index) !== chosen;
-    const look = { colour: ink("trace"), width: TRACE_WIDTH[curve.edge] ?? 1, dash: LINE_DASH[curve.edge] ?? [], alpha: lone ? 0.35 : 1 };
+    const look = {
+      colour: ink("trace"),
+      width: TRACE_WIDTH[curve.edge] ?? 1,
+      dash: LINE_DASH[curve.edge] ?? [],
+      alpha: lone ? 0.35 : 1,
+    };
     const breaks = new Set(gapStarts(curve));
     for (let k = 0; k < x.length; k += 1) {
       if (x[k] === null) continue;
@@ -66,7 +76,11 @@ export function drawTraces(context, view, curves, ink, chosen) {
     }
     stroke(context, points, look);
     for (const gap of curve.gaps) {
-      stroke(context, [gap.from, gap.to].map((each) => view.toScreen(each)), { colour: ink("open-on-paper"), width: 1.4, dash: [3, 3] });
+      stroke(
+        context,
+        [gap.from, gap.to].map((each) => view.toScreen(each)),
+        { colour: ink("open-on-paper"), width: 1.4, dash: [3, 3] },
+      );
     }
   });
 }
@@ -103,7 +117,13 @@ export function drawTold(context, view, entries, ink, chosen) {
 }
 
 export function drawBox(context, view, [x0, y0, x1, y1], ink, alpha = 1) {
-  const corners = [[x0, y0], [x1, y0], [x1, y1], [x0, y1], [x0, y0]].map((each) => view.toScreen(each));
+  const corners = [
+    [x0, y0],
+    [x1, y0],
+    [x1, y1],
+    [x0, y1],
+    [x0, y0],
+  ].map((each) => view.toScreen(each));
   area(context, corners, { colour: ink("open-on-paper"), alpha: 0.12 * alpha });
   stroke(context, corners, { colour: ink("open-on-paper"), width: 1.2, dash: [5, 3], alpha });
 }
@@ -113,12 +133,11 @@ export function drawOpen(context, view, entry, ink) {
   if (!entry?.at) return;
   const [x, y] = view.toScreen(entry.at);
   const look = { colour: ink("open-on-paper"), width: 2 };
-  const ring = Array.from({ length: 41 }, (_, k) => [x + 17 * Math.cos((k * Math.PI) / 20), y + 17 * Math.sin((k * Math.PI) / 20)]);
+  const ring = Array.from({ length: 41 }, (_, k) => [
+    x + 17 * Math.cos((k * Math.PI) / 20),
+    y + 17 * Math.sin((k * Math.PI) / 20),
+  ]);
   stroke(context, ring, look);
-}
-
-export function drawNumber(context, at, text, ink) {
-  words(context, text, at[0] + 9, at[1] - 9, { colour: ink("on-paper"), size: 11, ground: ink("sheet-paper") });
 }
 
 /** Nearest traced curve to a place: { index, away } in pixels on screen, or null beyond `reach`. */
@@ -129,7 +148,8 @@ export function nearestCurve(view, curves, place, reach = 12) {
     const { x, y } = curve.points;
     for (let k = 1; k < x.length; k += 1) {
       if (x[k] === null || x[k - 1] === null) continue;
-      if (Math.abs(x[k] - place[0]) > far + 40 / view.scale && Math.abs(x[k - 1] - place[0]) > far + 40 / view.scale) continue;
+      if (Math.abs(x[k] - place[0]) > far + 40 / view.scale && Math.abs(x[k - 1] - place[0]) > far + 40 / view.scale)
+        continue;
       const away = distance(place, [x[k - 1], y[k - 1]], [x[k], y[k]]);
       if (away <= far && (!nearest || away < nearest.away)) nearest = { index: curve.entry ?? index, curve, away };
     }

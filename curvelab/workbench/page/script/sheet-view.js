@@ -34,7 +34,10 @@ export class SheetView {
     this.x = (x0 + x1) / 2;
     this.y = (y0 + y1) / 2;
     const share = 1 - 2 * free;
-    this.scale = Math.min((this.width * share) / Math.max(1e-6, x1 - x0), (this.height * share) / Math.max(1e-6, y1 - y0));
+    this.scale = Math.min(
+      (this.width * share) / Math.max(1e-6, x1 - x0),
+      (this.height * share) / Math.max(1e-6, y1 - y0),
+    );
     this.#hold();
   }
 

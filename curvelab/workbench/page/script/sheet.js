@@ -7,20 +7,26 @@ import { Marks } from "./marks.js";
 import { Canvas, inks } from "./paint.js";
 import { drawCross } from "./paper.js";
 import { Saying } from "./saying.js";
-import { hush, said } from "./say.js";
+import { SheetActs } from "./sheet-acts.js";
 import { drawBox, drawGrid, drawOpen, drawPicture, drawTold, drawTraces, gridOf, nearestCurve } from "./sheet-ink.js";
 import { SheetView } from "./sheet-view.js";
 import { Tiles } from "./tiles.js";
 
-const NOT_HERE_PX = 9;
-const HELP = "The sheet. Arrow keys move the cross, Enter says that the line passes there, Shift and Enter that it does not. Plus and minus zoom, zero shows the whole sheet, B twice leaves out a box, V says a value.";
+const HELP =
+  "The sheet. Arrow keys move the cross, Enter says that the line passes there, Shift and Enter that it does not. Plus and minus zoom, zero shows the whole sheet, B twice leaves out a box, V says a value.";
 
 export class SheetPane {
   /** `desk` gives draft, cursor, chosen (a worksheet's curve or null), opened (an open entry or null), bare (paper alone). */
   constructor(desk) {
     this.desk = desk;
     this.draft = desk.draft;
-    this.canvasNode = el("canvas", { tabindex: 0, role: "application", "aria-roledescription": "sheet", "aria-label": HELP, "data-focus": "sheet" });
+    this.canvasNode = el("canvas", {
+      tabindex: 0,
+      role: "application",
+      "aria-roledescription": "sheet",
+      "aria-label": HELP,
+      "data-focus": "sheet",
+    });
     this.node = el("section", { class: "pane sheet-pane", "aria-label": "Sheet" }, this.canvasNode);
     this.ink = inks(this.canvasNode);
     this.canvas = new Canvas(this.canvasNode, (context, ...size) => this.#draw(context, ...size));
@@ -31,9 +37,9 @@ export class SheetPane {
     this.magnifier = new Magnifier(this.node, this.ink);
     this.view = null;
     this.box = null;
-    this.waiting = null;
     matchMedia("(prefers-color-scheme: dark)").addEventListener("change", () => (this.ink = inks(this.canvasNode)));
-    gesturesOn(this.canvasNode, this);
+    this.acts = new SheetActs(this);
+    gesturesOn(this.canvasNode, this, this.acts);
     desk.cursor.addEventListener("move", () => this.canvas.redraw());
   }
 
@@ -106,7 +112,7 @@ export class SheetPane {
   pointed(pixel, not) {
     if (!this.view) return;
     const place = this.view.toSheet(pixel);
-    this.desk.cursor.atPlace(place, "sheet", this.#near(place));
+    this.desk.cursor.atPlace(place, "sheet", this.near(place));
     this.canvasNode.classList.toggle("not", not);
   }
 
@@ -149,6 +155,20 @@ export class SheetPane {
     glide();
   }
 
+  showBox(box) {
+    this.box = box;
+    this.canvas.redraw();
+  }
+
+  askMark(mark) {
+    this.saying.ask(mark);
+  }
+
+  glass(place) {
+    if (place) this.magnifier.show(this.tiles, this.view, place);
+    else this.magnifier.hide();
+  }
+
   cross() {
     const { cursor } = this.desk;
     return cursor.place ? this.view.toScreen(cursor.place) : [this.view.width / 2, this.view.height / 2];
@@ -159,108 +179,10 @@ export class SheetPane {
     const at = [Math.min(this.view.width, Math.max(0, x + dx)), Math.min(this.view.height, Math.max(0, y + dy))];
     if (at[0] !== x + dx || at[1] !== y + dy) this.panned(at[0] - x - dx, at[1] - y - dy);
     const place = this.view.toSheet(at);
-    this.desk.cursor.atPlace(place, "keys", this.#near(place));
+    this.desk.cursor.atPlace(place, "keys", this.near(place));
   }
 
-  #near(place) {
+  near(place) {
     return nearestCurve(this.view, this.draft.reading?.curves ?? [], place);
-  }
-
-  /** Which curve a click here is about: the one chosen, else the one under the pointer, else none yet. */
-  meant(place) {
-    return this.desk.chosen ?? this.#near(place)?.index ?? null;
-  }
-
-  #place(pixel) {
-    return this.view.toSheet(pixel).map((each) => Number(each.toFixed(2)));
-  }
-
-  passes(pixel) {
-    const at = this.#place(pixel);
-    if (this.waiting) return this.#answer(at);
-    if (!this.draft.plane && !this.draft.state.data?.curves?.length) {
-      return said("The axes are not known yet. Double-click a number beside an axis and say its value; two on each axis are enough.");
-    }
-    if (this.draft.plane && !this.draft.plane.inside(at, 3 / this.view.scale)) return undefined;
-    return this.draft.change({ kind: "passes", curve: this.meant(at), at });
-  }
-
-  not(pixel) {
-    const [x, y] = this.#place(pixel);
-    const half = NOT_HERE_PX / this.view.scale;
-    const box = [x - half, y - half, x + half, y + half].map((each) => Number(each.toFixed(2)));
-    return this.draft.change({ kind: "avoid", curve: this.meant([x, y]), box });
-  }
-
-  boxing(from, to) {
-    this.box = from ? this.#boxOf(from, to) : null;
-    this.canvas.redraw();
-  }
-
-  leaveOut(from, to) {
-    const box = this.#boxOf(from, to);
-    this.box = null;
-    this.canvas.redraw();
-    return this.draft.change({ kind: "avoid", curve: this.desk.chosen, box });
-  }
-
-  /** The first and then the second corner of a box, by keys. */
-  corner(pixel) {
-    if (!this.firstCorner) {
-      this.firstCorner = this.view.toSheet(pixel);
-      return said("First corner set. Move the cross to the other corner and press B again.");
-    }
-    const from = this.view.toScreen(this.firstCorner);
-    this.firstCorner = null;
-    return this.leaveOut(from, pixel);
-  }
-
-  #boxOf(from, to) {
-    const [a, b] = [this.#place(from), this.#place(to)];
-    return [Math.min(a[0], b[0]), Math.min(a[1], b[1]), Math.max(a[0], b[0]), Math.max(a[1], b[1])];
-  }
-
-  say(pixel) {
-    const at = this.#place(pixel);
-    if (this.draft.plane?.inside(at, -3 / this.view.scale) && this.desk.cursor.from === "sheet") return;
-    this.saying.ask({ axis: this.#axisBeside(at), index: null, at, value: null });
-  }
-
-  askMark(mark) {
-    this.saying.ask(mark);
-  }
-
-  #axisBeside([x, y]) {
-    const second = this.draft.plane?.quantity ?? "time";
-    const [x0, y0, , y1] = this.draft.plane?.frame ?? [0, 0, 0, 0.8 * this.view.sheetHeight];
-    return y > y1 || y < y0 || x > x0 ? "current" : second;
-  }
-
-  glass(place) {
-    if (place) this.magnifier.show(this.tiles, this.view, place);
-    else this.magnifier.hide();
-  }
-
-  /** The next click answers; resolves to its place, or null when given up. */
-  nextPlace() {
-    this.waiting?.(null);
-    said("Click the place on the sheet, or press Esc.");
-    this.canvasNode.focus({ preventScroll: true });
-    this.node.classList.add("waiting");
-    return new Promise((done) => (this.waiting = done));
-  }
-
-  #answer(at) {
-    const done = this.waiting;
-    this.waiting = null;
-    this.node.classList.remove("waiting");
-    hush();
-    done(at);
-  }
-
-  giveUp() {
-    if (this.waiting) this.#answer(null);
-    this.firstCorner = null;
-    this.saying.close();
   }
 }

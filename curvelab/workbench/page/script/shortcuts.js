@@ -5,7 +5,7 @@ import { toggleDrawer } from "./drawer.js";
 
 const OFF = "curvelab-keys-off";
 
-export const KEYS = [
+const KEYS = [
   ["n, p", "next and previous open entry"],
   ["1, 2, 3", "first, second, third answer of the open entry"],
   ["f (hold)", "the bare paper in both views"],
@@ -23,16 +23,28 @@ export const KEYS = [
   ["v", "say the value at the cross"],
 ];
 
-export const keysOn = () => localStorage.getItem(OFF) === null;
+const keysOn = () => localStorage.getItem(OFF) === null;
 
-export function showKeys() {
+function showKeys() {
   toggleDrawer("keys", "Keys", () => {
-    const toggle = el("input", { type: "checkbox", checked: keysOn(), onchange: (event) => (event.target.checked ? localStorage.removeItem(OFF) : localStorage.setItem(OFF, "1")) });
+    const toggle = el("input", {
+      type: "checkbox",
+      checked: keysOn(),
+      onchange: (event) => (event.target.checked ? localStorage.removeItem(OFF) : localStorage.setItem(OFF, "1")),
+    });
     return [
       el("label", { class: "check" }, toggle, el("span", {}, "Single keys act")),
-      el("dl", { class: "keys" }, KEYS.map(([key, does]) => [el("dt", {}, key), el("dd", {}, does)])),
+      el(
+        "dl",
+        { class: "keys" },
+        KEYS.map(([key, does]) => [el("dt", {}, key), el("dd", {}, does)]),
+      ),
       el("h3", {}, "By hand"),
-      el("p", {}, "Click on a line: it passes here. Hold Shift and click: not here. Hold Shift and drag: leave this box out. Drag a mark: it moves. Double-click a number beside an axis: say what it is. Drag the paper, turn the wheel: look around."),
+      el(
+        "p",
+        {},
+        "Click on a line: it passes here. Hold Shift and click: not here. Hold Shift and drag: leave this box out. Drag a mark: it moves. Double-click a number beside an axis: say what it is. Drag the paper, turn the wheel: look around.",
+      ),
     ];
   });
 }

@@ -10,11 +10,23 @@ export class Store {
   constructor(desk) {
     this.desk = desk;
     this.name = nameField("Stored by");
-    this.note = el("input", { type: "text", maxlength: 400, placeholder: "Note (may be left out)", "aria-label": "Note", autocomplete: "off" });
+    this.note = el("input", {
+      type: "text",
+      maxlength: 400,
+      placeholder: "Note (may be left out)",
+      "aria-label": "Note",
+      autocomplete: "off",
+    });
     this.button = el("button", { type: "submit", class: "strong store-button" }, "Store");
     this.why = el("p", { class: "hint" });
     this.stored = el("p", { class: "stored" });
-    const form = el("form", { class: "store", "aria-label": "Store", onsubmit: (event) => this.#submit(event) }, this.name.node, this.note, this.button);
+    const form = el(
+      "form",
+      { class: "store", "aria-label": "Store", onsubmit: (event) => this.#submit(event) },
+      this.name.node,
+      this.note,
+      this.button,
+    );
     this.node = el("section", { class: "store-part" }, form, this.why, this.stored);
   }
 
@@ -23,7 +35,13 @@ export class Store {
     const ready = state.can_store;
     this.button.setAttribute("aria-disabled", String(!ready));
     const open = state.open?.length ?? 0;
-    this.why.textContent = ready ? "" : open ? `Settle or accept ${count(open, "entry", "entries")} first.` : state.work.state === "reading" ? "The sheet is still being read." : "There is nothing to store yet.";
+    this.why.textContent = ready
+      ? ""
+      : open
+        ? `Settle or accept ${count(open, "entry", "entries")} first.`
+        : state.work.state === "reading"
+          ? "The sheet is still being read."
+          : "There is nothing to store yet.";
     if (this.storedVersion !== state.version) fill(this.stored);
   }
 
@@ -43,8 +61,17 @@ export class Store {
     this.button.disabled = false;
     if (!answer) return;
     this.storedVersion = draft.state.version;
-    const links = answer.devices.map(({ key, revision }) => el("a", { href: `#/device/${encodeURIComponent(`${key}@${revision}`)}` }, `${key}, revision ${revision}`));
-    fill(this.stored, el("span", {}, "Stored as "), links.flatMap((link, k) => (k ? [", ", link] : [link])));
-    said(`Stored ${count(answer.devices.length, "device")} as draft. A second person reviews and releases.`, { label: "Open", act: () => links[0].click() });
+    const links = answer.devices.map(({ key, revision }) =>
+      el("a", { href: `#/device/${encodeURIComponent(`${key}@${revision}`)}` }, `${key}, revision ${revision}`),
+    );
+    fill(
+      this.stored,
+      el("span", {}, "Stored as "),
+      links.flatMap((link, k) => (k ? [", ", link] : [link])),
+    );
+    said(`Stored ${count(answer.devices.length, "device")} as draft. A second person reviews and releases.`, {
+      label: "Open",
+      act: () => links[0].click(),
+    });
   }
 }

@@ -41,7 +41,15 @@ function even(axis, low, high, pixels) {
   return found;
 }
 
-const HUMAN_TIMES = [[60, "1 min"], [300, "5 min"], [1200, "20 min"], [3600, "1 h"], [7200, "2 h"], [14400, "4 h"], [86400, "1 d"]];
+const HUMAN_TIMES = [
+  [60, "1 min"],
+  [300, "5 min"],
+  [1200, "20 min"],
+  [3600, "1 h"],
+  [7200, "2 h"],
+  [14400, "4 h"],
+  [86400, "1 d"],
+];
 
 /** Long times as people say them, within a range of seconds. */
 export const humanTimes = (low, high) => HUMAN_TIMES.filter(([seconds]) => seconds >= low && seconds <= high);
@@ -56,7 +64,10 @@ function powerOfTen(value) {
 
 function labelOf(axis, value) {
   const figures = 6;
-  if (axis.quantity === "time") return value > 0.95 ? `${byUnit(value, "ratio", figures)}\u00a0s` : `${byUnit(value * 1000, "ratio", figures)}\u00a0ms`;
+  if (axis.quantity === "time")
+    return value > 0.95
+      ? `${byUnit(value, "ratio", figures)}\u00a0s`
+      : `${byUnit(value * 1000, "ratio", figures)}\u00a0ms`;
   if (axis.quantity === "let_through") return powerOfTen(value);
   if (axis.quantity !== "current") return quantity(value, axis.quantity, figures);
   return axis.base === "A" ? current(value, "A", figures) : current(value, axis.base, figures).split("\u00a0")[0];

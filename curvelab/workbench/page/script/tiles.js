@@ -26,15 +26,28 @@ export class Tiles {
   visit(box, level, visit) {
     const side = SIZE * 2 ** level;
     const [x0, y0, x1, y1] = box.map((each, i) => (each - this.origin[i % 2]) * this.perUnit);
-    const columns = [Math.max(0, Math.floor(x0 / side)), Math.min(Math.ceil(this.width / side) - 1, Math.floor(x1 / side))];
-    const rows = [Math.max(0, Math.floor(y0 / side)), Math.min(Math.ceil(this.height / side) - 1, Math.floor(y1 / side))];
+    const columns = [
+      Math.max(0, Math.floor(x0 / side)),
+      Math.min(Math.ceil(this.width / side) - 1, Math.floor(x1 / side)),
+    ];
+    const rows = [
+      Math.max(0, Math.floor(y0 / side)),
+      Math.min(Math.ceil(this.height / side) - 1, Math.floor(y1 / side)),
+    ];
     for (let row = rows[0]; row <= rows[1]; row += 1) {
       for (let column = columns[0]; column <= columns[1]; column += 1) {
         const image = this.#tile(level, column, row);
         if (!image) continue;
         const corner = [column * side, row * side];
-        const covers = [...corner, corner[0] + image.naturalWidth * 2 ** level, corner[1] + image.naturalHeight * 2 ** level];
-        visit(image, covers.map((each, i) => each / this.perUnit + this.origin[i % 2]));
+        const covers = [
+          ...corner,
+          corner[0] + image.naturalWidth * 2 ** level,
+          corner[1] + image.naturalHeight * 2 ** level,
+        ];
+        visit(
+          image,
+          covers.map((each, i) => each / this.perUnit + this.origin[i % 2]),
+        );
       }
     }
   }

@@ -5,23 +5,32 @@ import { clipped } from "./paper.js";
 import { drawPaperBelow } from "./underlay.js";
 
 export class TwinPane extends BandPane {
-  /** `desk` gives draft, cursor, shown bands and limits, bare; `desk.twinMoved(window)` hears of a new window. */
+  /** `desk` gives draft, cursor, what is shown, bare; `desk.together` hears of a new window. */
   constructor(desk) {
     super("The band on exact axes.");
     this.desk = desk;
     this.canvasNode.dataset.focus = "twin";
-    this.onwindow = (window) => desk.twinMoved(window, this.full);
+    this.onwindow = (window) => desk.together.twinMoved(window, this.full);
     desk.cursor.addEventListener("move", () => this.canvas.redraw());
   }
 
   update() {
     const { plane, reading } = this.desk.draft;
-    const bands = this.desk.shownBands();
-    const limits = this.desk.shownLimits();
-    const axes = plane ? [axisOf("current", plane.current), axisOf(plane.quantity, plane.value)] : typedAxes(bands[0]?.base ?? "A");
-    const subjects = [{ bands: this.desk.otherBands(), colour: "quiet", faint: true, index: 0 }, { bands, colour: "ink", index: 0 }];
+    const bands = this.desk.shown.bands;
+    const limits = this.desk.shown.limits;
+    const axes = plane
+      ? [axisOf("current", plane.current), axisOf(plane.quantity, plane.value)]
+      : typedAxes(bands[0]?.base ?? "A");
+    const subjects = [
+      { bands: this.desk.shown.others, colour: "quiet", faint: true, index: 0 },
+      { bands, colour: "ink", index: 0 },
+    ];
     this.show({ subjects, limits, axes, full: plane ? plane.extent : spanOfScaled(bands, limits) });
-    this.empty.textContent = this.full ? "" : reading ? "There is no curve to draw." : "The band appears here as soon as the axes are known.";
+    this.empty.textContent = this.full
+      ? ""
+      : reading
+        ? "There is no curve to draw."
+        : "The band appears here as soon as the axes are known.";
   }
 
   drawWithin(context, frame) {

@@ -6,12 +6,17 @@ const PARTS = 6;
 export function drawPaperBelow(context, frame, plane, pane, ink) {
   const { tiles } = pane;
   if (!tiles) return;
-  const corners = frame.window[0].flatMap((u) => frame.window[1].map((v) => plane.placeOfScaled([u, v]))).filter(Boolean);
+  const corners = frame.window[0]
+    .flatMap((u) => frame.window[1].map((v) => plane.placeOfScaled([u, v])))
+    .filter(Boolean);
   if (corners.length < 4) return;
-  const box = [0, 1].map((i) => Math.min(...corners.map((each) => each[i]))).concat([0, 1].map((i) => Math.max(...corners.map((each) => each[i]))));
+  const box = [0, 1]
+    .map((i) => Math.min(...corners.map((each) => each[i])))
+    .concat([0, 1].map((i) => Math.max(...corners.map((each) => each[i]))));
   const scale = (frame.wide / (box[2] - box[0])) * (window.devicePixelRatio || 1);
   tiles.visit(box, tiles.levelFor(scale), (image, covers) => {
-    for (let row = 0; row < PARTS; row += 1) for (let column = 0; column < PARTS; column += 1) drawPart(context, frame, plane, image, covers, column, row);
+    for (let row = 0; row < PARTS; row += 1)
+      for (let column = 0; column < PARTS; column += 1) drawPart(context, frame, plane, image, covers, column, row);
   });
   const dim = Number(ink("sheet-dim"));
   if (!dim) return;

@@ -27,12 +27,16 @@ export function windowGestures(canvas, pane) {
   canvas.addEventListener("pointercancel", release);
   canvas.addEventListener("pointerleave", () => last || pane.left());
   canvas.addEventListener("dblclick", () => pane.window && pane.whole());
-  canvas.addEventListener("wheel", (event) => {
-    if (!pane.window) return;
-    event.preventDefault();
-    const lines = event.deltaMode === 1 ? 16 : 1;
-    pane.zoomed(Math.exp(-event.deltaY * lines * WHEEL * (event.ctrlKey ? 4 : 1)), pixel(event));
-  }, { passive: false });
+  canvas.addEventListener(
+    "wheel",
+    (event) => {
+      if (!pane.window) return;
+      event.preventDefault();
+      const lines = event.deltaMode === 1 ? 16 : 1;
+      pane.zoomed(Math.exp(-event.deltaY * lines * WHEEL * (event.ctrlKey ? 4 : 1)), pixel(event));
+    },
+    { passive: false },
+  );
   canvas.addEventListener("keydown", (event) => {
     if (!pane.window || event.ctrlKey || event.metaKey || event.altKey) return;
     const arrow = ARROWS[event.key];

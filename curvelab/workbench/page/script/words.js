@@ -5,7 +5,7 @@ const MOST_FIGURES = 6;
 const SPACE = "\u00a0";
 const THIN = "\u202f";
 
-export const BASES = { A: "A", xIn: "In", xIr: "Ir", xIsd: "Isd", xIi: "Ii", xIg: "Ig", xIdn: "IΔn" };
+const BASES = { A: "A", xIn: "In", xIr: "Ir", xIsd: "Isd", xIi: "Ii", xIg: "Ig", xIdn: "IΔn" };
 
 export const BASE_NAMES = {
   A: "Current",
@@ -17,7 +17,11 @@ export const BASE_NAMES = {
   xIdn: "Multiple of rated residual current IΔn",
 };
 
-export const QUANTITY_NAMES = { time: "Time", let_through: "Let-through energy I²t in A²s", peak: "Cut-off current (peak)" };
+export const QUANTITY_NAMES = {
+  time: "Time",
+  let_through: "Let-through energy I²t in A²s",
+  peak: "Cut-off current (peak)",
+};
 
 export const EDGES = { fast: "Fast", slow: "Slow", mean: "Mean" };
 
@@ -100,7 +104,7 @@ export function byUnit(value, unit, figures) {
 }
 
 /** Figures that show an interval about a value: its half-width in two of them. */
-export function figuresFor(value, lower, upper) {
+function figuresFor(value, lower, upper) {
   const half = Math.max(Math.abs(upper - value), Math.abs(value - lower));
   if (!(Number.isFinite(half) && half > 0 && value)) return FIGURES;
   return Math.min(Math.max(FIGURES, 2 - Math.floor(Math.log10(half / Math.abs(value)))), MOST_FIGURES);
@@ -120,7 +124,12 @@ export function percent(share) {
 
 /** A number a person typed, with or without its unit, as a number in `unit`; null where it is no such thing. */
 export function typedNumber(text) {
-  const value = Number(text.trim().replace(/[\s\u00a0\u202f]/g, "").replace(",", "."));
+  const value = Number(
+    text
+      .trim()
+      .replace(/[\s\u00a0\u202f]/g, "")
+      .replace(",", "."),
+  );
   return text.trim() && Number.isFinite(value) ? value : null;
 }
 
@@ -136,7 +145,11 @@ export function count(number, one, many = `${one}s`) {
 
 /** What the process writes in plain letters, as engineers write it: 5 xIn is 5 In, A2s is A²s. */
 export function plain(text) {
-  const squared = text.replace(/\bA2s\b/g, "A²s").replace(/\bk2S2\b/g, "k²S²").replace(/\bI2t\b/g, "I²t").replace(/ x 10\^3/g, " × 10³");
+  const squared = text
+    .replace(/\bA2s\b/g, "A²s")
+    .replace(/\bk2S2\b/g, "k²S²")
+    .replace(/\bI2t\b/g, "I²t")
+    .replace(/ x 10\^3/g, " × 10³");
   return squared.replace(/\bxI(n|r|sd|i|g|dn)\b/g, (_, name) => (name === "dn" ? "IΔn" : `I${name}`));
 }
 

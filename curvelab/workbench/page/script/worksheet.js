@@ -14,10 +14,29 @@ export class WorksheetText {
 
   build() {
     this.sent = this.draft.state.worksheet;
-    this.area = el("textarea", { class: "worksheet-text", spellcheck: "false", wrap: "off", "aria-label": "Worksheet", oninput: () => this.send(), onkeydown: (event) => event.key !== "Escape" && event.stopPropagation() });
+    this.area = el("textarea", {
+      class: "worksheet-text",
+      spellcheck: "false",
+      wrap: "off",
+      "aria-label": "Worksheet",
+      oninput: () => this.send(),
+      onkeydown: (event) => event.key !== "Escape" && event.stopPropagation(),
+    });
     this.area.value = this.sent;
-    this.note = el("p", { class: "hint", role: "status" }, "This text is the whole reading: the same text gives the same numbers on the command line.");
-    return [this.note, this.area, el("div", { class: "row-acts" }, button("Copy all", () => this.#copy()))];
+    this.note = el(
+      "p",
+      { class: "hint", role: "status" },
+      "This text is the whole reading: the same text gives the same numbers on the command line.",
+    );
+    return [
+      this.note,
+      this.area,
+      el(
+        "div",
+        { class: "row-acts" },
+        button("Copy all", () => this.#copy()),
+      ),
+    ];
   }
 
   /** Text that came from elsewhere, unless a person is in the middle of typing. */
