@@ -41,6 +41,8 @@ COVERED_SD = 0.1
 REJECTED_IN_NOISE = 0.25
 REJECTED_SD = 3.0
 """px per share of a node's pixels that other ink covers, beyond what noise alone has rejected."""
+PROBE = 0.02
+"""px by which width and blur are varied for their derivatives."""
 MOST_FITTED = 200
 """Nodes the width and blur are fitted on."""
 LARGEST_STEP = 0.7
@@ -148,7 +150,7 @@ def _hard_edged(window: _Window) -> bool:
     """Whether hardly a pixel of the line lies between ink and paper."""
     ink = (window.seen - window.under)[(window.inside > 0) & (window.grid < 0.05)]
     between = np.count_nonzero((ink > 0.15) & (ink < 0.85))
-    return between < HARD_EDGED * np.count_nonzero(ink >= 0.15)
+    return bool(between < HARD_EDGED * np.count_nonzero(ink >= 0.15))
 
 
 def _reach(width: float, blur: float) -> float:
@@ -268,10 +270,27 @@ def _refined(
     distance, seen, under = window.distance[use], window.seen[use], window.under[use]
     angle = np.broadcast_to(window.angle, window.distance.shape)[use]
 
+    room = 1.0 - under
+
     def residual(parameters: Floats) -> Floats:
         width, blur, amplitude, shift = parameters
         candidate = stroke_profile(width, blur, profile.reach)
-        result: Floats = under + amplitude * candidate.value(distance - shift, angle) * (1.0 - under) - seen
+        result: Floats = under + amplitude * candidate.value(distance - shift, angle) * room - seen
+        return result
+
+    def jacobian(parameters: Floats) -> Floats:
+        width, blur, amplitude, shift = parameters
+        candidate = stroke_profile(width, blur, profile.reach)
+        value = candidate.value(distance - shift, angle)
+        wider = stroke_profile(width + PROBE, blur, profile.reach).value(distance - shift, angle)
+        softer = stroke_profile(width, blur + PROBE, profile.reach).value(distance - shift, angle)
+        columns = [
+            amplitude * (wider - value) / PROBE,
+            amplitude * (softer - value) / PROBE,
+            value,
+            -amplitude * candidate.derivative(distance - shift, angle),
+        ]
+        result: Floats = np.stack(columns, axis=1) * room[:, None]
         return result
 
     # along a row or column of pixels the offset looks like a change of the profile: it is fitted with it
@@ -279,11 +298,13 @@ def _refined(
     found = least_squares(
         residual,
         start,
+        jacobian,
         bounds=([0.3, 0.05, 0.5, -1.0], [profile.width * 2 + 1, 3.0, 1.6, 1.0]),
         loss="soft_l1",
         f_scale=0.05,
+        ftol=1e-6,
+        xtol=1e-5,
         max_nfev=14,
-        diff_step=[1e-3],
     )
     width, blur, amplitude, _ = (float(v) for v in found.x)
     return stroke_profile(width, blur, _reach(width, blur) + 3.0), ink * amplitude

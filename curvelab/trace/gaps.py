@@ -48,9 +48,10 @@ def over_gap(graph: ChainGraph, onward: Heading, track: Track, way: Way) -> list
     best = min(step.cost for step in fair)
     first = min((step for step in fair if step.cost <= best + MARGIN), key=lambda step: step.hop)
     length = graph.chains[first.entry[0]].length
-    # what may be a scrap hides nothing beyond it
+    # what may be a scrap hides nothing beyond it, nor a line that goes on better there
     limit = first.hop + length if track.is_dashed or length > SCRAP * width else np.inf
-    return [step for step in fair if step.hop < limit]
+    as_good = -np.inf if track.is_dashed else first.cost + MARGIN
+    return [step for step in fair if step.hop < limit or step.cost <= as_good]
 
 
 def _ahead(graph: ChainGraph, onward: Heading, ends: list[End]) -> list[End]:

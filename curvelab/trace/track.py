@@ -247,3 +247,22 @@ def look_cost(chain: Chain, line: Line) -> float:
     width = (chain.width - line.width) / (0.5 * line.width + 1.0)
     share = min(1.0, chain.length / line.look_ahead)
     return share * (min(tint**2, 9.0) + min(width**2, 4.0))
+
+
+def straightened(pieces: list[Floats], merged: list[bool], width: float) -> Floats:
+    """The places of a line's pieces in order; what it shares with another drawn straight from end to end.
+
+    The middle of two strokes that print as one is the middle of neither.
+    """
+    drawn = list(pieces)
+    for k in range(1, len(pieces) - 1):
+        if not merged[k] or merged[k - 1] or merged[k + 1]:
+            continue
+        start, end = pieces[k - 1][-1], pieces[k + 1][0]
+        chord = end - start
+        offset = pieces[k] - start
+        aside = np.abs(offset[:, 0] * chord[1] - offset[:, 1] * chord[0]) / max(float(np.hypot(*chord)), 1.0)
+        if aside.max() <= width:
+            share = np.linspace(0.0, 1.0, len(pieces[k]) + 2)[1:-1, None]
+            drawn[k] = start + share * chord
+    return np.concatenate(drawn)

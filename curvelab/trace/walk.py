@@ -11,7 +11,7 @@ from curvelab.trace.chains import ChainGraph
 from curvelab.trace.continuing import ACCEPT, LONGEST_HOP, USUAL_BREAK
 from curvelab.trace.gaps import MARGIN
 from curvelab.trace.onward import known_before, steps_from
-from curvelab.trace.track import FRESH, Track, added, begun, line_of, oriented
+from curvelab.trace.track import FRESH, Track, added, begun, line_of, oriented, straightened
 from curvelab.trace.way import Way
 
 APART = 3.0
@@ -92,7 +92,11 @@ def walk_on(graph: ChainGraph, path: Track, doubts: tuple[tuple[float, float], .
     backward, doubts_backward = _to_end(graph, back, Way(sign=-1), frozenset(number for number, _ in forward.entries()))
     entries = [(number, 1 - side) for number, side in backward.entries()[:0:-1]] + forward.entries()
     return Walk(
-        line=np.concatenate([oriented(graph, entry) for entry in entries]),
+        line=straightened(
+            [oriented(graph, entry) for entry in entries],
+            [graph.chains[number].merged for number, _ in entries],
+            path.line.width,
+        ),
         chains=frozenset(number for number, _ in entries),
         doubts=(*doubts, *doubts_forward, *doubts_backward),
     )

@@ -15,7 +15,7 @@ from tests.drawn import QUALITIES
 GUIDED = "clean,snapped,stepped,grey,bilevel,vector"
 """Classes that guided reading is measured on by default; photographs ask for more of the axes."""
 
-COLUMNS = "{:<10}{:>8}{:>8}{:>10}{:>10}{:>10}{:>10}{:>10}{:>10}{:>9}{:>8}"
+COLUMNS = "{:<10}{:>8}{:>8}{:>10}{:>10}{:>10}{:>10}{:>10}{:>10}{:>9}{:>8}{:>8}"
 HEADINGS = (
     "class",
     "sheets",
@@ -28,15 +28,19 @@ HEADINGS = (
     "u median",
     "s median",
     "curves",
+    "silent",
 )
 
 
 def row(quality: str, results: list[SheetResult]) -> str:
-    """The class in one line; RMS in px, on vector sheets in decades; ``u`` relative, along the normal."""
+    """The class in one line; RMS in px, on vector sheets in decades; ``u`` relative, along the normal.
+
+    ``silent`` counts the curves that are more than 2 px off (2 pt on vector sheets) without a warning near them.
+    """
     curves = [curve for result in results for curve in result.curves]
     refused = sum(1 for result in results if result.error)
     if not curves:
-        return COLUMNS.format(quality, len(results), refused, *["-"] * 8)
+        return COLUMNS.format(quality, len(results), refused, *["-"] * 9)
     rms = np.array([curve.rms for curve in curves])
     return COLUMNS.format(
         quality,
@@ -50,6 +54,7 @@ def row(quality: str, results: list[SheetResult]) -> str:
         f"{np.median([curve.stated for curve in curves]):.2%}",
         f"{np.median([result.seconds for result in results]):.2f}",
         len(curves),
+        sum(curve.silently_wrong for curve in curves),
     )
 
 

@@ -17,6 +17,13 @@ from tests.drawn import DrawnSheet, random_sheet, score
 Floats = NDArray[np.float64]
 
 
+FAR_OFF = 2.0
+"""RMS in units of the sheet from which a curve is wrong."""
+DOUBTS = ("trace-doubt", "area-edge")
+NEAR = 30.0
+"""Units of the sheet from a curve within which a warning is about it."""
+
+
 @dataclass(frozen=True, kw_only=True, slots=True)
 class CurveResult:
     """One curve of one sheet: errors normal to it in px (decades on vector sheets), and what was stated of them."""
@@ -28,6 +35,14 @@ class CurveResult:
     completeness: float
     covered: float
     stated: float
+    off: float
+    """RMS in units of the sheet."""
+    warned: bool
+
+    @property
+    def silently_wrong(self) -> bool:
+        """Whether it is far off and nothing was said, the worst fault."""
+        return self.off > FAR_OFF and not self.warned
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -52,11 +67,13 @@ def read_one(seed: int, quality: str, folder: Path) -> SheetResult:
     seconds = time.perf_counter() - started
     plot = sheet.truth.plots[0]
     pairs = zip(plot.curves, reading.curves, strict=True)
-    curves = tuple(_result(sheet, plot, truth, read.curve) for truth, read in pairs)
+    doubts = [warning.at for warning in reading.warnings if warning.code in DOUBTS and warning.at is not None]
+    curves = tuple(_result(sheet, truth, read.curve, doubts) for truth, read in pairs)
     return SheetResult(sheet=sheet.name, curves=curves, seconds=seconds)
 
 
-def _result(sheet: DrawnSheet, plot: PlotTruth, truth: CurveTruth, curve: Curve) -> CurveResult:
+def _result(sheet: DrawnSheet, truth: CurveTruth, curve: Curve, doubts: list[tuple[float, float]]) -> CurveResult:
+    plot = sheet.truth.plots[0]
     current, value = joined(curve)
     scale = _decade_per_unit(plot) if sheet.truth.unit == "pt" else 1.0
     found = score(plot, truth.design.name, current, value)
@@ -69,7 +86,14 @@ def _result(sheet: DrawnSheet, plot: PlotTruth, truth: CurveTruth, curve: Curve)
         completeness=found.completeness,
         covered=covered,
         stated=stated,
+        off=found.rms,
+        warned=_is_warned(plot.places(current, value), doubts),
     )
+
+
+def _is_warned(places: Floats, doubts: list[tuple[float, float]]) -> bool:
+    """Whether a warning's place lies near the curve as it was read."""
+    return any(np.nanmin(np.hypot(*(places - np.array(at)).T)) < NEAR for at in doubts)
 
 
 def joined(curve: Curve) -> tuple[Floats, Floats]:
