@@ -15,7 +15,7 @@ from starlette.responses import Response
 from curvelab.errors import InputError
 from curvelab.workbench.bench import Bench
 from curvelab.workbench.changes import Change
-from curvelab.workbench.failures import Busy
+from curvelab.workbench.failures import Busy, Conflict
 from curvelab.workbench.route import Method, Nothing, Route, body_of, bounded_body, written
 from curvelab.workbench.shapes import Schema
 
@@ -79,10 +79,11 @@ class Changed:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Signed:
-    """Who stores, and why."""
+    """Who stores, why, and the version that was looked at."""
 
     author: str
     note: str = ""
+    base_version: int | None = None
 
 
 async def begin(bench: Bench, asked: Begin, request: Request) -> Response:
@@ -92,10 +93,9 @@ async def begin(bench: Bench, asked: Begin, request: Request) -> Response:
     bench.uploads += 1
     try:
         data = await bounded_body(request, UPLOAD_BYTES)
-        state = await run_in_threadpool(_begun, bench, asked, data)
+        return await run_in_threadpool(lambda: written(_begun(bench, asked, data), 201))
     finally:
         bench.uploads -= 1
-    return written(state, 201)
 
 
 def _begun(bench: Bench, asked: Begin, data: bytes) -> dict[str, Any]:
@@ -134,7 +134,7 @@ async def look(bench: Bench, asked: Look, _: Request) -> Response:
         await draft.bell.heard(lambda: drafts.is_stopping or draft.tick != asked.since, min(asked.wait, LONGEST_WAIT_S))
         if draft.work.state == "reading" and not drafts.is_stopping:
             await asyncio.sleep(WORTH_TELLING_S)
-    return written(await run_in_threadpool(draft_state, draft, asked.have))
+    return await run_in_threadpool(lambda: written(draft_state(draft, asked.have)))
 
 
 async def change(bench: Bench, asked: Changing, request: Request) -> Response:
@@ -145,7 +145,7 @@ async def change(bench: Bench, asked: Changing, request: Request) -> Response:
     draft = await run_in_threadpool(lambda: bench.drafts.draft(asked.id))
     await run_in_threadpool(draft.change, body.base_version, body.change)
     await draft.bell.heard(lambda: draft.is_shown, CLICK_WAIT_S)
-    return written(await run_in_threadpool(draft_state, draft, asked.have))
+    return await run_in_threadpool(lambda: written(draft_state(draft, asked.have)))
 
 
 def put_away(bench: Bench, asked: OfDraft) -> dict[str, Any]:
@@ -186,6 +186,8 @@ def store(bench: Bench, asked: OfDraft, signed: Signed) -> dict[str, Any]:
     if not signed.author.strip():
         raise InputError("To store needs a name", "", "Say who stores")
     draft = bench.drafts.draft(asked.id)
+    if signed.base_version not in (None, draft.history.version):
+        raise Conflict("The worksheet was changed elsewhere", draft.history.version)
     reading, files = storable(draft)
     with bench.writing() as library:
         stored = library.store(reading, author=signed.author, reason=signed.note, sheet_files=files)

@@ -87,16 +87,17 @@ async def answered(route: Route, bench: Any, request: Request) -> Response:
     """
     asked = asked_of(route, request)
     if route.alive:
-        result = await route.does(bench, asked, request)
-    elif route.body is not None:
-        result = await run_in_threadpool(route.does, bench, asked, await body_of(route.body, request))
-    else:
-        result = await run_in_threadpool(route.does, bench, asked)
-    return result if isinstance(result, Response) else written(result, route.status)
+        answer: Response = await route.does(bench, asked, request)
+        return answer
+    given = () if route.body is None else (await body_of(route.body, request),)
+    # Writing a large answer takes a while too, in which others should be answered.
+    return await run_in_threadpool(lambda: written(route.does(bench, asked, *given), route.status))
 
 
 def written(result: Any, status: int = 200) -> Response:
     """A result as an answer."""
+    if isinstance(result, Response):
+        return result
     if not isinstance(result, Content):
         return JSONResponse(result, status)
     headers = {}

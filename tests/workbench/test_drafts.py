@@ -24,6 +24,8 @@ def test_a_demo_sheet_is_read_stored_and_found(client: TestClient) -> None:
     assert state["work"]["state"] == "ready"
     assert state["open"] == []
     assert state["can_store"]
+    older = {"author": "Ida Brook", "base_version": state["version"] - 1}
+    assert client.post(f"/api/drafts/{state['id']}/store", json=older).status_code == 409
     answer = client.post(f"/api/drafts/{state['id']}/store", json={"author": "Ida Brook", "note": "first"})
     assert {"key": "riverside-b32", "revision": 1, "changed": True} in answer.json()["devices"]
     listed = client.get("/api/devices", params={"text": "riverside", "rated_current": 32}).json()
