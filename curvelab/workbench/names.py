@@ -3,9 +3,8 @@
 import re
 import unicodedata
 from pathlib import PurePosixPath, PureWindowsPath
-from typing import Final
 
-LONGEST: Final = 80
+LONGEST = 80
 
 SUFFIXES = {
     "raster": (".png", ".jpg", ".jpeg", ".tif", ".tiff", ".bmp", ".webp"),
