@@ -172,21 +172,15 @@ export class DeviceView {
   }
 
   #exports() {
-    const to = (name) => `/api/devices/${part(this.pinned)}/${name}`;
-    return el(
-      "ul",
-      { class: "exports" },
-      el("li", {}, el("a", { href: to("points.csv"), download: true }, "Points as a table (CSV)")),
-      el(
-        "li",
-        {},
-        el(
-          "a",
-          { href: `/api/devices/${part(this.device.key)}/export.jsonl`, download: true },
-          "All that is stored (JSON lines)",
-        ),
-      ),
-    );
+    const files = [
+      ["Review document (PDF)", this.pinned, "report.pdf"],
+      ["Review document (one HTML file)", this.pinned, "report.html"],
+      ["Points as a table (CSV)", this.pinned, "points.csv"],
+      ["All that is stored (JSON lines)", this.device.key, "export.jsonl"],
+    ];
+    const link = ([words, key, name]) =>
+      el("li", {}, el("a", { href: `/api/devices/${part(key)}/${name}`, download: true }, words));
+    return el("ul", { class: "exports" }, files.map(link));
   }
 }
 

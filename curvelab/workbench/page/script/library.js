@@ -93,9 +93,9 @@ export class Library {
 
   #draw() {
     if (!this.found) return;
-    const { total, devices } = this.found;
+    const { total, devices, more } = this.found;
     const filtered = this.wanted.text || this.wanted.kind || this.wanted.state;
-    this.sum.textContent = total ? count(total, "device") : "";
+    this.sum.textContent = total ? count(more ? `more than ${total}` : total, "device") : "";
     if (!total) return void fill(this.table, this.#empty(filtered));
     fill(
       this.table,
