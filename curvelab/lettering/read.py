@@ -5,7 +5,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from curvelab.lettering.exact import plain_word
+from curvelab.lettering.exact import plain_word, with_exponents
 from curvelab.lettering.ink import GLYPH_PX, find_ink
 from curvelab.lettering.page import words_of_ink
 from curvelab.records.sheet import Pixels, Sheet, Word
@@ -32,7 +32,7 @@ def read_words(sheet: Sheet, areas: tuple[Box, ...] | None = None) -> tuple[Word
         ``alternatives`` are what it may say instead, with their chances.
     """
     if sheet.words or sheet.pixels is None:
-        words = [plain_word(word) for word in sheet.words]
+        words = with_exponents([plain_word(word) for word in sheet.words])
         return tuple(word for word in words if areas is None or any(_within(word, area) for area in areas))
     return tuple(word for part in _parts(sheet.pixels, areas) for word in part)
 

@@ -131,3 +131,14 @@ def test_confidence_is_honest(quality: str, dpi: float) -> None:
     sure = [one for one in found if one.word is not None and one.word.confidence >= 0.9]
     assert len(sure) > 0.5 * len(found)
     assert sum(not one.right for one in sure) <= len(sure) / 30
+
+
+def test_an_exponent_drawn_apart_belongs_to_its_ten() -> None:
+    ten = Word(text="10", box=(10, 50, 32, 62), height=16)
+    exponent = Word(text="\u22122", box=(33, 44, 43, 54), height=11)
+    beside = Word(text="3", box=(60, 44, 66, 54), height=11)
+    level = Word(text="5", box=(33, 52, 39, 62), height=11)
+    sheet = sheet_of(np.full((100, 100), 255, dtype=np.uint8), words=(ten, exponent, beside))
+    assert sorted(one.text for one in read_words(sheet)) == ["10⁻²", "3"]
+    sheet = sheet_of(np.full((100, 100), 255, dtype=np.uint8), words=(ten, level))
+    assert sorted(one.text for one in read_words(sheet)) == ["10", "5"]
