@@ -18,7 +18,8 @@ def test_short_dashes_are_not_left_for_the_longer_ones_beside_them() -> None:
     trace, doubts = trace_of(ink, (94.0, 85.0), (430.0, 333.0))
     assert away_from(trace.places, line).max() < 1.0
     assert not doubts
-    assert trace.places[0, 0] < 80 and trace.places[-1, 0] > 460
+    assert trace.places[0, 0] < 80
+    assert trace.places[-1, 0] > 460
 
 
 def test_a_kink_inside_a_crossing_is_followed_between_guides_and_not_cut_short() -> None:
