@@ -1,9 +1,11 @@
 """A page as it is looked at: its own pixels, a rendering of a PDF, or the strokes and words of an SVG drawn."""
 
 import math
+from itertools import groupby
 
 import cv2
 import numpy as np
+from numpy.typing import NDArray
 from PIL import Image, ImageDraw, ImageFont
 
 from curvelab.records.arrays import Bytes, Floats
@@ -47,8 +49,12 @@ def _drawn(sheet: Sheet) -> Pixels:
     )
     columns, rows = max(1, round(sheet.width * scale)), max(1, round(sheet.height * scale))
     image = np.full((rows, columns, 3), 255, dtype=np.uint8)
-    for stroke in sheet.strokes:
-        _draw(image, stroke, scale)
+    for (_, is_filled), same in groupby(sheet.strokes, key=lambda stroke: (stroke.path, stroke.filled)):
+        if is_filled:
+            _fill(image, list(same), scale)
+        else:
+            for stroke in same:
+                _draw(image, stroke, scale)
     picture = Image.fromarray(image)
     pen = ImageDraw.Draw(picture)
     for word in sheet.words:
@@ -64,24 +70,35 @@ def _drawn(sheet: Sheet) -> Pixels:
     )
 
 
+def _fixed(points: Floats, scale: float) -> NDArray[np.int32]:
+    """Places as the drawing library's whole numbers of a fraction of a pixel."""
+    fixed: NDArray[np.int32] = np.round((points * scale - 0.5) * 2**SUBPIXELS).astype(np.int32)
+    return fixed
+
+
+def _fill(image: Bytes, outlines: list[Stroke], scale: float) -> None:
+    """Fill the outlines of one path together, so that holes stay holes; a line encloses nothing."""
+    pieces = [_fixed(stroke.points, scale) for stroke in outlines]
+    areas = [piece for piece in pieces if cv2.contourArea(piece) > 0]
+    if areas:
+        cv2.fillPoly(image, areas, outlines[0].colour, cv2.LINE_AA, SUBPIXELS)
+
+
 def _draw(image: Bytes, stroke: Stroke, scale: float) -> None:
-    points = np.round((stroke.points * scale - 0.5) * 2**SUBPIXELS).astype(np.int32)
-    if stroke.filled:
-        cv2.fillPoly(image, [points], stroke.colour, cv2.LINE_AA, SUBPIXELS)
-        return
     width = max(1, round(stroke.width * scale))
-    for piece in _dashes(stroke, scale) if stroke.dash else [points]:
-        cv2.polylines(image, [piece], stroke.closed and not stroke.dash, stroke.colour, width, cv2.LINE_AA, SUBPIXELS)
+    pieces = _dashes(stroke, scale) if stroke.dash else [_fixed(stroke.points, scale)]
+    is_closed = stroke.closed and not stroke.dash
+    cv2.polylines(image, pieces, is_closed, stroke.colour, width, cv2.LINE_AA, SUBPIXELS)
 
 
-def _dashes(stroke: Stroke, scale: float) -> list[Floats]:
+def _dashes(stroke: Stroke, scale: float) -> list[NDArray[np.int32]]:
     """The pieces of a dashed line that are drawn."""
     points = np.concatenate([stroke.points, stroke.points[:1]]) if stroke.closed else stroke.points
     along = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(points, axis=0).T))])
     pattern = stroke.dash * 2 if len(stroke.dash) % 2 else stroke.dash
     period = sum(pattern)
     if period * scale < 1:
-        return [np.round((points * scale - 0.5) * 2**SUBPIXELS).astype(np.int32)]
+        return [_fixed(points, scale)]
     pieces = []
     for start in np.arange(0.0, along[-1], period):
         at = start
@@ -89,6 +106,6 @@ def _dashes(stroke: Stroke, scale: float) -> list[Floats]:
             inner = along[(along > at) & (along < at + on)]
             stops = np.concatenate([[at], inner, [min(at + on, along[-1])]])
             piece = np.stack([np.interp(stops, along, points[:, k]) for k in (0, 1)], axis=1)
-            pieces.append(np.round((piece * scale - 0.5) * 2**SUBPIXELS).astype(np.int32))
+            pieces.append(_fixed(piece, scale))
             at += on + off
     return pieces
