@@ -28,6 +28,9 @@ MOST_LABELS = 8
 """Labels whose pairs are tried as rulers; the surest."""
 
 MOST_PAIRS = 6
+FEW_LINES = 12
+"""Lines up to which each label's own line is taken for the ruler: too few to find their pattern by themselves."""
+
 LINEAR_SHARE = 0.5
 """Share of the labels that must lie on one linear ruler for the scale to be linear at all."""
 
@@ -227,8 +230,19 @@ def _paired(seen: Seen, readings: _Readings, *, log: bool) -> list[Laid]:
         return []
     ranked = sorted(sets.items(), key=lambda item: (-len(item[0]), item[0]))[:MOST_PAIRS]
     rulers = [_through(at, scaled, members) or ruler for members, ruler in ranked]
+    if len(seen.at) <= FEW_LINES:
+        on_lines = _on_lines(seen, at, AGREEING * half)
+        rulers += [ruler for members, _ in ranked if (ruler := _through(on_lines, scaled, members))]
     laid = _laid_logs if log else _laid_linears
     return laid(seen, rulers, float(np.median(half)) if len(half) else seen.sd)
+
+
+def _on_lines(seen: Seen, at: Floats, reach: Floats) -> Floats:
+    """The line next to each place, or the place itself where none is within reach."""
+    if not len(seen.at):
+        return at
+    nearest = seen.at[np.argmin(np.abs(seen.at - at[:, None]), axis=1)]
+    return np.where(np.abs(nearest - at) <= reach, nearest, at)
 
 
 def _through(at: Floats, scaled: Floats, members: tuple[int, ...]) -> Ruler | None:
