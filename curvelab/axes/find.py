@@ -11,7 +11,7 @@ from curvelab.axes.marking import marks_of
 from curvelab.axes.naming import Naming, best_pair, namings, with_units
 from curvelab.axes.page import Page, page_of
 from curvelab.axes.plots import Box, Plot
-from curvelab.axes.seen import Seen, seen_lines
+from curvelab.axes.seen import Seen, seen_lines, with_ticks
 from curvelab.records.axes import Direction, Scale
 from curvelab.records.sheet import Sheet, Word
 from curvelab.records.warning import ReadingWarning
@@ -103,7 +103,10 @@ class _View:
     @classmethod
     def of(cls, page: Page, plot: Plot, sheet: Sheet, read: Words) -> "_View":
         """With the words below and at the left; those above and at the right are read where these do not tell all."""
-        seen = (seen_lines(plot, 0, page.sd), seen_lines(plot, 1, page.sd))
+        seen = (
+            with_ticks(seen_lines(plot, 0, page.sd), page.upright, plot, 0, page.near),
+            with_ticks(seen_lines(plot, 1, page.sd), page.level, plot, 1, page.near),
+        )
         lean = max(abs(lines.slope) for lines in seen)
         areas = tuple(page.area(box) for box in _bands(plot, page.size, lean))
 

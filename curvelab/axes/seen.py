@@ -1,12 +1,19 @@
 """The lines of one direction of a plot as places across, told at one place along them."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from curvelab.axes.fan import Fan, fanned
 from curvelab.axes.plots import Plot
+from curvelab.axes.segments import Segments
 from curvelab.records.arrays import Floats
+
+HARDLY_ANY = 4
+"""Lines or ticks without which an axis has none."""
+
+TICK = 0.05
+"""Share of the plot that a tick is long at most."""
 
 LONG = 0.3
 """Share of the plot that a line covers; shorter ones are ticks, curves or parts of boxes."""
@@ -51,6 +58,34 @@ class Seen:
     def slope_at(self, place: float) -> float:
         """Slope of the lines near a place across."""
         return float(self.fan.at(np.array([place]))[0])
+
+
+def with_ticks(seen: Seen, pieces: Segments, plot: Plot, across: int, near: float) -> Seen:
+    """The lines, and the short pieces that stand on a side of the frame, where there are hardly any lines.
+
+    Parameters
+    ----------
+    seen : Seen
+    pieces : Segments
+        All pieces of the page of that direction.
+    plot : Plot
+    across : 0 or 1
+    near : float
+        How far ends that meet may be apart.
+    """
+    if len(seen.at) >= HARDLY_ANY:
+        return seen
+    low, high = plot.span(1 - across)
+    short = pieces.length <= TICK * (high - low)
+    on_side = np.zeros(len(short), dtype=bool)
+    for side in (low, high):
+        on_side |= (pieces.first <= side + near) & (pieces.last >= side - near)
+    first, last = plot.span(across)
+    ticks = pieces.where(short & on_side & (pieces.across >= first - near) & (pieces.across <= last + near))
+    at = ticks.across + seen.fan.at(ticks.across) * (seen.middle - 0.5 * (ticks.first + ticks.last))
+    both = np.sort(np.concatenate([seen.at, at]))
+    kept = both[np.diff(both, prepend=-np.inf) > 3.0 * seen.sd]
+    return replace(seen, at=kept) if len(at) >= HARDLY_ANY else seen
 
 
 def seen_lines(plot: Plot, across: int, sd: float) -> Seen:
