@@ -212,3 +212,28 @@ def test_ticks_without_a_grid() -> None:
     plot = PrintedPlot(ticks=True)
     axes, _ = read(printed(plot))
     assert_right(axes, plot)
+
+
+def test_marks_stand_on_ticks_however_numbers_are_set() -> None:
+    """Numbers whose widths are guesses, as those of an SVG are, lie some units off their ticks."""
+    plot = PrintedPlot(ticks=True)
+    sheet = printed(plot)
+    moved = tuple(
+        replace(one, box=(one.box[0] + 2.5, one.box[1], one.box[2] + 2.5, one.box[3])) if one.height == 8.0 else one
+        for one in sheet.words
+    )
+    axes, _ = read(replace(sheet, words=moved))
+    assert_right(axes, plot)
+
+
+def test_three_decade_lines_and_numbers_beside_them() -> None:
+    lines = (10.0, 100.0, 1000.0)
+    across = log_axis(10, 1000, 80.0, 380.0, "Current in A", lines=lines)
+    plot = PrintedPlot(across=across)
+    sheet = printed(plot)
+    moved = tuple(
+        replace(one, box=(one.box[0] + 2.0, one.box[1], one.box[2] + 2.0, one.box[3])) if one.height == 8.0 else one
+        for one in sheet.words
+    )
+    axes, _ = read(replace(sheet, words=moved))
+    assert_right(axes, plot)
