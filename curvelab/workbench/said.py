@@ -2,7 +2,6 @@
 
 import tomllib
 from collections.abc import Iterator
-from functools import lru_cache
 from typing import Any
 
 from curvelab.reading.complete import completed
@@ -15,7 +14,6 @@ def tables(text: str) -> dict[str, Any]:
     return tomllib.loads(text)
 
 
-@lru_cache(maxsize=4)
 def tables_read(reading: Reading) -> dict[str, Any]:
     """The tables of the worksheet that says everything that was said and read."""
     return tomllib.loads(worksheet_text(completed(reading)))

@@ -24,8 +24,7 @@ def draft_state(draft: Draft, have: int | None = None) -> dict[str, Any]:
     tick, work, history, name = draft.tick, draft.work, draft.history, draft.kept.name
     worksheet, reading = history.worksheet, work.reading
     entries = open_entries(worksheet, reading, work.error)
-    said = tables(worksheet.text)
-    data = tables_read(reading) if reading and work.of is worksheet else said
+    data, read_from_sheet = _data(worksheet.text, reading if work.of is worksheet else None)
     return {
         "id": draft.id,
         "version": history.version,
@@ -36,7 +35,7 @@ def draft_state(draft: Draft, have: int | None = None) -> dict[str, Any]:
         "work": _work_state(work),
         "worksheet": worksheet.text,
         "data": data,
-        "read_from_sheet": only_read(said, data),
+        "read_from_sheet": read_from_sheet,
         "can_undo": history.can_undo,
         "can_redo": history.can_redo,
         "history": [{"text": step.words, "version": step.version} for step in history.steps],
@@ -44,11 +43,35 @@ def draft_state(draft: Draft, have: int | None = None) -> dict[str, Any]:
         "reading_version": work.number,
         "stale": work.of is not worksheet,
         **({} if have == work.number and reading else {"reading": _reading_state(draft)}),
-        "findings": [finding_json(each) for each in reading.findings] if reading else [],
-        "limits": drawn_limits(reading.devices, reading.findings) if reading else [],
+        **(_judged(reading) if reading else {"findings": [], "limits": []}),
         "open": [entry_json(each) for each in entries],
         "can_store": can_store(work, entries) and work.of is worksheet,
     }
+
+
+# While a reading is under way the page asks often, and most of the state is as it was.
+
+
+@lru_cache(maxsize=16)
+def _data(text: str, reading: Reading | None) -> tuple[dict[str, Any], list[str]]:
+    """The worksheet's tables with what was read in them, and the paths of what was only read."""
+    said = tables(text)
+    data = tables_read(reading) if reading else said
+    return data, only_read(said, data)
+
+
+@lru_cache(maxsize=8)
+def _judged(reading: Reading) -> dict[str, Any]:
+    """What the checks found, and where the limits lie."""
+    return {
+        "findings": [finding_json(each) for each in reading.findings],
+        "limits": drawn_limits(reading.devices, reading.findings),
+    }
+
+
+@lru_cache(maxsize=4)
+def _thinned(reading: Reading) -> dict[str, Any]:
+    return page_reading(reading)
 
 
 def can_store(work: Work, entries: list[OpenEntry]) -> bool:
@@ -124,11 +147,6 @@ def _work_state(work: Work) -> dict[str, Any]:
 def _reading_state(draft: Draft) -> dict[str, Any] | None:
     reading = draft.work.reading
     return None if reading is None else _thinned(reading)
-
-
-@lru_cache(maxsize=4)
-def _thinned(reading: Reading) -> dict[str, Any]:
-    return page_reading(reading)
 
 
 def entry_json(entry: OpenEntry) -> dict[str, Any]:
