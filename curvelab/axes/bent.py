@@ -6,9 +6,10 @@ import numpy as np
 
 from curvelab.axes.comb import Ruler
 from curvelab.axes.marks import CLICK_SD, fitted_ruler, mark_values
+from curvelab.axes.models import RICHER, Model
 from curvelab.axes.paths import Look
 from curvelab.axes.pattern import MAIN, linear_lines, log_lines
-from curvelab.axes.planefit import RICHER, Line, Model, Scatter, fit_plane
+from curvelab.axes.planefit import Line, Scatter, fit_plane
 from curvelab.axes.strips import Strips
 from curvelab.axes.tracks import track_places
 from curvelab.errors import AxesError

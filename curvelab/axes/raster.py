@@ -11,9 +11,10 @@ from curvelab.axes.extent import AT_LINE, covered_range
 from curvelab.axes.grid import AXIS_NAMES, Grid, aligned_marks, disagrees, rough_rows
 from curvelab.axes.marks import mark_values, with_marks
 from curvelab.axes.measure import Measured, measure_lines
+from curvelab.axes.models import RICHER, Model
 from curvelab.axes.paths import Look
 from curvelab.axes.pattern import MAIN, Range, finer_lines, linear_lines, log_lines
-from curvelab.axes.planefit import RICHER, Line, Model, Scatter, affine_map, fit_plane
+from curvelab.axes.planefit import Line, Scatter, affine_map, fit_plane
 from curvelab.axes.search import search_lines
 from curvelab.axes.strips import STRIP, Profile, Strips, profile_along, shared_slopes, strips_of
 from curvelab.axes.unlike import without_curves
