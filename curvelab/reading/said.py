@@ -1,7 +1,7 @@
 """What printed words say of a curve or a device: edge, meaning, element, rating, characteristic, settings, kind."""
 
 import re
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field, fields, replace
 from typing import Any, Literal
 
@@ -192,9 +192,13 @@ def _relay(text: str) -> str | None:
 def _ratings(text: str) -> tuple[float, ...]:
     listed = _LIST.search(text)
     if listed:
-        return tuple(float(number.replace(",", ".")) for number in re.findall(r"\d+(?:\.\d+)?", listed[1]))
-    found = [*_AMPERES.findall(text), *_TYPED.findall(text)]
-    return tuple(dict.fromkeys(_number(number) for number in found))
+        return _positive(re.findall(r"\d+(?:\.\d+)?", listed[1]))
+    return tuple(dict.fromkeys(_positive([*_AMPERES.findall(text), *_TYPED.findall(text)])))
+
+
+def _positive(numbers: Iterable[str]) -> tuple[float, ...]:
+    """A rating of nought is a misread one."""
+    return tuple(rating for rating in map(_number, numbers) if rating > 0)
 
 
 def _settings(text: str) -> Mapping[str, float]:

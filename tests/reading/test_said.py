@@ -19,6 +19,7 @@ from curvelab.reading.said import said_by
         ("6 A to 63 A", ()),
         ("30 mA", ()),
         ("12 A2s", ()),
+        ("0 A", ()),
     ],
 )
 def test_ratings_are_numbers_before_amperes(text: str, ratings: tuple[float, ...]) -> None:
