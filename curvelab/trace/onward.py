@@ -33,6 +33,8 @@ def steps_from(graph: ChainGraph, track: Track, way: Way) -> list[Step]:
     beyond = [] if clear else over_gap(graph, onward, track, way)
     turns = turning(graph, track, [step for step in steps if step.cost > ACCEPT], way, alone=not going)
     usual = [step for step in beyond if not track.is_dashed or step.hop <= NEAR_BREAK * track.common_break]
+    if usual and not way.guided:
+        beyond = usual
     if way.guided or not (going or turns or usual):
         gone = {step.entry for step in (*beyond, *steps)}
         dashes = [step for step in next_dash(graph, onward, track, way) if step.entry not in gone]

@@ -8,7 +8,7 @@ import numpy as np
 
 from curvelab.records.arrays import Floats
 from curvelab.trace.chains import ChainGraph
-from curvelab.trace.continuing import ACCEPT, LONGEST_HOP, USUAL_BREAK
+from curvelab.trace.continuing import ACCEPT, USUAL_BREAK
 from curvelab.trace.gaps import MARGIN
 from curvelab.trace.onward import known_before, steps_from
 from curvelab.trace.track import FRESH, Track, added, begun, line_of, oriented, straightened
@@ -21,6 +21,8 @@ END_INSIDE = 7.0
 MOST_STEPS = 4000
 SHORTEST_GAP = 6.0
 """px: a shorter break is print or a crossing, not a gap."""
+UNEARNED = 2.5
+"""Cost of a step over an unseen stretch from which it is told."""
 GUIDE_SCATTER = 3.0
 """px by which a guide place may easily lie beside its line."""
 
@@ -154,7 +156,7 @@ def _is_doubtful(track: Track) -> bool:
     step, before = track.step, track.before
     if before is not None and before.is_dashed and step.hop <= USUAL_BREAK * before.common_break:
         return step.cost > 2.0 * ACCEPT
-    return step.cost > 2.0 * ACCEPT or (step.hop > SHORTEST_GAP and step.cost >= ACCEPT) or step.hop > LONGEST_HOP
+    return step.cost > 2.0 * ACCEPT or (step.hop > SHORTEST_GAP and step.cost > UNEARNED)
 
 
 def _exchanged(explored: Explored) -> bool:
@@ -183,13 +185,21 @@ def _to_end(
             continue
         rivals = [t for t in explored.tried.get(id(track.root), ()) if t.entry[0] not in passed]
         assert track.before is not None
-        if track.step.kink and track.step.hop > SHORTEST_GAP and not start.is_dashed:
+        if _is_unearned(track):
             doubts.append(_tip(graph, track.before))
         elif any(_rivals(graph, rival, track) for rival in rivals):
             doubts.append(_tip(graph, track.before))
             if track.step.hop > SHORTEST_GAP:
                 return track.before, doubts
     return explored.best, doubts
+
+
+def _is_unearned(track: Track) -> bool:
+    """Whether a line walked to its end takes a step over an unseen stretch that its course hardly foretells."""
+    step, before = track.step, track.before
+    if before is not None and before.is_dashed and step.hop <= USUAL_BREAK * before.common_break:
+        return False
+    return step.hop > SHORTEST_GAP and (step.kink or step.cost > UNEARNED)
 
 
 def _rivals(graph: ChainGraph, rival: Track, chosen: Track) -> bool:
