@@ -28,7 +28,7 @@ RIGHT = 0.003
 """Relative error of current and time, anywhere in the plot, up to which axes are right."""
 
 UNRELATED = {"grid-snapped"}
-"""Warnings that say how exact the sheet is, not whether it was read rightly."""
+"""Warnings that say how exact the sheet is: one alone does not count against what is right."""
 
 FOREIGN = "foreign-"
 """Classes of pages as other programs print them, beside those of the project's own drawing."""
@@ -97,7 +97,7 @@ def read_axes(seed: int, quality: str, folder: Path) -> AxesResult:
     if named and error <= RIGHT:
         outcome: Outcome = "warned" if doubts else "right"
     else:
-        outcome = "wrong-warned" if doubts else "wrong"
+        outcome = "wrong-warned" if warnings else "wrong"
     said = f"{axes.current.unit} {axes.value.unit} " + " ".join(f"[{doubt.code}] {doubt.text}" for doubt in doubts)
     return AxesResult(sheet=name, outcome=outcome, error=error, seconds=seconds, said=said)
 
