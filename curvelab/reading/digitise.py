@@ -13,6 +13,7 @@ from curvelab.reading.check import checked
 from curvelab.reading.find import find_curves, with_found
 from curvelab.reading.follow import follow_curves, open_edges
 from curvelab.reading.form_doubts import form_doubts
+from curvelab.reading.gaps import open_gaps
 from curvelab.reading.model import fitted_curves, typed_curves
 from curvelab.reading.remember import Remember, anew
 from curvelab.reading.said_forms import with_said_forms
@@ -97,7 +98,7 @@ def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, re
         watch("Fitting the bands", 0.0)
         pixel = sheet.pixels.size_in_places if sheet.pixels else 0.0
         followed_curves = fitted_curves(followed, axes, key, remember, pixel=pixel)
-        warnings = doubts + more_doubts + open_edges(followed)
+        warnings = (*doubts, *more_doubts, *open_edges(followed), *open_gaps(followed_curves, axes))
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     curves = with_said_forms(curves, worksheet.devices)
     warnings += form_doubts(curves, worksheet.devices)

@@ -1,4 +1,4 @@
-"""What is open about lines: which limit they are, what ends there, where they were not seen."""
+"""What is open about lines: which limit they are and what ends there."""
 
 from collections.abc import Iterator
 
@@ -6,11 +6,10 @@ import numpy as np
 
 from curvelab.records.curve import Edge
 from curvelab.records.reading import ReadCurve, Reading
-from curvelab.records.trace import Gap
 from curvelab.records.warning import ReadingWarning
 from curvelab.records.worksheet import CurveEntry
 from curvelab.workbench.entries import entries_of
-from curvelab.workbench.open_entry import AROUND, Answer, OpenEntry, Place, about, accepting
+from curvelab.workbench.open_entry import Answer, OpenEntry, Place, about, accepting
 
 EDGES: tuple[Edge, ...] = ("fast", "slow", "mean")
 EDGE_WORDS = {"fast": "The fast edge", "slow": "The slow edge", "mean": "One mean line"}
@@ -83,32 +82,6 @@ def _kind(entry: CurveEntry, reading: Reading) -> str | None:
     devices = [each.nameplate for each in reading.worksheet.devices]
     kinds = {plate.kind for plate in devices if not entry.devices or plate.key in entry.devices}
     return kinds.pop() if len(kinds) == 1 else None
-
-
-def of_gaps(reading: Reading) -> Iterator[OpenEntry]:
-    """One entry for each stretch along which a line was not seen."""
-    for index, read in zip(entries_of(reading), reading.curves, strict=True):
-        for gap in read.trace.gaps if read.trace else ():
-            yield _of_gap(read, gap, index)
-
-
-def _of_gap(read: ReadCurve, gap: Gap, curve: int | None) -> OpenEntry:
-    ends = np.array([gap.start, gap.end])
-    x, y = ends.mean(axis=0)
-    (x0, y0), (x1, y1) = ends.min(axis=0) - AROUND / 2, ends.max(axis=0) + AROUND / 2
-    middle = (float(x), float(y))
-    return OpenEntry(
-        code="gap",
-        text=f"The {read.curve.edge} line was not seen here; no value is given across the gap",
-        kind="gap",
-        at=middle,
-        box=(float(x0), float(y0), float(x1), float(y1)),
-        curve=curve,
-        answers=(
-            Answer(text="Click where it passes", change={"kind": "passes", "curve": curve}, asks="place"),
-            accepting("gap", middle),
-        ),
-    )
 
 
 def line_at(warning: ReadingWarning, reading: Reading) -> int | None:

@@ -9,7 +9,7 @@ from curvelab.records.warning import Acceptance, ReadingWarning
 from curvelab.records.worksheet import Worksheet
 from curvelab.workbench.open_devices import of_devices, of_finding
 from curvelab.workbench.open_entry import Answer, Kind, OpenEntry, about, accepting
-from curvelab.workbench.open_lines import UNNAMED, line_at, of_gaps, of_unnamed
+from curvelab.workbench.open_lines import UNNAMED, line_at, of_unnamed
 
 ORDER: tuple[Kind, ...] = ("axis", "edge", "crossing", "gap", "device", "finding", "other")
 """What is told first: a wrong axis makes every number wrong, a wrong edge a band, and so on."""
@@ -18,6 +18,7 @@ KINDS: dict[str, Kind] = {
     "area-edge": "edge",
     "no-curves": "edge",
     "trace-doubt": "crossing",
+    "gap": "gap",
     "several-plots": "axis",
     "axes-from-marks": "axis",
     "grid-disagrees": "axis",
@@ -36,11 +37,12 @@ KINDS: dict[str, Kind] = {
 PLAIN = {
     "no-curves": "No line was found: click the lines of the curve on the sheet",
     "trace-doubt": "The line could go on two ways here",
+    "gap": "The line was not seen here; no value is given across the gap",
     "area-edge": "No line is there, so the edge of a filled area was followed: is that meant?",
 }
 """Sentences for a person at the page where a warning speaks of the worksheet."""
 
-OF_LINES = ("edge", "crossing")
+OF_LINES = ("edge", "crossing", "gap")
 SAME_PLACE = 5.0
 """Places this close, in the sheet's unit, are the same."""
 
@@ -64,7 +66,6 @@ def open_entries(worksheet: Worksheet, reading: Reading | None, error: CurvelabE
     found = [
         *_of_warnings(reading),
         *of_unnamed(reading),
-        *of_gaps(reading),
         *of_devices(worksheet, reading),
         *(of_finding(each) for each in reading.findings if _is_open(each)),
     ]
@@ -117,6 +118,8 @@ def _own_answers(warning: ReadingWarning, reading: Reading, curve: int | None) -
     """What settles a warning beside accepting it."""
     if warning.code == "trace-doubt":
         yield Answer(text="Click where it goes on", change={"kind": "passes", "curve": curve}, asks="place")
+    elif warning.code == "gap":
+        yield Answer(text="Click where it passes", change={"kind": "passes", "curve": curve}, asks="place")
     elif warning.code == "no-curves":
         yield Answer(text="Click a line", change={"kind": "passes", "curve": None}, asks="place")
     elif warning.code == "several-plots" and reading.axes is not None:

@@ -7,7 +7,7 @@ from starlette.testclient import TestClient
 from curvelab.errors import AxesError, TraceError
 from curvelab.records.curve import Curve, typed_part
 from curvelab.records.reading import ReadCurve, Reading
-from curvelab.records.trace import Gap, Trace
+from curvelab.records.trace import Trace
 from curvelab.records.warning import ReadingWarning
 from curvelab.records.worksheet import Worksheet
 from curvelab.workbench.open_list import ORDER, open_entries
@@ -32,13 +32,13 @@ standard = "IEC 60898-1"
 """
 
 
-def line(gaps: tuple[Gap, ...], meaning: str | None, x: float) -> ReadCurve:
+def line(meaning: str | None, x: float) -> ReadCurve:
     places = np.stack([np.full(50, x), np.linspace(100, 600, 50)], axis=1)
     trace = Trace(
         places=places,
         sd=np.full(50, 0.1),
         correlation_length=10.0,
-        gaps=gaps,
+        gaps=(),
         ends_at_frame=(True, True),
         colour=None,
         width=2.0,
@@ -61,15 +61,15 @@ def line(gaps: tuple[Gap, ...], meaning: str | None, x: float) -> ReadCurve:
 
 
 def reading(worksheet: Worksheet, *warnings: ReadingWarning) -> Reading:
-    gap = Gap(start=(100.0, 200.0), end=(100.0, 260.0))
+    gap = ReadingWarning(code="gap", text="not seen between 16 A and 20 A", at=(100.0, 230.0))
     return Reading(
         worksheet=worksheet,
         sheet=None,
         axes=None,
-        curves=(line((gap,), "clearing", 100.0), line((), None, 300.0)),
+        curves=(line("clearing", 100.0), line(None, 300.0)),
         devices=(),
         findings=(),
-        warnings=warnings,
+        warnings=(*warnings, gap),
         program_version="0",
     )
 

@@ -49,7 +49,7 @@ export class SheetPane {
     const of = `${sheet.sha256}-${sheet.page}-${sheet.width}`;
     if (of !== this.of) {
       this.of = of;
-      this.tiles = new Tiles(id, sheet, () => this.canvas.redraw());
+      this.tiles = new Tiles(id, sheet, () => this.#arrived());
       this.view = new SheetView(sheet.width, sheet.height, this.tiles.perUnit);
       this.#sized(this.canvas.width, this.canvas.height);
     }
@@ -59,6 +59,12 @@ export class SheetPane {
     }
     this.marks.update();
     this.canvas.redraw();
+  }
+
+  /** A tile came; with the paper laid bare the twin shows it too. */
+  #arrived() {
+    this.canvas.redraw();
+    if (this.desk.bare) this.desk.twin.canvas.redraw();
   }
 
   #sized(width, height) {

@@ -14,10 +14,14 @@ export function drawPaperBelow(context, frame, plane, pane, ink) {
     .map((i) => Math.min(...corners.map((each) => each[i])))
     .concat([0, 1].map((i) => Math.max(...corners.map((each) => each[i]))));
   const scale = (frame.wide / (box[2] - box[0])) * (window.devicePixelRatio || 1);
-  tiles.visit(box, tiles.levelFor(scale), (image, covers) => {
-    for (let row = 0; row < PARTS; row += 1)
-      for (let column = 0; column < PARTS; column += 1) drawPart(context, frame, plane, image, covers, column, row);
-  });
+  const level = tiles.levelFor(scale);
+  for (const each of new Set([Math.min(tiles.coarsest, level + 2), level])) {
+    tiles.visit(box, each, (image, covers) => {
+      for (let part = 0; part < PARTS * PARTS; part += 1) {
+        drawPart(context, frame, plane, image, covers, part % PARTS, Math.floor(part / PARTS));
+      }
+    });
+  }
   const dim = Number(ink("sheet-dim"));
   if (!dim) return;
   context.fillStyle = `rgba(20, 24, 26, ${dim})`;
