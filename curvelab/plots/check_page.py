@@ -1,11 +1,13 @@
 """One page of a check: the band with its limits, and beneath it what was required and read."""
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
+from itertools import pairwise
 from pathlib import Path
 
 from matplotlib import rc_context
 from matplotlib.figure import Figure
 from matplotlib.lines import Line2D
+from matplotlib.text import Text
 
 from curvelab.plots.bands import bands_figure
 from curvelab.plots.ink import GRAPHITE, MINOR, QUIET, STYLE, WARM
@@ -22,14 +24,14 @@ TALLEST = 0.5
 """Of the page, for the table: rows grow smaller rather than the band."""
 COLUMNS = (
     ("Requirement", 0.0),
-    ("Read (95 %)", 0.43),
-    ("Margin", 0.665),
-    ("Outcome", 0.735),
-    ("Clause", 0.835),
+    ("Read (95 %)", 0.415),
+    ("Margin", 0.685),
+    ("Outcome", 0.755),
+    ("Clause", 0.85),
 )
 """Heading and left end of each column, as fractions of the table's width."""
-LETTERS, CLAUSE_LETTERS = 74, 26
-"""Of a requirement and of a clause that fit into their columns."""
+BETWEEN = 0.012
+"""Free space at a column's right end, as a fraction of the table's width."""
 
 
 def draw_check_page(device: DeviceRecord, findings: Sequence[Finding], path: str | Path) -> None:
@@ -59,11 +61,28 @@ def _draw_table(figure: Figure, findings: Sequence[Finding], height: float) -> N
     for index, finding in enumerate(findings, start=1):
         y = top - index * row
         figure.add_artist(_rule(y + row * 0.93))
-        for (_, at), words in zip(COLUMNS, _cells(finding), strict=True):
-            figure.text(_x(at), y, words, fontsize=size, color=_colour(finding), va="bottom")
+        for (start, end), words in zip(
+            pairwise([*(at for _, at in COLUMNS), 1 + BETWEEN]), _cells(finding), strict=True
+        ):
+            cell = figure.text(_x(start), y, words, fontsize=size, color=_colour(finding), va="bottom")
+            _fit(cell, _x(end - BETWEEN) - _x(start))
     if findings:
         standards = ", ".join(dict.fromkeys(finding.standard for finding in findings))
         figure.text(_x(0), top - (len(findings) + 1) * row, _foot(standards), fontsize=size, color=QUIET, va="bottom")
+
+
+def _spans() -> Iterator[tuple[float, float]]:
+    """Start of each column and of the next."""
+    return pairwise([*(at for _, at in COLUMNS), 1 + BETWEEN])
+
+
+def _fit(cell: Text, room: float) -> None:
+    """Print a cell smaller where its words are wider than the room, a fraction of the page's width."""
+    figure = cell.get_figure(root=True)
+    assert figure is not None
+    wide = cell.get_window_extent().width / figure.bbox.width
+    # letters grow in steps of whole pixels, so that a little room is kept
+    cell.set_fontsize(float(cell.get_fontsize()) * min(1.0, 0.97 * room / max(wide, 1e-9)))
 
 
 def _foot(standards: str) -> str:
@@ -76,16 +95,12 @@ def _rule(y: float) -> Line2D:
 
 def _cells(finding: Finding) -> tuple[str, ...]:
     return (
-        _cut(finding.requirement, LETTERS),
+        finding.requirement,
         "" if finding.value is None else written_between(finding.value, finding.interval, finding.unit),
         "" if finding.margin is None else written_percent(finding.margin),
         finding.outcome + (" *" if finding.advisory else ""),
-        _cut(finding.clause, CLAUSE_LETTERS),
+        finding.clause,
     )
-
-
-def _cut(words: str, letters: int) -> str:
-    return words if len(words) <= letters else words[: letters - 1] + "…"
 
 
 def _colour(finding: Finding) -> str:
