@@ -105,6 +105,20 @@ class Screen:
         self.act()
         self.page.mouse.click(*self.pixel(x, y), **more)
 
+    def told(self, text: str) -> None:
+        """Wait until the page says so in passing."""
+        self.page.wait_for_function("(text) => document.querySelector('#said').textContent.includes(text)", arg=text)
+
+    def may_store(self) -> None:
+        """Wait until nothing keeps the sheet from being stored."""
+        self.page.locator(".store-button[aria-disabled=false]").wait_for()
+
+    def place_on(self, curve: int) -> tuple[float, float]:
+        """A place well within a traced line."""
+        points = self.state()["reading"]["curves"][curve]["points"]
+        middle = len(points["x"]) // 3
+        return points["x"][middle], points["y"][middle]
+
     @property
     def open_texts(self) -> list[str]:
         return self.page.locator(".entry-text").all_inner_texts()
