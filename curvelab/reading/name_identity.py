@@ -1,7 +1,7 @@
 """Whose each line is: characteristic, rating, settings and state, by its words and by the lines drawn like it."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -57,12 +57,24 @@ def said_of_lines(
     for row in rows:
         for line in row.lines:
             result[line] = _more(result[line], row.said, row.phrase)
-    for label in sorted(labels, key=lambda one: -one.distance):
-        if label.said.number is None:
-            result[label.line] = _more(result[label.line], label.said, label.phrase)
+    for line in range(len(result)):
+        own = [label for label in labels if label.line == line and label.said.number is None]
+        agreed = _agree([label.said for label in own])
+        for label in sorted(own, key=lambda one: -one.distance):
+            phrase = label.phrase if agreed else replace(label.phrase, confidence=0.0)
+            result[line] = _more(result[line], label.said if agreed else Said(), phrase)
     for line, said, phrase in by_number.values():
         result[line] = _more(result[line], said, phrase)
     return result
+
+
+def _agree(said: Sequence[Said]) -> bool:
+    """Whether words that stand at one line can all be about it."""
+    for name in ("characteristic", "rating", "edge", "settings"):
+        values = [getattr(one, name) for one in said if getattr(one, name)]
+        if any(value != values[0] for value in values):
+            return False
+    return True
 
 
 def _more(before: LineSaid, said: Said, phrase: Phrase) -> LineSaid:
@@ -73,6 +85,8 @@ def _more(before: LineSaid, said: Said, phrase: Phrase) -> LineSaid:
 
 def _is_doubtful(said: Said, phrase: Phrase) -> bool:
     """Whether what decides a line's name may have been misread from pixels."""
+    if phrase.confidence == 0.0:
+        return True
     decisive = identity_of(said) is not None or said.edge is not None
     unusual = said.rating is not None and said.rating not in PREFERRED
     return decisive and (phrase.confidence < SURE or (unusual and phrase.confidence < 1.0))

@@ -11,7 +11,7 @@ from curvelab.records.sheet import Word
 
 Box = tuple[float, float, float, float]
 
-_VALUE = re.compile(r"(\d+(?:[.,]\d+)? ?A)(?: |(?=\d)|$)")
+_VALUE = re.compile(r"((?:(?i:tms|td|tr|tsd) ?=? ?)?\d+(?:[.,]\d+)?(?: ?[As](?![A-Za-z]))?) ?")
 ONE_WORD, ONE_LINE = 0.2, 0.75
 """Gap between words, relative to their size, up to which they are pieces of one word, or words of one line."""
 SAME_BASE = 0.35
@@ -41,8 +41,9 @@ class Phrase:
 
 def phrases_of(words: Iterable[Word]) -> tuple[Phrase, ...]:
     """Lines of text, top to bottom; words that say nothing (dashes of a line, doubtful readings) left out."""
-    apart = (piece for word in words for piece in _labels_apart(word))
-    left = [word for word in apart if _is_readable(word)]
+    pieces = [list(_labels_apart(word)) for word in words if _is_readable(word)]
+    left = [own[0] for own in pieces if len(own) == 1]
+    labels = [[word] for own in pieces if len(own) > 1 for word in own]
     level = sorted((word for word in left if word.turned_deg % 360 == 0), key=lambda word: (word.box[0], word.box[1]))
     lines: list[list[Word]] = []
     for word in level:
@@ -52,7 +53,7 @@ def phrases_of(words: Iterable[Word]) -> tuple[Phrase, ...]:
         else:
             line.append(word)
     turned = [[word] for word in left if word.turned_deg % 360 != 0]
-    return tuple(sorted(map(_phrase, [*lines, *turned]), key=lambda one: (one.box[1], one.box[0])))
+    return tuple(sorted(map(_phrase, [*lines, *labels, *turned]), key=lambda one: (one.box[1], one.box[0])))
 
 
 def _is_readable(word: Word) -> bool:
@@ -63,7 +64,8 @@ def _is_readable(word: Word) -> bool:
 def _labels_apart(word: Word) -> Iterator[Word]:
     """Values that stand side by side in one run, ``16 A 25 A``, belong to lines of their own."""
     pieces = list(_VALUE.finditer(word.text))
-    if len(pieces) < 2 or word.turned_deg or "".join(one[0] for one in pieces).strip() != word.text.strip():
+    plain = all(piece[1].isdigit() for piece in pieces)
+    if len(pieces) < 2 or plain or word.turned_deg or "".join(one[0] for one in pieces).strip() != word.text.strip():
         yield word
         return
     x0, y0, x1, y1 = word.box

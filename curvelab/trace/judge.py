@@ -48,6 +48,8 @@ class Judge:
         length = length_of(places)
         if length < LEAST_LENGTH * self.side:
             return "scrap"
+        if self._turns_back(places):
+            return "scrap"
         if self.is_parallel(places) or (not self.at_frame(places).any() and self._on_grid(places) > MOSTLY):
             return "grid"
         return "straight" if bow(places) <= max(STRAIGHT * length, 0.5 * width, self.exactness) else "curve"
@@ -64,6 +66,12 @@ class Judge:
         """Whether the line's start and end lie at the frame."""
         result: NDArray[np.bool_] = self.window.depth(places[[0, -1]]) < AT_FRAME * self.side
         return result
+
+    def _turns_back(self, places: Floats) -> bool:
+        """Whether its value changes with current the wrong way from end to end: times fall, let-through rises."""
+        rise = np.subtract(*self.window.axes.map.scaled(places[[-1, 0]])) / (self.window.high - self.window.low)
+        wrong = -1.0 if self.window.axes.value.quantity == "time" else 1.0
+        return bool(wrong * rise[0] * rise[1] < 0.0 and np.abs(rise).min() > PARALLEL)
 
     def _on_grid(self, places: Floats) -> float:
         """Share of a line along where grid lines are usually drawn: at whole digits of a decade."""
