@@ -15,7 +15,7 @@ from curvelab.reading.follow import follow_curves, open_edges
 from curvelab.reading.form_doubts import form_doubts
 from curvelab.reading.gaps import open_gaps
 from curvelab.reading.model import fitted_curves, typed_curves
-from curvelab.reading.remember import Remember, anew
+from curvelab.reading.remember import Remember, anew, within_reading
 from curvelab.reading.said_forms import with_said_forms
 from curvelab.reading.watch import Watch, unwatched
 from curvelab.records.axes import Axes
@@ -72,6 +72,7 @@ def with_findings(reading: Reading, remember: Remember = anew) -> Reading:
 
 def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, remember: Remember = anew) -> Reading:
     """Axes, curves and devices of a reading, not checked yet; arguments as for `read`."""
+    remember = within_reading(remember)
     sheet: Sheet | None = None
     axes: Axes | None = None
     warnings: tuple[ReadingWarning, ...] = ()
@@ -96,8 +97,7 @@ def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, re
             worksheet = with_found(worksheet, found)
         key = SheetKey(sha256=sheet.sha256, page=sheet.page, plot=axes.plot, file=page.file)
         watch("Fitting the bands", 0.0)
-        pixel = sheet.pixels.size_in_places if sheet.pixels else 0.0
-        followed_curves = fitted_curves(followed, axes, key, remember, pixel=pixel)
+        followed_curves = fitted_curves(followed, axes, key, remember, pixel=sheet.pixel)
         warnings = (*doubts, *more_doubts, *open_edges(followed), *open_gaps(followed_curves, axes))
     curves = followed_curves + typed_curves([entry for entry in entries if entry.points], quantity)
     curves = with_said_forms(curves, worksheet.devices)

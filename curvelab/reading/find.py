@@ -2,8 +2,10 @@
 
 from dataclasses import dataclass, replace
 
+from curvelab.errors import FitError
 from curvelab.lettering.read import read_words
 from curvelab.reading.follow import Followed
+from curvelab.reading.model import fit_trace
 from curvelab.reading.naming import name_lines
 from curvelab.reading.phrases import phrases_of
 from curvelab.reading.remember import Remember
@@ -12,7 +14,7 @@ from curvelab.records.axes import Axes
 from curvelab.records.sheet import Sheet
 from curvelab.records.warning import ReadingWarning
 from curvelab.records.worksheet import DeviceEntry, Document, Worksheet
-from curvelab.trace.find import find_lines
+from curvelab.trace.find import FoundLine, FoundLines, find_lines
 from curvelab.trace.prepare import prepare
 
 NO_CURVES = ReadingWarning(
@@ -43,7 +45,7 @@ def with_found(worksheet: Worksheet, found: Found) -> Worksheet:
 
 
 def find_curves(sheet: Sheet, axes: Axes, devices: tuple[DeviceEntry, ...], watch: Watch, remember: Remember) -> Found:
-    """Find every curve, and name it by the words of the sheet.
+    """Find every curve, and name it by the words of the sheet; a line that is no curve is told and left out.
 
     Parameters
     ----------
@@ -59,6 +61,7 @@ def find_curves(sheet: Sheet, axes: Axes, devices: tuple[DeviceEntry, ...], watc
     prepared = remember("page", (sheet, axes), lambda: prepare(sheet, axes))
     watch("Finding curves", 0.0)
     found = remember("lines", (prepared, words), lambda: find_lines(prepared, words))
+    found = _curves_among(found, sheet, axes, remember)
     naming = name_lines(found, phrases_of(words), axes, devices)
     followed = tuple(
         Followed(entry=entry, trace=line.trace, label=label)
@@ -71,4 +74,26 @@ def find_curves(sheet: Sheet, axes: Axes, devices: tuple[DeviceEntry, ...], watc
         devices=naming.devices,
         title=naming.title,
         warnings=(*missing, *doubts, *found.warnings, *naming.warnings),
+    )
+
+
+def _curves_among(found: FoundLines, sheet: Sheet, axes: Axes, remember: Remember) -> FoundLines:
+    """What was found, without lines that cannot be one curve."""
+    lines, doubts = [], []
+    for line in found.lines:
+        try:
+            fit_trace(line.trace, axes, remember, pixel=sheet.pixel)
+        except FitError as error:
+            doubts.append(_no_curve(line, error))
+        else:
+            lines.append(line)
+    return replace(found, lines=tuple(lines), warnings=(*found.warnings, *doubts))
+
+
+def _no_curve(line: FoundLine, error: FitError) -> ReadingWarning:
+    x, y = line.guide.through[0]
+    return ReadingWarning(
+        code="line-no-curve",
+        text=f"A line here is left out: {error.problem}; give it an entry in [[curves]] if it is a curve",
+        at=(float(x), float(y)),
     )

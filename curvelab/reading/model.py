@@ -103,19 +103,29 @@ def fitted_curves(
     FitError
         The places of a trace cannot be one monotone curve.
     """
-    rising = axes.value.quantity != "time"
     fitted = []
     for number, each in enumerate(followed, start=1):
-        make = partial(_fit, each.trace, axes, pixel, rising=rising)
         try:
-            trace, points, fit = remember("fit", (each.trace, axes), make)
+            trace, points, fit = fit_trace(each.trace, axes, remember, pixel=pixel)
         except FitError as error:
             raise FitError(f"[[curves]] {number}: {error.problem}", error.expected, error.fix) from error
         fitted.append(_Fitted(followed=replace(each, trace=trace), points=points, fit=fit))
     return tuple(_read_curve(each, axes, sheet) for each in _ordered(fitted))
 
 
-def _fit(trace: Trace, axes: Axes, pixel: float, *, rising: bool) -> tuple[Trace, FitPoints, CurveFit]:
+def fit_trace(trace: Trace, axes: Axes, remember: Remember, *, pixel: float) -> tuple[Trace, FitPoints, CurveFit]:
+    """The trace from low to high currents, its points in values, and the curve fitted to them.
+
+    Raises
+    ------
+    FitError
+        The places cannot be one monotone curve.
+    """
+    return remember("fit", (trace, axes), partial(_fit, trace, axes, pixel))
+
+
+def _fit(trace: Trace, axes: Axes, pixel: float) -> tuple[Trace, FitPoints, CurveFit]:
+    rising = axes.value.quantity != "time"
     ordered = _in_order(trace, axes, rising=rising)
     points = fit_points(ordered, axes, pixel)
     fit = fit_curve(points, rising=rising)

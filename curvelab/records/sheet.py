@@ -127,3 +127,8 @@ class Sheet:
     def is_vector(self) -> bool:
         """True where exact strokes exist: then they are measured, not the pixels."""
         return bool(self.strokes)
+
+    @property
+    def pixel(self) -> float:
+        """Size of a pixel in the sheet's unit; 0 where there are none."""
+        return self.pixels.size_in_places if self.pixels else 0.0
