@@ -116,6 +116,13 @@ class _Namer:
             )
         for device in self.devices if not self.given else ():
             plate = device.nameplate
+            if plate.characteristic is None and plate.kind in ("fuse", "mcb", "relay"):
+                self.warnings.append(
+                    ReadingWarning(
+                        code="characteristic-unknown",
+                        text=f"'{plate.key}' has no characteristic that could be read on the sheet: set characteristic",
+                    )
+                )
             if plate.rated_current_a is None and plate.kind not in ("relay", "rcd"):
                 self.warnings.append(
                     ReadingWarning(
@@ -127,6 +134,12 @@ class _Namer:
     def _said(self, number: int) -> Said:
         """What line and sheet say together; of a sheet with several devices each line says which is its own."""
         return self.said[number].said.over(self._of_identity(number)).over(self.sheet.said)
+
+    def _of_pair(self, number: int, said: Said) -> Said:
+        """What is said of a line; what the sheet says ends may be true of one line of a pair alone."""
+        own = self.said[number].said.meaning
+        pair = sum(whose == self.whose[number] for whose in self.whose) > 1
+        return without(said, "meaning") if pair and own is None and said.meaning == "pre_arcing" else said
 
     def _of_identity(self, number: int) -> Said:
         """What is known of a line from those it belongs to."""
@@ -202,7 +215,7 @@ class _Namer:
         element = said.element or ELEMENT_OF_BASE.get(self.axes.current.base) or _usual_element(kind)
         return CurveEntry(
             edge=edge,
-            meaning=meaning_of(said, kind),
+            meaning=meaning_of(self._of_pair(number, said), kind),
             element=element,
             devices=(key,) if key else (),
             through=line.guide.through,

@@ -168,7 +168,12 @@ class _Finder:
                 continue
             traced = self.traced(line.seed, line.walk)
             if traced is not None and cover.share(traced.trace.places) < 1.0 - OWN:
-                self.lines.append(traced)
+                doubt = ReadingWarning(
+                    code="trace-doubt",
+                    text="The line runs along another for a good part and may have left its own: add guide places",
+                    at=line.seed.middle,
+                )
+                self.lines.append(replace(traced, warnings=(*traced.warnings, doubt)))
 
     def join_parts(self) -> None:
         """Make one of lines that go on from one another, where the tracer too finds a way from one to the other."""
