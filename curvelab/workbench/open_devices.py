@@ -67,7 +67,7 @@ def _blanks(number: int, entry: DeviceEntry) -> Iterator[OpenEntry]:
 
 
 def _blank(number: int, plate: Nameplate, name: str, words: str) -> OpenEntry:
-    code = f"blank-{name.replace('_', '-')}"
+    code = f"blank-{name.replace('_', '-')}-{plate.key}"
     change = {"kind": "fill-device", "device": number, "name": name}
     return OpenEntry(
         code=code,

@@ -29,6 +29,11 @@ KINDS: dict[str, Kind] = {
     "unit-assumed": "axis",
     "unit-doubtful": "axis",
     "values-doubtful": "axis",
+    "line-unexplained": "edge",
+    "line-no-curve": "edge",
+    "label-doubtful": "device",
+    "device-unknown": "device",
+    "characteristic-unknown": "device",
     "unknown-characteristic": "device",
     "unknown-standard": "device",
 }
@@ -38,11 +43,18 @@ PLAIN = {
     "no-curves": "No line was found: click the lines of the curve on the sheet",
     "trace-doubt": "The line could go on two ways here",
     "gap": "The line was not seen here; no value is given across the gap",
+    "line-unexplained": "What looks like a line here was not read: click it if it is one",
+    "line-no-curve": "A line here is no curve whose times fall: click it again if it is one",
+    "device-unknown": "Whose line this is cannot be read from the sheet",
+    "characteristic-unknown": "No characteristic could be read on the sheet",
     "area-edge": "No line is there, so the edge of a filled area was followed: is that meant?",
 }
 """Sentences for a person at the page where a warning speaks of the worksheet."""
 
 OF_LINES = ("edge", "crossing", "gap")
+ASKED_OTHERWISE = (*UNNAMED, "rating-unknown")
+"""Codes of warnings whose question the list asks in a form of its own."""
+ADDED_BY_A_CLICK = ("no-curves", "line-unexplained", "line-no-curve")
 SAME_PLACE = 5.0
 """Places this close, in the sheet's unit, are the same."""
 
@@ -96,13 +108,14 @@ def _is_open(finding: Finding) -> bool:
 
 def _of_warnings(reading: Reading) -> Iterator[OpenEntry]:
     for warning in reading.warnings:
-        if warning.accepted is None and warning.code not in UNNAMED:
+        if warning.accepted is None and warning.code not in ASKED_OTHERWISE:
             yield _of_warning(warning, reading)
 
 
 def _of_warning(warning: ReadingWarning, reading: Reading) -> OpenEntry:
     kind = KINDS.get(warning.code, "other")
-    curve = line_at(warning, reading) if kind in OF_LINES else None
+    known = kind in OF_LINES and warning.code not in ADDED_BY_A_CLICK
+    curve = line_at(warning, reading) if known else None
     return OpenEntry(
         code=warning.code,
         text=PLAIN.get(warning.code, warning.text),
@@ -120,7 +133,7 @@ def _own_answers(warning: ReadingWarning, reading: Reading, curve: int | None) -
         yield Answer(text="Click where it goes on", change={"kind": "passes", "curve": curve}, asks="place")
     elif warning.code == "gap":
         yield Answer(text="Click where it passes", change={"kind": "passes", "curve": curve}, asks="place")
-    elif warning.code == "no-curves":
+    elif warning.code in ADDED_BY_A_CLICK:
         yield Answer(text="Click a line", change={"kind": "passes", "curve": None}, asks="place")
     elif warning.code == "several-plots" and reading.axes is not None:
         yield Answer(text="This plot is meant", change={"kind": "plot", "plot": reading.axes.plot})

@@ -223,8 +223,8 @@ def test_a_bare_sheet_is_confirmed_filled_and_stored(client: TestClient) -> None
     entry = next(each for each in state["open"] if each["code"] == "device-read")
     state = changed(client, state, **entry["answers"][0]["change"])
     assert "devices.0.kind" not in state["read_from_sheet"]
-    for code, value in (("blank-rated-current-a", "16 A"), ("blank-standard", "IEC 60898-1")):
-        entry = next(each for each in state["open"] if each["code"] == code)
+    for code, value in (("blank-rated-current-a-", "16 A"), ("blank-standard-", "IEC 60898-1")):
+        entry = next(each for each in state["open"] if each["code"].startswith(code))
         state = changed(client, state, **entry["answers"][0]["change"], value=value)
     assert state["open"] == []
     assert state["data"]["devices"][0]["rated_current_a"] == 16

@@ -91,7 +91,7 @@ def test_the_most_harmful_stands_first(worksheet: Worksheet) -> None:
         "meaning-unknown",
         "trace-doubt",
         "gap",
-        "blank-rated-current-a",
+        "blank-rated-current-a-weir-b16",
         "of-tomorrow",
     ]
     kinds = [ORDER.index(entry.kind) for entry in entries]
