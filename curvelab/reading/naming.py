@@ -5,7 +5,7 @@ from dataclasses import dataclass, replace
 
 from curvelab.reading.name_devices import conditions_of, given_for, kind_of, meaning_of, proposed, twins
 from curvelab.reading.name_edges import edges_of
-from curvelab.reading.name_identity import Identity, LineSaid, identities, said_of_lines
+from curvelab.reading.name_identity import EDGES, Identity, LineSaid, identities, said_of_lines
 from curvelab.reading.name_order import Order
 from curvelab.reading.name_places import legend_rows
 from curvelab.reading.name_sheet import SheetSaid, inside, sheet_said
@@ -138,7 +138,7 @@ class _Namer:
     def _of_pair(self, number: int, said: Said) -> Said:
         """What is said of a line; what the sheet says ends may be true of one line of a pair alone."""
         own = self.said[number].said.meaning
-        pair = sum(whose == self.whose[number] for whose in self.whose) > 1
+        pair = sum(whose == self.whose[number] for whose in self.whose) == EDGES
         return without(said, "meaning") if pair and own is None and said.meaning == "pre_arcing" else said
 
     def _of_identity(self, number: int) -> Said:

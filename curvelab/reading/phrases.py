@@ -11,7 +11,7 @@ from curvelab.records.sheet import Word
 
 Box = tuple[float, float, float, float]
 
-_VALUE = re.compile(r"((?:(?i:tms|td|tr|tsd) ?=? ?)?\d+(?:[.,]\d+)?(?: ?[As](?![A-Za-z]))?) ?")
+_VALUE = re.compile(r"((?:(?i:tms|td|tr|tsd) ?=? ?|(?:g[A-Z]|aM|aR) )?\d+(?:[.,]\d+)?(?: ?[As](?![A-Za-z]))?) ?")
 ONE_WORD, ONE_LINE = 0.2, 0.75
 """Gap between words, relative to their size, up to which they are pieces of one word, or words of one line."""
 SAME_BASE = 0.35
