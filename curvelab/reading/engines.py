@@ -7,6 +7,7 @@ from concurrent.futures import ProcessPoolExecutor, as_completed
 from concurrent.futures.process import BrokenProcessPool
 from contextlib import contextmanager
 from functools import partial
+from importlib import import_module
 from multiprocessing import get_context
 from typing import Any
 
@@ -85,29 +86,27 @@ def cluster(address: str) -> Engine:
         The library for it is not installed, or nothing answers at the address.
     """
     try:
-        from distributed import Client  # noqa: PLC0415 - an extra that few need
+        distributed: Any = import_module("distributed")  # an extra that few need
     except ImportError:
         raise InputError(
             "Reading over a cluster needs the extra 'cluster'", "", "pip install 'curvelab[cluster]'"
         ) from None
     try:
-        client: Any = Client(address, timeout=PATIENCE, set_as_default=False)  # type: ignore[no-untyped-call]
+        client: Any = distributed.Client(address, timeout=PATIENCE, set_as_default=False)
     except (OSError, ValueError) as error:
         raise InputError(
             f"No cluster answers at '{address}'", "The address of its scheduler, such as tcp://host:8786"
         ) from error
-    return partial(_over_cluster, client)
+    return partial(_over_cluster, distributed, client)
 
 
-def _over_cluster(client: Any, work: Work, jobs: list[Job]) -> Iterator[tuple[Job, Outcome | None]]:
-    from distributed import KilledWorker, as_completed  # noqa: PLC0415
-
+def _over_cluster(distributed: Any, client: Any, work: Work, jobs: list[Job]) -> Iterator[tuple[Job, Outcome | None]]:
     with client, client.as_current():
         # Not kept by what they are called: a page is read anew when it is asked for anew.
         futures = dict(zip(client.map(work, jobs, pure=False), jobs, strict=True))
-        for future in as_completed(list(futures)):  # type: ignore[no-untyped-call]
+        for future in distributed.as_completed(list(futures)):
             try:
                 outcome: Outcome | None = future.result()
-            except KilledWorker:
+            except distributed.KilledWorker:
                 outcome = None
             yield futures.pop(future), outcome

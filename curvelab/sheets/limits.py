@@ -29,3 +29,9 @@ ELEMENTS = 400_000
 
 SVG_BYTES = 40_000_000
 """Size of an SVG file, whose text grows about tenfold when parsed."""
+
+PAGE_BYTES = 700_000_000
+"""Memory that a costly page of a PDF may take beside the program's own."""
+
+PAGE_SECONDS = 20
+"""Time that a costly page of a PDF may take to open."""

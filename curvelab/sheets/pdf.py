@@ -6,6 +6,7 @@ from pypdfium2 import raw
 from curvelab.records.arrays import Floats
 from curvelab.records.sheet import Pixels, Sheet, Stroke
 from curvelab.sheets import limits
+from curvelab.sheets.apart import read_apart
 from curvelab.sheets.pdfimage import covered_area, pixel_count, scan_pixels
 from curvelab.sheets.pdfium import opened_page, page_map
 from curvelab.sheets.pdfobjects import Painted, Walk
@@ -13,6 +14,7 @@ from curvelab.sheets.pdfpaths import strokes_of
 from curvelab.sheets.pdftext import words_on
 from curvelab.sheets.source import Source
 from curvelab.sheets.strokes import PointCount, Setting
+from curvelab.sheets.weight import is_light
 
 SCAN_SHARE = 0.1
 """An image below this share of the page is a logo or a photo, not a scanned plot."""
@@ -25,13 +27,18 @@ PLOT_LINES = 12
 
 
 def pdf_page(source: Source) -> Sheet:
-    """One page of a PDF.
+    """One page of a PDF; what may cost too much is read in a process of its own.
 
     Raises
     ------
     SheetError
         The file is damaged, needs a password or is over the limits, or has no such page.
     """
+    return pdf_here(source) if is_light(source.data) else read_apart(source)
+
+
+def pdf_here(source: Source) -> Sheet:
+    """One page of a PDF, read in this process, with nothing to bound what PDFium takes."""
     with opened_page(source) as (page, pages):
         to_place, width, height = page_map(page)
         images, strokes = _painted(page, to_place, source)
