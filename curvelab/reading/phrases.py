@@ -11,7 +11,8 @@ from curvelab.records.sheet import Word
 
 Box = tuple[float, float, float, float]
 
-_VALUE = re.compile(r"((?:(?i:tms|td|tr|tsd) ?=? ?|(?:g[A-Z]|aM|aR) )?\d+(?:[.,]\d+)?(?: ?[As](?![A-Za-z]))?) ?")
+_NAME = r"(?:(?i:tms|td|tr|tsd) ?=? ?|(?:g[A-Z]|aM|aR) )"
+_VALUE = re.compile(rf"({_NAME}?\d+(?:[.,]\d+)?(?: ?[As](?=$|[ \d]|{_NAME}))?) ?")
 ONE_WORD, ONE_LINE = 0.2, 0.75
 """Gap between words, relative to their size, up to which they are pieces of one word, or words of one line."""
 SAME_BASE = 0.35
@@ -75,12 +76,19 @@ def _labels_apart(word: Word) -> Iterator[Word]:
 
 
 def _goes_on(before: Word, word: Word) -> bool:
+    if _is_value(before) and _is_value(word):
+        return False
     height = max(_height(before), _height(word))
     size = max(before.height, word.height)
     apart = word.box[0] - before.box[2]
     level = abs((word.box[1] + word.box[3]) - (before.box[1] + before.box[3])) / 2
     alike = max(before.height, word.height) <= SAME_HEIGHT * min(before.height, word.height)
     return -0.5 * size < apart < ONE_LINE * size and level < SAME_BASE * height and alike
+
+
+def _is_value(word: Word) -> bool:
+    """Whether it is a label of its own: a number with its unit or its name."""
+    return _VALUE.fullmatch(word.text) is not None and not word.text.isdigit()
 
 
 def _height(word: Word) -> float:
