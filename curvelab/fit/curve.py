@@ -97,7 +97,8 @@ def _fit_exact(strand: Strand) -> CurveFit:
 
 
 def _passes(strand: Strand, segments: Segments) -> bool:
-    return all(
+    """Whether the model passes every point: strokes have no strays, and a model that leaves some out ends too early."""
+    return not _strays([segments]) and all(
         np.abs(stretch.value(strand.u[inside]) - strand.v[inside]).max(initial=0.0) <= EXACT_ENOUGH
         for stretch, start, end in segments.bounds
         for inside in [(strand.u >= start) & (strand.u <= end)]

@@ -70,3 +70,12 @@ def test_strokes_that_run_backwards_are_refused_with_the_place():
 def test_a_gap_between_strokes_stays_a_gap():
     fit = fit_curve(strokes([0, 1, 1.5, 2], [2, 1, 0.5, 0], breaks=(2,)))
     assert [len(part.current) for part in fit.parts] == [2, 2]
+
+
+def test_strokes_that_step_aside_a_little_are_kept_to_their_end():
+    """A page's coordinates are rounded stroke by stroke: what is off by a hundredth of a pixel is no stray."""
+    x = np.linspace(0.02, 1.3, 280)
+    y = np.log10(0.014 / (10.0 ** (0.02 * x) - 1.0)) + np.where(x > 0.6, 1.6e-5, 0.0)
+    (part,) = fit_curve(strokes(x, y)).parts
+    np.testing.assert_allclose(np.log10(part.current[[0, -1]]), x[[0, -1]], atol=1e-9)
+    np.testing.assert_allclose(np.interp(x, np.log10(part.current), np.log10(part.value)), y, atol=1e-4)
