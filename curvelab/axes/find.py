@@ -27,6 +27,9 @@ FEWEST_MARKS = 2
 BAND = 0.11
 """Share of the page's larger side about a plot in which its numbers and titles are looked for."""
 
+SHORTEST_BAND = 80.0
+"""px or pt: the least of it, as letters do not shrink with a small page."""
+
 INTO = 0.012
 """The same into the plot: numbers touch the frame."""
 
@@ -167,7 +170,8 @@ class _View:
 def _bands(plot: Plot, size: tuple[float, float], lean: float) -> tuple[Box, ...]:
     """Rectangles about a plot, whose lines lean, that hold its numbers and titles: below, left, above and right."""
     x0, y0, x1, y1 = plot.box
-    reach, into = BAND * max(size), INTO * max(size) + 0.5 * lean * max(x1 - x0, y1 - y0)
+    reach = max(BAND * max(size), SHORTEST_BAND)
+    into = INTO * max(size) + 0.5 * lean * max(x1 - x0, y1 - y0)
     left, top, right, bottom = (
         max(x0 - reach, 0.0),
         max(y0 - reach, 0.0),

@@ -20,11 +20,11 @@ def nearest_on(points: Floats, place: Floats) -> Floats:
 
 
 def filled_in(points: Floats, spacing: float) -> Floats:
-    """The vertices with points between them so that none lie further apart than the spacing."""
+    """The vertices, each once, with points between them so that none lie further apart than the spacing."""
     lengths = np.hypot(*np.diff(points, axis=0).T)
     pieces = [points[:1]]
     for start, end, length in zip(points[:-1], points[1:], lengths, strict=True):
-        count = max(1, int(np.ceil(length / spacing)))
+        count = int(np.ceil(length / spacing))
         pieces.append(start + (end - start) * np.arange(1, count + 1)[:, None] / count)
     return np.concatenate(pieces)
 
