@@ -11,6 +11,7 @@ from curvelab.records.trace import Place, Trace
 from curvelab.records.warning import ReadingWarning
 from curvelab.trace.areas import bare_edges
 from curvelab.trace.cover import Cover
+from curvelab.trace.dashes import is_broken
 from curvelab.trace.found import FoundLine, FoundLines, ShortLine
 from curvelab.trace.furniture import furniture
 from curvelab.trace.guide import Guide
@@ -19,13 +20,11 @@ from curvelab.trace.joining import successions
 from curvelab.trace.judge import LEAST_LENGTH, Judge
 from curvelab.trace.prepared import Prepared, Raster
 from curvelab.trace.raster import trace_raster
-from curvelab.trace.seeds import BROKEN, Seed, pins, places_of, seeds_of, short_line, walked
+from curvelab.trace.seeds import Seed, pins, places_of, seeds_of, short_line, walked
 from curvelab.trace.walk import Walk
 
 MOST_TRIED = 80
 """Chains followed on one plot."""
-FEWEST_BREAKS, BREAK = 5, 3.0
-"""Breaks from which a line is dashed, and how many usual steps between places make a break."""
 FAINT, WIDE = 0.18, 5.0
 """Ink, and px of width, below and beyond which a line is a scrap of a tinted area."""
 SHARED = 0.2
@@ -246,10 +245,3 @@ def _unexplained(place: Place) -> ReadingWarning:
         text="What looks like a line here is not read as a curve: give it an entry in [[curves]] if it is one",
         at=place,
     )
-
-
-def is_broken(places: Floats) -> bool:
-    """Whether a line is printed in dashes: it comes in pieces with breaks between them."""
-    steps = np.hypot(*np.diff(places, axis=0).T)
-    breaks = steps[steps > BREAK * np.median(steps)]
-    return bool(len(breaks) >= FEWEST_BREAKS and breaks.sum() > BROKEN * steps.sum())

@@ -6,11 +6,12 @@ import numpy as np
 
 from curvelab.errors import TraceError
 from curvelab.records.arrays import Floats
-from curvelab.records.trace import Trace
+from curvelab.records.trace import Place, Trace
 from curvelab.records.warning import ReadingWarning
 from curvelab.trace.centre import Centres, measure_centres
 from curvelab.trace.chains import ChainGraph, build_graph
 from curvelab.trace.course import course_of
+from curvelab.trace.dashes import changes_of_print
 from curvelab.trace.edges import edge_raster
 from curvelab.trace.guide import Guide
 from curvelab.trace.outcome import Measured, gap_records, keep_seen
@@ -48,7 +49,7 @@ def trace_raster(prepared: Prepared, raster: Raster, guide: Guide) -> tuple[Trac
             "Set the guide place on the line",
         )
     trace = _trace(raster, window, centres, measured, pixels)
-    warnings = _warnings(raster, walk)
+    warnings = (*_warnings(raster, walk), *map(_changed_print, changes_of_print(trace, raster.pixels.size_in_places)))
     if not boundary:
         return trace, warnings
     return replace(trace, boundary=True, colour=None), (_area_edge(guide), *warnings)
@@ -59,6 +60,14 @@ def _area_edge(guide: Guide) -> ReadingWarning:
         code="area-edge",
         text="No line is there, so the edge of a filled area was read: look at it over the sheet before it is stored",
         at=guide.through[0],
+    )
+
+
+def _changed_print(place: Place) -> ReadingWarning:
+    return ReadingWarning(
+        code="trace-doubt",
+        text="The line changes between dashed and unbroken here, and may be two lines; add guide places beyond",
+        at=place,
     )
 
 

@@ -8,6 +8,7 @@ import numpy as np
 from curvelab.records.arrays import Floats
 from curvelab.records.trace import Place
 from curvelab.trace.chains import Chain
+from curvelab.trace.dashes import BROKEN
 from curvelab.trace.found import ShortLine
 from curvelab.trace.judge import bow, length_of
 from curvelab.trace.layers import layer_of
@@ -27,8 +28,6 @@ SHORTEST_LINE = 10.0
 """px"""
 MOST_PINS = 5
 """Places that a guide to an ambiguous line has."""
-BROKEN = 0.12
-"""Share of a line without ink from which it is dashed."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
