@@ -37,6 +37,6 @@ def test_a_change_of_print_is_at_the_gap() -> None:
 
 
 def test_a_label_on_a_line_changes_nothing() -> None:
-    assert changes_of_print(followed(SOLID, SOLID + (0.0, 430.0)), 1.0) == []
-    assert changes_of_print(followed(DASHED, DASHED + (0.0, 840.0)), 1.0) == []
+    assert changes_of_print(followed(SOLID, np.add(SOLID, (0.0, 430.0))), 1.0) == []
+    assert changes_of_print(followed(DASHED, np.add(DASHED, (0.0, 840.0))), 1.0) == []
     assert changes_of_print(followed(SOLID), 1.0) == []
