@@ -41,6 +41,7 @@ ONLY_IN: dict[str, set[str]] = {
     "PIL": {"sheets"},
     "pypdfium2": {"sheets"},
     "click": {"cli"},
+    "threadpoolctl": {"reading"},
     "distributed": {"reading"},
     "starlette": {"workbench"},
     "uvicorn": {"workbench"},

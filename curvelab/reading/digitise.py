@@ -4,6 +4,8 @@ import os
 from dataclasses import replace
 from pathlib import Path
 
+from threadpoolctl import threadpool_limits
+
 from curvelab import __version__
 from curvelab.axes.calibrate import calibrate
 from curvelab.errors import InputError, SheetError
@@ -71,8 +73,15 @@ def with_findings(reading: Reading, remember: Remember = anew) -> Reading:
 
 
 def read_curves(worksheet: Worksheet, folder: Path, watch: Watch = unwatched, remember: Remember = anew) -> Reading:
-    """Axes, curves and devices of a reading, not checked yet; arguments as for `read`."""
-    remember = within_reading(remember)
+    """Axes, curves and devices of a reading, not checked yet; arguments as for `read`.
+
+    Linear algebra runs on one thread, so that the same worksheet gives the same bytes whatever the number of threads.
+    """
+    with threadpool_limits(limits=1, user_api="blas"):
+        return _curves_of(worksheet, folder, watch, within_reading(remember))
+
+
+def _curves_of(worksheet: Worksheet, folder: Path, watch: Watch, remember: Remember) -> Reading:
     sheet: Sheet | None = None
     axes: Axes | None = None
     warnings: tuple[ReadingWarning, ...] = ()
