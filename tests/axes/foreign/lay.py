@@ -1,6 +1,7 @@
 """What is drawn on a page, in order: grid or ticks, frame, curves, numbers, titles."""
 
 from itertools import pairwise
+from typing import Protocol
 
 import numpy as np
 
@@ -11,18 +12,18 @@ TICK = 0.6
 """Length of a tick in heights of the numbers."""
 
 
-class Pen:
+class Pen(Protocol):
     """What a renderer must draw: straight lines and words."""
 
     def line(self, x0: float, y0: float, x1: float, y1: float, width: float, colour: str) -> None:
-        raise NotImplementedError
+        """A straight line."""
 
     def words(self, text: str, x: float, y: float, size: float, *, anchor: str, upright: bool = False) -> None:
         """Words at their baseline; anchor start, middle or end."""
-        raise NotImplementedError
 
     def width(self, text: str, size: float) -> float:
-        raise NotImplementedError
+        """How wide the words are."""
+        ...
 
 
 def lay(page: ForeignPage, pen: Pen) -> None:
